@@ -1,0 +1,120 @@
+/**
+ * The contract of one run: a pure function of scenario, airframe, seed, inputs and marks. Types only.
+ * The fly screen, workers, server and command line all drive the same `Run`.
+ */
+import type { Airframe } from '../model/airframe-schema.ts';
+import type { Observation, Plant, WantedValues } from '../model/plant-types.ts';
+import type { Scenario, ScenarioEvent } from './scenario-schema.ts';
+
+/** Version of model and runner together; stored with every attempt. A change of any number raises it. */
+export const MODEL_VERSION = '1.0.0';
+
+export type EndReason = 'completed' | 'touchdown' | 'ground' | 'non-finite' | 'left';
+
+/** One tick of pilot input as recorded: integers, so that the record is the input. */
+export interface ControlSample {
+  /** −32767 … 32767, right positive. */
+  stick: number;
+  pedal: number;
+  pitch: number;
+  rudderTrim: number;
+  /** 0 … 32767 per engine. */
+  levers: Int16Array;
+  /** 0 | 1 per engine. */
+  feather: Uint8Array;
+}
+
+/** Values drawn from the seed for events with `vary`: event id → member → value in the member's own unit. */
+export type DrawnValues = Record<string, Record<string, number>>;
+
+export interface RunSpec {
+  scenario: Scenario;
+  airframe: Airframe;
+  seed: number;
+  /** Given by the server for an attempt; drawn from the seed otherwise. */
+  drawn?: DrawnValues;
+}
+
+export interface FiredEvent {
+  id: string;
+  lane: ScenarioEvent['lane'];
+  kind: ScenarioEvent['kind'];
+  tick: number;
+  timeS: number;
+  /** One plain line for ticker and flags, e.g. "Left engine fails". */
+  text: string;
+  injected: boolean;
+}
+
+export type Verdict = 'met' | 'near' | 'not-met' | 'not-reached';
+
+export interface CriterionResult {
+  id: string;
+  title: string;
+  measure: string;
+  required: boolean;
+  /** In the limit's unit; null when never measured. */
+  value: number | null;
+  limit: { max?: number; min?: number; within?: [number, number]; unit: string };
+  /** Distance to the limit in its unit, negative when beyond; null without a value. */
+  margin: number | null;
+  /** Run time of the extreme, s. */
+  atS: number | null;
+  verdict: Verdict;
+  /** e.g. "not needed", "never". */
+  note?: string;
+}
+
+export interface RunningCriterion extends CriterionResult {
+  /** before its window, inside, or over. */
+  phase: 'waiting' | 'running' | 'done';
+  /** Present value of the measured quantity, not the extreme; null when not defined. */
+  now: number | null;
+}
+
+export interface RunSnapshot {
+  readonly tick: number;
+  readonly stateHash: string;
+}
+
+export interface Run {
+  readonly spec: RunSpec;
+  readonly plant: Plant;
+  readonly drawn: DrawnValues;
+  readonly tick: number;
+  readonly timeS: number;
+  readonly durationTicks: number;
+  readonly ended: EndReason | null;
+  readonly endDetail: string | null;
+  /** Observation of the present tick; refreshed by every step. The same object each time. */
+  readonly now: Observation;
+  readonly fired: readonly FiredEvent[];
+  readonly warnings: readonly string[];
+  /** Messages being shown at this tick. */
+  readonly messages: readonly { text: string; untilS: number }[];
+  /** True when a freeze event asks the clock to stop at this tick. */
+  readonly freezeRequested: boolean;
+  /** Indications the `display` events took away: name → state. */
+  readonly display: Readonly<Record<string, 'normal' | 'failed' | 'frozen'>>;
+  /** +1 when the left side is dead, −1 right, 0 none (sign of the engine yawing moment). */
+  readonly deadSide: -1 | 0 | 1;
+  /** A sample with centred controls and the present levers, to start from. */
+  neutralSample(): ControlSample;
+  /** Reads inputs, fires events, integrates one tick. No-op once ended. */
+  step(sample: ControlSample): void;
+  /** Adds an event at run time (live class); it fires at its own trigger, or now. */
+  inject(event: ScenarioEvent): void;
+  wantedInto(out: WantedValues): void;
+  /** Ends the run as left; results are final. */
+  leave(): void;
+  criteria(): RunningCriterion[];
+  results(): CriterionResult[];
+  /** All required criteria met (near counts as met). */
+  passed(): boolean;
+  /** Running hash over every state since tick 0, 16 hex digits. */
+  stateHash(): string;
+  save(): RunSnapshot;
+  restore(snapshot: RunSnapshot): void;
+}
+
+export type CreateRun = (spec: RunSpec) => Run;
