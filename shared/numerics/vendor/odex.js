@@ -1,0 +1,1 @@
+export { Solver, Outcome } from 'odex';

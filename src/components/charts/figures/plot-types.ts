@@ -1,0 +1,37 @@
+/** Shapes that figures are drawn from: plain arrays in display units. */
+export interface PlotSeries {
+  name: string;
+  x: readonly (number | null)[];
+  y: readonly (number | null)[];
+  line?: 'solid' | 'dashed' | 'dotted' | 'chain';
+  /** Side of the curve that is not available; hatched. */
+  forbid?: 'above' | 'below';
+}
+export interface PlotBand {
+  name: string;
+  x: readonly number[];
+  low: readonly number[];
+  high: readonly number[];
+}
+export interface PlotPoint {
+  x: number;
+  y: number;
+  text?: string;
+  shape?: 'disc' | 'ring' | 'cross';
+  anchor?: 'start' | 'end';
+}
+export interface PlotPost {
+  x: number;
+  text: string;
+}
+/** A complex root of the characteristic equation, 1/s; only the upper half-plane is drawn. */
+export interface PlotRoot {
+  re: number;
+  im: number;
+  name?: string;
+}
+/** Table behind a figure: what the table toggle shows and what the CSV holds. */
+export interface FigureTable {
+  head: readonly string[];
+  rows: readonly (readonly (string | number | null)[])[];
+}
