@@ -8,6 +8,8 @@ export interface TableColumn {
   sort?: string;
   /** On a phone the cell has no heading of its own (title cell, drawing). */
   bare?: boolean;
+  /** On a phone the cell takes the whole line (time line). */
+  wide?: boolean;
 }
 
 /** "title" ascending, "-title" descending. */

@@ -26,8 +26,8 @@ export const ALL_ARROWS: readonly ArrowKind[] = ARROW_LOOKS.map((look) => look.i
 
 /** Sets that answer one question each. */
 export const ARROW_PRESETS: readonly { id: string; name: string; arrows: readonly ArrowKind[] }[] = [
-  { id: 'yaw', name: 'What yaws it', arrows: ['R', 'F', 'T', 'D', 'N'] },
-  { id: 'roll', name: 'What rolls it', arrows: ['R', 'LL', 'LR', 'L'] },
+  { id: 'yaw', name: 'What yaws it', arrows: ['R', 'F', 'Y', 'T', 'D', 'N'] },
+  { id: 'roll', name: 'What rolls it', arrows: ['R', 'F', 'LL', 'LR', 'L'] },
   { id: 'all', name: 'All', arrows: ALL_ARROWS },
   { id: 'none', name: 'None', arrows: [] },
 ];

@@ -2,7 +2,7 @@
  * A plain aeroplane as flat-faced solids in body axes, from a handful of lengths. Invented proportions; it stands for
  * a class of aeroplane (two or four engines, propellers on the wing or jets under it), not for one type.
  */
-import { type Vec } from './projection.ts';
+import { DEG, type Vec } from './projection.ts';
 
 export interface SolidPart {
   /** Faces as indices into `points`. */
@@ -29,6 +29,8 @@ export interface AeroplaneShape {
   finArmM: number;
   finHeightM: number;
   engines: readonly EngineShape[];
+  /** Trailing edge to the right positive, as the right pedal moves it; deg. */
+  rudderDeg: number;
 }
 
 /** Circle that a propeller sweeps, or the intake of a jet. */
@@ -121,7 +123,7 @@ export function buildAeroplane(shape: AeroplaneShape): { parts: SolidPart[]; dis
     const tipY = 0.5 * b;
     const tip: Vec[] = [at(tipLead[0] - 0.16 * c, tipY), at(tipTrail[0] + 0.1 * c, tipY)];
     parts.push({
-      ...panel([rootLead, midLead, tipLead, tip[0]!, tip[1]!, tipTrail, midTrail, rootTrail], [0, 0, 1], 0.11 * c),
+      ...panel([rootLead, midLead, tipLead, tip[0]!, tip[1]!, tipTrail, midTrail, rootTrail], [0, 0, 1], 0.05 * c),
       side,
       order: 1,
     });
@@ -133,23 +135,20 @@ export function buildAeroplane(shape: AeroplaneShape): { parts: SolidPart[]; dis
       [-arm - 0.32 * c - 0.3 * sweep * stab, side * stab, stabZ + 0.02 * stab],
       [-arm - 0.36 * c, side * 0.15 * width, stabZ],
     ];
-    parts.push({ ...panel(outline, [0, 0, 1], 0.07 * c), side, order: 4 });
+    parts.push({ ...panel(outline, [0, 0, 1], 0.04 * c), side, order: 4 });
   }
-  const finTop = 0.5 * width + Math.max(1.35 * finHeightM, 0.14 * b);
-  parts.push({
-    ...panel(
-      [
-        [-arm + 0.72 * c, 0, 0.55 * width],
-        [-arm + 0.05 * c, 0, finTop],
-        [-arm - 0.42 * c, 0, finTop],
-        [-arm - 0.5 * c, 0, 0.4 * width],
-      ],
-      [0, 1, 0],
-      0.1 * c,
-    ),
-    side: 0,
-    order: 5,
-  });
+  const finTop = 0.5 * width + Math.max(1.7 * finHeightM, 0.165 * b);
+  const finThick = 0.07 * c;
+  const hinge: readonly [Vec, Vec] = [
+    [-arm - 0.14 * c, 0, finTop],
+    [-arm - 0.2 * c, 0, 0.45 * width],
+  ];
+  const fin: Vec[] = [[-arm + 0.78 * c, 0, 0.6 * width], [-arm + 0.12 * c, 0, finTop], ...hinge];
+  parts.push({ ...panel(fin, [0, 1, 0], finThick), side: 0, order: 5 });
+  const [sd, cd] = [Math.sin(shape.rudderDeg * DEG), Math.cos(shape.rudderDeg * DEG)];
+  const behind = ([x, , z]: Vec, chord: number): Vec => [x - chord * cd, chord * sd, z];
+  const rudder = [hinge[1], hinge[0], behind(hinge[0], 0.3 * c), behind(hinge[1], 0.36 * c)];
+  parts.push({ ...panel(rudder, [sd, cd, 0], 0.8 * finThick), side: 0, order: 6 });
 
   const discs: EngineDisc[] = [];
   shape.engines.forEach((engine, index) => {

@@ -3,7 +3,21 @@
  * ticks, track curtain, aeroplane with its engine discs, nose and flight path.
  */
 import { buildAeroplane, type AeroplaneShape, type EngineDisc, type SolidPart } from './aeroplane-solid.ts';
-import { add, createView, cross, DEG, dot, rotation, scale, sub, unit, type Attitude, type Point, type Vec, type View } from './projection.ts';
+import {
+  add,
+  type Attitude,
+  createView,
+  DEG,
+  dot,
+  type Point,
+  polygonNormal,
+  rotation,
+  scale,
+  sub,
+  unit,
+  type Vec,
+  type View,
+} from './projection.ts';
 
 export interface PlateShape {
   d: string;
@@ -48,8 +62,13 @@ export interface Plate {
   ring: Point | null;
 }
 
-const TONES = ['var(--tone-4)', 'var(--tone-4)', 'var(--tone-3)', 'var(--tone-2)', 'var(--tone-1)', 'var(--tone-0)'];
-const LIGHT: Vec = unit([0.1, -0.62, 0.78]);
+const TONES = ['var(--tone-4)', 'var(--tone-3)', 'var(--tone-2)', 'var(--tone-1)', 'var(--tone-0)'];
+const GRID_STEPS = 26;
+/** Stripes of the track curtain: how many, and how long in spans. */
+const STRIPES = 12;
+const STRIPE_SPANS = 0.16;
+/** Toward the light: ahead, left, above. */
+const LIGHT: Vec = unit([0.8, -0.5, 0.75]);
 
 const path = (points: readonly Point[], close: boolean): string =>
   points.length < 2
@@ -88,10 +107,10 @@ function ground(view: View, spec: PlateSpec): PlateShape[] {
     shapes.push({ d: `M0 ${y + below}H${width}`, stroke: 'var(--stage-grid)', width: 0.9 - i * 0.1, opacity: 0.8 - i * 0.1 });
   });
   let grid = '';
-  const step = spec.heightM * 0.75;
-  const reach = step * 60;
+  const step = spec.heightM;
+  const reach = step * GRID_STEPS;
   const [baseX, baseY] = [Math.round(view.from[0] / step) * step, Math.round(view.from[1] / step) * step];
-  for (let k = -60; k <= 60; k += 1) {
+  for (let k = -GRID_STEPS; k <= GRID_STEPS; k += 1) {
     const across = view.segment([baseX + k * step, baseY - reach, 0], [baseX + k * step, baseY + reach, 0]);
     const along = view.segment([baseX - step, baseY + k * step, 0], [baseX + reach, baseY + k * step, 0]);
     for (const line of [across, along]) if (line) grid += path(line, false);
@@ -132,11 +151,11 @@ function curtain(view: View, spec: PlateSpec): PlateShape[] {
   const length = spec.shape.spanM;
   const track = rotation({ headingDeg: spec.attitude.headingDeg + spec.pathRightDeg, pitchDeg: 0, bankDeg: 0 });
   const at = (k: number): Vec => {
-    const back = track([-spec.shape.finArmM * 1.1 - k * 0.34 * length, 0, 0]);
-    return [back[0], back[1] - 0.006 * k * k * length * 0.34, spec.heightM - 0.012 * k * length];
+    const back = track([-spec.shape.finArmM * 1.1 - k * STRIPE_SPANS * length, 0, 0]);
+    return [back[0], back[1], spec.heightM - 0.03 * k * STRIPE_SPANS * length];
   };
   let top: Point[] = [];
-  for (let k = 7; k >= 0; k -= 1) {
+  for (let k = STRIPES; k >= 0; k -= 1) {
     const [a, b] = [at(k + 1), at(k)];
     const stripe = view.polygon([a, b, [b[0], b[1], 0], [a[0], a[1], 0]]);
     if (stripe.length > 2) shapes.push({ d: path(stripe, true), fill: 'var(--ink)', opacity: [0.05, 0.1, 0.07, 0.13][k % 4]! });
@@ -154,10 +173,10 @@ function aeroplane(view: View, spec: PlateSpec, place: (v: Vec) => Vec): PlateSh
   const rank = (side: number): number => (side === 0 ? 1 : side === near ? 2 : 0);
   const sorted = [...parts].sort((a, b) => rank(a.side) - rank(b.side) || a.order - b.order);
   const shapes: PlateShape[] = [];
-  for (const side of [-near, 0, near]) {
-    // Seen from astern a propeller turns ahead of its nacelle and wing: it is painted before them.
-    for (const disc of discs) if (disc.side === side && disc.kind === 'propeller') shapes.push(...discShapes(view, spec, disc, place));
-    for (const part of sorted) if (part.side === side) shapes.push(...partShapes(view, part, place));
+  for (const part of sorted) shapes.push(...partShapes(view, part, place));
+  // Discs are glass over everything: which engine is dead must be seen from any side.
+  for (const disc of [...discs].sort((a, b) => rank(a.side) - rank(b.side))) {
+    shapes.push(...discShapes(view, spec, disc, place));
   }
   return shapes;
 }
@@ -168,8 +187,9 @@ function partShapes(view: View, part: SolidPart, place: (v: Vec) => Vec): PlateS
   const edges = new Map<string, number>();
   const shapes: PlateShape[] = [];
   part.faces.forEach((face, index) => {
-    const [a, b, c] = [points[face[0]!]!, points[face[1]!]!, points[face[2]!]!];
-    let normal = unit(cross(sub(b, a), sub(c, a)));
+    const corners = face.map((i) => points[i]!);
+    const a = corners[0]!;
+    let normal = polygonNormal(corners.map((corner) => sub(corner, a)));
     if (dot(normal, sub(a, place(part.insides[index]!))) < 0) normal = scale(normal, -1);
     const facing = dot(normal, sub(view.from, a)) > 0;
     face.forEach((from, i) => {
@@ -179,7 +199,7 @@ function partShapes(view: View, part: SolidPart, place: (v: Vec) => Vec): PlateS
     });
     if (!facing) return;
     const outline = face.map((i) => picture[i]).filter((p): p is Point => p != null);
-    const tone = Math.min(TONES.length - 1, Math.max(0, Math.floor(((dot(normal, LIGHT) + 0.62) / 1.5) * TONES.length)));
+    const tone = Math.min(TONES.length - 1, Math.max(0, Math.floor(((dot(normal, LIGHT) + 0.5) / 1.25) * TONES.length)));
     const fill = part.inkFaces?.includes(index) ? 'var(--stage-edge)' : TONES[tone]!;
     shapes.push({ d: path(outline, true), fill, stroke: fill, width: 0.7 });
   });
@@ -202,7 +222,11 @@ function discShapes(view: View, spec: PlateSpec, disc: EngineDisc, place: (v: Ve
     if (p) rim.push(p);
   }
   const d = path(rim, true);
+  // With every engine running no side is dead or live: the discs are plain.
+  if (spec.failed.length === 0) return [{ d, stroke: 'var(--ink)', width: 1 }];
   if (!failed) return [{ d, fill: 'url(#h-live-l)', stroke: 'var(--live)', width: 1.5 }];
+  const hatched: PlateShape = { d, fill: 'url(#h-dead-l)', stroke: 'var(--dead)', width: 1.75 };
+  if (disc.kind === 'jet') return [hatched];
   let blades = '';
   const hub = view.point(place(disc.centre));
   for (const turn of [80, 200, 320]) {
@@ -212,7 +236,7 @@ function discShapes(view: View, spec: PlateSpec, disc: EngineDisc, place: (v: Ve
     if (hub && tip) blades += path([hub, tip], false);
   }
   return [
-    { d, fill: 'url(#h-dead-l)', stroke: 'var(--dead)', width: 1.75 },
+    hatched,
     { d: blades, stroke: 'var(--dead)', width: 3.5 },
   ];
 }

@@ -12,6 +12,15 @@ export const cross = (a: Vec, b: Vec): Vec => [
 ];
 export const unit = (a: Vec): Vec => scale(a, 1 / (Math.hypot(...a) || 1));
 
+/** Normal of a polygon whose corners may lie on one line (Newell's method); its sense follows their order. */
+export function polygonNormal(points: readonly Vec[]): Vec {
+  let sum: Vec = [0, 0, 0];
+  points.forEach((p, i) => {
+    sum = add(sum, cross(p, points[(i + 1) % points.length] as Vec));
+  });
+  return unit(sum);
+}
+
 export const DEG = Math.PI / 180;
 
 /** Heading right of world x, nose up and right wing down positive; deg. */

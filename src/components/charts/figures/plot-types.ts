@@ -35,3 +35,8 @@ export interface FigureTable {
   head: readonly string[];
   rows: readonly (readonly (string | number | null)[])[];
 }
+/** Where oscillations reach a level: real part over the imaginary part, both 1/s. */
+export interface LevelBoundary {
+  level: 1 | 2 | 3;
+  dutchRoll: readonly { re: number; im: number }[];
+}

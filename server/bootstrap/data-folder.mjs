@@ -1,0 +1,53 @@
+import fs from 'node:fs';
+import path from 'node:path';
+import { codeOf, Refusal } from './refusal.mjs';
+
+/** Free space that a first start needs: an empty database takes about 50 MB, recordings grow from there. */
+export const MINIMUM_FREE_BYTES = 200_000_000;
+
+/**
+ * Makes the data folder and its `run` and `logs`; refuses one that cannot be written or is nearly full.
+ * @param {string} folder
+ * @param {number} [minimumFreeBytes]
+ */
+export function prepareDataFolder(folder, minimumFreeBytes = MINIMUM_FREE_BYTES) {
+  try {
+    for (const part of ['run', 'logs']) fs.mkdirSync(path.join(folder, part), { recursive: true, mode: 0o700 });
+    const probe = path.join(folder, 'run', `probe-${process.pid}`);
+    fs.writeFileSync(probe, Buffer.alloc(4096));
+    fs.rmSync(probe);
+  } catch (error) {
+    throw refusalFor(folder, error);
+  }
+  const { bavail, bsize } = fs.statfsSync(folder);
+  if (bavail * bsize < minimumFreeBytes) {
+    throw new Refusal(
+      `The data folder ${folder} is full: ${megabytes(bavail * bsize)} free, ${megabytes(minimumFreeBytes)} needed`,
+      'free some space there, or name another folder with SIDEWASH_DATA',
+    );
+  }
+}
+
+/**
+ * @param {string} folder
+ * @param {unknown} error
+ */
+function refusalFor(folder, error) {
+  const code = codeOf(error);
+  if (code === 'ENOSPC' || code === 'EDQUOT') {
+    return new Refusal(
+      `The data folder ${folder} is full`,
+      'free some space there, or name another folder with SIDEWASH_DATA',
+    );
+  }
+  const why = code === 'EROFS' ? 'it is read-only' : code === 'EACCES' || code === 'EPERM' ? 'permission denied' : code;
+  return new Refusal(
+    `The data folder ${folder} cannot be written (${why})`,
+    'give this user write permission to it, or name another folder with SIDEWASH_DATA',
+  );
+}
+
+/** @param {number} bytes */
+function megabytes(bytes) {
+  return `${Math.floor(bytes / 1_000_000)} MB`;
+}

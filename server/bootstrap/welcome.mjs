@@ -1,0 +1,28 @@
+/** Roles and sign-ins of the invented organisation that an empty database is filled with. */
+const SIGN_INS = [
+  ['Trainee', 'j.lindqvist@fieldschool.example'],
+  ['Instructor', 'm.okafor@fieldschool.example'],
+  ['Engineer', 'a.reyes@fieldschool.example'],
+  ['Administrator', 's.virtanen@fieldschool.example'],
+];
+const PASSWORD = 'balanced-line-26';
+
+/**
+ * What npm start prints at the end.
+ * @param {string} address
+ * @param {string} timing
+ */
+export function welcome(address, timing) {
+  return [
+    '',
+    `Sidewash is at ${address}`,
+    '',
+    `Demonstration sign-ins (invented people; password ${PASSWORD}):`,
+    ...SIGN_INS.map(([role, email]) => `  ${role.padEnd(14)}${email}`),
+    '',
+    'Not an approved training device, not for operational use.',
+    'The approved flight manual and licensed instruction govern.',
+    '',
+    `${timing} Ctrl-C stops everything.`,
+  ].join('\n');
+}

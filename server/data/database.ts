@@ -1,0 +1,74 @@
+import type { DataSource, EntityManager } from 'typeorm';
+import { type DataSourceSetup, createDataSource } from './data-source.ts';
+import { migrate } from './migrate.ts';
+import { type AirframesRepository, createAirframesRepository } from './repositories/airframes.repository.ts';
+import { type AttemptsRepository, createAttemptsRepository } from './repositories/attempts.repository.ts';
+import { type AuditRepository, createAuditRepository } from './repositories/audit.repository.ts';
+import { type ChunksRepository, createChunksRepository } from './repositories/chunks.repository.ts';
+import {
+  type OrganisationsRepository,
+  createOrganisationsRepository,
+} from './repositories/organisations.repository.ts';
+import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
+import { type ScenariosRepository, createScenariosRepository } from './repositories/scenarios.repository.ts';
+import { type SessionsRepository, createSessionsRepository } from './repositories/sessions.repository.ts';
+
+/** All that services may ask of the database; inside {@link Database.transaction} the same on one connection. */
+export interface Repositories {
+  readonly organisations: OrganisationsRepository;
+  readonly people: PeopleRepository;
+  readonly sessions: SessionsRepository;
+  readonly airframes: AirframesRepository;
+  readonly scenarios: ScenariosRepository;
+  readonly attempts: AttemptsRepository;
+  readonly chunks: ChunksRepository;
+  readonly audit: AuditRepository;
+}
+
+export interface Database extends Repositories {
+  transaction<T>(work: (repositories: Repositories) => Promise<T>): Promise<T>;
+  /** Resolves when the database answers. */
+  ping(): Promise<void>;
+  close(): Promise<void>;
+}
+
+function repositories(manager: EntityManager): Repositories {
+  return {
+    organisations: createOrganisationsRepository(manager),
+    people: createPeopleRepository(manager),
+    sessions: createSessionsRepository(manager),
+    airframes: createAirframesRepository(manager),
+    scenarios: createScenariosRepository(manager),
+    attempts: createAttemptsRepository(manager),
+    chunks: createChunksRepository(manager),
+    audit: createAuditRepository(manager),
+  };
+}
+
+/** The database behind a connected data source. */
+export function databaseOf(source: DataSource): Database {
+  return {
+    ...repositories(source.manager),
+    transaction: (work) => source.transaction((manager) => work(repositories(manager))),
+    ping: async () => {
+      await source.query('SELECT 1');
+    },
+    close: () => source.destroy(),
+  };
+}
+
+/**
+ * Connects and brings the schema up to date.
+ *
+ * @returns The database and the names of the migrations that ran.
+ */
+export async function openDatabase(setup: DataSourceSetup): Promise<{ database: Database; migrations: string[] }> {
+  const source = createDataSource(setup);
+  await source.initialize();
+  try {
+    return { migrations: await migrate(source), database: databaseOf(source) };
+  } catch (error) {
+    await source.destroy();
+    throw error;
+  }
+}

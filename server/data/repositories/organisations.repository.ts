@@ -1,0 +1,47 @@
+import type { OrganisationSettings } from '#shared/contracts/session.ts';
+import type { EntityManager } from 'typeorm';
+import { CohortMemberEntity } from '../entities/cohort-member.entity.ts';
+import { CohortEntity } from '../entities/cohort.entity.ts';
+import { OrganisationEntity } from '../entities/organisation.entity.ts';
+
+export interface NewOrganisation {
+  id: string;
+  slug: string;
+  name: string;
+  settings: OrganisationSettings;
+  demonstration: boolean;
+  at: Date;
+}
+
+export function createOrganisationsRepository(manager: EntityManager) {
+  return {
+    async none(): Promise<boolean> {
+      return (await manager.count(OrganisationEntity)) === 0;
+    },
+
+    async insert({ at, ...organisation }: NewOrganisation): Promise<void> {
+      await manager.insert(OrganisationEntity, {
+        ...organisation,
+        settings: { ...organisation.settings },
+        createdAt: at,
+      });
+    },
+
+    async insertCohort(cohort: {
+      id: string;
+      organisationId: string;
+      name: string;
+      memberIds: string[];
+      at: Date;
+    }): Promise<void> {
+      const { id, organisationId, name, memberIds, at } = cohort;
+      await manager.insert(CohortEntity, { id, organisationId, name, createdAt: at });
+      await manager.insert(
+        CohortMemberEntity,
+        memberIds.map((personId) => ({ cohortId: id, personId, joinedAt: at })),
+      );
+    },
+  };
+}
+
+export type OrganisationsRepository = ReturnType<typeof createOrganisationsRepository>;

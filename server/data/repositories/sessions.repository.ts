@@ -1,0 +1,120 @@
+import type { Role } from '#shared/contracts/session.ts';
+import { type EntityManager, IsNull, LessThan } from 'typeorm';
+import { RefreshTokenEntity } from '../entities/refresh-token.entity.ts';
+import { SessionEntity } from '../entities/session.entity.ts';
+import { type PersonStatus, rolesOf } from './people.repository.ts';
+
+export interface NewSession {
+  id: string;
+  personId: string;
+  at: Date;
+  expiresAt: Date;
+  address: string | null;
+  agent: string | null;
+}
+
+/** Who a session belongs to and whether it still holds. */
+export interface SessionRecord {
+  id: string;
+  personId: string;
+  organisationId: string;
+  status: PersonStatus;
+  roles: Role[];
+  expiresAt: Date;
+  revokedAt: Date | null;
+}
+
+export interface RefreshTokenRecord {
+  usedAt: Date | null;
+  session: SessionRecord;
+}
+
+function sessionRecord(row: SessionEntity): SessionRecord {
+  const { person } = row;
+  if (person === undefined) throw new Error(`Session ${row.id} was read without its person.`);
+  return {
+    id: row.id,
+    personId: row.personId,
+    organisationId: person.organisationId,
+    status: person.status,
+    roles: rolesOf(person.roles),
+    expiresAt: row.expiresAt,
+    revokedAt: row.revokedAt,
+  };
+}
+
+export function createSessionsRepository(manager: EntityManager) {
+  const findSession = async (id: string): Promise<SessionRecord | null> => {
+    const row = await manager
+      .createQueryBuilder(SessionEntity, 'session')
+      .innerJoin('session.person', 'person')
+      .leftJoin('person.roles', 'role')
+      .select(['session', 'person.id', 'person.organisationId', 'person.status', 'role'])
+      .where('session.id = :id', { id })
+      .getOne();
+    return row === null ? null : sessionRecord(row);
+  };
+
+  return {
+    find: findSession,
+
+    async insert({ at, ...session }: NewSession): Promise<void> {
+      await manager.insert(SessionEntity, {
+        ...session,
+        createdAt: at,
+        lastUsedAt: at,
+        revokedAt: null,
+        revokedFor: null,
+      });
+    },
+
+    async insertToken(tokenHash: string, sessionId: string, at: Date): Promise<void> {
+      await manager.insert(RefreshTokenEntity, { tokenHash, sessionId, issuedAt: at, usedAt: null });
+    },
+
+    /** Locks the token's row, so that two uses at the same time come one after the other. */
+    async takeToken(tokenHash: string): Promise<RefreshTokenRecord | null> {
+      const token = await manager.findOne(RefreshTokenEntity, {
+        where: { tokenHash },
+        lock: { mode: 'pessimistic_write' },
+      });
+      if (token === null) return null;
+      const session = await findSession(token.sessionId);
+      return session === null ? null : { usedAt: token.usedAt, session };
+    },
+
+    async markTokenUsed(tokenHash: string, at: Date): Promise<void> {
+      await manager.update(RefreshTokenEntity, { tokenHash, usedAt: IsNull() }, { usedAt: at });
+    },
+
+    async touch(sessionId: string, at: Date): Promise<void> {
+      await manager.update(SessionEntity, { id: sessionId }, { lastUsedAt: at });
+    },
+
+    /** The session a refresh token belongs to, whatever its state; for signing out with an expired access token. */
+    async idOfToken(tokenHash: string): Promise<string | null> {
+      const token = await manager.findOne(RefreshTokenEntity, { where: { tokenHash } });
+      return token?.sessionId ?? null;
+    },
+
+    async revoke(sessionId: string, reason: string, at: Date): Promise<void> {
+      await manager.update(
+        SessionEntity,
+        { id: sessionId, revokedAt: IsNull() },
+        { revokedAt: at, revokedFor: reason },
+      );
+    },
+
+    async revokeAllOf(personId: string, reason: string, at: Date): Promise<void> {
+      await manager.update(SessionEntity, { personId, revokedAt: IsNull() }, { revokedAt: at, revokedFor: reason });
+    },
+
+    /** Removes sessions, with their tokens, that ended before `before`. */
+    async removeEndedBefore(before: Date): Promise<void> {
+      await manager.delete(SessionEntity, { expiresAt: LessThan(before) });
+      await manager.delete(SessionEntity, { revokedAt: LessThan(before) });
+    },
+  };
+}
+
+export type SessionsRepository = ReturnType<typeof createSessionsRepository>;

@@ -1,0 +1,346 @@
+/**
+ * From mathjs' syntax tree to closures over SI numbers, with the dimension of every part checked.
+ *
+ * mathjs only parses. Whatever is not listed here (property access, assignment, powers, strings, matrices, further
+ * functions) is refused with its place.
+ */
+import type { MathNode, OperatorNode } from 'mathjs';
+import { EXPRESSION_FUNCTIONS, EXPRESSION_NAMES } from './names.ts';
+import type { ExpressionInputs } from './names.ts';
+import { ExpressionError, MAX_EXPRESSION_NESTING, PERCENT_SYMBOL, SINCE_SYMBOL } from './tokens.ts';
+import type { Token } from './tokens.ts';
+import { dimensionWords, NUMBER, sameDimension, TIME, timesPower, UNITS, unitsOf, WORD_UNITS } from './units.ts';
+import type { Dimension } from './units.ts';
+
+export type NumberReader = (x: ExpressionInputs) => number;
+export type TruthReader = (x: ExpressionInputs) => boolean;
+
+export interface Quantity {
+  type: 'quantity';
+  dimension: Dimension;
+  read: NumberReader;
+  constant: number | null;
+  position: number;
+}
+export interface Truth {
+  type: 'truth';
+  read: TruthReader;
+  position: number;
+}
+type Part = Quantity | Truth;
+
+const COMPARISONS: Readonly<Record<string, (a: NumberReader, b: NumberReader) => TruthReader>> = {
+  smaller: (a, b) => (x) => a(x) < b(x),
+  smallerEq: (a, b) => (x) => a(x) <= b(x),
+  larger: (a, b) => (x) => a(x) > b(x),
+  largerEq: (a, b) => (x) => a(x) >= b(x),
+  equal: (a, b) => (x) => a(x) === b(x),
+  unequal: (a, b) => (x) => a(x) !== b(x),
+};
+const COMPARISONS_WITH_CONSTANT: Readonly<Record<string, (a: NumberReader, c: number) => TruthReader>> = {
+  smaller: (a, c) => (x) => a(x) < c,
+  smallerEq: (a, c) => (x) => a(x) <= c,
+  larger: (a, c) => (x) => a(x) > c,
+  largerEq: (a, c) => (x) => a(x) >= c,
+  equal: (a, c) => (x) => a(x) === c,
+  unequal: (a, c) => (x) => a(x) !== c,
+};
+
+/** Compiles one tree; the leaves are taken from `tokens` in order. */
+export class Compiler {
+  readonly sinceIds: string[] = [];
+  readonly names: string[] = [];
+  private readonly leaves: Token[];
+  private next = 0;
+  private last = 0;
+
+  constructor(tokens: readonly Token[]) {
+    this.leaves = tokens.filter(
+      (token) =>
+        (token.kind !== 'sign' && !['and', 'or', 'not'].includes(token.text)) || (token.kind === 'sign' && token.text === '%'),
+    );
+  }
+
+  compile(node: MathNode, depth: number): Part {
+    switch (node.type) {
+      case 'ParenthesisNode':
+        return this.inner(childrenOf(node)[0], depth);
+      case 'ConstantNode':
+        return this.number();
+      case 'SymbolNode':
+        return this.name();
+      case 'FunctionNode':
+        return this.call(node, depth);
+      case 'OperatorNode':
+        return this.operator(node as OperatorNode, depth);
+      case 'RelationalNode':
+        throw this.refuse('comparisons cannot be chained', 'Join two comparisons with and.');
+      default:
+        throw this.refuse('this form is not allowed in an expression', 'Use arithmetic, comparisons, and, or, not.');
+    }
+  }
+
+  private here(): number {
+    return this.leaves[this.next]?.position ?? this.last;
+  }
+
+  private refuse(message: string, remedy: string, position = this.here()): ExpressionError {
+    return new ExpressionError(position, message, remedy);
+  }
+
+  private take(): Token {
+    const token = this.leaves[this.next++];
+    if (token === undefined) throw this.refuse('the expression cannot be read here', 'Write it more simply.');
+    this.last = token.position;
+    return token;
+  }
+
+  private inner(node: MathNode, depth: number): Part {
+    if (depth >= MAX_EXPRESSION_NESTING) {
+      throw this.refuse(`nested more than ${MAX_EXPRESSION_NESTING} deep`, 'Split the condition into simpler events.');
+    }
+    return this.compile(node, depth + 1);
+  }
+
+  private number(): Quantity {
+    const token = this.take();
+    return constantPart(Number(token.text), NUMBER, token.position);
+  }
+
+  private name(): Quantity {
+    const token = this.take();
+    const known = Object.hasOwn(EXPRESSION_NAMES, token.text) ? EXPRESSION_NAMES[token.text] : null;
+    if (known === null) {
+      throw this.refuse(
+        EXPRESSION_FUNCTIONS.includes(token.text) ? `${token.text} needs its arguments` : `the unit "${token.text}" has no number before it`,
+        EXPRESSION_FUNCTIONS.includes(token.text) ? `Write ${token.text}(…).` : `Write a number and the unit, as 5 ${token.text}.`,
+        token.position,
+      );
+    }
+    if (!this.names.includes(token.text)) this.names.push(token.text);
+    return { type: 'quantity', dimension: known.dimension, read: known.read, constant: null, position: token.position };
+  }
+
+  private call(node: MathNode, depth: number): Quantity {
+    const token = this.take();
+    if (token.kind === 'since') {
+      const id = token.text;
+      if (!this.sinceIds.includes(id)) this.sinceIds.push(id);
+      this.skipSinceSymbol(node);
+      return { type: 'quantity', dimension: TIME, read: (x) => x.sinceS(id), constant: null, position: token.position };
+    }
+    if (!EXPRESSION_FUNCTIONS.includes(token.text)) {
+      throw this.refuse(`"${token.text}" is not a function`, `Functions are ${EXPRESSION_FUNCTIONS.join(', ')} and since(id).`, token.position);
+    }
+    const args = argumentsOf(node).map((arg) => this.quantity(this.inner(arg, depth), `an argument of ${token.text}`));
+    const several = token.text === 'min' || token.text === 'max';
+    if (several ? args.length < 2 : args.length !== 1) {
+      throw this.refuse(
+        `${token.text} takes ${several ? 'two or more arguments' : 'one argument'}, not ${args.length}`,
+        several ? `Write ${token.text}(a, b).` : `Write ${token.text}(a).`,
+        token.position,
+      );
+    }
+    return this.applyFunction(token, args);
+  }
+
+  private applyFunction(token: Token, args: Quantity[]): Quantity {
+    const [a] = args;
+    const f = a.read;
+    const position = token.position;
+    if (token.text === 'abs') {
+      return { type: 'quantity', dimension: a.dimension, read: (x) => Math.abs(f(x)), constant: null, position };
+    }
+    if (token.text === 'sqrt') {
+      const half = timesPower(NUMBER, a.dimension, 0.5);
+      return { type: 'quantity', dimension: half, read: (x) => Math.sqrt(f(x)), constant: null, position };
+    }
+    for (const other of args) this.requireSame(a, other, token.text);
+    const readers = args.map((arg) => arg.read);
+    const pick = token.text === 'min' ? Math.min : Math.max;
+    const read: NumberReader = (x) => {
+      let best = readers[0](x);
+      for (let i = 1; i < readers.length; i++) best = pick(best, readers[i](x));
+      return best;
+    };
+    return { type: 'quantity', dimension: a.dimension, read, constant: null, position };
+  }
+
+  /** since(…) was tokenised as one word; its placeholder argument must be the only one and carries no token of its own. */
+  private skipSinceSymbol(node: MathNode): void {
+    const args = argumentsOf(node);
+    if (args.length !== 1 || !('name' in args[0]) || args[0].name !== SINCE_SYMBOL) {
+      throw this.refuse('since takes one event id', 'Write since(id).', this.last);
+    }
+  }
+
+  private operator(node: OperatorNode, depth: number): Part {
+    const fn = String(node.fn);
+    const args = node.args;
+    if (fn === 'not') {
+      const part = this.truth(this.inner(args[0], depth), 'not');
+      const f = part.read;
+      return { type: 'truth', read: (x) => !f(x), position: part.position };
+    }
+    if (fn === 'unaryMinus' || fn === 'unaryPlus') {
+      const part = this.quantity(this.inner(args[0], depth), 'a sign');
+      if (fn === 'unaryPlus') return part;
+      const f = part.read;
+      if (part.constant !== null) return constantPart(-part.constant, part.dimension, part.position);
+      return { ...part, read: (x) => -f(x) };
+    }
+    if (fn === 'and' || fn === 'or') {
+      const left = this.truth(this.compile(args[0], depth), fn);
+      const right = this.truth(this.compile(args[1], depth), fn);
+      const a = left.read;
+      const b = right.read;
+      return { type: 'truth', read: fn === 'and' ? (x) => a(x) && b(x) : (x) => a(x) || b(x), position: left.position };
+    }
+    if (Object.hasOwn(COMPARISONS, fn)) return this.comparison(fn, args, depth);
+    if (fn === 'multiply' && node.implicit) return this.withUnit(args, depth);
+    if (fn === 'divide') return this.quotient(args, depth);
+    if (fn === 'multiply' || fn === 'add' || fn === 'subtract') {
+      const left = this.quantity(this.compile(args[0], depth), `the left of "${node.op}"`);
+      const right = this.quantity(this.compile(args[1], depth), `the right of "${node.op}"`);
+      return this.arithmetic(fn, left, right);
+    }
+    throw this.refuse(`the operator "${node.op}" is not allowed`, 'Use + − * /, comparisons, and, or, not.');
+  }
+
+  private comparison(fn: string, args: MathNode[], depth: number): Truth {
+    const left = this.quantity(this.compile(args[0], depth), 'the left of a comparison');
+    const right = this.quantity(this.compile(args[1], depth), 'the right of a comparison');
+    this.requireSame(left, right, 'a comparison');
+    const read =
+      right.constant === null
+        ? COMPARISONS[fn](left.read, right.read)
+        : COMPARISONS_WITH_CONSTANT[fn](left.read, right.constant);
+    return { type: 'truth', read, position: left.position };
+  }
+
+  private arithmetic(fn: string, left: Quantity, right: Quantity): Quantity {
+    const a = left.read;
+    const b = right.read;
+    if (fn !== 'multiply') this.requireSame(left, right, fn === 'add' ? 'a sum' : 'a difference');
+    const dimension = fn === 'multiply' ? timesPower(left.dimension, right.dimension, 1) : left.dimension;
+    const read: NumberReader =
+      fn === 'multiply' ? (x) => a(x) * b(x) : fn === 'add' ? (x) => a(x) + b(x) : (x) => a(x) - b(x);
+    const constant =
+      left.constant === null || right.constant === null
+        ? null
+        : fn === 'multiply'
+          ? left.constant * right.constant
+          : fn === 'add'
+            ? left.constant + right.constant
+            : left.constant - right.constant;
+    if (constant !== null) return constantPart(constant, dimension, left.position);
+    return { type: 'quantity', dimension, read, constant, position: left.position };
+  }
+
+  /** A number (or parenthesis) followed by a unit. */
+  private withUnit(args: MathNode[], depth: number): Quantity {
+    const left = this.quantity(this.compile(args[0], depth), 'the number before a unit');
+    const unit = unitSymbol(args[1]);
+    if (unit === null) {
+      throw this.refuse('an operator is missing here', 'Write + − * / or a comparison between the two parts.');
+    }
+    const token = this.take();
+    if (unit === 'min') {
+      throw this.refuse('"min" is a unit only in ft/min', 'Write ft/min, or times in s.', token.position);
+    }
+    return this.scale(left, UNITS[unit]);
+  }
+
+  private scale(left: Quantity, unit: { dimension: Dimension; factor: number }): Quantity {
+    const dimension = timesPower(left.dimension, unit.dimension, 1);
+    const factor = unit.factor;
+    if (left.constant !== null) return constantPart(left.constant * factor, dimension, left.position);
+    const f = left.read;
+    return { ...left, dimension, read: (x) => f(x) * factor };
+  }
+
+  /** A quotient, or the second half of a compound unit such as deg/s. */
+  private quotient(args: MathNode[], depth: number): Quantity {
+    const divisor = unitSymbol(args[1]);
+    const [number, upper] = unitEnd(args[0]);
+    if (divisor !== null && upper !== null && number !== null) {
+      const left = this.quantity(this.compile(number, depth), 'the number before a unit');
+      const upperToken = this.take();
+      this.take();
+      const compound = `${upper}/${divisor}`;
+      if (!Object.hasOwn(UNITS, compound)) {
+        throw this.refuse(
+          `"${compound}" is not a unit of expressions`,
+          'Compound units are m/s, ft/min, deg/s and kt/s.',
+          upperToken.position,
+        );
+      }
+      return this.scale(left, UNITS[compound]);
+    }
+    const left = this.quantity(this.compile(args[0], depth), 'the left of "/"');
+    const right = this.quantity(this.compile(args[1], depth), 'the right of "/"');
+    const dimension = timesPower(left.dimension, right.dimension, -1);
+    const a = left.read;
+    const b = right.read;
+    if (left.constant !== null && right.constant !== null) {
+      return constantPart(left.constant / right.constant, dimension, left.position);
+    }
+    return { type: 'quantity', dimension, read: (x) => a(x) / b(x), constant: null, position: left.position };
+  }
+
+  private quantity(part: Part, where: string): Quantity {
+    if (part.type === 'quantity') return part;
+    throw this.refuse(`${where} must be a quantity, but this is true or false`, 'Compare quantities first, then join with and, or, not.', part.position);
+  }
+
+  private truth(part: Part, word: string): Truth {
+    if (part.type === 'truth') return part;
+    throw this.refuse(`${word} joins comparisons, but this is ${dimensionWords(part.dimension)}`, 'Compare it with a value first, as ias < 80 kt.', part.position);
+  }
+
+  private requireSame(left: Quantity, right: Quantity, where: string): void {
+    if (sameDimension(left.dimension, right.dimension)) return;
+    const wanted = unitsOf(left.dimension).filter((unit) => unit !== 'count');
+    const bare = right.constant !== null && sameDimension(right.dimension, NUMBER) && wanted.length > 0;
+    throw this.refuse(
+      `units do not match in ${where}: ${dimensionWords(left.dimension)} with ${dimensionWords(right.dimension)}`,
+      bare ? `Give the number a unit: ${wanted.join(', ')}.` : 'Bring both sides to the same kind of quantity.',
+      right.position,
+    );
+  }
+}
+
+function constantPart(value: number, dimension: Dimension, position: number): Quantity {
+  return { type: 'quantity', dimension, read: () => value, constant: value, position };
+}
+
+function childrenOf(node: MathNode): MathNode[] {
+  const found: MathNode[] = [];
+  node.forEach((child) => void found.push(child));
+  return found;
+}
+
+/** Arguments of a call, without the called name. */
+function argumentsOf(node: MathNode): MathNode[] {
+  return 'args' in node && Array.isArray(node.args) ? node.args : [];
+}
+
+function symbolName(node: MathNode): string | null {
+  return node.type === 'SymbolNode' && 'name' in node && typeof node.name === 'string' ? node.name : null;
+}
+
+/** The unit that a lone symbol names; "min" counts, for ft/min. */
+function unitSymbol(node: MathNode): string | null {
+  const name = symbolName(node);
+  if (name === null) return null;
+  if (name === PERCENT_SYMBOL) return '%';
+  return WORD_UNITS.includes(name) || name === 'min' ? name : null;
+}
+
+/** The parts of "number unit", when a node is that. */
+function unitEnd(node: MathNode): [MathNode | null, string | null] {
+  if (node.type !== 'OperatorNode') return [null, null];
+  const operator = node as OperatorNode;
+  if (String(operator.fn) !== 'multiply' || !operator.implicit) return [null, null];
+  return [operator.args[0], unitSymbol(operator.args[1])];
+}

@@ -1,0 +1,186 @@
+/**
+ * One flight: the run driven by the fixed clock, pilot input quantised every tick, everything recorded, chunks handed on.
+ * `frame(nowMs)` is called once an animation frame by whoever draws; nothing here runs by itself.
+ */
+import { TICK_S } from '#shared/model/plant-types.ts';
+import type { Observation } from '#shared/model/plant-types.ts';
+import type { Recorder, RecordedChunk } from '#shared/scenario/recording.ts';
+import type { ControlSample, EndReason, Run } from '#shared/scenario/run-types.ts';
+import { type FixedClock, createFixedClock } from './fixed-clock.ts';
+import type { InputSource } from './input/input-source.ts';
+import { type PilotAxes, axesOf, quantiseInto } from './input/pilot-axes.ts';
+import {
+  type Pose,
+  blendPoseInto,
+  cloneObservation,
+  copyObservationInto,
+  copyPoseInto,
+  createPose,
+} from './observation-copy.ts';
+
+export type FlightPhase = 'ready' | 'running' | 'frozen' | 'ended';
+/** Why the clock stands: the pilot, the scenario, a hidden page, a sleeping page, a slow machine, a lost device. */
+export type FreezeReason = 'pilot' | 'scenario' | 'hidden' | 'gap' | 'slow' | 'device';
+
+export interface FlightEvents {
+  /** After every tick. */
+  tick?: (run: Run) => void;
+  phase?: (phase: FlightPhase, reason: FreezeReason | null) => void;
+  /** Real time that was not flown because a frame came late; ms. */
+  held?: (heldMs: number) => void;
+  chunk?: (chunk: RecordedChunk) => void;
+  ended?: (reason: EndReason, detail: string | null) => void;
+}
+
+export interface FlightSetup {
+  run: Run;
+  recorder: Recorder;
+  sources: readonly InputSource[];
+  events?: FlightEvents;
+  clock?: FixedClock;
+}
+
+export interface FlightSession {
+  readonly run: Run;
+  readonly phase: FlightPhase;
+  readonly freezeReason: FreezeReason | null;
+  readonly rate: number;
+  readonly axes: PilotAxes;
+  /** The observation to draw: the last sample with its pose moved on to the present instant. */
+  readonly drawn: Observation;
+  start(nowMs: number): void;
+  frame(nowMs: number): void;
+  freeze(reason: FreezeReason): void;
+  resume(nowMs: number): void;
+  setRate(rate: number): void;
+  /** Ends the flight before its end. */
+  leave(): void;
+  /** Chunks handed on so far. */
+  readonly chunkCount: number;
+}
+
+export function createFlightSession(setup: FlightSetup): FlightSession {
+  const { run, recorder, sources } = setup;
+  const events = setup.events ?? {};
+  const clock = setup.clock ?? createFixedClock();
+  const sample: ControlSample = run.neutralSample();
+  const axes = axesOf(sample);
+  const drawn = cloneObservation(run.now);
+  const before: Pose = createPose();
+  copyPoseInto(before, run.now);
+  let phase: FlightPhase = 'ready';
+  let freezeReason: FreezeReason | null = null;
+  let chunkCount = 0;
+
+  const setPhase = (next: FlightPhase, reason: FreezeReason | null): void => {
+    phase = next;
+    freezeReason = reason;
+    events.phase?.(next, reason);
+  };
+  const handOn = (chunk: RecordedChunk | null): void => {
+    if (!chunk) return;
+    chunkCount = chunk.index + 1;
+    events.chunk?.(chunk);
+  };
+  const letGo = (): void => {
+    for (const source of sources) source.release();
+  };
+
+  function finish(): void {
+    clock.stop();
+    handOn(recorder.finish(run.stateHash()));
+    letGo();
+    setPhase('ended', null);
+    if (run.ended) events.ended?.(run.ended, run.endDetail);
+  }
+
+  function freeze(reason: FreezeReason): void {
+    if (phase !== 'running') return;
+    clock.stop();
+    letGo();
+    recorder.mark({ kind: 'freeze', tick: run.tick });
+    setPhase('frozen', reason);
+  }
+
+  /** Flies one tick; returns false when the flight must not go on in this frame. */
+  function flyTick(): boolean {
+    for (const source of sources) source.stepInto(axes, TICK_S);
+    quantiseInto(sample, axes);
+    const tick = run.tick;
+    copyPoseInto(before, run.now);
+    run.step(sample);
+    // A tick that could not be integrated (not finite) is not recorded: the recording ends at the last good state.
+    if (run.tick > tick) {
+      recorder.add(sample, tick);
+      handOn(recorder.takeChunk(run.stateHash()));
+    }
+    events.tick?.(run);
+    if (run.ended) {
+      finish();
+      return false;
+    }
+    if (run.freezeRequested) {
+      freeze('scenario');
+      return false;
+    }
+    return true;
+  }
+
+  function draw(): void {
+    copyObservationInto(drawn, run.now);
+    if (phase === 'running') blendPoseInto(drawn, before, run.now, clock.fraction);
+  }
+
+  return {
+    run,
+    axes,
+    drawn,
+    get phase() {
+      return phase;
+    },
+    get freezeReason() {
+      return freezeReason;
+    },
+    get rate() {
+      return clock.rate;
+    },
+    get chunkCount() {
+      return chunkCount;
+    },
+    start(nowMs) {
+      if (phase !== 'ready') return;
+      letGo();
+      clock.start(nowMs);
+      setPhase('running', null);
+    },
+    frame(nowMs) {
+      if (phase === 'running') {
+        const { ticks, heldMs, stopped } = clock.advance(nowMs);
+        if (stopped) freeze(stopped);
+        else {
+          if (heldMs > 0) events.held?.(heldMs);
+          for (let i = 0; i < ticks; i += 1) if (!flyTick()) break;
+        }
+      }
+      draw();
+    },
+    freeze,
+    resume(nowMs) {
+      if (phase !== 'frozen') return;
+      letGo();
+      recorder.mark({ kind: 'resume', tick: run.tick });
+      clock.start(nowMs);
+      setPhase('running', null);
+    },
+    setRate(rate) {
+      if (rate === clock.rate || phase === 'ended') return;
+      clock.rate = rate;
+      recorder.mark({ kind: 'rate', tick: run.tick, value: rate });
+    },
+    leave() {
+      if (phase === 'ended' || phase === 'ready') return;
+      run.leave();
+      finish();
+    },
+  };
+}
