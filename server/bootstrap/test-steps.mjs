@@ -38,6 +38,7 @@ export const CHECK_LANES = [
     { name: 'lint', args: [packageProgram('eslint/bin/eslint.js'), '.'] },
     { name: 'types of shared', args: [packageProgram('typescript/bin/tsc'), '-p', 'tsconfig.shared.json'] },
     { name: 'types of server and tests', args: [packageProgram('typescript/bin/tsc'), '-p', 'tsconfig.json'] },
+    { name: 'types of the start scripts', args: [packageProgram('typescript/bin/tsc'), '-p', 'tsconfig.scripts.json'] },
   ],
   [{ name: 'types of the client', args: [packageProgram('vue-tsc/bin/vue-tsc.js'), '-p', 'tsconfig.app.json'] }],
 ];

@@ -1,3 +1,4 @@
+import { DEG } from '#shared/units/constants.ts';
 import { parseQuantity } from '#shared/units/quantity.ts';
 import type { Dimension } from '#shared/units/quantity.ts';
 import type { Command } from './command.ts';
@@ -78,6 +79,15 @@ export function numberOption(args: ParsedArguments, name: string, low: number, h
   return value;
 }
 
+/** An angle in degrees ("5") or with a unit ("5deg", "0.1rad") within bounds in degrees; rad. */
+export function angleOption(args: ParsedArguments, name: string, lowDeg: number, highDeg: number): number | undefined {
+  const angle = quantityOption(args, name, 'angle');
+  if (angle !== undefined && !(angle >= lowDeg * DEG && angle <= highDeg * DEG)) {
+    throw new UsageError(`--${name}: ${args.values.get(name)} is outside ${lowDeg}° to ${highDeg}°`);
+  }
+  return angle;
+}
+
 /** One of a few words; undefined when the option is absent. */
 export function choiceOption<T extends string>(
   args: ParsedArguments,
@@ -109,7 +119,9 @@ export function heightOption(args: ParsedArguments, fallback?: number): number {
 export function speedOption(args: ParsedArguments, name: string): number | undefined {
   const speed = quantityOption(args, name, 'speed');
   if (speed !== undefined && !(speed > 0 && speed <= LARGEST_SPEED_MPS)) {
-    throw new UsageError(`--${name}: ${args.values.get(name)} is not a speed above 0 and up to ${LARGEST_SPEED_MPS} m/s`);
+    throw new UsageError(
+      `--${name}: ${args.values.get(name)} is not a speed above 0 and up to ${LARGEST_SPEED_MPS} m/s`,
+    );
   }
   return speed;
 }

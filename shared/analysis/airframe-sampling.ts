@@ -6,6 +6,8 @@ import type { Airframe } from '../model/airframe-schema.ts';
 export interface UncertainField {
   /** JSON Pointer. */
   field: string;
+  /** The pointer's member names. */
+  path: readonly string[];
   value: number;
   /** 2σ; per cent of the value. */
   uncertaintyPct: number;
@@ -42,7 +44,7 @@ export function uncertainFields(airframe: Airframe): UncertainField[] {
   const sources = (airframe.sources ?? []).filter((source) => source.uncertainty_pct !== undefined);
   const out: UncertainField[] = [];
   if (sources.length === 0) return out;
-  const visit = (node: unknown, pointer: string): void => {
+  const visit = (node: unknown, pointer: string, path: readonly string[]): void => {
     if (typeof node === 'number') {
       let best = -1;
       let pct = 0;
@@ -55,16 +57,16 @@ export function uncertainFields(airframe: Airframe): UncertainField[] {
           pct = source.uncertainty_pct ?? 0;
         }
       }
-      if (best >= 0 && pct > 0 && node !== 0) out.push({ field: pointer, value: node, uncertaintyPct: pct });
+      if (best >= 0 && pct > 0 && node !== 0) out.push({ field: pointer, path, value: node, uncertaintyPct: pct });
       return;
     }
     if (typeof node !== 'object' || node === null) return;
     for (const [key, child] of Object.entries(node)) {
       if (pointer === '' && key === 'sources') continue;
-      visit(child, `${pointer}/${key.replaceAll('~', '~0').replaceAll('/', '~1')}`);
+      visit(child, `${pointer}/${key.replaceAll('~', '~0').replaceAll('/', '~1')}`, [...path, key]);
     }
   };
-  visit(airframe, '');
+  visit(airframe, '', []);
   return out;
 }
 
@@ -89,12 +91,12 @@ export function drawAirframe(
   draw: number,
 ): Airframe {
   const copy = structuredCloneOf(airframe);
-  for (const { field, value, uncertaintyPct } of fields) {
+  for (const { field, path, value, uncertaintyPct } of fields) {
     const stream = createStream(seed, `${draw}${field}`);
     let z = stream.normal();
     for (let i = 0; i < MAX_REDRAWS && Math.abs(z) > CUT_SIGMA; i++) z = stream.normal();
     const factor = Math.max(LEAST_FACTOR, 1 + (uncertaintyPct / 200) * z);
-    write(copy, field, value * factor);
+    write(copy, path, value * factor);
   }
   const { Ixx_kgm2, Izz_kgm2, Ixz_kgm2 } = copy.mass;
   if (!(Ixx_kgm2 * Izz_kgm2 > Ixz_kgm2 * Ixz_kgm2)) {
@@ -114,14 +116,10 @@ function structuredCloneOf(airframe: Airframe): Airframe {
   return clone(airframe) as Airframe;
 }
 
-function write(root: object, pointer: string, value: number): void {
-  const path = pointer
-    .split('/')
-    .slice(1)
-    .map((key) => key.replaceAll('~1', '/').replaceAll('~0', '~'));
+function write(root: object, path: readonly string[], value: number): void {
   let at: object = root;
-  for (const key of path.slice(0, -1)) {
-    const next: unknown = Reflect.get(at, key);
+  for (let i = 0; i + 1 < path.length; i++) {
+    const next: unknown = Reflect.get(at, path[i]);
     if (typeof next !== 'object' || next === null) return;
     at = next;
   }

@@ -95,9 +95,7 @@ export function timeToBankLimits(klass: AircraftClass, category: FlightCategory,
     case 'II-C':
       if (category === 'A') return { angleDeg: 45, seconds: [1.4, 1.9, 2.8] };
       if (category === 'B') return { angleDeg: 45, seconds: [1.9, 2.8, 3.8] };
-      return klass === 'II-L'
-        ? { angleDeg: 30, seconds: [1.8, 2.5, 3.6] }
-        : { angleDeg: 25, seconds: [1, 1.5, 2] };
+      return klass === 'II-L' ? { angleDeg: 30, seconds: [1.8, 2.5, 3.6] } : { angleDeg: 25, seconds: [1, 1.5, 2] };
     case 'III':
       if (category === 'C') return { angleDeg: 30, seconds: [2.5, 4, 6] };
       if (category === 'A') {

@@ -39,11 +39,7 @@ export interface DamperLaw {
  * @sign          δr > 0 yaws left (Cn_dr < 0), so a yaw to the right asks for δr > 0.
  * @source        D. McRuer, I. Ashkenas, D. Graham, Aircraft Dynamics and Automatic Control, ch. 8 (from memory).
  */
-export function withYawDamper(
-  A: ArrayLike<number>,
-  rudder: ArrayLike<number>,
-  damper: DamperLaw,
-): Float64Array {
+export function withYawDamper(A: ArrayLike<number>, rudder: ArrayLike<number>, damper: DamperLaw): Float64Array {
   requireFinite(A, 16, 'system matrix');
   requireFinite(rudder, 4, 'rudder column');
   if (!(damper.washoutS > 0) || !Number.isFinite(damper.gainS)) {

@@ -95,11 +95,7 @@ export function lateralModes(a: ArrayLike<number>, n: 4 | 5 = 4): LateralModes {
 }
 
 /** The kinds of four roots (complex pairs count as one here). */
-function nameRoots(
-  roots: Root[],
-  share: (root: Root, state: number) => number,
-  repeated: boolean,
-): [ModeKind, Root][] {
+function nameRoots(roots: Root[], share: (root: Root, state: number) => number, repeated: boolean): [ModeKind, Root][] {
   const pairs = roots.filter((root) => root.im > 0);
   const reals = roots.filter((root) => root.im === 0).sort((x, y) => x.re - y.re);
   if (pairs.length === 2) {
@@ -110,7 +106,10 @@ function nameRoots(
     const isDutch = repeated || 2 * share(pairs[0], 0) >= DUTCH_ROLL_SHARE;
     if (!isDutch) return [['roll-spiral', pairs[0]], ...reals.map((root): [ModeKind, Root] => ['real-pair', root])];
     const roll = largestBy(reals, size);
-    return [['dutch-roll', pairs[0]], ...reals.map((root): [ModeKind, Root] => [root === roll ? 'roll' : 'spiral', root])];
+    return [
+      ['dutch-roll', pairs[0]],
+      ...reals.map((root): [ModeKind, Root] => [root === roll ? 'roll' : 'spiral', root]),
+    ];
   }
   const bySideslip = repeated
     ? [reals[1], reals[2], reals[0], reals[3]]

@@ -1,11 +1,10 @@
+import { NumericsError, requireFinite } from '../numerics/errors.ts';
 import { createRk4 } from '../numerics/rk4.ts';
 import { matrixExponential } from '../numerics/matrix-exponential.ts';
-import { requireFinite } from '../numerics/errors.ts';
 import { rollOscillationMinima, timeToBankLimits } from './criteria-tables.ts';
 import type { AircraftClass, FlightCategory, SpeedRange } from './criteria-tables.ts';
 import { levelOf } from './criteria-8785c.ts';
 import type { CriterionResult } from './criteria-8785c.ts';
-import type { LateralSystem } from './lateral-system.ts';
 import type { Actuator } from './responses.ts';
 import { DEG } from '../units/constants.ts';
 
@@ -17,30 +16,40 @@ const SAMPLE_S = 0.01;
 const OSCILLATION_S = 40;
 
 /**
- * Time from an abrupt full roll command to a bank angle, rudder fixed, through the aileron's lag, rate and travel.
+ * Time from an abrupt full roll command to a bank angle, pedals fixed, through the aileron's lag, rate and travel.
  *
  * Linear lateral model, RK4 at 240 Hz, the crossing interpolated; null when the angle is not reached in 20 s or the roll
  * goes the wrong way.
  *
- * @param system    Lateral system.
- * @param aileron   Lag, rate and travel; an infinite rate and zero lag mean at once.
+ * @param a         System matrix; n×n row-major; 1/s; φ is state 3.
+ * @param column    Aileron column; at least 4 values; per rad.
+ * @param n         4, or 5 with the yaw damper's washout.
+ * @param aileron   Lag, rate and travel; no lag means at once.
  * @param angleRad  Bank angle; rad; > 0.
  * @returns         Seconds, or null.
- * @throws          Nothing.
+ * @throws {NumericsError} bad-argument for an angle that is not positive.
  * @sign            Right aileron (δa > 0), bank to the right.
  * @source          MIL-F-8785C 3.3.4 (seen): time measured from the start of the control input.
  */
-export function timeToBankS(system: LateralSystem, aileron: Actuator, angleRad: number): number | null {
-  const { A, B } = system;
-  const rk4 = createRk4(5);
-  const x = new Float64Array(5);
+export function timeToBankS(
+  a: ArrayLike<number>,
+  column: ArrayLike<number>,
+  n: 4 | 5,
+  aileron: Actuator,
+  angleRad: number,
+): number | null {
+  if (!(angleRad > 0)) throw new NumericsError('bad-argument', `a bank of ${angleRad} rad is not positive`);
+  const rk4 = createRk4(n + 1);
+  const x = new Float64Array(n + 1);
   const instant = !(aileron.lagS > 0);
-  if (instant) x[4] = aileron.maxRad;
+  if (instant) x[n] = aileron.maxRad;
   const rhs = (out: Float64Array, _t: number, s: Float64Array) => {
-    for (let i = 0; i < 4; i++) {
-      out[i] = A[i * 4] * s[0] + A[i * 4 + 1] * s[1] + A[i * 4 + 2] * s[2] + A[i * 4 + 3] * s[3] + B.aileron[i] * s[4];
+    for (let i = 0; i < n; i++) {
+      let sum = i < 4 ? column[i] * s[n] : 0;
+      for (let j = 0; j < n; j++) sum += a[i * n + j] * s[j];
+      out[i] = sum;
     }
-    out[4] = instant ? 0 : Math.min(aileron.rateRadS, (aileron.maxRad - s[4]) / aileron.lagS);
+    out[n] = instant ? 0 : Math.min(aileron.rateRadS, (aileron.maxRad - s[n]) / aileron.lagS);
   };
   const count = Math.round(LONGEST_S / STEP_S);
   let before = 0;
@@ -67,31 +76,32 @@ export interface RollRateExtrema {
  *
  * Exact transition over 0.01 s, extrema by the parabola through three samples; looked for over 40 s.
  *
- * @param A        System matrix; 4×4 row-major; 1/s.
- * @param aileron  Input column; length 4; per rad.
- * @returns        Peak, minimum, second peak; rates in rad/s per rad of aileron.
- * @throws {NumericsError} non-finite-input, bad-dimension.
- * @sign           Right aileron, roll to the right.
- * @source         MIL-F-8785C 3.3.2.2 (seen) for what is looked for.
+ * @param a       System matrix; n×n row-major; 1/s; p is state 1.
+ * @param column  Aileron column; at least 4 values; per rad.
+ * @param n       4, or 5 with the yaw damper's washout.
+ * @returns       Peak, minimum, second peak; rates in rad/s per rad of aileron.
+ * @throws {NumericsError} non-finite-input, bad-dimension, bad-argument for a matrix beyond all bounds.
+ * @sign          Right aileron, roll to the right.
+ * @source        MIL-F-8785C 3.3.2.2 (seen) for what is looked for.
  */
-export function rollRateExtrema(A: ArrayLike<number>, aileron: ArrayLike<number>): RollRateExtrema {
-  requireFinite(A, 16, 'system matrix');
-  requireFinite(aileron, 4, 'aileron column');
-  const augmented = new Float64Array(25);
-  for (let i = 0; i < 4; i++) {
-    for (let j = 0; j < 4; j++) augmented[i * 5 + j] = A[i * 4 + j] * SAMPLE_S;
-    augmented[i * 5 + 4] = aileron[i] * SAMPLE_S;
+export function rollRateExtrema(a: ArrayLike<number>, column: ArrayLike<number>, n: 4 | 5 = 4): RollRateExtrema {
+  requireFinite(a, n * n, 'system matrix');
+  const size = n + 1;
+  const augmented = new Float64Array(size * size);
+  for (let i = 0; i < n; i++) {
+    for (let j = 0; j < n; j++) augmented[i * size + j] = a[i * n + j] * SAMPLE_S;
+    augmented[i * size + n] = i < 4 ? column[i] * SAMPLE_S : 0;
   }
-  const step = matrixExponential(augmented, 5);
-  const sign = aileron[1] < 0 ? -1 : 1;
+  const step = matrixExponential(augmented, size);
+  const sign = column[1] < 0 ? -1 : 1;
   const found: { timeS: number; rate: number }[] = [];
-  let x = new Float64Array(5);
-  x[4] = 1;
+  let x = new Float64Array(size);
+  x[n] = 1;
   let p0 = 0;
   let p1 = 0;
   for (let k = 1; k * SAMPLE_S <= OSCILLATION_S && found.length < 3; k++) {
-    const next = new Float64Array(5);
-    for (let i = 0; i < 5; i++) for (let j = 0; j < 5; j++) next[i] += step[i * 5 + j] * x[j];
+    const next = new Float64Array(size);
+    for (let i = 0; i < size; i++) for (let j = 0; j < size; j++) next[i] += step[i * size + j] * x[j];
     x = next;
     const p2 = sign * x[1];
     if (!Number.isFinite(p2)) break;
@@ -107,16 +117,64 @@ export function rollRateExtrema(A: ArrayLike<number>, aileron: ArrayLike<number>
   return { peak: found[0] ?? null, minimum: found[1] ?? null, second: found[2] ?? null };
 }
 
-/** MIL-F-8785C 3.3.4 and table IX for one condition. */
+/** What both roll criteria need. */
+export interface RollSubject {
+  /** System matrix; n×n row-major; 1/s. */
+  a: ArrayLike<number>;
+  n: 4 | 5;
+  /** Aileron and rudder columns; at least 4 values; per rad. */
+  column: ArrayLike<number>;
+  rudder: ArrayLike<number>;
+  aileron: Actuator;
+}
+
+/** A coordinated roll is mentioned when it is shorter than this share of the time with fixed pedals. */
+const WORTH_MENTIONING = 0.98;
+
+/**
+ * The same with the pedals cancelling the yaw of aileron and roll rate (Class I to III may, 3.3.4; memory), for the remark.
+ * δr = −(N_δa·δa + N_p·p)/N_δr.
+ */
+function coordinatedTimeS({ a, n, column, rudder, aileron }: RollSubject, angleRad: number): number | null {
+  if (!(Math.abs(rudder[2]) > 0)) return null;
+  const withAileron = -column[2] / rudder[2];
+  const withRoll = -a[2 * n + 1] / rudder[2];
+  const system = Float64Array.from(a);
+  const input = new Float64Array(4);
+  for (let i = 0; i < 4; i++) {
+    system[i * n + 1] += rudder[i] * withRoll;
+    input[i] = column[i] + rudder[i] * withAileron;
+  }
+  return timeToBankS(system, input, n, aileron, angleRad);
+}
+
+/**
+ * MIL-F-8785C 3.3.4 and table IX for one condition.
+ *
+ * @param subject   System and aileron.
+ * @param klass     Class.
+ * @param category  Flight phase category.
+ * @param range     Speed range of Classes III and IV.
+ * @returns         The criterion with the time in s.
+ * @throws {NumericsError} bad-dimension.
+ * @sign            none
+ * @source          MIL-F-8785C 3.3.4, table IX.
+ */
 export function timeToBankCriterion(
-  system: LateralSystem,
-  aileron: Actuator,
+  subject: RollSubject,
   klass: AircraftClass,
   category: FlightCategory,
   range: SpeedRange,
 ): CriterionResult {
   const { angleDeg, seconds } = timeToBankLimits(klass, category, range);
-  const value = timeToBankS(system, aileron, angleDeg * DEG);
+  const value = timeToBankS(subject.a, subject.column, subject.n, subject.aileron, angleDeg * DEG);
+  const coordinated = klass === 'IV' ? null : coordinatedTimeS(subject, angleDeg * DEG);
+  const notes = [
+    ...(value === null ? [`${angleDeg}° of bank are not reached within ${LONGEST_S} s`] : []),
+    ...(coordinated !== null && coordinated < WORTH_MENTIONING * (value ?? Infinity)
+      ? [`pedals fixed; ${coordinated.toFixed(2)} s with pedal against the adverse yaw`]
+      : []),
+  ];
   return {
     id: 'time-to-bank',
     title: `Time to ${angleDeg}° of bank`,
@@ -127,14 +185,23 @@ export function timeToBankCriterion(
     limits: seconds,
     sense: 'at most',
     source: 'MIL-F-8785C 3.3.4, table IX (seen; Classes III and IV in one transcription)',
-    ...(value === null ? { remark: `${angleDeg}° of bank are not reached within ${LONGEST_S} s` } : {}),
+    ...(notes.length > 0 ? { remark: notes.join('; ') } : {}),
   };
 }
 
-/** MIL-F-8785C 3.3.2.2 for one condition. */
-export function rollOscillationCriterion(system: LateralSystem, category: FlightCategory): CriterionResult {
+/**
+ * MIL-F-8785C 3.3.2.2 for one condition.
+ *
+ * @param subject   System and aileron.
+ * @param category  Flight phase category.
+ * @returns         The criterion with the ratio of first minimum to first peak.
+ * @throws {NumericsError} non-finite-input, bad-dimension, bad-argument.
+ * @sign            Negative when the roll rate reverses.
+ * @source          MIL-F-8785C 3.3.2.2 (seen).
+ */
+export function rollOscillationCriterion(subject: RollSubject, category: FlightCategory): CriterionResult {
   const limits = rollOscillationMinima(category);
-  const { peak, minimum } = rollRateExtrema(system.A, system.B.aileron);
+  const { peak, minimum } = rollRateExtrema(subject.a, subject.column, subject.n);
   const base = {
     id: 'roll-oscillation' as const,
     title: 'First roll-rate minimum over first peak',

@@ -1,7 +1,12 @@
 import { DEG } from '../units/constants.ts';
 import { atan2, exp, ln } from '../numerics/elementary.ts';
 import { NumericsError } from '../numerics/errors.ts';
-import { evaluatePolynomial, polynomialRoots, significantCoefficients, transferPolynomials } from '../numerics/polynomial.ts';
+import {
+  evaluatePolynomial,
+  polynomialRoots,
+  significantCoefficients,
+  transferPolynomials,
+} from '../numerics/polynomial.ts';
 import type { Roots } from '../numerics/polynomial.ts';
 
 export interface TransferFunction {
@@ -40,7 +45,12 @@ const LN10 = 2.302585092994046;
  * @sign         That of the input and the state.
  * @source       Etkin & Reid, Dynamics of Flight, 3rd ed. 1996, section 7.2.
  */
-export function transferFunction(a: ArrayLike<number>, b: ArrayLike<number>, state: number, n: number): TransferFunction {
+export function transferFunction(
+  a: ArrayLike<number>,
+  b: ArrayLike<number>,
+  state: number,
+  n: number,
+): TransferFunction {
   const c = new Float64Array(n);
   c[state] = 1;
   const { numerator, denominator } = transferPolynomials(a, b, c, n);

@@ -1,7 +1,6 @@
 import { pow } from '../numerics/elementary.ts';
 import {
   densityAt,
-  HEAT_RATIO,
   pressurePa,
   SEA_LEVEL_DENSITY,
   SEA_LEVEL_PRESSURE_PA,
@@ -9,9 +8,15 @@ import {
   soundMps,
 } from './atmosphere.ts';
 
-/** (γ − 1)/2 and γ/(γ − 1) of air. */
-const HALF_GAMMA_MINUS_ONE = (HEAT_RATIO - 1) / 2;
-const GAMMA_RATIO = HEAT_RATIO / (HEAT_RATIO - 1);
+/** (γ − 1)/2 of air, and (γ − 1)/γ. The power γ/(γ − 1) = 3.5 is taken with a square root. */
+const HALF_GAMMA_MINUS_ONE = 0.2;
+const INVERSE_GAMMA_RATIO = 2 / 7;
+
+/** (1 + (γ − 1)/2 M²)^(γ/(γ − 1)) − 1: impact pressure over static pressure. */
+function impactRatio(mach: number): number {
+  const base = 1 + HALF_GAMMA_MINUS_ONE * mach * mach;
+  return base * base * base * Math.sqrt(base) - 1;
+}
 
 /**
  * Calibrated airspeed of a true airspeed; m/s.
@@ -27,8 +32,7 @@ const GAMMA_RATIO = HEAT_RATIO / (HEAT_RATIO - 1);
  */
 export function casFromTas(tasMps: number, heightM: number): number {
   const mach = tasMps / soundMps(heightM);
-  const rise = pressurePa(heightM) * (pow(1 + HALF_GAMMA_MINUS_ONE * mach * mach, GAMMA_RATIO) - 1);
-  const speed = casFromImpactPressure(rise);
+  const speed = casFromImpactPressure(pressurePa(heightM) * impactRatio(mach));
   return tasMps < 0 ? -speed : speed;
 }
 
@@ -44,8 +48,8 @@ export function casFromTas(tasMps: number, heightM: number): number {
  */
 export function tasFromCas(casMps: number, heightM: number): number {
   const seaMach = casMps / SEA_LEVEL_SOUND_MPS;
-  const rise = SEA_LEVEL_PRESSURE_PA * (pow(1 + HALF_GAMMA_MINUS_ONE * seaMach * seaMach, GAMMA_RATIO) - 1);
-  const mach = Math.sqrt((pow(rise / pressurePa(heightM) + 1, 1 / GAMMA_RATIO) - 1) / HALF_GAMMA_MINUS_ONE);
+  const rise = SEA_LEVEL_PRESSURE_PA * impactRatio(seaMach);
+  const mach = Math.sqrt((pow(rise / pressurePa(heightM) + 1, INVERSE_GAMMA_RATIO) - 1) / HALF_GAMMA_MINUS_ONE);
   const speed = mach * soundMps(heightM);
   return casMps < 0 ? -speed : speed;
 }
@@ -60,8 +64,23 @@ export function tasFromCas(casMps: number, heightM: number): number {
  * @source        Standard pitot relation, subsonic.
  */
 export function casFromImpactPressure(risePa: number): number {
-  const squared = (pow(risePa / SEA_LEVEL_PRESSURE_PA + 1, 1 / GAMMA_RATIO) - 1) / HALF_GAMMA_MINUS_ONE;
+  const squared = (pow(risePa / SEA_LEVEL_PRESSURE_PA + 1, INVERSE_GAMMA_RATIO) - 1) / HALF_GAMMA_MINUS_ONE;
   return SEA_LEVEL_SOUND_MPS * Math.sqrt(squared > 0 ? squared : 0);
+}
+
+/**
+ * Calibrated airspeed from a speed and the air it is flown in; m/s.
+ *
+ * @param tasMps    True airspeed; m/s; ≥ 0.
+ * @param pressure  Static pressure; Pa.
+ * @param sound     Speed of sound; m/s.
+ * @returns         Calibrated airspeed; m/s.
+ * @throws          Nothing.
+ * @sign            none
+ * @source          Standard pitot relation, subsonic.
+ */
+export function casInAir(tasMps: number, pressure: number, sound: number): number {
+  return casFromImpactPressure(pressure * impactRatio(tasMps / sound));
 }
 
 /**

@@ -230,11 +230,24 @@ export interface Plant {
   setPitchMode(mode: PitchMode): void;
   setConfiguration(name: string): void;
 
+  /** Writes the time derivative at the start of the present tick into `out`, of the present state or of another. */
+  derivativeInto(out: Float64Array, state?: Float64Array): void;
+
   save(): PlantSnapshot;
   restore(snapshot: PlantSnapshot): void;
   /** Folds the whole present state into a running hash (see numerics/state-hash.ts). */
   hashInto(hash: { add(x: number): void }): void;
 }
 
+export interface PlantOptions {
+  /** Integrates one tick in place of the fixed step: state after `stepS` from `x`, time counting from the tick's start. */
+  integrate?: (
+    out: Float64Array,
+    rhs: (out: Float64Array, tauS: number, x: Float64Array) => void,
+    x: Float64Array,
+    stepS: number,
+  ) => void;
+}
+
 /** Signature of `createPlant` in plant.ts. Throws a named ModelError (singular trim, unknown configuration, …). */
-export type CreatePlant = (setup: PlantSetup) => Plant;
+export type CreatePlant = (setup: PlantSetup, options?: PlantOptions) => Plant;

@@ -156,7 +156,9 @@ function solveOrExplain(a: Float64Array, b: Float64Array, n: number): Float64Arr
   try {
     return solveLinear(a, b, n, n);
   } catch (cause) {
-    throw new NumericsError('no-stabilising-solution', 'the stable subspace of the Hamiltonian has no graph', { cause });
+    throw new NumericsError('no-stabilising-solution', 'the stable subspace of the Hamiltonian has no graph', {
+      cause,
+    });
   }
 }
 
@@ -180,7 +182,13 @@ function solveLyapunov(A: Float64Array, C: Float64Array, n: number): Float64Arra
   );
 }
 
-function riccatiResidual(A: ArrayLike<number>, g: Float64Array, Q: ArrayLike<number>, x: Float64Array, n: number): number {
+function riccatiResidual(
+  A: ArrayLike<number>,
+  g: Float64Array,
+  Q: ArrayLike<number>,
+  x: Float64Array,
+  n: number,
+): number {
   const xa = multiply(x, A, n, n, n);
   const linear = addScaled(addScaled(xa, 1, transpose(xa, n, n)), 1, Q);
   const quadratic = multiply(multiply(x, g, n, n, n), x, n, n, n);

@@ -117,7 +117,11 @@ export function significantCoefficients(coefficients: ArrayLike<number>): Float6
 }
 
 /** Real and imaginary part of a real polynomial (highest power first) at the complex point re + i·im. */
-export function evaluatePolynomial(coefficients: ArrayLike<number>, re: number, im: number): { re: number; im: number } {
+export function evaluatePolynomial(
+  coefficients: ArrayLike<number>,
+  re: number,
+  im: number,
+): { re: number; im: number } {
   let x = 0;
   let y = 0;
   for (let i = 0; i < coefficients.length; i++) {

@@ -40,23 +40,27 @@ export function createStream(seed: number, name: string): Stream {
   const whole = Math.trunc(seed);
   let h = mix32(whole | 0) ^ mix32(Math.floor(whole / 4294967296) ^ 0x9e3779b9);
   for (let i = 0; i < name.length; i++) h = Math.imul(h ^ name.charCodeAt(i), 0x01000193);
-  const s = new Int32Array(4);
-  for (let i = 0; i < 4; i++) {
+  let s0 = nextSeed();
+  let s1 = nextSeed();
+  let s2 = nextSeed();
+  let s3 = nextSeed();
+  if ((s0 | s1 | s2 | s3) === 0) s0 = 1;
+
+  function nextSeed(): number {
     h = (h + 0x9e3779b9) | 0;
-    s[i] = mix32(h);
+    return mix32(h);
   }
-  if ((s[0] | s[1] | s[2] | s[3]) === 0) s[0] = 1;
 
   function next(): number {
-    const scrambled = Math.imul(s[1], 5);
+    const scrambled = Math.imul(s1, 5);
     const result = Math.imul((scrambled << 7) | (scrambled >>> 25), 9);
-    const t = s[1] << 9;
-    s[2] ^= s[0];
-    s[3] ^= s[1];
-    s[1] ^= s[2];
-    s[0] ^= s[3];
-    s[2] ^= t;
-    s[3] = (s[3] << 11) | (s[3] >>> 21);
+    const t = s1 << 9;
+    s2 ^= s0;
+    s3 ^= s1;
+    s1 ^= s2;
+    s0 ^= s3;
+    s2 ^= t;
+    s3 = (s3 << 11) | (s3 >>> 21);
     return result >>> 0;
   }
 
@@ -73,12 +77,18 @@ export function createStream(seed: number, name: string): Stream {
       return radius * cos(2 * PI * uniform());
     },
     saveInto(arr, at) {
-      for (let i = 0; i < 4; i++) arr[at + i] = s[i];
-      return at + 4;
+      arr[at] = s0;
+      arr[at + 1] = s1;
+      arr[at + 2] = s2;
+      arr[at + 3] = s3;
+      return at + STREAM_STATE_LENGTH;
     },
     restoreFrom(arr, at) {
-      for (let i = 0; i < 4; i++) s[i] = arr[at + i];
-      return at + 4;
+      s0 = arr[at];
+      s1 = arr[at + 1];
+      s2 = arr[at + 2];
+      s3 = arr[at + 3];
+      return at + STREAM_STATE_LENGTH;
     },
   };
 }

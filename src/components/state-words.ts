@@ -1,16 +1,6 @@
 /** States that a glyph can show, and the word that always goes with it. */
 export type GlyphState =
-  | 'met'
-  | 'near'
-  | 'not'
-  | 'not-met'
-  | 'not-reached'
-  | 'running'
-  | 'waiting'
-  | 'lost'
-  | 'balanced'
-  | 'dead'
-  | 'live';
+  'met' | 'near' | 'not' | 'not-met' | 'not-reached' | 'running' | 'waiting' | 'lost' | 'balanced' | 'dead' | 'live';
 
 export const STATE_WORDS: Readonly<Record<GlyphState, string>> = {
   met: 'Met',

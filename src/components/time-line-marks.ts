@@ -15,7 +15,13 @@ export interface TimeLineMark {
 }
 
 export const LANE_LETTERS = { engines: 'E', air: 'G', controls: 'C', systems: 'S', notes: 'N' } as const;
-export const LANE_WORDS = { engines: 'Engines', air: 'Air', controls: 'Controls', systems: 'Systems', notes: 'Notes' } as const;
+export const LANE_WORDS = {
+  engines: 'Engines',
+  air: 'Air',
+  controls: 'Controls',
+  systems: 'Systems',
+  notes: 'Notes',
+} as const;
 const FLAG_PX = 18;
 const LEFT_PX = 2;
 

@@ -23,7 +23,7 @@ export function createAppRouter(session: RouterSession, history: RouterHistory =
     }
     return decide(to, session);
   });
-  router.afterEach((to, from, failure) => {
+  router.afterEach((to, _from, failure) => {
     if (failure) return;
     document.title = to.meta.title ? `${to.meta.title} · Sidewash` : 'Sidewash';
   });

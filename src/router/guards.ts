@@ -11,7 +11,8 @@ export interface GuardSession {
 
 /** A return address is only ever a path of this site. */
 export function safeReturn(value: unknown): string | null {
-  if (typeof value !== 'string' || !value.startsWith('/') || value.startsWith('//') || value.includes('\\')) return null;
+  if (typeof value !== 'string' || !value.startsWith('/') || value.startsWith('//') || value.includes('\\'))
+    return null;
   return value.startsWith('/sign-in') || value === '/' ? null : value;
 }
 

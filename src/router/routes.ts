@@ -21,6 +21,19 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'My flights', area: 'my-flights', roles: ['trainee', 'instructor'], purpose: 'fly scenarios' },
   },
   {
+    path: '/fly/:scenarioSlug',
+    name: 'fly',
+    component: () => import('../views/fly/FlyView.vue'),
+    props: true,
+    meta: {
+      title: 'Fly',
+      area: 'my-flights',
+      roles: ['trainee', 'instructor'],
+      purpose: 'fly scenarios',
+      immersive: true,
+    },
+  },
+  {
     path: '/scenarios',
     name: 'scenarios',
     component: () => import('../views/scenarios/ScenarioListView.vue'),

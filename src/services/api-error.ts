@@ -45,5 +45,7 @@ export function isApiError(error: unknown, code?: ApiErrorCode): error is ApiErr
 
 /** One sentence for a person, from whatever was thrown. */
 export function causeOf(error: unknown): string {
-  return error instanceof ApiError ? error.detail : 'Something in this page failed. Reload it; nothing recorded is lost.';
+  return error instanceof ApiError
+    ? error.detail
+    : 'Something in this page failed. Reload it; nothing recorded is lost.';
 }

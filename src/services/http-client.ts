@@ -110,8 +110,12 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
       request({ ...options, method: 'POST', path, ...json(body) }, schema),
     put: <S extends z.ZodType>(path: string, body: unknown, schema: S, options: CallOptions = {}) =>
       request({ ...options, method: 'PUT', path, ...json(body) }, schema),
-    putBytes: <S extends z.ZodType>(path: string, bytes: Uint8Array<ArrayBuffer>, schema: S, options: CallOptions = {}) =>
-      request({ ...options, method: 'PUT', path, body: bytes, contentType: 'application/octet-stream' }, schema),
+    putBytes: <S extends z.ZodType>(
+      path: string,
+      bytes: Uint8Array<ArrayBuffer>,
+      schema: S,
+      options: CallOptions = {},
+    ) => request({ ...options, method: 'PUT', path, body: bytes, contentType: 'application/octet-stream' }, schema),
     delete: (path: string, options: CallOptions = {}) => request({ ...options, method: 'DELETE', path }, NOTHING),
     /** Called when the server no longer knows this session. Returns the way to stop listening. */
     onSessionEnded: (tell: () => void) => listen(sessionEnded, tell),

@@ -8,8 +8,10 @@ import {
 import type { Page } from '#shared/contracts/paging.ts';
 import { api } from './http-client.ts';
 
-export const listScenarios = (query: Partial<ScenarioListQuery>, signal?: AbortSignal): Promise<Page<ScenarioSummary>> =>
-  api.get('/api/scenarios', scenarioPageSchema, { query, signal });
+export const listScenarios = (
+  query: Partial<ScenarioListQuery>,
+  signal?: AbortSignal,
+): Promise<Page<ScenarioSummary>> => api.get('/api/scenarios', scenarioPageSchema, { query, signal });
 
 /** The latest published revision, or the revision named. */
 export const getScenario = (slug: string, revision?: number, signal?: AbortSignal): Promise<ScenarioRevision> =>

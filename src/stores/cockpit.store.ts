@@ -55,7 +55,10 @@ export const useCockpitStore = defineStore('cockpit', () => {
     },
     set: (rates) => change(rates),
   });
-  const camera = computed<CameraChoice>({ get: () => cockpit.value.camera, set: (choice) => change({ camera: choice }) });
+  const camera = computed<CameraChoice>({
+    get: () => cockpit.value.camera,
+    set: (choice) => change({ camera: choice }),
+  });
   const ribbon = computed<boolean>({ get: () => cockpit.value.ribbon, set: (on) => change({ ribbon: on }) });
   const ghost = computed<boolean>({ get: () => cockpit.value.ghost, set: (on) => change({ ghost: on }) });
   const standardRates = (): void => change(DEFAULT_KEY_RATES);

@@ -44,13 +44,13 @@ export const useDeliveryStore = defineStore('delivery', () => {
       (kept) => {
         const safe = createFallingBackStore(kept);
         safe.onFallBack((cause) => {
-          console.info('The browser refuses to keep recordings; they stay in memory.', cause);
+          console.warn('The browser refuses to keep recordings; they stay in memory.', cause);
           durable.value = false;
         });
         return safe;
       },
       (cause: unknown) => {
-        console.info('The browser keeps no recordings; they stay in memory.', cause);
+        console.warn('The browser keeps no recordings; they stay in memory.', cause);
         durable.value = false;
         return createMemoryChunkStore();
       },
@@ -133,7 +133,7 @@ export const useDeliveryStore = defineStore('delivery', () => {
         delivery.finish(attempt.chunkCount, attempt.ended ?? 'left');
       } catch (error) {
         if (isApiError(error, 'not-found') || isApiError(error, 'forbidden')) await kept.dropAttempt(attempt.id);
-        else console.info('An earlier flight waits for the server.', error);
+        else console.warn('An earlier flight waits for the server.', error);
       }
     }
   }

@@ -20,25 +20,22 @@ const deviceSchema = z.object({
 });
 const personSchema = z.object({
   units: z.enum(['aviation', 'si']).nullable().catch(null),
-  arrows: z
-    .array(z.enum(ARROW_IDS))
-    .nullable()
-    .catch(null),
+  arrows: z.array(z.enum(ARROW_IDS)).nullable().catch(null),
 });
+type Device = z.infer<typeof deviceSchema>;
 type Person = z.infer<typeof personSchema>;
 
 /** `public/first-paint.js` reads the same key before anything is drawn. */
 const DEVICE_KEY = 'sidewash.device';
 const personKey = (id: string): string => `sidewash.person.${id}`;
+const DEVICE_DEFAULTS: Device = { theme: 'system', renderer: 'auto', organisation: null };
 const PERSON_DEFAULTS: Person = { units: null, arrows: null };
 
 /** What is preferred on this device, and what this person prefers on it. Kept in the browser, not on the server. */
 export const usePreferencesStore = defineStore('preferences', () => {
   const session = useSessionStore();
   const keeper = window.localStorage;
-  const device = ref(
-    readStored(keeper, DEVICE_KEY, deviceSchema) ?? { theme: 'system', renderer: 'auto', organisation: null },
-  );
+  const device = ref<Device>(readStored(keeper, DEVICE_KEY, deviceSchema) ?? DEVICE_DEFAULTS);
   const person = ref<Person>(PERSON_DEFAULTS);
   const personId = computed(() => session.me?.person.id ?? null);
 

@@ -51,7 +51,12 @@ export function valueWords(value: number | null, unit: string, signed = false, d
 }
 
 /** "at most 20°", "at least 200 ft/min", "−5° to 5°". */
-export function limitWords(limit: { max?: number; min?: number; within?: readonly [number, number]; unit: string }): string {
+export function limitWords(limit: {
+  max?: number;
+  min?: number;
+  within?: readonly [number, number];
+  unit: string;
+}): string {
   const { max, min, within, unit } = limit;
   if (within) return `${valueWords(within[0], unit)} to ${valueWords(within[1], unit)}`;
   const trim = (value: number): string => valueWords(value, unit, false, Number.isInteger(value) ? 0 : 1);

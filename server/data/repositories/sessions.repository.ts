@@ -25,6 +25,7 @@ export interface SessionRecord {
 }
 
 export interface RefreshTokenRecord {
+  issuedAt: Date;
   usedAt: Date | null;
   session: SessionRecord;
 }
@@ -80,7 +81,7 @@ export function createSessionsRepository(manager: EntityManager) {
       });
       if (token === null) return null;
       const session = await findSession(token.sessionId);
-      return session === null ? null : { usedAt: token.usedAt, session };
+      return session === null ? null : { issuedAt: token.issuedAt, usedAt: token.usedAt, session };
     },
 
     async markTokenUsed(tokenHash: string, at: Date): Promise<void> {

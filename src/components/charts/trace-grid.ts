@@ -30,7 +30,8 @@ export interface TraceFlag {
 
 export const gridLength = (durationS: number): number => Math.round(durationS * GRID_HZ) + 1;
 export const gridIndex = (timeS: number): number => Math.max(0, Math.round(timeS * GRID_HZ));
-export const emptyColumn = (durationS: number): TraceColumn => new Array<number | null>(gridLength(durationS)).fill(null);
+export const emptyColumn = (durationS: number): TraceColumn =>
+  new Array<number | null>(gridLength(durationS)).fill(null);
 
 /** A row's range, widened by half as often as needed to hold `value`. */
 export function widen(range: readonly [number, number], value: number): readonly [number, number] {
@@ -76,4 +77,11 @@ export function tableTimes(durationS: number, flags: readonly TraceFlag[], stepS
   for (let t = 0; t <= durationS + 1e-9; t += stepS) times.add(Math.round(t * GRID_HZ) / GRID_HZ);
   for (const flag of flags) if (flag.timeS <= durationS) times.add(Math.round(flag.timeS * GRID_HZ) / GRID_HZ);
   return [...times].sort((a, b) => a - b);
+}
+
+/** A value as the margins print it: fixed digits, a true minus, a dash for nothing. */
+export function printTrace(value: number | null, digits: number): string {
+  if (value === null || !Number.isFinite(value)) return '–';
+  const text = value.toFixed(digits);
+  return Number(text) === 0 ? (0).toFixed(digits) : text.replace('-', '−');
 }

@@ -118,6 +118,6 @@ export function verdictWord(verdict: BalanceVerdict, deadSide: DeadSide): string
 /** What to do about it, for the spoken text. */
 export function verdictRemedy(verdict: BalanceVerdict, deadSide: DeadSide): string {
   if (verdict === 'balanced') return 'hold it';
-  const towardRight = (verdict === 'dead') === (sideSign(deadSide) > 0);
+  const towardRight = (verdict === 'dead') === sideSign(deadSide) > 0;
   return towardRight ? 'more right pedal' : 'more left pedal';
 }

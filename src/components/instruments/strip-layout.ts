@@ -46,7 +46,14 @@ export function largeFrame(width: number): StripFrame & { labels: boolean; reado
 }
 
 export function smallFrame(width: number): StripFrame {
-  return { left: 9, right: width - 9, centre: width / 2, half: width / 2 - 22, wingHalf: width / 2 - 14, wingClamp: 2.8 };
+  return {
+    left: 9,
+    right: width - 9,
+    centre: width / 2,
+    half: width / 2 - 22,
+    wingHalf: width / 2 - 14,
+    wingClamp: 2.8,
+  };
 }
 
 /** −1, 0, +1: past the left end, within, past the right end of its scale. */

@@ -45,7 +45,10 @@ export interface EngineDisc {
 const RING = 14;
 
 /** Skin over elliptic rings along x: [x, half width, half height, z of the centre]. */
-function loft(rings: readonly (readonly [number, number, number, number])[], y: number): Omit<SolidPart, 'side' | 'order'> {
+function loft(
+  rings: readonly (readonly [number, number, number, number])[],
+  y: number,
+): Omit<SolidPart, 'side' | 'order'> {
   const points: Vec[] = [];
   const faces: number[][] = [];
   const insides: Vec[] = [];

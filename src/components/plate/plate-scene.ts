@@ -104,7 +104,12 @@ function ground(view: View, spec: PlateSpec): PlateShape[] {
     { d: `M0 ${y}H${width}V${height}H0Z`, fill: 'var(--stage-ground)' },
   ];
   [2, 3, 6, 10, 16, 24, 34].forEach((below, i) => {
-    shapes.push({ d: `M0 ${y + below}H${width}`, stroke: 'var(--stage-grid)', width: 0.9 - i * 0.1, opacity: 0.8 - i * 0.1 });
+    shapes.push({
+      d: `M0 ${y + below}H${width}`,
+      stroke: 'var(--stage-grid)',
+      width: 0.9 - i * 0.1,
+      opacity: 0.8 - i * 0.1,
+    });
   });
   let grid = '';
   const step = spec.heightM;
@@ -132,7 +137,15 @@ function ground(view: View, spec: PlateSpec): PlateShape[] {
 function runway(view: View, { offsetM, widthM }: { offsetM: number; widthM: number }): PlateShape[] {
   const [left, right] = [offsetM - widthM / 2, offsetM + widthM / 2];
   const area = (x0: number, x1: number, y0: number, y1: number): string =>
-    path(view.polygon([[x0, y0, 0], [x1, y0, 0], [x1, y1, 0], [x0, y1, 0]]), true);
+    path(
+      view.polygon([
+        [x0, y0, 0],
+        [x1, y0, 0],
+        [x1, y1, 0],
+        [x0, y1, 0],
+      ]),
+      true,
+    );
   let paint = '';
   for (let k = 0; k < 12; k += 1) paint += area(-40 + k * 46, -10 + k * 46, offsetM - 0.45, offsetM + 0.45);
   for (let k = 0; k < 6; k += 1) {
@@ -158,7 +171,8 @@ function curtain(view: View, spec: PlateSpec): PlateShape[] {
   for (let k = STRIPES; k >= 0; k -= 1) {
     const [a, b] = [at(k + 1), at(k)];
     const stripe = view.polygon([a, b, [b[0], b[1], 0], [a[0], a[1], 0]]);
-    if (stripe.length > 2) shapes.push({ d: path(stripe, true), fill: 'var(--ink)', opacity: [0.05, 0.1, 0.07, 0.13][k % 4]! });
+    if (stripe.length > 2)
+      shapes.push({ d: path(stripe, true), fill: 'var(--ink)', opacity: [0.05, 0.1, 0.07, 0.13][k % 4]! });
     const edge = view.segment(a, b);
     if (edge) top = [...top, ...edge];
   }
@@ -199,7 +213,10 @@ function partShapes(view: View, part: SolidPart, place: (v: Vec) => Vec): PlateS
     });
     if (!facing) return;
     const outline = face.map((i) => picture[i]).filter((p): p is Point => p != null);
-    const tone = Math.min(TONES.length - 1, Math.max(0, Math.floor(((dot(normal, LIGHT) + 0.5) / 1.25) * TONES.length)));
+    const tone = Math.min(
+      TONES.length - 1,
+      Math.max(0, Math.floor(((dot(normal, LIGHT) + 0.5) / 1.25) * TONES.length)),
+    );
     const fill = part.inkFaces?.includes(index) ? 'var(--stage-edge)' : TONES[tone]!;
     shapes.push({ d: path(outline, true), fill, stroke: fill, width: 0.7 });
   });
@@ -235,10 +252,7 @@ function discShapes(view: View, spec: PlateSpec, disc: EngineDisc, place: (v: Ve
     );
     if (hub && tip) blades += path([hub, tip], false);
   }
-  return [
-    hatched,
-    { d: blades, stroke: 'var(--dead)', width: 3.5 },
-  ];
+  return [hatched, { d: blades, stroke: 'var(--dead)', width: 3.5 }];
 }
 
 function directions(view: View, spec: PlateSpec, place: (v: Vec) => Vec, shapes: PlateShape[]): Omit<Plate, 'shapes'> {

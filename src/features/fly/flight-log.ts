@@ -12,7 +12,13 @@ const LETTERS: Record<FiredEvent['lane'], TraceFlag['letter']> = {
   systems: 'S',
   notes: 'N',
 };
-const FAILURES: ReadonlySet<string> = new Set(['engine-failure', 'engine-partial', 'rudder-hardover', 'rudder-jam', 'aileron-jam']);
+const FAILURES: ReadonlySet<string> = new Set([
+  'engine-failure',
+  'engine-partial',
+  'rudder-hardover',
+  'rudder-jam',
+  'aileron-jam',
+]);
 
 /** The first event that is more than a note: where the time axis has its zero. */
 export const zeroEvent = (fired: readonly FiredEvent[]): FiredEvent | null =>
@@ -94,7 +100,11 @@ export function createFlightLog(): FlightLog {
         'wrong-pedal',
         marks.firstWrongPedalTick,
         // The wrong side is the other one; with no correct pedal yet it is named without a side.
-        marks.correctSide === 0 ? 'Pedal the wrong way' : marks.correctSide > 0 ? 'Wrong pedal: left' : 'Wrong pedal: right',
+        marks.correctSide === 0
+          ? 'Pedal the wrong way'
+          : marks.correctSide > 0
+            ? 'Wrong pedal: left'
+            : 'Wrong pedal: right',
         'not',
       );
       mark('yaw-arrested', marks.yawArrestedTick, 'Yaw arrested');

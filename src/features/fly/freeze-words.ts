@@ -9,7 +9,10 @@ export interface FreezeWords {
 export const FREEZE_WORDS: Readonly<Record<FreezeReason, FreezeWords>> = {
   pilot: { title: 'Frozen', detail: 'The clock stands. Controls keep their place.' },
   scenario: { title: 'Frozen for a talking point', detail: 'The scenario stops the clock here.' },
-  hidden: { title: 'Frozen: this page was hidden', detail: 'A flight does not go on unseen. Nothing was flown meanwhile.' },
+  hidden: {
+    title: 'Frozen: this page was hidden',
+    detail: 'A flight does not go on unseen. Nothing was flown meanwhile.',
+  },
   gap: {
     title: 'Frozen: the browser paused this page',
     detail: 'The machine slept or was busy. The time that passed was not flown.',

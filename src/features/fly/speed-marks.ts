@@ -12,7 +12,11 @@ export interface ComputedSpeeds {
 /**
  * The stall is the hatched floor where it is the higher of the two: below it a minimum control speed means nothing.
  */
-export function speedMarks(airframe: Airframe, configuration: string | undefined, computed: ComputedSpeeds): SpeedMark[] {
+export function speedMarks(
+  airframe: Airframe,
+  configuration: string | undefined,
+  computed: ComputedSpeeds,
+): SpeedMark[] {
   const marks: SpeedMark[] = [];
   const { minimumControlMps: vmc, stallMps: stall } = computed;
   const stallIsFloor = stall !== null && (vmc === null || stall >= vmc);
@@ -21,7 +25,9 @@ export function speedMarks(airframe: Airframe, configuration: string | undefined
   const row = airframe.configurations.find((c) => c.name === configuration) ?? airframe.configurations[0];
   const listed = [
     ...(row?.speeds ?? []),
-    ...(airframe.speeds ?? []).filter((speed) => speed.configuration === undefined || speed.configuration === row?.name),
+    ...(airframe.speeds ?? []).filter(
+      (speed) => speed.configuration === undefined || speed.configuration === row?.name,
+    ),
   ];
   for (const speed of listed) {
     const casMps = speed.kt * KT;

@@ -102,7 +102,7 @@ export function useFlight(slug: () => string, revision: () => number | undefined
     } catch (error) {
       startError.value = causeOf(error);
       // The cause of a fault of our own belongs in the console as well.
-      console.info('The flight could not start.', error);
+      console.warn('The flight could not start.', error);
     } finally {
       starting.value = false;
     }
@@ -125,9 +125,12 @@ export function useFlight(slug: () => string, revision: () => number | undefined
     rate.value = next;
   }
 
-  watch(() => cockpit.keyRates, (rates) => {
-    if (flight.value) flight.value.keyboard.rates = rates;
-  });
+  watch(
+    () => cockpit.keyRates,
+    (rates) => {
+      if (flight.value) flight.value.keyboard.rates = rates;
+    },
+  );
   watch([slug, revision], () => {
     flight.value?.session.leave();
     flight.value = null;

@@ -36,9 +36,7 @@ export function createChunkSeal(
       if (sealed.length <= NONCE_BYTES) return null;
       try {
         const nonce = sealed.subarray(0, NONCE_BYTES);
-        return new Uint8Array(
-          xchacha20poly1305(key, nonce, place(index, hash)).decrypt(sealed.subarray(NONCE_BYTES)),
-        );
+        return new Uint8Array(xchacha20poly1305(key, nonce, place(index, hash)).decrypt(sealed.subarray(NONCE_BYTES)));
       } catch {
         return null; // the tag does not fit: altered, or another person's
       }

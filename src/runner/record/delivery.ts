@@ -77,7 +77,10 @@ export function createDelivery<Result>(setup: DeliverySetup<Result>): Delivery<R
     const kept = await store.chunk(attemptId, index);
     const bytes = kept && seal.open(index, kept.hash, kept.sealed);
     if (!kept || !bytes) {
-      cutAt(index, `Second ${index + 1} of the recording was altered or lost in this browser. The flight counts up to there.`);
+      cutAt(
+        index,
+        `Second ${index + 1} of the recording was altered or lost in this browser. The flight counts up to there.`,
+      );
       return;
     }
     await ports.putChunk(attemptId, index, bytes, kept.hash);
@@ -109,7 +112,10 @@ export function createDelivery<Result>(setup: DeliverySetup<Result>): Delivery<R
           next = fault.index;
           change({ acknowledged: Math.max(status.acknowledged, fault.index) });
         } else {
-          cutAt(fault.index, `Second ${fault.index + 1} of the recording is missing here and on the server. The flight counts up to there.`);
+          cutAt(
+            fault.index,
+            `Second ${fault.index + 1} of the recording is missing here and on the server. The flight counts up to there.`,
+          );
         }
         return true;
       case 'missing': {
@@ -117,7 +123,10 @@ export function createDelivery<Result>(setup: DeliverySetup<Result>): Delivery<R
         const lost = fault.indices.filter((i) => !kept.has(i));
         if (lost.length > 0) {
           const first = Math.min(...lost);
-          cutAt(first, `Second ${first + 1} of the recording is missing here and on the server. The flight counts up to there.`);
+          cutAt(
+            first,
+            `Second ${first + 1} of the recording is missing here and on the server. The flight counts up to there.`,
+          );
         } else again.push(...fault.indices);
         return true;
       }
@@ -127,7 +136,10 @@ export function createDelivery<Result>(setup: DeliverySetup<Result>): Delivery<R
           wait(null);
           return false;
         }
-        cutAt(index, `Second ${index + 1} of the recording was refused: ${fault.detail} The flight counts up to there.`);
+        cutAt(
+          index,
+          `Second ${index + 1} of the recording was refused: ${fault.detail} The flight counts up to there.`,
+        );
         return true;
       case 'closed':
         await settle(await ports.result(attemptId).catch(() => null));

@@ -87,10 +87,7 @@ export function createFallingBackStore(kept: ChunkStore): FallingBackStore {
         () => kept.chunk(attemptId, index),
       ),
     async indices(attemptId) {
-      const all = new Set([
-        ...(await memory.indices(attemptId)),
-        ...(await orNothing(() => kept.indices(attemptId))),
-      ]);
+      const all = new Set([...(await memory.indices(attemptId)), ...(await orNothing(() => kept.indices(attemptId)))]);
       return [...all].sort((a, b) => a - b);
     },
     async dropChunk(attemptId, index) {

@@ -1,5 +1,10 @@
 /** The balance of one attempt at one instant, taken from its replay. */
-import type { BalanceNow, BalanceVerdict, BalanceWanted, DeadSide } from '../../components/instruments/balance-verdict.ts';
+import type {
+  BalanceNow,
+  BalanceVerdict,
+  BalanceWanted,
+  DeadSide,
+} from '../../components/instruments/balance-verdict.ts';
 
 export interface ReplayMoment {
   attemptId: string;

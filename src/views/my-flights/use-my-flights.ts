@@ -38,7 +38,8 @@ export function useMyFlights() {
   });
   const latest = useQuery({
     key: ['attempts', 'latest', LAST_ATTEMPTS],
-    query: ({ signal }) => listAttempts({ page: 1, pageSize: LAST_ATTEMPTS, sort: '-startedAt', status: 'complete' }, signal),
+    query: ({ signal }) =>
+      listAttempts({ page: 1, pageSize: LAST_ATTEMPTS, sort: '-startedAt', status: 'complete' }, signal),
   });
   const latestIds = computed(() => latest.data.value?.items.map((attempt) => attempt.id) ?? []);
   const details = useQuery<AttemptDetail[]>({
@@ -65,17 +66,27 @@ export function useMyFlights() {
 
   const pedals = computed(() => pedalSeries(details.data.value ?? []));
   const margins = computed(() => leastMargins(details.data.value ?? []));
-  const nextSummary = computed(
-    () => scenarios.data.value?.items.find((item) => item.slug === nextSlug.value) ?? null,
-  );
-  const bestS = computed(() =>
-    next.data.value ? bestPedalS(pedals.value, next.data.value.scenario.title) : null,
-  );
+  const nextSummary = computed(() => scenarios.data.value?.items.find((item) => item.slug === nextSlug.value) ?? null);
+  const bestS = computed(() => (next.data.value ? bestPedalS(pedals.value, next.data.value.scenario.title) : null));
   const pedalLimitS = computed(
     () =>
       next.data.value?.scenario.criteria.find((criterion) => criterion.measure === 'first-correct-pedal')?.limit.max ??
       null,
   );
 
-  return { query, set, scenarios, replays, latest, details, nextSlug, next, nextSummary, pedals, margins, bestS, pedalLimitS };
+  return {
+    query,
+    set,
+    scenarios,
+    replays,
+    latest,
+    details,
+    nextSlug,
+    next,
+    nextSummary,
+    pedals,
+    margins,
+    bestS,
+    pedalLimitS,
+  };
 }

@@ -128,7 +128,9 @@ describe('s-plane boundaries', () => {
             if (im === 0) continue;
             const both = (x: number) => {
               const found = modes(['dutch-roll', x, im]);
-              const results = ['dutch-damping', 'dutch-frequency'].map((id) => level(found, id, klass, category, 4)?.level);
+              const results = ['dutch-damping', 'dutch-frequency'].map(
+                (id) => level(found, id, klass, category, 4)?.level,
+              );
               return Math.max(...results.map(Number));
             };
             expect(both(re * 1.001 - 1e-6)).toBeLessThanOrEqual(wanted);
@@ -149,23 +151,23 @@ describe('roll performance', () => {
   const tau = 0.5;
   const A = Float64Array.from([-1, 0, 0, 0, 0, -1 / tau, 0, 0, 0, 0, -1, 0, 0, 1, 0, 0]);
   const aileron = Float64Array.from([0, 6, 0, 0]);
-  const zero = new Float64Array(4);
-  const system = { A, B: { aileron, rudder: zero, yawMoment: zero, rollMoment: zero }, tasMps: 60 };
+  const time = (column: Float64Array, actuator: { lagS: number; rateRadS: number; maxRad: number }, bank: number) =>
+    timeToBankS(A, column, 4, actuator, bank);
 
   it('reaches 30° when L τ δ (t − τ(1 − e^(−t/τ))) does, for a surface without lag', () => {
     const delta = 0.3;
-    const t = timeToBankS(system, { lagS: 0, rateRadS: 9, maxRad: delta }, Math.PI / 6);
+    const t = time(aileron, { lagS: 0, rateRadS: 9, maxRad: delta }, Math.PI / 6);
     const bank = (s: number) => 6 * tau * delta * (s - tau * (1 - Math.exp(-s / tau)));
     expect(bank(t ?? 0)).toBeCloseTo(Math.PI / 6, 6);
   });
 
   it('takes longer with a slow surface and says null when it never gets there', () => {
-    const quick = timeToBankS(system, { lagS: 0.05, rateRadS: 9, maxRad: 0.3 }, 0.5);
-    const slow = timeToBankS(system, { lagS: 0.05, rateRadS: 0.2, maxRad: 0.3 }, 0.5);
+    const quick = time(aileron, { lagS: 0.05, rateRadS: 9, maxRad: 0.3 }, 0.5);
+    const slow = time(aileron, { lagS: 0.05, rateRadS: 0.2, maxRad: 0.3 }, 0.5);
     expect(slow ?? 0).toBeGreaterThan((quick ?? 0) + 0.5);
-    expect(timeToBankS(system, { lagS: 0.05, rateRadS: 9, maxRad: 1e-4 }, 0.5)).toBeNull();
-    const reversed = { ...system, B: { ...system.B, aileron: aileron.map((v) => -v) } };
-    expect(timeToBankS(reversed, { lagS: 0.05, rateRadS: 9, maxRad: 0.3 }, 0.5)).toBeNull();
+    expect(time(aileron, { lagS: 0.05, rateRadS: 9, maxRad: 1e-4 }, 0.5)).toBeNull();
+    const reversed = aileron.map((v) => -v);
+    expect(time(reversed, { lagS: 0.05, rateRadS: 9, maxRad: 0.3 }, 0.5)).toBeNull();
   });
 
   it('finds no extremum in a pure first-order roll', () => {

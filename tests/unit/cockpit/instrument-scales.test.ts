@@ -42,7 +42,12 @@ describe('directions', () => {
     expect(Math.abs(pathOffsetRad(8 * DEG, 90 * DEG, 0))).toBeLessThan(1e-9);
   });
   it('says headings as they are spoken', () => {
-    expect([headingText(0), headingText(359.6), headingText(-10), headingText(5)]).toEqual(['360', '360', '350', '005']);
+    expect([headingText(0), headingText(359.6), headingText(-10), headingText(5)]).toEqual([
+      '360',
+      '360',
+      '350',
+      '005',
+    ]);
     expect(nearestTurn(-100, 262)).toBe(260);
   });
 });
@@ -55,9 +60,26 @@ describe('labels', () => {
     expect(Math.max(...tight)).toBeLessThanOrEqual(310);
   });
   it('of the heading edge go outward and never onto another mark', () => {
-    const [nose, path] = edgeLabels([{ x: 260, width: 58 }, { x: 420, width: 58 }], 11, 0, 900);
+    const [nose, path] = edgeLabels(
+      [
+        { x: 260, width: 58 },
+        { x: 420, width: 58 },
+      ],
+      11,
+      0,
+      900,
+    );
     expect([nose.side, path.side]).toEqual(['left', 'right']);
-    const close = edgeLabels([{ x: 300, width: 58 }, { x: 304, width: 58 }, { x: 308, width: 66 }], 11, 0, 900);
+    const close = edgeLabels(
+      [
+        { x: 300, width: 58 },
+        { x: 304, width: 58 },
+        { x: 308, width: 66 },
+      ],
+      11,
+      0,
+      900,
+    );
     expect(close.filter((l) => l.side === 'none').length).toBe(1);
   });
 });

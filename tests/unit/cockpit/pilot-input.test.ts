@@ -5,7 +5,11 @@ import { createPadsSource } from '../../../src/runner/input/pads-source.ts';
 import { axesOf, createPilotAxes, quantiseInto } from '../../../src/runner/input/pilot-axes.ts';
 
 const TICK = 1 / 120;
-const hold = (source: { stepInto(a: ReturnType<typeof createPilotAxes>, t: number): void }, axes: ReturnType<typeof createPilotAxes>, seconds: number) => {
+const hold = (
+  source: { stepInto(a: ReturnType<typeof createPilotAxes>, t: number): void },
+  axes: ReturnType<typeof createPilotAxes>,
+  seconds: number,
+) => {
   for (let i = 0; i < Math.round(seconds / TICK); i += 1) source.stepInto(axes, TICK);
 };
 

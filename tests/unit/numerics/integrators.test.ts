@@ -101,7 +101,8 @@ describe('adaptive integration', () => {
     expect(result.points?.map((point) => point.t)).toEqual(sampleTimes);
     for (const { t, x } of result.points ?? []) {
       const truth = exact(t);
-      for (let i = 0; i < 4; i++) expect(Math.abs(x[i] - truth[i])).toBeLessThan(2e-7 * Math.max(1, Math.abs(truth[i])));
+      for (let i = 0; i < 4; i++)
+        expect(Math.abs(x[i] - truth[i])).toBeLessThan(2e-7 * Math.max(1, Math.abs(truth[i])));
     }
     const back = integrateAdaptive(linear, result.x, 20, 0, { tolerance: 1e-11 });
     for (let i = 0; i < 4; i++) expect(back.x[i]).toBeCloseTo(x0[i], 6);

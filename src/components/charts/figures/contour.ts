@@ -85,10 +85,7 @@ export function contourPaths(field: ArrayLike<number>, grid: ContourGrid, value:
   return tracePolylines(links, place);
 }
 
-function tracePolylines(
-  links: Map<number, number[]>,
-  place: Map<number, readonly [number, number]>,
-): ContourLine[] {
+function tracePolylines(links: Map<number, number[]>, place: Map<number, readonly [number, number]>): ContourLine[] {
   const lines: ContourLine[] = [];
   const used = new Set<number>();
   const walk = (start: number): void => {

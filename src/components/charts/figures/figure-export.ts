@@ -38,7 +38,9 @@ export function standaloneSvg(svg: SVGSVGElement, background: string): string {
   const patterns = document.querySelector('.ink-patterns defs')?.cloneNode(true);
   if (patterns instanceof Element) {
     const root = getComputedStyle(document.documentElement);
-    const text = patterns.innerHTML.replace(/var\((--[\w-]+)\)/g, (_, name: string) => root.getPropertyValue(name).trim());
+    const text = patterns.innerHTML.replace(/var\((--[\w-]+)\)/g, (_, name: string) =>
+      root.getPropertyValue(name).trim(),
+    );
     patterns.innerHTML = text;
     copy.prepend(patterns);
   }
@@ -64,7 +66,10 @@ export async function svgToPng(markup: string, width: number, height: number): P
     if (!context) throw new Error('This browser gave no drawing surface for the picture. Save as SVG instead.');
     context.drawImage(image, 0, 0, canvas.width, canvas.height);
     return await new Promise((resolve, reject) => {
-      canvas.toBlob((blob) => (blob ? resolve(blob) : reject(new Error('The picture could not be encoded.'))), 'image/png');
+      canvas.toBlob(
+        (blob) => (blob ? resolve(blob) : reject(new Error('The picture could not be encoded.'))),
+        'image/png',
+      );
     });
   } finally {
     URL.revokeObjectURL(address);

@@ -1,0 +1,14 @@
+import { parentPort } from 'node:worker_threads';
+
+/** Called once in a worker thread: answers each posted job with what `work` returns, or with its error's message. */
+export function answerJobs(work: (message: unknown) => unknown): void {
+  const port = parentPort;
+  if (port === null) throw new Error('This file runs in a worker thread only.');
+  port.on('message', (message: unknown) => {
+    try {
+      port.postMessage({ ok: true, value: work(message) });
+    } catch (error) {
+      port.postMessage({ ok: false, message: error instanceof Error ? (error.stack ?? error.message) : String(error) });
+    }
+  });
+}

@@ -1,0 +1,100 @@
+import path from 'node:path';
+import { fileURLToPath, pathToFileURL } from 'node:url';
+import { Worker } from 'node:worker_threads';
+import { z } from 'zod';
+
+/** What a worker posts back for each job. */
+const replySchema = z.union([
+  z.object({ ok: z.literal(true), value: z.unknown() }),
+  z.object({ ok: z.literal(false), message: z.string() }),
+]);
+
+interface Job {
+  message: unknown;
+  resolve: (value: unknown) => void;
+  reject: (error: Error) => void;
+}
+
+interface Thread {
+  worker: Worker;
+  job: Job | null;
+}
+
+export interface WorkerPool {
+  /** Runs one job in a thread and resolves with what it posted; the caller parses it. */
+  run(message: unknown): Promise<unknown>;
+  close(): Promise<void>;
+}
+
+/** The thread of a worker: from TypeScript beside this file, or bundled beside the server. */
+function startThread(name: string): Worker {
+  const here = fileURLToPath(import.meta.url);
+  const folder = path.dirname(here);
+  if (!here.endsWith('.ts')) return new Worker(path.join(folder, `${name}.worker.js`));
+  const file = pathToFileURL(path.join(folder, `${name}.worker.ts`)).href;
+  return new Worker(path.join(folder, 'run-from-source.mjs'), { workerData: { file }, execArgv: [] });
+}
+
+/**
+ * Up to `size` threads of the worker `name`, started when first needed. A thread that dies fails its own job only;
+ * the next job gets a new one.
+ */
+export function createWorkerPool(name: 'password' | 'rerun', size: number): WorkerPool {
+  const threads = new Set<Thread>();
+  const waiting: Job[] = [];
+  let closed = false;
+
+  const fail = (thread: Thread, error: Error): void => {
+    threads.delete(thread);
+    thread.job?.reject(error);
+    thread.job = null;
+    if (!closed) dispatch();
+  };
+
+  const addThread = (): Thread => {
+    const thread: Thread = { worker: startThread(name), job: null };
+    thread.worker.on('message', (message: unknown) => {
+      const { job } = thread;
+      thread.job = null;
+      thread.worker.unref();
+      const reply = replySchema.safeParse(message);
+      if (!reply.success) job?.reject(new Error(`Worker ${name} posted something unreadable.`));
+      else if (reply.data.ok) job?.resolve(reply.data.value);
+      else job?.reject(new Error(`Worker ${name}: ${reply.data.message}`));
+      dispatch();
+    });
+    thread.worker.on('error', (error: unknown) => fail(thread, new Error(`Worker ${name} failed.`, { cause: error })));
+    thread.worker.on('exit', () => fail(thread, new Error(`Worker ${name} ended.`)));
+    thread.worker.unref();
+    threads.add(thread);
+    return thread;
+  };
+
+  const dispatch = (): void => {
+    while (waiting.length > 0) {
+      const free = [...threads].find((thread) => thread.job === null) ?? (threads.size < size ? addThread() : null);
+      const job = free === null ? undefined : waiting.shift();
+      if (free === null || job === undefined) return;
+      free.job = job;
+      free.worker.ref(); // a job keeps the process alive, an idle thread does not
+      free.worker.postMessage(job.message);
+    }
+  };
+
+  return {
+    run: (message) =>
+      new Promise((resolve, reject) => {
+        if (closed) {
+          reject(new Error(`Worker pool ${name} is closed.`));
+          return;
+        }
+        waiting.push({ message, resolve, reject });
+        dispatch();
+      }),
+    close: async () => {
+      closed = true;
+      for (const job of waiting.splice(0)) job.reject(new Error(`Worker pool ${name} is closed.`));
+      await Promise.all([...threads].map((thread) => thread.worker.terminate()));
+    },
+  };
+}

@@ -1,0 +1,12 @@
+import { DEG, FT, LBF, SLUG } from '../../units/constants.ts';
+import { phiOverBeta } from '../stability-map.ts';
+import { rollRateExtrema, timeToBankS } from '../roll-performance.ts';
+import { timeResponse } from '../responses.ts';
+import { transferFunction } from '../transfer-functions.ts';
+import { values } from './case-builders.ts';
+import type { ValueRow } from './case-builders.ts';
+import { DC8_APPROACH } from './data-sets.ts';
+import { DC8_APPROACH_DIMENSIONAL, DC8_CRUISE_DIMENSIONAL, primedSystem } from './dimensional-sets.ts';
+import type { DimensionalName, DimensionalSet, PrimedName } from './dimensional-sets.ts';
+import type { PublishedCase } from './published-case.ts';
+import { analyseSet } from './set-airframe.ts';

@@ -1,0 +1,40 @@
+import type { Stream } from '../numerics/random.ts';
+import type { RightHandSide } from '../numerics/rk4.ts';
+import type { Aircraft } from './aircraft.ts';
+import type { AirFlow } from './air.ts';
+import type { LateralInertias } from './inertia.ts';
+import type { PlantInputs, PlantSetup } from './plant-types.ts';
+import type { TrimSolution, TrimSolver } from './trim.ts';
+import type { TurbulenceScale } from './turbulence.ts';
+
+/** What the parts of a plant share. All that changes from tick to tick lies in `x`, `d` and the random stream. */
+export interface Core {
+  readonly setup: PlantSetup;
+  readonly linear: boolean;
+  /** The aircraft in every configuration of the airframe, same loading; index as in the file. */
+  readonly configurations: readonly Aircraft[];
+  /** First and last row of each configuration in the flat derivative rows. */
+  readonly rowRanges: readonly (readonly [number, number])[];
+  readonly engineCount: number;
+  readonly inertias: LateralInertias;
+  readonly groundM: number;
+  /** Integrated state (state-layout.ts). */
+  readonly x: Float64Array;
+  /** Memory (plant-memory.ts). */
+  readonly d: Float64Array;
+  /** Held numbers of the tick, of the engines, and the recorded evaluation (tick-held.ts). */
+  readonly h: Float64Array;
+  readonly e: Float64Array;
+  readonly made: Float64Array;
+  /** The part of `h` with the constant derivatives of the small-disturbance motion, and scratch of the same length. */
+  readonly linearRow: Float64Array;
+  readonly blendRow: Float64Array;
+  readonly inputs: PlantInputs;
+  readonly stream: Stream;
+  readonly air: AirFlow;
+  readonly rhs: RightHandSide;
+  readonly solver: TrimSolver;
+  readonly trim: TrimSolution;
+  readonly turbulence: TurbulenceScale;
+  readonly startTrim: { aileronRad: number; rudderRad: number; betaRad: number; phiRad: number; CL: number };
+}

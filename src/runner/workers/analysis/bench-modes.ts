@@ -1,0 +1,160 @@
+/** Modes, criteria, roots and mode shapes of up to four revisions at one condition, with the locus of a sweep. */
+import { casFromTas } from '#shared/model/airspeeds.ts';
+import { ModelError } from '#shared/model/errors.ts';
+import { NumericsError } from '#shared/numerics/errors.ts';
+import { densityAt } from '#shared/model/atmosphere.ts';
+import { classicalApproximations, type ClassicalApproximations } from '#shared/analysis/approximations.ts';
+import { modalCriteria, type CriterionResult } from '#shared/analysis/criteria-8785c.ts';
+import { withYawDamper } from '#shared/analysis/lateral-system.ts';
+import { modeShapes, type ModeShape } from '#shared/analysis/mode-shapes.ts';
+import { lateralModes, type LateralModes } from '#shared/analysis/modes.ts';
+import { rollOscillationCriterion, timeToBankCriterion } from '#shared/analysis/roll-performance.ts';
+import { sideslipCriterion } from '#shared/analysis/sideslip-crosswind.ts';
+import { sPlaneBoundaries, type SPlaneBoundary } from '#shared/analysis/s-plane-regions.ts';
+import { rollModeMaxima } from '#shared/analysis/criteria-tables.ts';
+import { KT } from '#shared/units/constants.ts';
+import {
+  prepareSubject,
+  stallKt,
+  type BenchCondition,
+  type BenchSubject,
+  type DerivativeKey,
+  type PreparedSubject,
+} from './bench-condition.ts';
+
+export type SweepKind = 'speed' | 'height' | DerivativeKey;
+export interface ModesRequest {
+  kind: 'modes';
+  condition: BenchCondition;
+  subjects: readonly BenchSubject[];
+  sweep: { kind: SweepKind; values: readonly number[] };
+}
+export interface ModesOfSubject {
+  label: string;
+  found: LateralModes;
+  shapes: ModeShape[];
+  criteria: CriterionResult[];
+  /** Worst modal level; 4 below Level 3. */
+  level: number;
+  CL: number;
+  casKt: number;
+  stallKt: number;
+  klass: string;
+  category: string;
+  approximations: ClassicalApproximations;
+  /** Values at the trimmed lift coefficient, in the order of DERIVATIVE_KEYS. */
+  derivatives: number[];
+}
+export interface ModesPicture {
+  subjects: ModesOfSubject[];
+  problems: string[];
+  locus: { value: number; roots: { re: number; im: number }[] }[];
+  boundaries: SPlaneBoundary[];
+  top: number;
+  rollLimitS: number | null;
+}
+
+export function modesPicture(request: ModesRequest): ModesPicture {
+  const { condition, subjects } = request;
+  const problems: string[] = [];
+  const done: ModesOfSubject[] = [];
+  let first: PreparedSubject | null = null;
+  subjects.forEach((subject, i) => {
+    try {
+      const ready = prepareSubject(subject, condition, i === 0);
+      if (i === 0) first = ready;
+      done.push(modesOf(ready, condition));
+    } catch (error) {
+      problems.push(`${subject.label}: ${error instanceof Error ? error.message : 'could not be computed'}`);
+    }
+  });
+  const lead = first as PreparedSubject | null; // assigned in the loop above
+  const locus = lead ? sweepRoots(request) : [];
+  const top = Math.max(
+    1,
+    ...done.flatMap((d) => d.found.modes.map((m) => m.im * 1.25)),
+    ...locus.flatMap((l) => l.roots.map((r) => r.im * 1.1)),
+  );
+  return {
+    subjects: done,
+    problems,
+    locus,
+    boundaries: lead ? sPlaneBoundaries(lead.klass, lead.category, top, null) : [],
+    top,
+    rollLimitS: lead ? rollModeMaxima(lead.klass, lead.category)[0] : null,
+  };
+}
+
+function modesOf(ready: PreparedSubject, condition: BenchCondition): ModesOfSubject {
+  const { aircraft, system } = ready;
+  const damper = condition.yawDamper ? aircraft.yawDamper : null;
+  const a = damper
+    ? withYawDamper(system.A, system.B.rudder, { gainS: damper.gainS, washoutS: damper.washoutS })
+    : system.A;
+  const n = damper ? 5 : 4;
+  const found = lateralModes(a, n);
+  const sigma = densityAt(condition.heightM) / densityAt(0);
+  const shapes = modeShapes(a, n, found, condition.tasMps, sigma);
+  const dutch = shapes.find((s) => s.mode.kind === 'dutch-roll');
+  const criteria = modalCriteria(found, dutch?.phiOverBeta ?? null, ready.klass, ready.category);
+  const actuator = {
+    lagS: aircraft.controls.lagS,
+    rateRadS: aircraft.controls.aileronRateRadS,
+    maxRad: aircraft.controls.aileronMaxRad,
+  };
+  const extra = [
+    attempt(() => timeToBankCriterion(system, actuator, ready.klass, ready.category, 'low')),
+    attempt(() => rollOscillationCriterion(system, ready.category)),
+    attempt(() => sideslipCriterion(aircraft, condition.tasMps, condition.heightM)),
+  ].filter((c) => c !== null);
+  return {
+    label: ready.label,
+    found,
+    shapes,
+    criteria: [...criteria, ...extra],
+    level: Math.max(1, ...criteria.map((c) => (typeof c.level === 'number' ? c.level : 1))),
+    CL: system.CL,
+    casKt: casFromTas(condition.tasMps, condition.heightM) / KT,
+    stallKt: stallKt(aircraft, condition.heightM),
+    klass: ready.klass,
+    category: ready.category,
+    approximations: classicalApproximations(system.A),
+    derivatives: Array.from(system.derivatives),
+  };
+}
+
+function attempt<T>(compute: () => T): T | null {
+  try {
+    return compute();
+  } catch (error) {
+    // A criterion that this data cannot answer is left out of the table.
+    if (error instanceof ModelError || error instanceof NumericsError) return null;
+    throw error;
+  }
+}
+
+function sweepRoots(request: ModesRequest): ModesPicture['locus'] {
+  const subject = request.subjects[0];
+  if (!subject) return [];
+  const out: ModesPicture['locus'] = [];
+  for (const value of request.sweep.values) {
+    const kind = request.sweep.kind;
+    const condition: BenchCondition =
+      kind === 'speed'
+        ? { ...request.condition, tasMps: value }
+        : kind === 'height'
+          ? { ...request.condition, heightM: value }
+          : { ...request.condition, shifts: { ...request.condition.shifts, [kind]: value } };
+    try {
+      const ready = prepareSubject(subject, condition, true);
+      const damper = condition.yawDamper ? ready.aircraft.yawDamper : null;
+      const a = damper
+        ? withYawDamper(ready.system.A, ready.system.B.rudder, { gainS: damper.gainS, washoutS: damper.washoutS })
+        : ready.system.A;
+      out.push({ value, roots: lateralModes(a, damper ? 5 : 4).modes.map((m) => ({ re: m.re, im: m.im })) });
+    } catch {
+      // A step of the sweep outside what the data can trim is left out of the locus.
+    }
+  }
+  return out;
+}
