@@ -159,7 +159,8 @@ function quantitiesOf(
   const { modes } = lateralModes(buildSmallDisturbance(aircraft, condition).A);
   const of = (kind: string) => modes.find((mode) => mode.kind === kind);
   const dutch = of('dutch-roll');
-  const speed = failed === null ? null : minimumControlSpeed(aircraft, { heightM: condition.heightM, failed: [failed] });
+  const speed =
+    failed === null ? null : minimumControlSpeed(aircraft, { heightM: condition.heightM, failed: [failed] });
   return [
     dutch?.zeta ?? 'no-dutch-roll-oscillation',
     dutch?.wn ?? 'no-dutch-roll-oscillation',

@@ -4,6 +4,7 @@ import { casFromTas } from '../model/airspeeds.ts';
 import { ModelError } from '../model/errors.ts';
 import { exp, ln } from '../numerics/elementary.ts';
 import { DEG } from '../units/constants.ts';
+import { CERTIFICATION } from './certification.ts';
 import { STATIC_LIMITS } from './static-limits.ts';
 import type { StaticLimit } from './static-limits.ts';
 import { createStaticSolver } from './static-solution.ts';
@@ -58,7 +59,7 @@ const SPEED_SETTLED = 1e-9;
 const MAX_REFINEMENTS = 60;
 /** An engine yawing moment below this fraction of weight × span is none. */
 const NO_MOMENT = 1e-9;
-export const DEFAULT_BANK_LIMIT_RAD = 5 * DEG;
+export const DEFAULT_BANK_LIMIT_RAD = CERTIFICATION.controlSpeedBankRad;
 const LARGEST_BANK_RAD = 60 * DEG;
 
 /**

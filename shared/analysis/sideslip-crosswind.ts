@@ -3,7 +3,8 @@ import { stallTasMps } from '../model/aircraft.ts';
 import { casFromTas } from '../model/airspeeds.ts';
 import { ModelError } from '../model/errors.ts';
 import { sin } from '../numerics/elementary.ts';
-import { DEG, KT } from '../units/constants.ts';
+import { DEG } from '../units/constants.ts';
+import { CERTIFICATION } from './certification.ts';
 import { APPROACH_ROLL_SHARE, APPROACH_SIDESLIP_DEG } from './criteria-tables.ts';
 import type { CriterionResult } from './criteria-8785c.ts';
 import { STATIC_LIMITS } from './static-limits.ts';
@@ -103,13 +104,14 @@ export function crosswindLimit(
   solver.solveAtSideslip(tasMps, within);
   const withinData = pointOf(solver, tasMps);
   const stallCas = casFromTas(stallTasMps(aircraft, solver.densityKgM3), heightM);
+  const share = CERTIFICATION.crosswindStallShare * stallCas;
   return {
     controlPower,
     limitedBy,
     withinData,
     outsideData: beta > DATA_SIDESLIP_RAD,
-    part23Mps: 0.2 * stallCas,
-    part25Mps: Math.min(25 * KT, Math.max(20 * KT, 0.2 * stallCas)),
+    part23Mps: share,
+    part25Mps: Math.min(CERTIFICATION.crosswindMostMps, Math.max(CERTIFICATION.crosswindLeastMps, share)),
   };
 }
 

@@ -1,14 +1,6 @@
 import { DEG, G0, KT } from '../units/constants.ts';
 import type { Airframe, AirframeConfiguration, AirframeDerivativeRow, AirframeLoading } from './airframe-format.ts';
-import {
-  buildTable,
-  DERIVATIVE_COUNT,
-  rowAlphaRad,
-  ROLL_BETA,
-  SIDE_BETA,
-  SIDE_R,
-  YAW_BETA,
-} from './derivatives.ts';
+import { buildTable, DERIVATIVE_COUNT, rowAlphaRad, ROLL_BETA, SIDE_BETA, SIDE_R, YAW_BETA } from './derivatives.ts';
 import type { DerivativeTable } from './derivatives.ts';
 import { ModelError, requireFiniteNumber } from './errors.ts';
 import { inertiasBodyToStability } from './inertia.ts';
@@ -185,7 +177,11 @@ function findConfiguration(airframe: Airframe, name: string | undefined): Airfra
   const found = airframe.configurations.find((configuration) => configuration.name === name);
   if (found) return found;
   const known = airframe.configurations.map((configuration) => configuration.name).join(', ');
-  throw new ModelError('unknown-configuration', `there is no configuration "${name}" (known: ${known})`, 'configuration');
+  throw new ModelError(
+    'unknown-configuration',
+    `there is no configuration "${name}" (known: ${known})`,
+    'configuration',
+  );
 }
 
 function findLoading(airframe: Airframe, name: string | null): AirframeLoading | null {

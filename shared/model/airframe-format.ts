@@ -136,38 +136,37 @@ const source = z.strictObject({
 
 /** Members of `sidewash.airframe/1`, each on its own; unknown members are refused, defaults filled in. */
 export const airframeMembers = z.strictObject({
-    format: z.literal(AIRFRAME_FORMAT),
-    name: label,
-    description: z.string().max(4000).optional(),
-    class: z.enum(['I', 'II', 'II-L', 'II-C', 'III', 'IV']),
-    geometry: z.strictObject({ wingArea_m2: positive, wingSpan_m: positive, meanChord_m: positive }),
-    mass: z.strictObject({
-      mass_kg: positive,
-      Ixx_kgm2: positive,
-      Iyy_kgm2: positive.optional(),
-      Izz_kgm2: positive,
-      Ixz_kgm2: real.default(0),
-      axes: z.enum(['stability', 'body']).default('stability'),
-    }),
-    configurations: z.array(configuration).min(1).max(20),
-    fin: fin.optional(),
-    controls,
-    yawDamper: z
-      .strictObject({ gain_s: notNegative, washout_s: positive, authority_deg: z.number().min(0).max(90) })
-      .optional(),
-    engines: z.array(engine).default([]),
-    loadings: z.array(loading).max(40).optional(),
-    /** Speeds of the whole airframe, or of the configuration that an entry names. */
-    speeds: z
-      .array(z.strictObject({ ...speed.shape, configuration: label.optional() }))
-      .max(80)
-      .optional(),
-    sources: z.array(source).max(2000).optional(),
-  });
+  format: z.literal(AIRFRAME_FORMAT),
+  name: label,
+  description: z.string().max(4000).optional(),
+  class: z.enum(['I', 'II', 'II-L', 'II-C', 'III', 'IV']),
+  geometry: z.strictObject({ wingArea_m2: positive, wingSpan_m: positive, meanChord_m: positive }),
+  mass: z.strictObject({
+    mass_kg: positive,
+    Ixx_kgm2: positive,
+    Iyy_kgm2: positive.optional(),
+    Izz_kgm2: positive,
+    Ixz_kgm2: real.default(0),
+    axes: z.enum(['stability', 'body']).default('stability'),
+  }),
+  configurations: z.array(configuration).min(1).max(20),
+  fin: fin.optional(),
+  controls,
+  yawDamper: z
+    .strictObject({ gain_s: notNegative, washout_s: positive, authority_deg: z.number().min(0).max(90) })
+    .optional(),
+  engines: z.array(engine).default([]),
+  loadings: z.array(loading).max(40).optional(),
+  /** Speeds of the whole airframe, or of the configuration that an entry names. */
+  speeds: z
+    .array(z.strictObject({ ...speed.shape, configuration: label.optional() }))
+    .max(80)
+    .optional(),
+  sources: z.array(source).max(2000).optional(),
+});
 
 export type Airframe = z.output<typeof airframeMembers>;
 export type AirframeConfiguration = Airframe['configurations'][number];
 export type AirframeDerivativeRow = AirframeConfiguration['derivatives'][number];
 export type AirframeEngine = Airframe['engines'][number];
 export type AirframeLoading = NonNullable<Airframe['loadings']>[number];
-

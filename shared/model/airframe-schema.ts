@@ -20,8 +20,7 @@ export const airframeSchema = airframeMembers.superRefine((airframe, context) =>
 });
 
 export type ParsedAirframe =
-  | { ok: true; airframe: Airframe; warnings: FieldIssue[] }
-  | { ok: false; issues: FieldIssue[] };
+  { ok: true; airframe: Airframe; warnings: FieldIssue[] } | { ok: false; issues: FieldIssue[] };
 
 /**
  * The airframe of a file's content with its warnings, or what is wrong with it.

@@ -26,7 +26,10 @@ export function documentToTable(document: unknown): [string, TableCell][] {
   const walk = (value: unknown, path: PropertyKey[]): void => {
     if (value === undefined) return;
     if (value === null || typeof value !== 'object') {
-      rows.push([jsonPointer(path), typeof value === 'number' || typeof value === 'boolean' ? value : value === null ? null : String(value)]);
+      rows.push([
+        jsonPointer(path),
+        typeof value === 'number' || typeof value === 'boolean' ? value : value === null ? null : String(value),
+      ]);
       return;
     }
     const members = Object.entries(value);
@@ -37,10 +40,26 @@ export function documentToTable(document: unknown): [string, TableCell][] {
   return rows;
 }
 
-export type DocumentFromTable = { ok: true; document: unknown } | { ok: false; row: number; message: string; remedy: string };
+export type DocumentFromTable =
+  { ok: true; document: unknown } | { ok: false; row: number; message: string; remedy: string };
 
 /** Members that hold text even when it looks like a number. */
-const TEXT_MEMBERS = new Set(['name', 'text', 'description', 'format', 'class', 'field', 'source', 'configuration', 'category', 'kind', 'law', 'mode', 'axes', 'rotation']);
+const TEXT_MEMBERS = new Set([
+  'name',
+  'text',
+  'description',
+  'format',
+  'class',
+  'field',
+  'source',
+  'configuration',
+  'category',
+  'kind',
+  'law',
+  'mode',
+  'axes',
+  'rotation',
+]);
 
 /**
  * The document of a table of members.
@@ -53,28 +72,47 @@ const TEXT_MEMBERS = new Set(['name', 'text', 'description', 'format', 'class', 
  */
 export function tableToDocument(rows: readonly (readonly unknown[])[]): DocumentFromTable {
   if (rows.length > LARGEST_TABLE_ROWS) {
-    return { ok: false, row: LARGEST_TABLE_ROWS + 1, message: `the table has ${rows.length} rows; at most ${LARGEST_TABLE_ROWS} are read`, remedy: 'Split the file.' };
+    return {
+      ok: false,
+      row: LARGEST_TABLE_ROWS + 1,
+      message: `the table has ${rows.length} rows; at most ${LARGEST_TABLE_ROWS} are read`,
+      remedy: 'Split the file.',
+    };
   }
   let document: unknown;
   const seen = new Set<string>();
   for (let i = 0; i < rows.length; i++) {
     const [rawField, rawValue] = rows[i];
     const field = typeof rawField === 'string' ? rawField.trim() : '';
-    if (field === TABLE_HEAD[0] || (field === '' && (rawValue === undefined || rawValue === null || rawValue === ''))) continue;
+    if (field === TABLE_HEAD[0] || (field === '' && (rawValue === undefined || rawValue === null || rawValue === '')))
+      continue;
     const refuse = (message: string, remedy: string): DocumentFromTable => ({ ok: false, row: i + 1, message, remedy });
-    if (!field.startsWith('/')) return refuse(`"${field}" is not a field name; it must start with /`, 'Use the names that an export writes, such as /mass/mass_kg.');
+    if (!field.startsWith('/'))
+      return refuse(
+        `"${field}" is not a field name; it must start with /`,
+        'Use the names that an export writes, such as /mass/mass_kg.',
+      );
     if (seen.has(field)) return refuse(`${field} is given twice`, 'Keep one of the two rows.');
     seen.add(field);
-    const parts = field.split('/').slice(1).map((part) => part.replaceAll('~1', '/').replaceAll('~0', '~'));
-    if (parts.length > DEEPEST) return refuse(`${field} is nested more than ${DEEPEST} deep`, 'Use the names that an export writes.');
+    const parts = field
+      .split('/')
+      .slice(1)
+      .map((part) => part.replaceAll('~1', '/').replaceAll('~0', '~'));
+    if (parts.length > DEEPEST)
+      return refuse(`${field} is nested more than ${DEEPEST} deep`, 'Use the names that an export writes.');
     if (parts.some((part) => part === '__proto__' || part === 'constructor' || part === 'prototype')) {
       return refuse(`${field} is not a member of this format`, 'Remove the row.');
     }
     const placed = place(document, parts, cellValue(rawValue, parts[parts.length - 1]));
-    if (!placed.ok) return refuse(`${field} does not fit the rows before it: ${placed.message}`, 'Order list entries from 0 without gaps.');
+    if (!placed.ok)
+      return refuse(
+        `${field} does not fit the rows before it: ${placed.message}`,
+        'Order list entries from 0 without gaps.',
+      );
     document = placed.value;
   }
-  if (document === undefined) return { ok: false, row: 1, message: 'the table has no rows', remedy: 'Export an airframe to see the layout.' };
+  if (document === undefined)
+    return { ok: false, row: 1, message: 'the table has no rows', remedy: 'Export an airframe to see the layout.' };
   return { ok: true, document };
 }
 

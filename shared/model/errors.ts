@@ -27,5 +27,6 @@ export class ModelError extends Error {
 
 /** Throws `non-finite-input` when the value is NaN or infinite. */
 export function requireFiniteNumber(value: number, name: string): void {
-  if (!Number.isFinite(value)) throw new ModelError('non-finite-input', `${name} is ${value}; a finite number is needed`, name);
+  if (!Number.isFinite(value))
+    throw new ModelError('non-finite-input', `${name} is ${value}; a finite number is needed`, name);
 }

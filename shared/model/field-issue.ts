@@ -115,7 +115,8 @@ function collect(issue: z.core.$ZodIssue, prefix: PropertyKey[], input: unknown,
         (kept, branch) => (kept === null || depth(branch) > depth(kept) ? branch : kept),
         null,
       );
-      if (best === null || best.length === 0) return add('one-of', `${name} has none of the accepted forms`, 'See the format.');
+      if (best === null || best.length === 0)
+        return add('one-of', `${name} has none of the accepted forms`, 'See the format.');
       for (const inner of best) collect(inner, path, input, out);
       return;
     }

@@ -30,9 +30,7 @@ export function finAngleRad(
   tasMps: number,
   rudderRad: number,
 ): number {
-  return (
-    betaRad * (1 - fin.sidewash) + (pRadS * fin.heightM - rRadS * fin.armM) / tasMps - fin.rudderTau * rudderRad
-  );
+  return betaRad * (1 - fin.sidewash) + (pRadS * fin.heightM - rRadS * fin.armM) / tasMps - fin.rudderTau * rudderRad;
 }
 
 /**

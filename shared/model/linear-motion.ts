@@ -1,9 +1,11 @@
 import { cos, sin } from '../numerics/elementary.ts';
-import type { RightHandSide } from '../numerics/rk4.ts';
+import { createRk4 } from '../numerics/rk4.ts';
 import { G0 } from '../units/constants.ts';
 import type { AirFlow } from './air.ts';
 import { SEA_LEVEL_DENSITY } from './atmosphere.ts';
 import * as C from './derivatives.ts';
+import type { Motion } from './plant-core.ts';
+import { TICK_S } from './plant-types.ts';
 import * as X from './state-layout.ts';
 import * as T from './tick-held.ts';
 
@@ -19,8 +21,8 @@ import * as T from './tick-held.ts';
  * @param e     Held numbers of the engines.
  * @param n     Number of engines.
  * @param air   Wind and gusts.
- * @param made  Filled when h[H_RECORD] is 1.
- * @returns     f(out, τ, x); SI, rad.
+ * @param made  Filled by `recordInto`.
+ * @returns     The right-hand side, its recorded form, and one RK4 step over a tick; SI, rad.
  * @throws      Nothing.
  * @sign        As this folder's README.
  * @source      Flight model, small-disturbance.
@@ -31,12 +33,12 @@ export function createLinearMotion(
   n: number,
   air: AirFlow,
   made: Float64Array,
-): RightHandSide {
+): Motion {
   const wind = new Float64Array(4);
   const gust = new Float64Array(3);
   const L = T.H_LINEAR;
 
-  return (out, tau, x) => {
+  const run = (out: Float64Array, tau: number, x: Float64Array, record: boolean): void => {
     const beta = x[X.X_BETA];
     const p = x[X.X_P];
     const r = x[X.X_R];
@@ -46,7 +48,7 @@ export function createLinearMotion(
     const da = x[X.X_AILERON] * h[T.H_AILERON_EFFECT];
     const dr = x[X.X_RUDDER];
     const mass = h[T.H_MASS];
-    const density = h[T.H_REF_DENSITY];
+    const density = h[T.H_DENSITY];
     const q = 0.5 * density * V * V;
     const qS = q * h[T.H_AREA];
 
@@ -147,7 +149,7 @@ export function createLinearMotion(
     out[X.X_RUDDER] =
       rudderRate > rudderMaxRate ? rudderMaxRate : rudderRate < -rudderMaxRate ? -rudderMaxRate : rudderRate;
 
-    if (h[T.H_RECORD] === 0) return;
+    if (!record) return;
     const CL = h[T.H_CL_TRIM];
     made[T.M_CL] = CL;
     made[T.M_QBAR] = q;
@@ -180,5 +182,13 @@ export function createLinearMotion(
     made[T.M_DAMPER] = damper;
     made[T.M_SIGMA_JET] = h[T.H_REF_JET];
     made[T.M_LET_GO] = 0;
+  };
+
+  const rk4 = createRk4(X.stateLength(n));
+  const rhs = (out: Float64Array, tau: number, x: Float64Array): void => run(out, tau, x, false);
+  return {
+    rhs,
+    recordInto: (out, tau, x) => run(out, tau, x, true),
+    stepInto: (out, x) => rk4.stepInto(out, rhs, 0, x, TICK_S),
   };
 }

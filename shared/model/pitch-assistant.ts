@@ -35,7 +35,11 @@ export const MANUAL_LIMIT_RAD = 20 * DEG;
  */
 export function speedHoldPathRad(excessMps: number, integralM: number): number {
   const path = SPEED_GAIN * excessMps + SPEED_INTEGRAL_GAIN * integralM;
-  return path > SPEED_PATH_LIMIT_RAD ? SPEED_PATH_LIMIT_RAD : path < -SPEED_PATH_LIMIT_RAD ? -SPEED_PATH_LIMIT_RAD : path;
+  return path > SPEED_PATH_LIMIT_RAD
+    ? SPEED_PATH_LIMIT_RAD
+    : path < -SPEED_PATH_LIMIT_RAD
+      ? -SPEED_PATH_LIMIT_RAD
+      : path;
 }
 
 /** Whether the speed hold's wanted path is clamped, which stops its integral. */
@@ -70,7 +74,11 @@ export function glidepathPathRad(
     return FLARE_PATH_RAD + share * (-glidepathRad - FLARE_PATH_RAD);
   }
   const path = -glidepathRad + GLIDEPATH_GAIN * (toThresholdM * tan(glidepathRad) - heightM);
-  return path > SPEED_PATH_LIMIT_RAD ? SPEED_PATH_LIMIT_RAD : path < -SPEED_PATH_LIMIT_RAD ? -SPEED_PATH_LIMIT_RAD : path;
+  return path > SPEED_PATH_LIMIT_RAD
+    ? SPEED_PATH_LIMIT_RAD
+    : path < -SPEED_PATH_LIMIT_RAD
+      ? -SPEED_PATH_LIMIT_RAD
+      : path;
 }
 
 /**

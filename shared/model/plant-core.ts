@@ -7,6 +7,16 @@ import type { PlantInputs, PlantSetup } from './plant-types.ts';
 import type { TrimSolution, TrimSolver } from './trim.ts';
 import type { TurbulenceScale } from './turbulence.ts';
 
+/** Equations of motion of one fidelity; time counts from the start of the tick. Nothing allocates. */
+export interface Motion {
+  /** Writes x' into `out`. */
+  rhs: RightHandSide;
+  /** The same, leaving its intermediate quantities in `Core.made`. */
+  recordInto: RightHandSide;
+  /** Writes the state a tick after `x` into `out`: classical Runge–Kutta. */
+  stepInto(out: Float64Array, x: Float64Array): void;
+}
+
 /** What the parts of a plant share. All that changes from tick to tick lies in `x`, `d` and the random stream. */
 export interface Core {
   readonly setup: PlantSetup;
@@ -32,7 +42,7 @@ export interface Core {
   readonly inputs: PlantInputs;
   readonly stream: Stream;
   readonly air: AirFlow;
-  readonly rhs: RightHandSide;
+  readonly motion: Motion;
   readonly solver: TrimSolver;
   readonly trim: TrimSolution;
   readonly turbulence: TurbulenceScale;

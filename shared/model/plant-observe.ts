@@ -1,12 +1,7 @@
 import { atan2, cos, sin } from '../numerics/elementary.ts';
 import { DEG, G0 } from '../units/constants.ts';
 import { casInAir } from './airspeeds.ts';
-import {
-  GAS_CONSTANT,
-  HEAT_RATIO,
-  SEA_LEVEL_DENSITY,
-  temperatureK,
-} from './atmosphere.ts';
+import { GAS_CONSTANT, HEAT_RATIO, SEA_LEVEL_DENSITY, temperatureK } from './atmosphere.ts';
 import { pedalForceN, pedalRudderLimitRad, SATURATION_SHARE } from './controls.ts';
 import * as C from './derivatives.ts';
 import { finStallAngleRad } from './fin.ts';
@@ -120,7 +115,7 @@ export function createObservation(engineCount: number): Observation {
 
 /** Fills observations of a core; owns the work arrays. */
 export function createObserver(core: Core): (out: Observation) => void {
-  const { x, d, h, e, made, inputs, engineCount, configurations, inertias, linear, groundM, rhs } = core;
+  const { x, d, h, e, made, inputs, engineCount, configurations, inertias, linear, groundM, motion: equations } = core;
   const n = x.length;
   const dx = new Float64Array(n);
   const later = new Float64Array(n);
@@ -128,14 +123,14 @@ export function createObserver(core: Core): (out: Observation) => void {
   const deriv = new Float64Array(C.DERIVATIVE_COUNT);
   const aircraft = configurations[0];
   const { controls, fin } = aircraft;
-  const { Ixx, Izz, Ixz } = inertias;
+  const { Ixz } = inertias;
   const span = aircraft.spanM;
 
   /** Pitch rate a tick ahead along the present derivative: pitch is algebraic, its rate of change is not a state. */
   const pitchRateAhead = (): number => {
     if (linear) return 0;
     for (let i = 0; i < n; i++) later[i] = x[i] + TICK_S * dx[i];
-    rhs(dLater, TICK_S, later);
+    equations.recordInto(dLater, TICK_S, later);
     return made[T.M_Q_PITCH];
   };
 
@@ -313,8 +308,7 @@ export function createObserver(core: Core): (out: Observation) => void {
 
   return (out) => {
     prepareTick(core);
-    h[T.H_RECORD] = 1;
-    rhs(dx, 0, x);
+    equations.recordInto(dx, 0, x);
     motion(out);
     surfaces(out);
     enginesOf(out);
@@ -322,14 +316,11 @@ export function createObserver(core: Core): (out: Observation) => void {
     accelerations(out);
     validity(out);
     out.qDotRadS2 = (pitchRateAhead() - out.qRadS) / TICK_S;
-    h[T.H_RECORD] = 0;
   };
 }
 
 function sumOf(parts: MomentParts): number {
-  return (
-    parts.beta + parts.p + parts.r + parts.aileron + parts.rudder + parts.fin + parts.thrust + parts.inertia
-  );
+  return parts.beta + parts.p + parts.r + parts.aileron + parts.rudder + parts.fin + parts.thrust + parts.inertia;
 }
 
 function clampUnit(value: number): number {

@@ -84,7 +84,7 @@ export function createCore(setup: PlantSetup): Core {
     inputs: { stick: 0, pedal: 0, pitch: 0, rudderTrim: 0, levers: levers.slice(), feather: new Uint8Array(n) },
     stream: createStream(setup.seed, 'turbulence'),
     air,
-    rhs: linear ? createLinearMotion(h, e, n, air, made) : createLargeAngle(h, e, n, rows, air, made),
+    motion: linear ? createLinearMotion(h, e, n, air, made) : createLargeAngle(h, e, n, rows, air, made),
     solver: createTrimSolver(),
     trim: createTrimSolution(),
     turbulence: { lateralLengthM: 0, verticalLengthM: 0, lateralSigmaMps: 0, verticalSigmaMps: 0 },
@@ -165,6 +165,7 @@ function flatten(configurations: readonly Aircraft[]): { rows: FlatRows; ranges:
 function fillConstants({ h, e, inertias, setup, startTrim }: Core, aircraft: Aircraft): void {
   const { Ixx, Izz, Ixz } = inertias;
   const det = Ixx * Izz - Ixz * Ixz;
+  h[T.H_CONFIG_HELD] = -1;
   h[T.H_AREA] = aircraft.wingAreaM2;
   h[T.H_SPAN] = aircraft.spanM;
   h[T.H_MASS] = aircraft.massKg;

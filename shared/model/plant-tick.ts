@@ -1,11 +1,14 @@
 import { pow } from '../numerics/elementary.ts';
 import {
   densityAt,
+  densityNear,
   GAS_CONSTANT,
   HEAT_RATIO,
   LAPSE_K_PER_M,
   SEA_LEVEL_DENSITY,
   SEA_LEVEL_TEMPERATURE_K,
+  standardAtmosphere,
+  temperatureK,
   TROPOPAUSE_M,
   TROPOPAUSE_TEMPERATURE_K,
 } from './atmosphere.ts';
@@ -20,7 +23,13 @@ import * as D from './plant-memory.ts';
 import { TICK_S } from './plant-types.ts';
 import * as X from './state-layout.ts';
 import * as T from './tick-held.ts';
-import { advanceTurbulence, lateralGustMps, rollGustSigmaRadS, turbulenceScaleInto, yawGustRadS } from './turbulence.ts';
+import {
+  advanceTurbulence,
+  lateralGustMps,
+  rollGustSigmaRadS,
+  turbulenceScaleInto,
+  yawGustRadS,
+} from './turbulence.ts';
 
 /** Codes of the pitch modes in the memory. */
 export const PITCH_CODES = {
@@ -34,6 +43,8 @@ export const PITCH_CODES = {
 
 /** Time a change of configuration takes; s. */
 export const CONFIGURATION_CHANGE_S = 4;
+/** Thickness of the layers whose middle anchors the density series; m. */
+const LAYER_M = 40;
 /** Surface lag of a hardover: the surface runs at its rate up to the stop; s (ours). */
 const HARDOVER_LAG_S = TICK_S;
 
@@ -72,6 +83,7 @@ function held(limit: number, value: number): number {
 function holdConfiguration(core: Core, t: number): void {
   const { h, d, configurations, rowRanges } = core;
   const now = d[D.D_CONFIG];
+  if (h[T.H_CONFIG_HELD] === now) return;
   const aircraft = configurations[now];
   const gone = (t - d[D.D_CONFIG_T0]) / CONFIGURATION_CHANGE_S;
   const old = configurations[d[D.D_CONFIG_OLD]];
@@ -79,6 +91,7 @@ function holdConfiguration(core: Core, t: number): void {
   h[T.H_ROWS] = rowRanges[now][0];
   h[T.H_ROWS_END] = rowRanges[now][1];
   h[T.H_SHARE_OLD] = share;
+  h[T.H_CONFIG_HELD] = share === 0 ? now : -1;
   h[T.H_CL_LIMIT] = P.CL_LIMIT_SHARE * aircraft.CLmax;
   h[T.H_CD0] = aircraft.CD0;
   h[T.H_K_INDUCED] = aircraft.kInduced;
@@ -108,30 +121,39 @@ export function blendedDerivativesInto(out: Float64Array, core: Core, CL: number
   for (let i = 0; i < DERIVATIVE_COUNT; i++) out[i] += share * (blendRow[i] - out[i]);
 }
 
+/**
+ * Anchors the atmosphere in the middle of the 40 m layer the aeroplane is in (11 km is an edge of one); within it the
+ * right-hand sides take density from a series. The anchor depends on the height alone, so the bits do not depend on the
+ * way there.
+ */
 function holdAtmosphere({ h, x }: Core): void {
   const height = x[X.X_HEIGHT];
-  const density = densityAt(height);
-  const low = height < TROPOPAUSE_M;
-  h[T.H_REF_HEIGHT] = height;
-  h[T.H_REF_DENSITY] = density;
-  h[T.H_TROPOSPHERE] = low ? 1 : 0;
-  h[T.H_REF_TEMPERATURE] = low ? SEA_LEVEL_TEMPERATURE_K - LAPSE_K_PER_M * height : TROPOPAUSE_TEMPERATURE_K;
-  if (h[T.H_HAS_JET] !== 0) h[T.H_REF_JET] = pow(density / SEA_LEVEL_DENSITY, JET_SIGMA_EXPONENT);
+  const anchor = (Math.floor(height / LAYER_M) + 0.5) * LAYER_M;
+  if (anchor !== h[T.H_REF_HEIGHT]) {
+    const density = densityAt(anchor);
+    const low = anchor < TROPOPAUSE_M;
+    h[T.H_REF_HEIGHT] = anchor;
+    h[T.H_REF_DENSITY] = density;
+    h[T.H_TROPOSPHERE] = low ? 1 : 0;
+    h[T.H_REF_TEMPERATURE] = low ? SEA_LEVEL_TEMPERATURE_K - LAPSE_K_PER_M * anchor : TROPOPAUSE_TEMPERATURE_K;
+    if (h[T.H_HAS_JET] !== 0) h[T.H_REF_JET] = pow(density / SEA_LEVEL_DENSITY, JET_SIGMA_EXPONENT);
+  }
+  h[T.H_DENSITY] = densityNear(height - anchor, h[T.H_REF_DENSITY], h[T.H_REF_TEMPERATURE], h[T.H_TROPOSPHERE] !== 0);
 }
 
 /** Fixes density and jet thrust of the small-disturbance motion at the start; called once. */
 export function holdStartAtmosphere(core: Core): void {
   const { h, x } = core;
-  holdAtmosphere(core);
-  if (h[T.H_HAS_JET] === 0) return;
-  const mach = x[X.X_V] / Math.sqrt(HEAT_RATIO * GAS_CONSTANT * h[T.H_REF_TEMPERATURE]);
-  h[T.H_REF_JET] *= 1 + JET_MACH_1 * mach + JET_MACH_2 * mach * mach;
+  const { densityKgM3, sigma, soundMps } = standardAtmosphere(x[X.X_HEIGHT]);
+  const mach = x[X.X_V] / soundMps;
+  h[T.H_DENSITY] = densityKgM3;
+  h[T.H_REF_JET] = pow(sigma, JET_SIGMA_EXPONENT) * (1 + JET_MACH_1 * mach + JET_MACH_2 * mach * mach);
 }
 
 function holdControls({ h, d, x, inputs, configurations, startTrim }: Core, t: number): void {
   const aircraft = configurations[0];
   const { controls } = aircraft;
-  const eas = x[X.X_V] * Math.sqrt(h[T.H_REF_DENSITY] / SEA_LEVEL_DENSITY);
+  const eas = x[X.X_V] * Math.sqrt(h[T.H_DENSITY] / SEA_LEVEL_DENSITY);
   h[T.H_EAS] = eas;
 
   const lag = 1 / controls.lagS;
@@ -237,8 +259,8 @@ function holdPitch({ h, d, x, inputs, setup }: Core): void {
   let path = d[D.D_PATH];
   let rate = 0;
   if (mode === PITCH_CODES['hold-speed'] || mode === PITCH_CODES.decelerate) {
-    const temperature = h[T.H_REF_TEMPERATURE];
-    const pressure = h[T.H_REF_DENSITY] * GAS_CONSTANT * temperature;
+    const temperature = temperatureK(x[X.X_HEIGHT]);
+    const pressure = h[T.H_DENSITY] * GAS_CONSTANT * temperature;
     const sound = Math.sqrt(HEAT_RATIO * GAS_CONSTANT * temperature);
     const excess = casInAir(x[X.X_V], pressure, sound) - d[D.D_SPEED_TARGET];
     const integral = d[D.D_SPEED_INTEGRAL];

@@ -50,7 +50,7 @@ export function createWantedSolver(core: Core): (out: WantedValues, technique: T
   return (out, technique) => {
     prepareTick(core);
     const V = x[X.X_V];
-    const density = h[T.H_REF_DENSITY];
+    const density = h[T.H_DENSITY];
     const q = 0.5 * density * V * V;
     let yaw = 0;
     let roll = 0;

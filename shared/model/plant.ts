@@ -1,4 +1,3 @@
-import type { RightHandSide } from '../numerics/rk4.ts';
 import { createPlantEvents } from './plant-events.ts';
 import * as D from './plant-memory.ts';
 import { createObserver } from './plant-observe.ts';
@@ -8,6 +7,7 @@ import { TICK_S } from './plant-types.ts';
 import type { Plant, PlantOptions, PlantSetup } from './plant-types.ts';
 import { createWantedSolver } from './plant-wanted.ts';
 import { stateName } from './state-layout.ts';
+import { H_CONFIG_HELD } from './tick-held.ts';
 
 export { createObservation } from './plant-observe.ts';
 export { createWanted } from './plant-wanted.ts';
@@ -29,10 +29,10 @@ export { createWanted } from './plant-wanted.ts';
  */
 export function createPlant(setup: PlantSetup, options: PlantOptions = {}): Plant {
   const core = createCore(setup);
-  const { x, d, rhs, stream } = core;
+  const { x, d, h, motion, stream } = core;
   const n = x.length;
   const next = new Float64Array(n);
-  const integrate = options.integrate ?? createTickStepper(n);
+  const { integrate } = options;
   const observe = createObserver(core);
   const wanted = createWantedSolver(core);
   let fault: string | null = null;
@@ -56,14 +56,15 @@ export function createPlant(setup: PlantSetup, options: PlantOptions = {}): Plan
       if (fault !== null) return false;
       readInputs(core);
       prepareTick(core);
-      integrate(next, rhs, x, TICK_S);
+      if (integrate) integrate(next, motion.rhs, x, TICK_S);
+      else motion.stepInto(next, x);
       let trouble = 0;
-      for (let i = 0; i < n; i++) trouble += 0 * next[i];
+      for (let i = 0; i < n; i++) trouble += 0 * next[i]; // 0 × a number is 0, of anything else NaN
       if (trouble !== 0) {
         fault = faultText(d[D.D_TICK] + 1, next);
         return false;
       }
-      x.set(next);
+      for (let i = 0; i < n; i++) x[i] = next[i];
       commitTick(core);
       return true;
     },
@@ -73,20 +74,28 @@ export function createPlant(setup: PlantSetup, options: PlantOptions = {}): Plan
     },
     derivativeInto(out, state = x) {
       prepareTick(core);
-      rhs(out, 0, state);
+      motion.rhs(out, 0, state);
     },
     ...createPlantEvents(core),
     save() {
       stream.saveInto(d, D.D_STREAM);
-      const data = new Float64Array(n + d.length);
+      const { stick, pedal, pitch, rudderTrim, levers, feather } = core.inputs;
+      const data = new Float64Array(n + d.length + 4 + 2 * core.engineCount);
       data.set(x);
       data.set(d, n);
+      data.set([stick, pedal, pitch, rudderTrim, ...levers, ...feather], n + d.length);
       return { tick: d[D.D_TICK], data };
     },
-    restore(snapshot) {
-      x.set(snapshot.data.subarray(0, n));
-      d.set(snapshot.data.subarray(n));
+    restore({ data }) {
+      const { inputs } = core;
+      const controls = n + d.length;
+      x.set(data.subarray(0, n));
+      d.set(data.subarray(n, controls));
+      [inputs.stick, inputs.pedal, inputs.pitch, inputs.rudderTrim] = data.subarray(controls, controls + 4);
+      inputs.levers.set(data.subarray(controls + 4, controls + 4 + core.engineCount));
+      inputs.feather.set(data.subarray(controls + 4 + core.engineCount));
       stream.restoreFrom(d, D.D_STREAM);
+      h[H_CONFIG_HELD] = -1; // the held configuration is computed afresh
       fault = null;
     },
     hashInto(hash) {
@@ -99,25 +108,4 @@ export function createPlant(setup: PlantSetup, options: PlantOptions = {}): Plan
 function faultText(tick: number, state: Float64Array): string {
   const index = state.findIndex((value) => !Number.isFinite(value));
   return `tick ${tick}: the ${stateName(index)} is not finite`;
-}
-
-/** Classical Runge–Kutta over one tick; time counts from its start. */
-function createTickStepper(n: number): NonNullable<PlantOptions['integrate']> {
-  const k1 = new Float64Array(n);
-  const k2 = new Float64Array(n);
-  const k3 = new Float64Array(n);
-  const k4 = new Float64Array(n);
-  const at = new Float64Array(n);
-  return (out: Float64Array, f: RightHandSide, x: Float64Array, h: number): void => {
-    const half = 0.5 * h;
-    f(k1, 0, x);
-    for (let i = 0; i < n; i++) at[i] = x[i] + half * k1[i];
-    f(k2, half, at);
-    for (let i = 0; i < n; i++) at[i] = x[i] + half * k2[i];
-    f(k3, half, at);
-    for (let i = 0; i < n; i++) at[i] = x[i] + h * k3[i];
-    f(k4, h, at);
-    const sixth = h / 6;
-    for (let i = 0; i < n; i++) out[i] = x[i] + sixth * (k1[i] + 2 * (k2[i] + k3[i]) + k4[i]);
-  };
 }

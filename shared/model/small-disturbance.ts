@@ -91,7 +91,11 @@ export function buildSmallDisturbance(aircraft: Aircraft, condition: LateralCond
     requireFiniteNumber(value, name);
   }
   if (!(tasMps > 0) || !(densityKgM3 > 0)) {
-    throw new ModelError('bad-argument', `speed ${tasMps} m/s and density ${densityKgM3} kg/m³ must be above 0`, 'speed');
+    throw new ModelError(
+      'bad-argument',
+      `speed ${tasMps} m/s and density ${densityKgM3} kg/m³ must be above 0`,
+      'speed',
+    );
   }
   const qbarPa = 0.5 * densityKgM3 * tasMps * tasMps;
   const CL = condition.CL ?? (aircraft.massKg * gravityMps2 * cos(thetaRad)) / (qbarPa * aircraft.wingAreaM2);

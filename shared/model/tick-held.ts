@@ -73,13 +73,15 @@ export const H_DAMPER_GAIN = 59;
 export const H_DAMPER_LIMIT = 60;
 export const H_RATIO = 61;
 export const H_EAS = 62;
-export const H_RECORD = 63; // 1: the evaluation fills `made`
-export const H_FIN_DROP = 64;
+export const H_FIN_DROP = 63;
+export const H_CONFIG_HELD = 64; // index of the settled configuration the held numbers are of, −1 none
 // small-disturbance: the constant derivatives of the trim, speed, cos and tan of the path
 export const H_COS_PATH = 65;
 export const H_TAN_PATH = 66;
 export const H_SIN_PATH = 67;
-export const H_LINEAR = 68;
+/** Density at the start of the tick (of the start of the run in the small-disturbance motion). */
+export const H_DENSITY = 68;
+export const H_LINEAR = 69;
 export const HELD_LENGTH = H_LINEAR + DERIVATIVE_COUNT;
 
 // per engine

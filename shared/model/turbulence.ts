@@ -175,20 +175,7 @@ export function advanceTurbulence(
   const x1 = s[at];
   const x2 = s[at + 1];
   const x3 = s[at + 2];
-  drawInto(
-    s,
-    at,
-    noise,
-    q11,
-    q12,
-    q13,
-    q22,
-    q23,
-    q33,
-    ea * x1,
-    f21 * x1 + ea * x2,
-    f31 * x1 + f32 * x2 + eb * x3,
-  );
+  drawInto(s, at, noise, q11, q12, q13, q22, q23, q33, ea * x1, f21 * x1 + ea * x2, f31 * x1 + f32 * x2 + eb * x3);
   const ep = exp((-PI * tasMps * stepS) / (4 * spanM));
   s[at + 3] = ep * s[at + 3] + Math.sqrt(1 - ep * ep) * noise.normal();
 }

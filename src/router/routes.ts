@@ -34,6 +34,13 @@ export const routes: RouteRecordRaw[] = [
     },
   },
   {
+    path: '/attempts/:id',
+    name: 'attempt',
+    component: () => import('../views/debrief/DebriefView.vue'),
+    props: true,
+    meta: { title: 'Debrief', area: 'my-flights' },
+  },
+  {
     path: '/scenarios',
     name: 'scenarios',
     component: () => import('../views/scenarios/ScenarioListView.vue'),

@@ -2,7 +2,7 @@
  * One flight: the run driven by the fixed clock, pilot input quantised every tick, everything recorded, chunks handed on.
  * `frame(nowMs)` is called once an animation frame by whoever draws; nothing here runs by itself.
  */
-import { TICK_S } from '#shared/model/plant-types.ts';
+import { TICK_RATE_HZ, TICK_S } from '#shared/model/plant-types.ts';
 import type { Observation } from '#shared/model/plant-types.ts';
 import type { Recorder, RecordedChunk } from '#shared/scenario/recording.ts';
 import type { ControlSample, EndReason, Run } from '#shared/scenario/run-types.ts';
@@ -71,6 +71,8 @@ export function createFlightSession(setup: FlightSetup): FlightSession {
   let phase: FlightPhase = 'ready';
   let freezeReason: FreezeReason | null = null;
   let chunkCount = 0;
+  /** Ticks since the last chunk: the state hash is worth its cost only once a second. */
+  let pending = 0;
 
   const setPhase = (next: FlightPhase, reason: FreezeReason | null): void => {
     phase = next;
@@ -109,10 +111,12 @@ export function createFlightSession(setup: FlightSetup): FlightSession {
     const tick = run.tick;
     copyPoseInto(before, run.now);
     run.step(sample);
-    // A tick that could not be integrated (not finite) is not recorded: the recording ends at the last good state.
-    if (run.tick > tick) {
-      recorder.add(sample, tick);
+    // Every input is recorded, also the one after which the model left its numbers: the server must find the same.
+    recorder.add(sample, tick);
+    pending += 1;
+    if (pending >= TICK_RATE_HZ) {
       handOn(recorder.takeChunk(run.stateHash()));
+      pending = 0;
     }
     events.tick?.(run);
     if (run.ended) {

@@ -35,7 +35,10 @@ export const command: Command = {
     const degrees = (rad: number) => `${fixed(rad / DEG, 1)}°`;
     const rows = [
       ['Crosswind within 15° of sideslip', `${fixed(knots(withinData.crosswindMps), 1)} kt`],
-      ['Crosswind by control power', `${fixed(knots(controlPower.crosswindMps), 1)} kt${limit.outsideData ? ' (outside the data)' : ''}`],
+      [
+        'Crosswind by control power',
+        `${fixed(knots(controlPower.crosswindMps), 1)} kt${limit.outsideData ? ' (outside the data)' : ''}`,
+      ],
       ['Limited by', limit.limitedBy],
       ['Sideslip', degrees(controlPower.betaRad)],
       ['Bank (into the wind)', degrees(controlPower.phiRad)],

@@ -60,7 +60,14 @@ function jsonOf({ system, found, criteria }: LateralAnalysis): Record<string, un
       halve_s: mode.halveS,
       double_s: mode.doubleS,
     })),
-    criteria: criteria.map(({ id, level, value, limit, source, remark }) => ({ id, level, value, limit, source, remark })),
+    criteria: criteria.map(({ id, level, value, limit, source, remark }) => ({
+      id,
+      level,
+      value,
+      limit,
+      source,
+      remark,
+    })),
   };
 }
 

@@ -59,12 +59,14 @@ function failedEngines(
   file: string,
 ): number[] {
   const list = args.values.get('failed');
-  if (aircraft.engines.length === 0) throw new UsageError(`${file}: /engines: the airframe has no engine that could fail`);
+  if (aircraft.engines.length === 0)
+    throw new UsageError(`${file}: /engines: the airframe has no engine that could fail`);
   if (list === undefined || list === 'critical') return [criticalEngine(aircraft, request).index];
   const known = aircraft.engines.map((engine) => engine.name);
   const indices = list.split(',').map((part) => {
     const index = known.indexOf(part.trim());
-    if (index < 0) throw new UsageError(`--failed: "${part.trim()}" is no engine of ${file} (known: ${known.join(', ')})`);
+    if (index < 0)
+      throw new UsageError(`--failed: "${part.trim()}" is no engine of ${file} (known: ${known.join(', ')})`);
     return index;
   });
   if (new Set(indices).size < indices.length) throw new UsageError(`--failed: an engine is named twice in "${list}"`);
@@ -134,7 +136,10 @@ function textOf(
   ];
   const lines = [...head, ...table(rows)];
   if (result.belowStall) {
-    lines.push('', 'The stall comes first: practising this control limit would be a spin hazard. Take the stall as the limit.');
+    lines.push(
+      '',
+      'The stall comes first: practising this control limit would be a spin hazard. Take the stall as the limit.',
+    );
   }
   return lines;
 }

@@ -26,7 +26,8 @@ export function values(defaults: GroupDefaults, rows: readonly ValueRow[]): Publ
     quantity,
     unit,
     published,
-    tolerance: typeof tolerance === 'number' ? { absolute: tolerance } : { relative: Number.parseFloat(tolerance) / 100 },
+    tolerance:
+      typeof tolerance === 'number' ? { absolute: tolerance } : { relative: Number.parseFloat(tolerance) / 100 },
     compute,
     ...defaults,
     ...overrides,

@@ -8,19 +8,7 @@ export interface DimensionalSet {
   primed: Readonly<Record<PrimedName, number>>;
 }
 
-export type DimensionalName =
-  | 'Yb'
-  | 'Ydr'
-  | 'Lb'
-  | 'Lp'
-  | 'Lr'
-  | 'Lda'
-  | 'Ldr'
-  | 'Nb'
-  | 'Np'
-  | 'Nr'
-  | 'Nda'
-  | 'Ndr';
+export type DimensionalName = 'Yb' | 'Ydr' | 'Lb' | 'Lp' | 'Lr' | 'Lda' | 'Ldr' | 'Nb' | 'Np' | 'Nr' | 'Nda' | 'Ndr';
 export type PrimedName = Exclude<DimensionalName, 'Yb' | 'Ydr'>;
 
 /** Schmidt, Introduction to Aircraft Flight Dynamics, AIAA 1998, appendix B.4 (seen). */

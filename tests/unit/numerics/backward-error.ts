@@ -22,7 +22,7 @@ export function backwardError(a: ArrayLike<number>, n: number, re: number, im: n
   }
   const original = m.map((row) => row.slice());
   const order = eliminate(m);
-  let x = Float64Array.from({ length: size }, (_, i) => 1 + 0.3 * Math.sin(3 * i + 1));
+  let x: Float64Array = Float64Array.from({ length: size }, (_, i) => 1 + 0.3 * Math.sin(3 * i + 1));
   let best = Infinity;
   let frobenius = 0;
   for (let i = 0; i < n * n; i++) frobenius += (a[i] / norm) ** 2;

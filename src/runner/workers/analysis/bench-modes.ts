@@ -102,9 +102,10 @@ function modesOf(ready: PreparedSubject, condition: BenchCondition): ModesOfSubj
     rateRadS: aircraft.controls.aileronRateRadS,
     maxRad: aircraft.controls.aileronMaxRad,
   };
+  const subject = { a, n: n as 4 | 5, column: system.B.aileron, rudder: system.B.rudder, aileron: actuator }; // 5 with the damper's washout
   const extra = [
-    attempt(() => timeToBankCriterion(system, actuator, ready.klass, ready.category, 'low')),
-    attempt(() => rollOscillationCriterion(system, ready.category)),
+    attempt(() => timeToBankCriterion(subject, ready.klass, ready.category, 'low')),
+    attempt(() => rollOscillationCriterion(subject, ready.category)),
     attempt(() => sideslipCriterion(aircraft, condition.tasMps, condition.heightM)),
   ].filter((c) => c !== null);
   return {
