@@ -12,7 +12,7 @@ export const MINIMUM_FREE_BYTES = 200_000_000;
  */
 export function prepareDataFolder(folder, minimumFreeBytes = MINIMUM_FREE_BYTES) {
   try {
-    for (const part of ['run', 'logs']) fs.mkdirSync(path.join(folder, part), { recursive: true, mode: 0o700 });
+    for (const part of ['run', 'logs']) makeFolder(path.join(folder, part));
     const probe = path.join(folder, 'run', `probe-${process.pid}`);
     fs.writeFileSync(probe, Buffer.alloc(4096));
     fs.rmSync(probe);
@@ -25,6 +25,21 @@ export function prepareDataFolder(folder, minimumFreeBytes = MINIMUM_FREE_BYTES)
       `The data folder ${folder} is full: ${megabytes(bavail * bsize)} free, ${megabytes(minimumFreeBytes)} needed`,
       'free some space there, or name another folder with SIDEWASH_DATA',
     );
+  }
+}
+
+/**
+ * One level after the other: a recursive mkdir hides the reason, such as a read-only disk, behind another code.
+ * @param {string} folder
+ */
+function makeFolder(folder) {
+  if (fs.existsSync(folder)) return;
+  makeFolder(path.dirname(folder));
+  try {
+    fs.mkdirSync(folder, { mode: 0o700 });
+  } catch (error) {
+    // Another start may have made it just now.
+    if (codeOf(error) !== 'EEXIST') throw error;
   }
 }
 

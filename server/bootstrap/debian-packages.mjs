@@ -46,7 +46,13 @@ export const CHROMIUM = {
  * @returns {Promise<string>}
  */
 export async function ensureProgram(need, surroundings) {
-  const full = { find: findProgram, run: runProgram, isRoot: process.geteuid?.() === 0, say: () => {}, ...surroundings };
+  const full = {
+    find: findProgram,
+    run: runProgram,
+    isRoot: process.geteuid?.() === 0,
+    say: () => {},
+    ...surroundings,
+  };
   const found = full.find(need.programs);
   if (found) return found;
   await installDebianPackages(need, full);

@@ -88,7 +88,9 @@ export function writeSecretFiles(places, { user, password, database }, port) {
   writeSecret(places.grants, `${statements.join('\n')}\n`);
   writeSecret(
     places.client,
-    ['[client]', 'protocol=tcp', 'host=127.0.0.1', `port=${port}`, `user=${user}`, `password=${password}`, ''].join('\n'),
+    ['[client]', 'protocol=tcp', 'host=127.0.0.1', `port=${port}`, `user=${user}`, `password=${password}`, ''].join(
+      '\n',
+    ),
   );
 }
 
@@ -118,17 +120,22 @@ export async function createDatabaseFiles(places, say) {
     );
   }
   say('Creating the database files (once) …');
-  const draft = `${places.data}.new`;
-  fs.rmSync(draft, { recursive: true, force: true });
-  fs.mkdirSync(draft, { mode: 0o700 });
-  const outcome = await runProgram(install, [
+  const drafts = `${places.data}.new-`;
+  for (const name of fs.readdirSync(path.dirname(drafts))) {
+    const left = path.join(path.dirname(drafts), name);
+    if (left.startsWith(drafts)) fs.rmSync(left, { recursive: true, force: true });
+  }
+  // A name of its own: what a killed start left behind may still be writing into the other.
+  const draft = fs.mkdtempSync(drafts);
+  const args = [
     '--no-defaults',
     `--datadir=${draft}`,
     '--auth-root-authentication-method=socket',
     `--auth-root-socket-user=${userName()}`,
     '--skip-test-db',
     ...(me === 0 ? ['--user=root'] : []),
-  ]);
+  ];
+  const outcome = await runProgram(install, args, { ownGroup: true });
   if (outcome.code !== 0) {
     const full = /No space left|Errcode: 28|errno: 28/i.test(outcome.output);
     fs.rmSync(draft, { recursive: true, force: true });

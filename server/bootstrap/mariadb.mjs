@@ -6,7 +6,7 @@ import process from 'node:process';
 import { ensureProgram, MARIADB_SERVER } from './debian-packages.mjs';
 import { createDatabaseFiles, mariadbPlaces, readAccess, writeAccess, writeSecretFiles } from './mariadb-files.mjs';
 import { nextFreePort } from './ports.mjs';
-import { identityOf, isRunning, pause, stopProcess } from './processes.mjs';
+import { identityOf, isRunning, pause, settlesWithin, stopProcess } from './processes.mjs';
 import { findProgram, lastLines, runProgram } from './programs.mjs';
 import { Refusal } from './refusal.mjs';
 
@@ -129,8 +129,7 @@ function running(child, port, access) {
   });
   const stop = async () => {
     child.kill('SIGTERM');
-    const stopped = await Promise.race([exited.then(() => true), pause(30_000).then(() => false)]);
-    if (!stopped) child.kill('SIGKILL');
+    if (!(await settlesWithin(exited, 30_000))) child.kill('SIGKILL');
     await exited;
   };
   return { url, port, identity, exited, stop };

@@ -2,7 +2,7 @@ import fs from 'node:fs';
 import os from 'node:os';
 import path from 'node:path';
 import process from 'node:process';
-import { findProgram, lastLines, runProgram } from './programs.mjs';
+import { findProgram, runProgram } from './programs.mjs';
 import { Refusal } from './refusal.mjs';
 
 /**
@@ -21,10 +21,21 @@ export async function ensureNpmPackages(projectFolder, say) {
     throw new Refusal(
       `Installing the npm packages failed (npm ci ended with ${outcome.code})`,
       'check the network and that this user may write in the project folder, then start again',
-      lastLines(outcome.output, 8),
+      errorLines(outcome.output),
     );
   }
   return true;
+}
+
+/**
+ * What npm says is wrong, without its notices and the usage that it prints after it.
+ * @param {string} output
+ */
+function errorLines(output) {
+  return output
+    .split('\n')
+    .filter((line) => /^npm error \S/.test(line))
+    .slice(0, 8);
 }
 
 /**

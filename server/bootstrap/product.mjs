@@ -2,7 +2,7 @@ import { spawn } from 'node:child_process';
 import path from 'node:path';
 import process from 'node:process';
 import readline from 'node:readline';
-import { identityOf, pause } from './processes.mjs';
+import { identityOf, settlesWithin } from './processes.mjs';
 import { Refusal } from './refusal.mjs';
 
 const READY_MARK = 'SIDEWASH_READY ';
@@ -47,8 +47,7 @@ export async function startProduct({ projectFolder, dev, env, onSpawn, print }) 
   });
   const stop = async () => {
     child.kill('SIGTERM');
-    const stopped = await Promise.race([exited.then(() => true), pause(15_000).then(() => false)]);
-    if (!stopped) child.kill('SIGKILL');
+    if (!(await settlesWithin(exited, 15_000))) child.kill('SIGKILL');
     await exited;
   };
   if (child.pid !== undefined) onSpawn(identity, stop);
@@ -69,7 +68,8 @@ export async function startProduct({ projectFolder, dev, env, onSpawn, print }) 
     readline.createInterface({ input: child.stderr }).on('line', take);
   });
 
-  const outcome = await Promise.race([ready, exited, pause(READY_WITHIN_MS).then(() => 'late')]);
+  const first = Promise.race([ready, exited]);
+  const outcome = (await settlesWithin(first, READY_WITHIN_MS)) ? await first : 'late';
   if (typeof outcome === 'object') {
     for (const line of before) print(line);
     return { address: addressOf(outcome, env), ready: outcome, identity, exited, stop };

@@ -1,6 +1,8 @@
 import { spawn } from 'node:child_process';
 import fs from 'node:fs';
 import path from 'node:path';
+import process from 'node:process';
+import { settlesWithin } from './processes.mjs';
 
 /** Folders where Debian keeps servers and which a user's PATH may lack. */
 const SYSTEM_FOLDERS = ['/usr/sbin', '/usr/bin', '/usr/local/sbin', '/usr/local/bin', '/sbin', '/bin'];
@@ -26,12 +28,23 @@ export function findProgram(names) {
   return undefined;
 }
 
-/** Children of runProgram at work. @type {Set<import('node:child_process').ChildProcess>} */
-const running = new Set();
+/**
+ * Children of runProgram at work.
+ * @type {Map<import('node:child_process').ChildProcess, { ownGroup: boolean, ended: Promise<unknown> }>}
+ */
+const running = new Map();
 
-/** Ends every program that runProgram has at work; their outcomes then report failure. */
-export function endRunningPrograms() {
-  for (const child of running) child.kill('SIGTERM');
+/** Ends every program that runProgram has at work, and waits for it; their outcomes then report failure. */
+export async function endRunningPrograms() {
+  const all = [...running];
+  for (const [child, { ownGroup }] of all) {
+    try {
+      if (child.pid !== undefined) process.kill(ownGroup ? -child.pid : child.pid, 'SIGTERM');
+    } catch {
+      // it ended just now
+    }
+  }
+  await Promise.all(all.map(([, { ended }]) => settlesWithin(ended, 10_000)));
 }
 
 /**
@@ -41,38 +54,32 @@ export function endRunningPrograms() {
  */
 
 /**
+ * @typedef {object} RunOptions
+ * @property {string} [cwd]
+ * @property {NodeJS.ProcessEnv} [env]
+ * @property {boolean} [ownGroup] for a program that starts others: ending it then ends them too
+ */
+
+/**
  * Runs a program to its end and keeps what it printed; never rejects.
  * @param {string} program
  * @param {string[]} args
- * @param {{ cwd?: string, env?: NodeJS.ProcessEnv, onOutput?: (text: string) => void, timeoutMs?: number }} [options]
+ * @param {RunOptions} [options]
  * @returns {Promise<Outcome>}
  */
-export function runProgram(program, args, options = {}) {
-  return new Promise((resolve) => {
-    const child = spawn(program, args, {
-      cwd: options.cwd,
-      env: options.env ?? process.env,
-      stdio: ['ignore', 'pipe', 'pipe'],
-      timeout: options.timeoutMs,
-    });
-    running.add(child);
-    let output = '';
-    const take = (/** @type {Buffer} */ data) => {
-      output += data.toString();
-      options.onOutput?.(data.toString());
-    };
-    child.stdout.on('data', take);
-    child.stderr.on('data', take);
-    const finish = (/** @type {number} */ code) => {
-      running.delete(child);
-      resolve({ code, output });
-    };
-    child.on('error', (error) => {
-      output += `${error.message}\n`;
-      finish(127);
-    });
-    child.on('close', (code) => finish(code ?? 1));
+export function runProgram(program, args, { cwd, env = process.env, ownGroup = false } = {}) {
+  const child = spawn(program, args, { cwd, env, detached: ownGroup, stdio: ['ignore', 'pipe', 'pipe'] });
+  let output = '';
+  child.stdout.on('data', (data) => (output += data));
+  child.stderr.on('data', (data) => (output += data));
+  /** @type {Promise<Outcome>} */
+  const ended = new Promise((resolve) => {
+    child.on('error', (error) => resolve({ code: 127, output: `${output}${error.message}\n` }));
+    child.on('close', (code) => resolve({ code: code ?? 1, output }));
   });
+  running.set(child, { ownGroup, ended });
+  void ended.then(() => running.delete(child));
+  return ended;
 }
 
 /**

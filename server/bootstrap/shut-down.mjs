@@ -35,6 +35,8 @@ export class ShutDown {
    */
   add(name, action) {
     this.#started.push({ name, action });
+    // Started while everything is being stopped: it must not outlive the rest.
+    if (this.#running) void action();
   }
 
   /**
@@ -67,7 +69,7 @@ export class ShutDown {
 
   /** @param {number} exitCode */
   async #stopAll(exitCode) {
-    endRunningPrograms();
+    await endRunningPrograms();
     for (let part = this.#started.pop(); part; part = this.#started.pop()) {
       try {
         await part.action();

@@ -3,7 +3,7 @@ import type { Command } from './command.ts';
 import { CAUTION } from './output.ts';
 import { UsageError } from './usage-error.ts';
 
-/** Exit codes: 0 done, 1 a check or criterion is not met or the program failed, 2 wrong input. */
+/** Exit codes: 0 done, 1 a published check is not met or the program failed, 2 wrong input. */
 const EXIT_FAILED = 1;
 const EXIT_USAGE = 2;
 

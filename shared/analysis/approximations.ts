@@ -19,6 +19,8 @@ export interface ClassicalApproximations {
   spiralFromPolynomial: Approximation;
 }
 
+const NO_LINEAR_TERM = 'the linear coefficient of the characteristic polynomial is zero';
+
 /**
  * The classical approximations to the lateral modes, to stand beside the exact values.
  *
@@ -44,6 +46,7 @@ export function classicalApproximations(a: ArrayLike<number>): ClassicalApproxim
   const d = yaw * (lBeta * nP - lP * nBeta) - gOverV * lBeta;
   const e = gOverV * (lBeta * nR - lR * nBeta);
   const polynomial = characteristicPolynomial(a, 4);
+  const spiral = -polynomial[4] / polynomial[3];
   return {
     rollOneDegree: { kind: 'real', re: lP },
     rollSpiral: quadraticRoots(c, d, e, 'without directional stability sideslip does not follow the bank'),
@@ -53,23 +56,26 @@ export function classicalApproximations(a: ArrayLike<number>): ClassicalApproxim
       yBeta * nR + yaw * nBeta,
       'the sideslip and yaw equations have no oscillation',
     ),
-    spiralFromPolynomial:
-      polynomial[3] === 0
-        ? { kind: 'none', reason: 'the linear coefficient of the characteristic polynomial is zero' }
-        : { kind: 'real', re: -polynomial[4] / polynomial[3] },
+    spiralFromPolynomial: Number.isFinite(spiral)
+      ? { kind: 'real', re: spiral }
+      : { kind: 'none', reason: NO_LINEAR_TERM },
   };
 }
 
+/** Roots of a s² + b s + c; one real root where a is negligible. */
 function quadraticRoots(a: number, b: number, c: number, reason: string): Approximation {
-  if (a === 0) return b === 0 ? { kind: 'none', reason } : { kind: 'real', re: -c / b };
-  const half = b / (2 * a);
-  const product = c / a;
-  const square = half * half - product;
-  if (square < 0) {
-    const wn = Math.sqrt(product);
-    return { kind: 'oscillation', wn, zeta: half / wn, re: -half, im: Math.sqrt(-square) };
+  const discriminant = b * b - 4 * a * c;
+  if (discriminant < 0) {
+    const re = -b / (2 * a);
+    const wn = Math.sqrt(c / a);
+    const im = Math.sqrt(-discriminant) / (2 * Math.abs(a));
+    if (!Number.isFinite(wn) || !(wn > 0) || !Number.isFinite(im)) return { kind: 'none', reason };
+    return { kind: 'oscillation', wn, zeta: -re / wn, re, im };
   }
-  const far = -half - (half >= 0 ? 1 : -1) * Math.sqrt(square);
-  const near = far === 0 ? 0 : product / far;
+  const half = -0.5 * (b + (b < 0 ? -1 : 1) * Math.sqrt(discriminant));
+  const far = half / a;
+  const near = half === 0 ? 0 : c / half;
+  if (!Number.isFinite(near)) return { kind: 'none', reason };
+  if (!Number.isFinite(far)) return { kind: 'real', re: near };
   return { kind: 'real-pair', roots: [Math.min(far, near), Math.max(far, near)] };
 }

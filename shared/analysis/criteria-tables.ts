@@ -47,13 +47,26 @@ export const ROLL_COUPLING_START = 20;
 /** The most Dutch roll damping that is asked of Class III; MIL-F-8785C table VI, note (seen). */
 export const CLASS_III_LARGEST_ZETA = 0.7;
 
-/** Table VII: largest roll-mode time constant; s; MIL-F-8785C (seen). */
+/**
+ * Largest roll-mode time constant of Levels 1, 2 and 3.
+ *
+ * @param klass     Class of the aeroplane.
+ * @param category  Flight phase category.
+ * @returns         s.
+ * @source          MIL-F-8785C 3.3.1.2, table VII (seen).
+ */
 export function rollModeMaxima(klass: AircraftClass, category: FlightCategory): LevelLimits {
   const quick = category !== 'B' && (klass === 'I' || klass === 'IV' || (category === 'C' && klass === 'II-C'));
   return quick ? [1, 1.4, 10] : [1.4, 3, 10];
 }
 
-/** Table VIII: least time to double of the spiral; s; MIL-F-8785C (seen). */
+/**
+ * Least time to double of the spiral of Levels 1, 2 and 3.
+ *
+ * @param category  Flight phase category.
+ * @returns         s.
+ * @source          MIL-F-8785C 3.3.1.3, table VIII (seen).
+ */
 export function spiralMinima(category: FlightCategory): LevelLimits {
   return category === 'B' ? [20, 8, 4] : [12, 8, 4];
 }
@@ -61,7 +74,13 @@ export function spiralMinima(category: FlightCategory): LevelLimits {
 /** 3.3.1.4: least ζω_n of a coupled roll–spiral in categories B and C; rad/s; MIL-F-8785C (seen). */
 export const COUPLED_ROLL_SPIRAL_MINIMA: LevelLimits = [0.5, 0.3, 0.15];
 
-/** 3.3.2.2: least ratio of the first roll-rate minimum to the first peak after a step, Levels 1 and 2. */
+/**
+ * Least ratio of the first roll-rate minimum to the first peak after a step, of Levels 1 and 2.
+ *
+ * @param category  Flight phase category.
+ * @returns         Ratios; 0 asks nothing.
+ * @source          MIL-F-8785C 3.3.2.2 (seen).
+ */
 export function rollOscillationMinima(category: FlightCategory): readonly [number, number] {
   return category === 'B' ? [0.25, 0] : [0.6, 0.25];
 }

@@ -261,7 +261,13 @@ export function estimateDihedralEffect(
   return { dihedral, sweep, total: dihedral + sweep };
 }
 
-/** Wing estimates of the roll–yaw cross derivatives: Cl_r ≈ CL/4, Cn_p ≈ −CL/8, good to 20–40 % (several texts, seen). */
+/**
+ * Wing estimates of the roll–yaw cross derivatives, good to 20–40 %.
+ *
+ * @param CL  Lift coefficient.
+ * @returns   Cl_r ≈ CL/4 and Cn_p ≈ −CL/8; per unit of the usual rates rb/2V and pb/2V.
+ * @source    several texts (seen); common practice.
+ */
 export function estimateCrossDerivatives(CL: number): { Cl_r: number; Cn_p: number } {
   return { Cl_r: CL / 4, Cn_p: -CL / 8 };
 }

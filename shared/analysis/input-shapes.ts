@@ -12,7 +12,14 @@ export interface InputSignal {
   durationS: number;
 }
 
-/** Value of the signal at time t. */
+/**
+ * Value of the signal at time t.
+ *
+ * @param signal  Shape, peak, start and duration.
+ * @param t       s.
+ * @returns       Unit of the amplitude; 0 before the start.
+ * @source        definition of the shapes.
+ */
 export function signalAt(signal: InputSignal, t: number): number {
   const s = t - signal.startS;
   const { amplitude, durationS } = signal;
@@ -31,13 +38,25 @@ export function signalAt(signal: InputSignal, t: number): number {
   }
 }
 
-/** Times at which the signal or its slope jumps. */
+/**
+ * Times at which the signal or its slope may jump.
+ *
+ * @param signal  Shape, peak, start and duration.
+ * @returns       s; rising.
+ * @source        definition of the shapes.
+ */
 export function signalEdges(signal: InputSignal): number[] {
   const { startS, durationS } = signal;
   return [startS, startS + durationS, startS + 2 * durationS];
 }
 
-/** Refuses a signal that has no meaning. */
+/**
+ * Passes a signal with finite values and a positive duration, refuses any other.
+ *
+ * @param signal  What the caller was given.
+ * @throws {NumericsError} bad-argument when a value is not finite or the duration not positive.
+ * @source        derived here.
+ */
 export function requireSignal(signal: InputSignal): void {
   const { amplitude, startS, durationS } = signal;
   if (!Number.isFinite(amplitude) || !Number.isFinite(startS) || !(durationS > 0) || !Number.isFinite(durationS)) {

@@ -54,7 +54,13 @@ const ORDER: readonly CriterionId[] = [
   '23.181',
 ];
 
-/** The class as the criteria know it: "II" alone means II-L. */
+/**
+ * The class as the criteria know it: "II" alone means II-L.
+ *
+ * @param klass  As in the airframe file.
+ * @returns      Class of MIL-F-8785C.
+ * @source       MIL-F-8785C 1.3; choice of II-L ours.
+ */
 export function criteriaClass(klass: Aircraft['class']): AircraftClass {
   return klass === 'II' ? 'II-L' : klass;
 }

@@ -101,7 +101,7 @@ export function minimumControlSpeed(aircraft: Aircraft, request: ControlSpeedReq
   let solved = false;
   let speed = high;
   for (let k = 0; k <= SCAN_STEPS; k++, speed *= down) {
-    const use = worstUse(solver, speed, rule);
+    const use = worstUse(solver, speed, rule, true);
     if (use < Infinity) solved = true;
     if (use <= 1) held = speed;
     else if (held === held) {
@@ -151,64 +151,84 @@ function solverFor(aircraft: Aircraft, request: ControlSpeedRequest): StaticSolv
   return createStaticSolver(aircraft, { heightM, engines: { lever, failed, feathered }, ignore });
 }
 
-/** +1 when the live side is on the right: the moments yaw (else roll) the aeroplane to the left. */
+/**
+ * +1 when the live side is on the right: the moments yaw (else roll) the aeroplane to the left.
+ *
+ * @param solver  With its engines loaded.
+ * @returns       +1 right, −1 left.
+ * @source        derived here: sign of the moment.
+ */
 export function liveSide(solver: Pick<StaticSolver, 'yawMomentNm' | 'rollMomentNm'>): 1 | -1 {
   const moment = solver.yawMomentNm === 0 ? solver.rollMomentNm : solver.yawMomentNm;
   return moment > 0 ? -1 : 1;
 }
 
-/** Use of the worst limit at a speed with the bank that the rule allows; leaves the solver at that solution. */
-function worstUse(solver: StaticSolver, tasMps: number, rule: BankRule): number {
+/**
+ * Use of the worst limit at a speed with the bank that the rule allows; leaves the solver at that solution. With
+ * `anyHeld` the first bank that is held will do.
+ */
+function worstUse(solver: StaticSolver, tasMps: number, rule: BankRule, anyHeld = false): number {
   solver.loadEngines(tasMps);
   const side = liveSide(solver);
   if ('exactlyRad' in rule) return useAt(solver, tasMps, side * rule.exactlyRad);
-  return leastUse(solver, tasMps, side, rule.upToRad);
+  return leastUse(solver, tasMps, side, rule.upToRad, anyHeld);
 }
 
 function useAt(solver: StaticSolver, tasMps: number, phiRad: number): number {
   return solver.solveAtBank(tasMps, phiRad) ? solver.largestUse : Infinity;
 }
 
-/** Bank steps with which the slope at an end is felt, as a fraction of the range. */
-const FEELER = 1e-4;
-const GOLDEN = 0.6180339887498949;
-const GOLDEN_STEPS = 24;
+/** Bank step with which a slope is felt, as a fraction of the range. */
+const FEELER = 1e-5;
+const MAX_CUTS = 20;
+/** The bank is settled when line and value differ by no more than this. */
+const USE_SETTLED = 1e-8;
 
 /**
- * Least use over banks from 0 to `upTo`: the use of each limit is close to |linear| in sin φ, so the worst is convex; an
- * end that is lower than its neighbour is the minimum, else golden section.
+ * Least use over banks from 0 to `upTo`, with the solver left there.
+ *
+ * The use of each limit is close to |linear| in sin φ, so the worst of them is convex and nearly made of straight pieces:
+ * the lines at the two ends of a bracket meet near the minimum, and the point there replaces one of the ends.
  */
-function leastUse(solver: StaticSolver, tasMps: number, side: number, upToRad: number): number {
+function leastUse(solver: StaticSolver, tasMps: number, side: number, upToRad: number, anyHeld: boolean): number {
   const at = (share: number) => useAt(solver, tasMps, side * share * upToRad);
   if (upToRad === 0) return at(0);
-  const inside = at(1 - FEELER);
-  const end = at(1);
-  if (end <= inside) return end;
-  const near = at(FEELER);
-  const start = at(0);
-  if (start <= near) return start;
-  let low = 0;
-  let high = 1;
-  let a = high - GOLDEN * (high - low);
-  let b = low + GOLDEN * (high - low);
-  let useA = at(a);
-  let useB = at(b);
-  for (let i = 0; i < GOLDEN_STEPS; i++) {
-    if (useA <= useB) {
-      high = b;
-      b = a;
-      useB = useA;
-      a = high - GOLDEN * (high - low);
-      useA = at(a);
+  let right = 1;
+  let rightUse = at(1);
+  if (anyHeld && rightUse <= 1) return rightUse;
+  let rightSlope = (rightUse - at(1 - FEELER)) / FEELER;
+  if (!(rightSlope > 0)) return at(1);
+  let left = 0;
+  let leftUse = at(0);
+  if (anyHeld && leftUse <= 1) return leftUse;
+  let leftSlope = (at(FEELER) - leftUse) / FEELER;
+  if (!(leftSlope < 0)) return at(0);
+  let best = rightUse < leftUse ? 1 : 0;
+  let bestUse = Math.min(leftUse, rightUse);
+  for (let cut = 0; cut < MAX_CUTS; cut++) {
+    const meet = (leftUse - rightUse + rightSlope * right - leftSlope * left) / (rightSlope - leftSlope);
+    const middle = 0.5 * (left + right);
+    const share = meet > left && meet < right ? meet : middle;
+    const line = leftUse + leftSlope * (share - left);
+    const use = at(share);
+    if (anyHeld && use <= 1) return use;
+    if (use < bestUse) {
+      best = share;
+      bestUse = use;
+    }
+    if (Math.abs(use - line) <= USE_SETTLED || right - left < FEELER) break;
+    const slope = (at(share + FEELER) - use) / FEELER;
+    if (slope > 0) {
+      right = share;
+      rightUse = use;
+      rightSlope = slope;
     } else {
-      low = a;
-      a = b;
-      useA = useB;
-      b = low + GOLDEN * (high - low);
-      useB = at(b);
+      left = share;
+      leftUse = use;
+      leftSlope = slope;
     }
   }
-  return at(useA <= useB ? a : b);
+  return at(best);
 }
 
 /** The lowest speed that is held between one that is not and one that is: false position (Illinois) with bisection. */

@@ -47,6 +47,13 @@ export type DerivativeName = keyof typeof DERIVATIVE_INDEX;
 /** What a sweep can vary. Derivatives replace the row's value at every CL; the others are SI. */
 export type SweepParameter = DerivativeName | 'mass' | 'Ixx' | 'Izz' | 'Ixz' | 'speed' | 'height';
 
+/**
+ * Whether the sweep parameter is a derivative of the airframe row.
+ *
+ * @param name  A sweep parameter.
+ * @returns     false for mass, inertias, speed and height.
+ * @source      DERIVATIVE_INDEX.
+ */
 export function isDerivative(name: SweepParameter): name is DerivativeName {
   return Object.hasOwn(DERIVATIVE_INDEX, name);
 }

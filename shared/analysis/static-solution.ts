@@ -118,7 +118,11 @@ export function createStaticSolver(aircraft: Aircraft, options: StaticOptions): 
     heightM: options.heightM,
   };
 
+  let loadedMps = NaN;
+
   function loadEngines(tasMps: number): void {
+    if (tasMps === loadedMps) return;
+    loadedMps = tasMps;
     engineForcesInto(forces, engines, levers, states, tasMps, air.densityKgM3, air.soundMps);
     solver.forwardN = forces.forwardN;
     solver.yawMomentNm = forces.yawNm;

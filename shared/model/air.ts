@@ -47,7 +47,7 @@ export function profileFactor(profile: WindProfile, heightM: number): number {
  * @sign            lateral gust: air moving to the right positive; rates: air turning or rolling to the right positive
  * @source          Flight model, air; 14 CFR 25.341(a) for the shape one minus cosine.
  */
-export function createAirFlow(d: Float64Array, profile: WindProfile, groundM: number): AirFlow {
+export function createAirFlow(d: number[], profile: WindProfile, groundM: number): AirFlow {
   return {
     windInto(out, timeS, heightM, climbMps) {
       const t0 = d[D.D_WIND_T0];
@@ -114,7 +114,7 @@ const DEFAULT_GRADIENT_M = 60;
  * @sign              air moving, rolling or turning to the right positive
  * @source            Flight model, air.
  */
-export function addGustTo(d: Float64Array, gust: GustRequest, timeS: number, distanceM: number): void {
+export function addGustTo(d: number[], gust: GustRequest, timeS: number, distanceM: number): void {
   const { axis, shape, peak, gradientDistanceM, overS } = gust;
   const index = axis === 'lateral' ? 0 : axis === 'roll-rate' ? 1 : 2;
   if (!Number.isFinite(peak)) throw new ModelError('bad-argument', `the gust's peak is ${peak}`, 'peak');
@@ -148,8 +148,18 @@ export function addGustTo(d: Float64Array, gust: GustRequest, timeS: number, dis
   d[D.D_GUST_COUNT] = count + 1;
 }
 
-/** Drops gusts that have passed and folds ramps that are complete into the constant part. */
-export function retireGusts(d: Float64Array, timeS: number, distanceM: number): void {
+/**
+ * Drops gusts that have passed and folds ramps that are complete into the constant part.
+ *
+ * @param d  Memory of the plant.
+ * @param timeS  Run time; s.
+ * @param distanceM  Air distance flown; m.
+ * @returns  Nothing.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  Flight model, air.
+ */
+export function retireGusts(d: number[], timeS: number, distanceM: number): void {
   let kept = 0;
   const count = d[D.D_GUST_COUNT];
   for (let i = 0; i < count; i++) {
@@ -158,7 +168,8 @@ export function retireGusts(d: Float64Array, timeS: number, distanceM: number): 
     const share = gone / d[at + D.G_LENGTH];
     if (d[at + D.G_SHAPE] === 1 && share >= 1) d[D.D_GUST_V + d[at + D.G_AXIS]] += d[at + D.G_PEAK];
     else if (share < 2) {
-      if (kept !== i) d.copyWithin(D.D_GUSTS + kept * D.GUST_STRIDE, at, at + D.GUST_STRIDE);
+      const to = D.D_GUSTS + kept * D.GUST_STRIDE;
+      for (let j = 0; j < D.GUST_STRIDE; j++) d[to + j] = d[at + j];
       kept++;
     }
   }

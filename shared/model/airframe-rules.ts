@@ -9,7 +9,16 @@ const ASPECT_RATIO_RANGE = [1, 40] as const;
 
 type Report = (path: (string | number)[], rule: string, message: string, remedy: string) => void;
 
-/** Reports every rule between members that the airframe breaks. */
+/**
+ * Reports every rule between members that the airframe breaks.
+ *
+ * @param airframe  Members that are each valid on their own.
+ * @param report  Called for each breach with path, rule, message and remedy.
+ * @returns  Nothing.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  Flight model, airframe data: refusals.
+ */
 export function checkAirframe(airframe: Airframe, report: Report): void {
   checkGeometry(airframe, report);
   checkInertias(airframe, report);
@@ -166,7 +175,16 @@ function checkControls({ controls }: Airframe, report: Report): void {
   }
 }
 
-/** The remarks an airframe deserves without being refused. */
+/**
+ * The remarks an airframe deserves without being refused.
+ *
+ * @param airframe  Parsed airframe.
+ * @param input  What was parsed; shows which members were absent.
+ * @returns  Warnings; none for complete, plausible data.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  Flight model, airframe data: warnings.
+ */
 export function warningsOf(airframe: Airframe, input: unknown): FieldIssue[] {
   const out: FieldIssue[] = [];
   const warn = (field: string, rule: string, message: string, remedy: string): void => {

@@ -71,18 +71,19 @@ function tableRatio({ tableMps, tableRatio: k }: RudderRatioData, easMps: number
 /**
  * Rudder beyond which the pedal force limit lets the pedal go no further; rad.
  *
- * @param force         Pedal force data or null.
- * @param easMps        Equivalent airspeed; m/s.
- * @returns             Pilot's share of rudder at the limit, at full ratio for an artificial force; rad; may be Infinity.
- * @throws              Nothing.
- * @sign                none
- * @source              Flight model, controls.
+ * @param force   Pedal force data or null.
+ * @param easMps  Equivalent airspeed; m/s.
+ * @returns       Pilot's share of rudder at the limit, at full ratio for an artificial force; rad; may be Infinity.
+ * @throws        Nothing.
+ * @sign          none
+ * @source        Flight model, controls.
  */
 export function forceLimitRudderRad(force: PedalForceData | null, easMps: number): number {
   if (force === null) return Infinity;
-  if (force.kind === 'artificial') return force.limitN / force.newtonPerRad;
-  const pressure = (easMps * easMps) / (force.atMps * force.atMps);
-  return pressure > 0 ? force.limitN / (force.newtonPerRad * pressure) : Infinity;
+  const atRest = force.limitN / force.newtonPerRad;
+  if (force.kind === 'artificial') return atRest;
+  const speeds = force.atMps / easMps;
+  return atRest * speeds * speeds;
 }
 
 /**
@@ -102,11 +103,17 @@ export function pedalRudderLimitRad(
   ratio: number = rudderRatioAt(controls.rudderRatio, easMps),
 ): number {
   const travel = ratio * controls.rudderMaxRad;
-  const limit = forceLimitRudderRad(controls.pedalForce, easMps);
-  if (controls.pedalForce?.kind !== 'artificial') return Math.min(travel, limit);
-  // An artificial force goes with the pedal, not with the surface: the clipped pedal is scaled by the ratio.
-  const scaled = controls.rudderRatio?.mode === 'limit' ? limit : limit * ratio;
-  return Math.min(travel, scaled);
+  const force = controls.pedalForce;
+  if (force === null) return travel;
+  let limit = force.limitN / force.newtonPerRad;
+  if (force.kind === 'reversible') {
+    const speeds = force.atMps / easMps;
+    limit *= speeds * speeds;
+  } else if (controls.rudderRatio?.mode !== 'limit') {
+    // An artificial force goes with the pedal, not with the surface: the pedal is stopped, then scaled by the ratio.
+    limit *= ratio;
+  }
+  return limit < travel ? limit : travel;
 }
 
 /**

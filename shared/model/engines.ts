@@ -33,12 +33,28 @@ export function steadyThrustN(engine: EngineData, lever: number, tasMps: number,
   return (lever * sigma * engine.powerW) / Math.sqrt(tasMps * tasMps + knee * knee);
 }
 
-/** Arm of the yawing moment per newton of thrust (N_T = −arm·T): thrust line and swirl; m; positive yaws left. */
+/**
+ * Arm of the yawing moment per newton of thrust (N_T = −arm·T): thrust line and swirl; m.
+ *
+ * @param engine  Engine data.
+ * @returns  y + s·bladeOffset + s·swirlArm; m.
+ * @throws  Nothing.
+ * @sign  positive yaws left
+ * @source  Flight model, engines.
+ */
 export function yawArmM(engine: EngineData): number {
   return engine.yEffectiveM + engine.spin * engine.swirlArmM;
 }
 
-/** Arm of the rolling moment per newton of thrust (L_T = −arm·T): slipstream lift and torque; m; positive rolls left. */
+/**
+ * Arm of the rolling moment per newton of thrust (L_T = −arm·T): slipstream lift and torque; m.
+ *
+ * @param engine  Engine data.
+ * @returns  slipstreamLift·y + s·torqueArm; m.
+ * @throws  Nothing.
+ * @sign  positive rolls left
+ * @source  Flight model, engines.
+ */
 export function rollArmM(engine: EngineData): number {
   return engine.slipstreamLift * engine.yM + engine.spin * engine.torqueArmM;
 }

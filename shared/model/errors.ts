@@ -25,7 +25,16 @@ export class ModelError extends Error {
   }
 }
 
-/** Throws `non-finite-input` when the value is NaN or infinite. */
+/**
+ * Lets a finite number pass.
+ *
+ * @param value  The number; any unit.
+ * @param name  What it is, for the message.
+ * @returns  Nothing.
+ * @throws  {ModelError} non-finite-input when the value is NaN or infinite.
+ * @sign  none
+ * @source  House style, numerical functions.
+ */
 export function requireFiniteNumber(value: number, name: string): void {
   if (!Number.isFinite(value))
     throw new ModelError('non-finite-input', `${name} is ${value}; a finite number is needed`, name);

@@ -18,12 +18,29 @@ export interface RuleParams {
   remedy: string;
 }
 
-/** JSON Pointer (RFC 6901) of a path of member names and indices. */
+/**
+ * JSON Pointer of a path of member names and indices.
+ *
+ * @param path  Member names and list indices from the root.
+ * @returns  The pointer; "" for the root.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  RFC 6901.
+ */
 export function jsonPointer(path: readonly PropertyKey[]): string {
   return path.map((part) => `/${String(part).replaceAll('~', '~0').replaceAll('/', '~1')}`).join('');
 }
 
-/** The value at a JSON Pointer; `undefined` when the pointer leads nowhere. */
+/**
+ * The value at a JSON Pointer; `undefined` when the pointer leads nowhere.
+ *
+ * @param root  Any value.
+ * @param pointer  JSON Pointer; "" for the root.
+ * @returns  The value or undefined.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  RFC 6901.
+ */
 export function valueAt(root: unknown, pointer: string): unknown {
   if (pointer === '') return root;
   let at: unknown = root;
@@ -59,6 +76,9 @@ const TYPE_WORDS: Readonly<Record<string, string>> = {
  * @param error  What the schema's safeParse returned.
  * @param input  The value that was parsed; messages show the offending part of it.
  * @returns      At least one issue, in the schema's order.
+ * @throws       Nothing.
+ * @sign         none
+ * @source       House style, errors.
  */
 export function issuesFromSchema(error: z.ZodError, input: unknown): FieldIssue[] {
   const out: FieldIssue[] = [];

@@ -1,5 +1,5 @@
-import { cos, sin } from '../numerics/elementary.ts';
-import { createRk4 } from '../numerics/rk4.ts';
+import { packedDoubles } from '../numerics/packed-doubles.ts';
+import { sinCosInto } from '../numerics/sin-cos.ts';
 import { G0 } from '../units/constants.ts';
 import type { AirFlow } from './air.ts';
 import { SEA_LEVEL_DENSITY } from './atmosphere.ts';
@@ -21,24 +21,26 @@ import * as T from './tick-held.ts';
  * @param e     Held numbers of the engines.
  * @param n     Number of engines.
  * @param air   Wind and gusts.
- * @param made  Filled by `recordInto`.
- * @returns     The right-hand side, its recorded form, and one RK4 step over a tick; SI, rad.
+ * @param made  Quantities of the latest evaluation.
+ * @param row   Derivatives at the trim lift coefficient, blended while the configuration changes.
+ * @returns     The right-hand side, and one RK4 step over a tick (surfaces exact); SI, rad.
  * @throws      Nothing.
  * @sign        As this folder's README.
  * @source      Flight model, small-disturbance.
  */
 export function createLinearMotion(
-  h: Float64Array,
-  e: Float64Array,
+  h: number[],
+  e: number[],
   n: number,
   air: AirFlow,
-  made: Float64Array,
+  made: number[],
+  row: Float64Array,
 ): Motion {
+  const angles = packedDoubles(6);
   const wind = new Float64Array(4);
   const gust = new Float64Array(3);
-  const L = T.H_LINEAR;
 
-  const run = (out: Float64Array, tau: number, x: Float64Array, record: boolean): void => {
+  const rhs = (out: Float64Array, tau: number, x: Float64Array): void => {
     const beta = x[X.X_BETA];
     const p = x[X.X_P];
     const r = x[X.X_R];
@@ -52,6 +54,10 @@ export function createLinearMotion(
     const q = 0.5 * density * V * V;
     const qS = q * h[T.H_AREA];
 
+    angles[0] = psi;
+    angles[1] = psi + beta;
+    sinCosInto(angles, 2);
+
     let windNorth = h[T.H_WIND_NORTH];
     let windEast = h[T.H_WIND_EAST];
     let windAy = 0;
@@ -60,7 +66,7 @@ export function createLinearMotion(
       air.windInto(wind, h[T.H_TIME] + tau, x[X.X_HEIGHT], climb);
       windNorth = wind[0];
       windEast = wind[1];
-      windAy = wind[3] * cos(psi) - wind[2] * sin(psi);
+      windAy = wind[3] * angles[3] - wind[2] * angles[2];
     }
     let gustV = h[T.H_GUST_V];
     let gustP = h[T.H_GUST_P];
@@ -78,23 +84,19 @@ export function createLinearMotion(
     const pHat = pAir * toRate;
     const rHat = rAir * toRate;
     const CY =
-      h[L + C.SIDE_BETA] * betaAir +
-      h[L + C.SIDE_P] * pHat +
-      h[L + C.SIDE_R] * rHat +
-      h[L + C.SIDE_DA] * da +
-      h[L + C.SIDE_DR] * dr;
+      row[C.SIDE_BETA] * betaAir +
+      row[C.SIDE_P] * pHat +
+      row[C.SIDE_R] * rHat +
+      row[C.SIDE_DA] * da +
+      row[C.SIDE_DR] * dr;
     const Croll =
-      h[L + C.ROLL_BETA] * betaAir +
-      h[L + C.ROLL_P] * pHat +
-      h[L + C.ROLL_R] * rHat +
-      h[L + C.ROLL_DA] * da +
-      h[L + C.ROLL_DR] * dr;
+      row[C.ROLL_BETA] * betaAir +
+      row[C.ROLL_P] * pHat +
+      row[C.ROLL_R] * rHat +
+      row[C.ROLL_DA] * da +
+      row[C.ROLL_DR] * dr;
     const Cyaw =
-      h[L + C.YAW_BETA] * betaAir +
-      h[L + C.YAW_P] * pHat +
-      h[L + C.YAW_R] * rHat +
-      h[L + C.YAW_DA] * da +
-      h[L + C.YAW_DR] * dr;
+      row[C.YAW_BETA] * betaAir + row[C.YAW_P] * pHat + row[C.YAW_R] * rHat + row[C.YAW_DA] * da + row[C.YAW_DR] * dr;
 
     let forward = 0;
     let engineYaw = 0;
@@ -124,32 +126,21 @@ export function createLinearMotion(
     out[X.X_THETA] = 0;
     out[X.X_PSI] = r / cosPath;
     out[X.X_V] = 0;
-    out[X.X_NORTH] = V * cosPath * cos(psi + beta) + windNorth;
-    out[X.X_EAST] = V * cosPath * sin(psi + beta) + windEast;
+    out[X.X_NORTH] = V * cosPath * angles[5] + windNorth;
+    out[X.X_EAST] = V * cosPath * angles[4] + windEast;
     out[X.X_HEIGHT] = climb;
     out[X.X_DISTANCE] = V;
 
-    const aileronRate = (h[T.H_AILERON_CMD] - x[X.X_AILERON]) * h[T.H_INV_LAG_AILERON];
+    const aileronRate = (h[T.H_AILERON_CMD] - x[X.X_AILERON]) * h[T.H_INV_LAG];
     const aileronMaxRate = h[T.H_AILERON_RATE];
     out[X.X_AILERON] =
       aileronRate > aileronMaxRate ? aileronMaxRate : aileronRate < -aileronMaxRate ? -aileronMaxRate : aileronRate;
-    const washed = r - x[X.X_WASHOUT];
-    out[X.X_WASHOUT] = washed * h[T.H_INV_WASHOUT];
-    const damperLimit = h[T.H_DAMPER_LIMIT];
-    const damperFree = h[T.H_DAMPER_GAIN] * washed;
-    const damper = damperFree > damperLimit ? damperLimit : damperFree < -damperLimit ? -damperLimit : damperFree;
-    let command = h[T.H_RUDDER_CMD];
-    if (h[T.H_RUDDER_FAULT] === 0) {
-      const rudderMax = h[T.H_RUDDER_MAX];
-      const asked = h[T.H_RUDDER_PILOT] + h[T.H_RUDDER_TRIM] + damper;
-      command = asked > rudderMax ? rudderMax : asked < -rudderMax ? -rudderMax : asked;
-    }
-    const rudderRate = (command - dr) * h[T.H_INV_LAG_RUDDER];
+    out[X.X_WASHOUT] = (r - x[X.X_WASHOUT]) * h[T.H_INV_WASHOUT];
+    const rudderRate = (h[T.H_RUDDER_CMD] - dr) * h[T.H_INV_LAG_RUDDER];
     const rudderMaxRate = h[T.H_RUDDER_RATE];
     out[X.X_RUDDER] =
       rudderRate > rudderMaxRate ? rudderMaxRate : rudderRate < -rudderMaxRate ? -rudderMaxRate : rudderRate;
 
-    if (!record) return;
     const CL = h[T.H_CL_TRIM];
     made[T.M_CL] = CL;
     made[T.M_QBAR] = q;
@@ -179,16 +170,29 @@ export function createLinearMotion(
     made[T.M_GUST_V] = gustV;
     made[T.M_GUST_P] = gustP;
     made[T.M_GUST_R] = gustR;
-    made[T.M_DAMPER] = damper;
     made[T.M_SIGMA_JET] = h[T.H_REF_JET];
     made[T.M_LET_GO] = 0;
   };
 
-  const rk4 = createRk4(X.stateLength(n));
-  const rhs = (out: Float64Array, tau: number, x: Float64Array): void => run(out, tau, x, false);
+  const k1 = new Float64Array(X.stateLength(n));
+  const [k2, k3, k4, at] = [k1.slice(), k1.slice(), k1.slice(), k1.slice()];
+  const stage = (out: Float64Array, x: Float64Array, reach: number, k: Float64Array, end: boolean): void => {
+    for (let i = 0; i < out.length; i++) out[i] = x[i] + reach * k[i];
+    out[X.X_AILERON] = h[end ? T.H_AILERON_FULL : T.H_AILERON_HALF];
+    out[X.X_RUDDER] = h[end ? T.H_RUDDER_FULL : T.H_RUDDER_HALF];
+  };
   return {
     rhs,
-    recordInto: (out, tau, x) => run(out, tau, x, true),
-    stepInto: (out, x) => rk4.stepInto(out, rhs, 0, x, TICK_S),
+    stepInto(out, x) {
+      rhs(k1, 0, x);
+      stage(at, x, 0.5 * TICK_S, k1, false);
+      rhs(k2, 0.5 * TICK_S, at);
+      stage(at, x, 0.5 * TICK_S, k2, false);
+      rhs(k3, 0.5 * TICK_S, at);
+      stage(at, x, TICK_S, k3, true);
+      rhs(k4, TICK_S, at);
+      for (let i = 0; i < k1.length; i++) k1[i] += 2 * (k2[i] + k3[i]) + k4[i];
+      stage(out, x, TICK_S / 6, k1, true);
+    },
   };
 }

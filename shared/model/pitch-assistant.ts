@@ -42,7 +42,16 @@ export function speedHoldPathRad(excessMps: number, integralM: number): number {
       : path;
 }
 
-/** Whether the speed hold's wanted path is clamped, which stops its integral. */
+/**
+ * Whether the speed hold's wanted path is clamped, which stops its integral.
+ *
+ * @param excessMps  Calibrated airspeed above the target; m/s.
+ * @param integralM  Its integral; m.
+ * @returns  True when the path before clamping lies beyond ±12°.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  Flight model, pitch assistant.
+ */
 export function speedHoldClamped(excessMps: number, integralM: number): boolean {
   return Math.abs(SPEED_GAIN * excessMps + SPEED_INTEGRAL_GAIN * integralM) > SPEED_PATH_LIMIT_RAD;
 }

@@ -9,10 +9,8 @@ import type { TurbulenceScale } from './turbulence.ts';
 
 /** Equations of motion of one fidelity; time counts from the start of the tick. Nothing allocates. */
 export interface Motion {
-  /** Writes x' into `out`. */
+  /** Writes x' into `out`, and the quantities on the way into `Core.made`. */
   rhs: RightHandSide;
-  /** The same, leaving its intermediate quantities in `Core.made`. */
-  recordInto: RightHandSide;
   /** Writes the state a tick after `x` into `out`: classical Runge–Kutta. */
   stepInto(out: Float64Array, x: Float64Array): void;
 }
@@ -31,11 +29,11 @@ export interface Core {
   /** Integrated state (state-layout.ts). */
   readonly x: Float64Array;
   /** Memory (plant-memory.ts). */
-  readonly d: Float64Array;
-  /** Held numbers of the tick, of the engines, and the recorded evaluation (tick-held.ts). */
-  readonly h: Float64Array;
-  readonly e: Float64Array;
-  readonly made: Float64Array;
+  readonly d: number[];
+  /** Held numbers of the tick, of the engines, and the quantities of the latest evaluation (tick-held.ts). */
+  readonly h: number[];
+  readonly e: number[];
+  readonly made: number[];
   /** The part of `h` with the constant derivatives of the small-disturbance motion, and scratch of the same length. */
   readonly linearRow: Float64Array;
   readonly blendRow: Float64Array;

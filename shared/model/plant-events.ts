@@ -3,9 +3,10 @@ import { casFromTas } from './airspeeds.ts';
 import { addGustTo, SHORTEST_WIND_CHANGE_S } from './air.ts';
 import { pedalToRudderRad, rudderRatioAt } from './controls.ts';
 import { ModelError, requireFiniteNumber } from './errors.ts';
+import { CONFIGURATION_CHANGE_S, startConfiguration } from './plant-commit.ts';
 import type { Core } from './plant-core.ts';
 import * as D from './plant-memory.ts';
-import { CONFIGURATION_CHANGE_S, PITCH_CODES, startConfiguration } from './plant-tick.ts';
+import { PITCH_CODES } from './plant-pitch.ts';
 import { TICK_S } from './plant-types.ts';
 import type { PitchMode, Plant } from './plant-types.ts';
 import * as X from './state-layout.ts';
@@ -35,7 +36,16 @@ export type PlantEvents = Pick<
   | 'setConfiguration'
 >;
 
-/** Takes up a pitch mode now: its path starts at the present path, a falling target at the present speed. */
+/**
+ * Takes up a pitch mode now: its path starts at the present path, a falling target at the present speed.
+ *
+ * @param core  The plant's shared parts; the memory is written.
+ * @param mode  The mode and its members; rad, m/s, m/s² (a fall; its sign does not matter).
+ * @returns     Nothing.
+ * @throws {ModelError} no-runway for a glidepath without one, non-finite-input.
+ * @sign        climb positive
+ * @source      Flight model, pitch assistant.
+ */
 export function enterPitchMode({ d, x, setup }: Core, mode: PitchMode): void {
   const path = x[X.X_THETA];
   const cas = casFromTas(x[X.X_V], x[X.X_HEIGHT]);
@@ -61,7 +71,19 @@ export function enterPitchMode({ d, x, setup }: Core, mode: PitchMode): void {
   }
 }
 
-/** The event methods over a core; each takes effect from the next step. */
+/**
+ * The event methods over a core; each takes effect from the next step.
+ *
+ * A partial failure leaves `fraction` of the thrust (ours). A jam at an angle sends the surface there at its own rate. A
+ * rudder-trim event sets the whole trim. A configuration asked for while another is changing waits for it.
+ *
+ * @param core  The plant's shared parts; the memory is written.
+ * @returns     The methods of `Plant`; SI, rad, surfaces with model signs.
+ * @throws      Nothing itself; the methods throw ModelError unknown-engine, unknown-configuration, no-runway,
+ *              too-many-gusts, bad-argument, non-finite-input.
+ * @sign        As this folder's README; gust peaks to the right positive.
+ * @source      Flight model, sections 4 to 8; scenario contract, event kinds.
+ */
 export function createPlantEvents(core: Core): PlantEvents {
   const { d, x, h, engineCount, configurations, inputs } = core;
   const now = (): number => d[D.D_TICK] * TICK_S;

@@ -1,6 +1,6 @@
 /**
  * Places of everything a plant remembers from tick to tick beside the integrated state (`Core.d`), one flat
- * Float64Array, so that a snapshot is two copies. Times are run times in s, angles rad, surfaces with model signs.
+ * array of numbers, so that a snapshot is two copies. Times are run times in s, angles rad, surfaces with model signs.
  */
 export const D_TICK = 0;
 // pitch assistant
@@ -78,7 +78,15 @@ export const K_LEVER_T1 = 9;
 export const K_LEVER_PILOT = 10; // pilot's lever at the last tick
 export const ENGINE_MEMORY = 11;
 
-/** Length of a plant's memory with `engineCount` engines. */
+/**
+ * Length of a plant's memory.
+ *
+ * @param engineCount  Number of engines.
+ * @returns  Numbers in `Core.d`.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  This file.
+ */
 export function memoryLength(engineCount: number): number {
   return D_ENGINES + engineCount * ENGINE_MEMORY;
 }
@@ -95,9 +103,35 @@ export const HASHED: readonly number[] = [
   D_TURB_XP,
 ];
 
-/** Value at `t` of a ramp from `from` at `t0` to `to` at `t1`. */
+/**
+ * Value of a linear ramp at a time, held before its start and after its end.
+ *
+ * @param from  Value up to t0; any unit.
+ * @param to  Value from t1 on; same unit.
+ * @param t0  Start; s.
+ * @param t1  End; s.
+ * @param t  Time; s.
+ * @returns  Value; same unit.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  Definition.
+ */
 export function rampAt(from: number, to: number, t0: number, t1: number, t: number): number {
   if (t >= t1) return to;
   if (t <= t0) return from;
   return from + (to - from) * ((t - t0) / (t1 - t0));
+}
+
+/**
+ * A value held within a limit to either side; NaN passes.
+ *
+ * @param limit  Largest magnitude; ≥ 0; any unit.
+ * @param value  The value; same unit.
+ * @returns      The value or the limit with its sign.
+ * @throws       Nothing.
+ * @sign         as the value
+ * @source       Definition.
+ */
+export function heldWithin(limit: number, value: number): number {
+  return value > limit ? limit : value < -limit ? -limit : value;
 }

@@ -23,97 +23,17 @@ const BALL_LIFT_SHARE = 0.2;
 const BETA_LIMIT_RAD = 15 * DEG;
 const BANK_LIMIT_RAD = 60 * DEG;
 
-/** An observation to be filled; all numbers zero. */
-export function createObservation(engineCount: number): Observation {
-  const parts = (): MomentParts => ({
-    beta: 0,
-    p: 0,
-    r: 0,
-    aileron: 0,
-    rudder: 0,
-    fin: 0,
-    thrust: 0,
-    inertia: 0,
-  });
-  return {
-    tick: 0,
-    timeS: 0,
-    betaRad: 0,
-    pRadS: 0,
-    rRadS: 0,
-    phiRad: 0,
-    thetaRad: 0,
-    psiRad: 0,
-    tasMps: 0,
-    casMps: 0,
-    easMps: 0,
-    mach: 0,
-    northM: 0,
-    eastM: 0,
-    heightM: 0,
-    heightAboveRunwayM: 0,
-    groundSpeedMps: 0,
-    trackRad: 0,
-    verticalSpeedMps: 0,
-    pitchAttitudeRad: NaN,
-    alphaRad: NaN,
-    CL: 0,
-    qbarPa: 0,
-    loadFactor: 0,
-    ballWidths: 0,
-    stick: 0,
-    pedal: 0,
-    aileronRad: 0,
-    rudderRad: 0,
-    rudderAvailableRad: 0,
-    rudderMaxRad: 0,
-    aileronMaxRad: 0,
-    pedalForceN: 0,
-    pedalForceLimitN: Infinity,
-    rudderRatio: 1,
-    rudderSaturated: false,
-    yawDamperRad: 0,
-    levers: new Float64Array(engineCount),
-    thrustN: new Float64Array(engineCount),
-    thrustAvailableN: new Float64Array(engineCount),
-    windmillDragN: new Float64Array(engineCount),
-    engineState: new Uint8Array(engineCount),
-    engineYawNm: 0,
-    engineRollNm: 0,
-    forceRudderN: 0,
-    forceFinN: 0,
-    forceSideN: 0,
-    forceLiftLeftN: 0,
-    forceLiftRightN: 0,
-    forceDragN: 0,
-    forceWeightN: 0,
-    liftLeverM: 0,
-    yawTotalNm: 0,
-    rollTotalNm: 0,
-    yawParts: parts(),
-    rollParts: parts(),
-    axMps2: 0,
-    ayMps2: 0,
-    azMps2: 0,
-    pDotRadS2: 0,
-    qDotRadS2: 0,
-    rDotRadS2: 0,
-    qRadS: 0,
-    windNorthMps: 0,
-    windEastMps: 0,
-    gustLateralMps: 0,
-    gustRollRadS: 0,
-    gustYawRadS: 0,
-    finAngleRad: 0,
-    finStallAngleRad: Infinity,
-    finStalled: false,
-    outsideData: false,
-    stallWarning: false,
-    assistantLetGo: false,
-  };
-}
-
-/** Fills observations of a core; owns the work arrays. */
+/**
+ * A function that fills observations of a core; it owns its work arrays and allocates nothing.
+ *
+ * Accelerations come from the derivative of the state, forces from the recorded evaluation: that they agree is a test.
+ *
+ * @param core  The plant's shared parts.
+ * @returns     The filling function; SI, rad.
+ * @throws      Nothing.
+ * @sign        As plant-types.ts.
+ * @source      Flight model, forces drawn and validity.
+ */
 export function createObserver(core: Core): (out: Observation) => void {
   const { x, d, h, e, made, inputs, engineCount, configurations, inertias, linear, groundM, motion: equations } = core;
   const n = x.length;
@@ -130,7 +50,7 @@ export function createObserver(core: Core): (out: Observation) => void {
   const pitchRateAhead = (): number => {
     if (linear) return 0;
     for (let i = 0; i < n; i++) later[i] = x[i] + TICK_S * dx[i];
-    equations.recordInto(dLater, TICK_S, later);
+    equations.rhs(dLater, TICK_S, later);
     return made[T.M_Q_PITCH];
   };
 
@@ -189,8 +109,8 @@ export function createObserver(core: Core): (out: Observation) => void {
     out.rudderAvailableRad = faulty ? 0 : limit;
     out.rudderMaxRad = controls.rudderMaxRad;
     out.aileronMaxRad = controls.aileronMaxRad;
-    out.yawDamperRad = made[T.M_DAMPER];
-    const share = x[X.X_RUDDER] - h[T.H_RUDDER_TRIM] - made[T.M_DAMPER];
+    out.yawDamperRad = h[T.H_DAMPER];
+    const share = x[X.X_RUDDER] - h[T.H_RUDDER_TRIM] - h[T.H_DAMPER];
     out.pedalForceN = pedalForceN(controls, share, out.pedal, eas);
     out.pedalForceLimitN = controls.pedalForce?.limitN ?? Infinity;
     out.rudderRatio = h[T.H_RATIO];
@@ -213,7 +133,9 @@ export function createObserver(core: Core): (out: Observation) => void {
       out.thrustN[i] = x[X.X_THRUST + i];
       out.thrustAvailableN[i] = e[at + T.E_LEVER] * full;
       out.windmillDragN[i] = made[T.M_QBAR] * e[at + T.E_AREA];
-      out.engineState[i] = d[k + D.K_FEATHER] !== 0 || d[k + D.K_FEATHER_AT] > 0 ? 2 : failure;
+      const feathered = d[k + D.K_FEATHER] !== 0 || d[k + D.K_FEATHER_AT] > 0;
+      // a jet that is shut down windmills
+      out.engineState[i] = !feathered ? failure : aircraft.engines[i].kind === 'jet' ? 1 : 2;
     }
     out.engineYawNm = made[T.M_ENGINE_YAW];
     out.engineRollNm = made[T.M_ENGINE_ROLL];
@@ -308,7 +230,7 @@ export function createObserver(core: Core): (out: Observation) => void {
 
   return (out) => {
     prepareTick(core);
-    equations.recordInto(dx, 0, x);
+    equations.rhs(dx, 0, x);
     motion(out);
     surfaces(out);
     enginesOf(out);

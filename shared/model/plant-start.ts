@@ -1,4 +1,5 @@
-import { cos, sin, tan } from '../numerics/elementary.ts';
+import { cos, exp, sin, tan } from '../numerics/elementary.ts';
+import { packedDoubles } from '../numerics/packed-doubles.ts';
 import { createStream } from '../numerics/random.ts';
 import { DEG } from '../units/constants.ts';
 import { createAirFlow } from './air.ts';
@@ -10,12 +11,14 @@ import { DERIVATIVE_COUNT } from './derivatives.ts';
 import { engineForces, rollArmM, steadyThrustN, yawArmM } from './engines.ts';
 import { ModelError, requireFiniteNumber } from './errors.ts';
 import { createLargeAngle } from './large-angle.ts';
-import type { FlatRows } from './large-angle.ts';
+import type { FlatRows } from './large-angle-work.ts';
 import { createLinearMotion } from './linear-motion.ts';
+import { CL_LOWEST } from './pitch-assistant.ts';
 import type { Core } from './plant-core.ts';
 import { enterPitchMode } from './plant-events.ts';
 import * as D from './plant-memory.ts';
 import { holdStartAtmosphere, prepareTick } from './plant-tick.ts';
+import { TICK_S } from './plant-types.ts';
 import type { PlantSetup } from './plant-types.ts';
 import * as X from './state-layout.ts';
 import * as T from './tick-held.ts';
@@ -25,7 +28,15 @@ import { startTurbulence, TURBULENCE_LEVELS, turbulenceScaleInto } from './turbu
 /** Time before every run; marks ramps that are over. */
 const LONG_AGO_S = -1e9;
 
-/** A plant's shared parts at the trimmed start. Throws a ModelError that names what cannot be flown. */
+/**
+ * A plant's shared parts at the trimmed start.
+ *
+ * @param setup  Airframe, start, air, automation, seed; SI, rad.
+ * @returns  The core at tick 0, ball-centred trim at the given levers.
+ * @throws  {ModelError} that names what cannot be flown.
+ * @sign  As this folder's README.
+ * @source  Flight model, trim.
+ */
 export function createCore(setup: PlantSetup): Core {
   const { airframe, start } = setup;
   const options = { loading: setup.loading ?? null, dorsal: setup.automation.dorsalFin };
@@ -60,10 +71,11 @@ export function createCore(setup: PlantSetup): Core {
   const linear = setup.fidelity === 'small-disturbance';
   const { rows, ranges } = flatten(configurations);
   const x = new Float64Array(X.stateLength(n));
-  const d = new Float64Array(D.memoryLength(n));
-  const h = new Float64Array(T.HELD_LENGTH);
-  const e = new Float64Array(n * T.ENGINE_STRIDE);
-  const made = new Float64Array(T.MADE_LENGTH);
+  const d = packedDoubles(D.memoryLength(n));
+  const h = packedDoubles(T.HELD_LENGTH);
+  const e = packedDoubles(n * T.ENGINE_STRIDE);
+  const made = packedDoubles(T.MADE_LENGTH);
+  const linearRow = new Float64Array(DERIVATIVE_COUNT);
   const groundM = setup.runway?.elevationM ?? 0;
   const air = createAirFlow(d, setup.air.profile, groundM);
   const core: Core = {
@@ -79,12 +91,12 @@ export function createCore(setup: PlantSetup): Core {
     h,
     e,
     made,
-    linearRow: h.subarray(T.H_LINEAR, T.H_LINEAR + DERIVATIVE_COUNT),
+    linearRow,
     blendRow: new Float64Array(DERIVATIVE_COUNT),
     inputs: { stick: 0, pedal: 0, pitch: 0, rudderTrim: 0, levers: levers.slice(), feather: new Uint8Array(n) },
     stream: createStream(setup.seed, 'turbulence'),
     air,
-    motion: linear ? createLinearMotion(h, e, n, air, made) : createLargeAngle(h, e, n, rows, air, made),
+    motion: linear ? createLinearMotion(h, e, n, air, made, linearRow) : createLargeAngle(h, e, n, rows, air, made),
     solver: createTrimSolver(),
     trim: createTrimSolution(),
     turbulence: { lateralLengthM: 0, verticalLengthM: 0, lateralSigmaMps: 0, verticalSigmaMps: 0 },
@@ -146,16 +158,16 @@ function flatten(configurations: readonly Aircraft[]): { rows: FlatRows; ranges:
   const tables = configurations.map(({ derivatives }) => derivatives);
   const total = tables.reduce((sum, { CL }) => sum + CL.length, 0);
   const rows = {
-    CL: new Float64Array(total),
-    values: new Float64Array(total * DERIVATIVE_COUNT),
-    slopes: new Float64Array(total * DERIVATIVE_COUNT),
+    CL: packedDoubles(total),
+    values: packedDoubles(total * DERIVATIVE_COUNT),
+    slopes: packedDoubles(total * DERIVATIVE_COUNT),
   };
   const ranges: [number, number][] = [];
   let at = 0;
   for (const table of tables) {
-    rows.CL.set(table.CL, at);
-    rows.values.set(table.values, at * DERIVATIVE_COUNT);
-    rows.slopes.set(table.slopes, at * DERIVATIVE_COUNT);
+    table.CL.forEach((CL, i) => (rows.CL[at + i] = CL));
+    table.values.forEach((value, i) => (rows.values[at * DERIVATIVE_COUNT + i] = value));
+    table.slopes.forEach((slope, i) => (rows.slopes[at * DERIVATIVE_COUNT + i] = slope));
     ranges.push([at, at + table.CL.length - 1]);
     at += table.CL.length;
   }
@@ -176,11 +188,13 @@ function fillConstants({ h, e, inertias, setup, startTrim }: Core, aircraft: Air
   h[T.H_IYY_IXX] = aircraft.Iyy - Ixx;
   h[T.H_IXZ] = Ixz;
   h[T.H_CL_TRIM] = startTrim.CL;
+  h[T.H_CL_LOWEST] = CL_LOWEST;
   h[T.H_AILERON_RATE] = aircraft.controls.aileronRateRadS;
   h[T.H_RUDDER_RATE] = aircraft.controls.rudderRateRadS;
-  h[T.H_RUDDER_MAX] = aircraft.controls.rudderMaxRad;
   h[T.H_INV_WASHOUT] = aircraft.yawDamper ? 1 / aircraft.yawDamper.washoutS : 0;
-  h[T.H_DAMPER_LIMIT] = aircraft.yawDamper ? aircraft.yawDamper.authorityRad : 0;
+  h[T.H_INV_LAG] = 1 / aircraft.controls.lagS;
+  h[T.H_DECAY_HALF] = exp((-0.5 * TICK_S) / aircraft.controls.lagS);
+  h[T.H_DECAY_FULL] = exp(-TICK_S / aircraft.controls.lagS);
   h[T.H_HAS_JET] = aircraft.engines.some(({ kind }) => kind === 'jet') ? 1 : 0;
   h[T.H_COS_PATH] = cos(setup.start.pathRad);
   h[T.H_SIN_PATH] = sin(setup.start.pathRad);

@@ -2,53 +2,41 @@ import { pow } from '../numerics/elementary.ts';
 import {
   densityAt,
   densityNear,
-  GAS_CONSTANT,
-  HEAT_RATIO,
   LAPSE_K_PER_M,
   SEA_LEVEL_DENSITY,
   SEA_LEVEL_TEMPERATURE_K,
   standardAtmosphere,
-  temperatureK,
   TROPOPAUSE_M,
   TROPOPAUSE_TEMPERATURE_K,
 } from './atmosphere.ts';
-import { casInAir } from './airspeeds.ts';
-import { retireGusts } from './air.ts';
-import { pedalToRudderRad, pilotRudderRad, rudderRatioAt, stickToAileronRad } from './controls.ts';
+import { PEDAL_TO_RUDDER, rudderRatioAt, STICK_TO_AILERON } from './controls.ts';
 import { DERIVATIVE_COUNT, derivativesAtInto } from './derivatives.ts';
 import { JET_MACH_1, JET_MACH_2, JET_SIGMA_EXPONENT } from './engines.ts';
-import * as P from './pitch-assistant.ts';
+import { CL_LIMIT_SHARE } from './pitch-assistant.ts';
+import { CONFIGURATION_CHANGE_S, turbulent } from './plant-commit.ts';
 import type { Core } from './plant-core.ts';
 import * as D from './plant-memory.ts';
+import { holdPitch } from './plant-pitch.ts';
 import { TICK_S } from './plant-types.ts';
 import * as X from './state-layout.ts';
+import { holdSurfaces } from './surfaces.ts';
 import * as T from './tick-held.ts';
-import {
-  advanceTurbulence,
-  lateralGustMps,
-  rollGustSigmaRadS,
-  turbulenceScaleInto,
-  yawGustRadS,
-} from './turbulence.ts';
+import { lateralGustMps, rollGustSigmaRadS, turbulenceScaleInto, yawGustRadS } from './turbulence.ts';
 
-/** Codes of the pitch modes in the memory. */
-export const PITCH_CODES = {
-  'hold-lift': 0,
-  'hold-path': 1,
-  'hold-speed': 2,
-  decelerate: 3,
-  glidepath: 4,
-  manual: 5,
-} as const;
-
-/** Time a change of configuration takes; s. */
-export const CONFIGURATION_CHANGE_S = 4;
 /** Thickness of the layers whose middle anchors the density series; m. */
 const LAYER_M = 40;
 /** Surface lag of a hardover: the surface runs at its rate up to the stop; s (ours). */
 const HARDOVER_LAG_S = TICK_S;
 
-/** Takes what the pilot changed since the last tick: a lever moved takes back an override, a switch turned feathers. */
+/**
+ * Takes what the pilot changed since the last tick: a lever moved takes back an override, a switch turned feathers.
+ *
+ * @param core  The plant's shared parts; levers and switches of the memory are written.
+ * @returns     Nothing.
+ * @throws      Nothing.
+ * @sign        none
+ * @source      plant-types.ts
+ */
 export function readInputs({ d, inputs, engineCount }: Core): void {
   for (let i = 0, k = D.D_ENGINES; i < engineCount; i++, k += D.ENGINE_MEMORY) {
     if (inputs.levers[i] !== d[k + D.K_LEVER_PILOT]) {
@@ -63,36 +51,39 @@ export function readInputs({ d, inputs, engineCount }: Core): void {
   }
 }
 
-/** Computes the held numbers of the present tick from state, memory and inputs; changes neither. */
+/**
+ * Computes the held numbers of the present tick from state, memory and inputs; changes none of the three.
+ *
+ * @param core  The plant's shared parts; `h` and `e` are written.
+ * @returns     Nothing.
+ * @throws      Nothing.
+ * @sign        As this folder's README.
+ * @source      Flight model, sections 4 to 8; inputs and noise are held over a tick.
+ */
 export function prepareTick(core: Core): void {
   const { h, d } = core;
-  const t = d[D.D_TICK] * TICK_S;
-  h[T.H_TIME] = t;
-  holdConfiguration(core, t);
+  h[T.H_TIME] = d[D.D_TICK] * TICK_S;
+  holdConfiguration(core);
   if (!core.linear) holdAtmosphere(core);
-  holdControls(core, t);
-  holdEngines(core, t);
-  holdAir(core, t);
+  holdControls(core);
+  holdEngines(core);
+  holdAir(core);
   if (!core.linear) holdPitch(core);
 }
 
-function held(limit: number, value: number): number {
-  return value > limit ? limit : value < -limit ? -limit : value;
-}
-
-function holdConfiguration(core: Core, t: number): void {
+function holdConfiguration(core: Core): void {
   const { h, d, configurations, rowRanges } = core;
   const now = d[D.D_CONFIG];
   if (h[T.H_CONFIG_HELD] === now) return;
   const aircraft = configurations[now];
-  const gone = (t - d[D.D_CONFIG_T0]) / CONFIGURATION_CHANGE_S;
+  const gone = (h[T.H_TIME] - d[D.D_CONFIG_T0]) / CONFIGURATION_CHANGE_S;
   const old = configurations[d[D.D_CONFIG_OLD]];
   const share = gone < 1 ? 1 - gone : 0;
   h[T.H_ROWS] = rowRanges[now][0];
   h[T.H_ROWS_END] = rowRanges[now][1];
   h[T.H_SHARE_OLD] = share;
   h[T.H_CONFIG_HELD] = share === 0 ? now : -1;
-  h[T.H_CL_LIMIT] = P.CL_LIMIT_SHARE * aircraft.CLmax;
+  h[T.H_CL_LIMIT] = CL_LIMIT_SHARE * aircraft.CLmax;
   h[T.H_CD0] = aircraft.CD0;
   h[T.H_K_INDUCED] = aircraft.kInduced;
   h[T.H_CD_BETA2] = aircraft.CDbeta2;
@@ -101,7 +92,7 @@ function holdConfiguration(core: Core, t: number): void {
   if (share > 0) {
     h[T.H_ROWS_OLD] = rowRanges[d[D.D_CONFIG_OLD]][0];
     h[T.H_ROWS_OLD_END] = rowRanges[d[D.D_CONFIG_OLD]][1];
-    h[T.H_CL_LIMIT] += share * (P.CL_LIMIT_SHARE * old.CLmax - h[T.H_CL_LIMIT]);
+    h[T.H_CL_LIMIT] += share * (CL_LIMIT_SHARE * old.CLmax - h[T.H_CL_LIMIT]);
     h[T.H_CD0] += share * (old.CD0 - h[T.H_CD0]);
     h[T.H_K_INDUCED] += share * (old.kInduced - h[T.H_K_INDUCED]);
     h[T.H_CD_BETA2] += share * (old.CDbeta2 - h[T.H_CD_BETA2]);
@@ -111,7 +102,17 @@ function holdConfiguration(core: Core, t: number): void {
   if (core.linear) blendedDerivativesInto(core.linearRow, core, h[T.H_CL_TRIM]);
 }
 
-/** Writes the derivatives in force at a lift coefficient, blended while the configuration changes. */
+/**
+ * Writes the derivatives in force at a lift coefficient, blended while the configuration changes.
+ *
+ * @param out   Derivatives; length 15; per rad.
+ * @param core  The plant's shared parts, prepared for the tick.
+ * @param CL    Lift coefficient.
+ * @returns     Nothing.
+ * @throws      Nothing.
+ * @sign        As this folder's README.
+ * @source      Flight model, airframe data; linear blend over 4 s.
+ */
 export function blendedDerivativesInto(out: Float64Array, core: Core, CL: number): void {
   const { h, d, configurations, blendRow } = core;
   derivativesAtInto(out, configurations[d[D.D_CONFIG]].derivatives, CL);
@@ -141,7 +142,15 @@ function holdAtmosphere({ h, x }: Core): void {
   h[T.H_DENSITY] = densityNear(height - anchor, h[T.H_REF_DENSITY], h[T.H_REF_TEMPERATURE], h[T.H_TROPOSPHERE] !== 0);
 }
 
-/** Fixes density and jet thrust of the small-disturbance motion at the start; called once. */
+/**
+ * Fixes density and jet thrust of the small-disturbance motion at the start; called once.
+ *
+ * @param core  The plant's shared parts with the start state.
+ * @returns     Nothing.
+ * @throws      Nothing.
+ * @sign        none
+ * @source      Flight model, small-disturbance: speed and height are constant.
+ */
 export function holdStartAtmosphere(core: Core): void {
   const { h, x } = core;
   const { densityKgM3, sigma, soundMps } = standardAtmosphere(x[X.X_HEIGHT]);
@@ -150,39 +159,81 @@ export function holdStartAtmosphere(core: Core): void {
   h[T.H_REF_JET] = pow(sigma, JET_SIGMA_EXPONENT) * (1 + JET_MACH_1 * mach + JET_MACH_2 * mach * mach);
 }
 
-function holdControls({ h, d, x, inputs, configurations, startTrim }: Core, t: number): void {
-  const aircraft = configurations[0];
-  const { controls } = aircraft;
+function holdControls(core: Core): void {
+  const { h, d, x, inputs, configurations, startTrim } = core;
+  const { controls } = configurations[0];
   const eas = x[X.X_V] * Math.sqrt(h[T.H_DENSITY] / SEA_LEVEL_DENSITY);
   h[T.H_EAS] = eas;
 
-  const lag = 1 / controls.lagS;
-  h[T.H_INV_LAG_AILERON] = lag;
   h[T.H_AILERON_EFFECT] = d[D.D_AILERON_EFFECT];
   if (d[D.D_AILERON_FAULT] !== 0) h[T.H_AILERON_CMD] = d[D.D_AILERON_AT];
   else {
-    const stick = held(1, inputs.stick);
-    const asked = stickToAileronRad(stick, controls.aileronMaxRad) + startTrim.aileronRad;
-    h[T.H_AILERON_CMD] = held(controls.aileronMaxRad, asked);
+    const stick = D.heldWithin(1, inputs.stick);
+    const asked = STICK_TO_AILERON * stick * controls.aileronMaxRad + startTrim.aileronRad;
+    h[T.H_AILERON_CMD] = D.heldWithin(controls.aileronMaxRad, asked);
   }
 
-  const state = d[D.D_RATIO_STATE];
-  const ratio = state === 0 ? rudderRatioAt(controls.rudderRatio, eas) : state === 1 ? d[D.D_RATIO_AT] : 1;
-  h[T.H_RATIO] = ratio;
-  const pedal = held(1, inputs.pedal);
-  h[T.H_RUDDER_PILOT] = pedal === 0 ? 0 : pilotRudderRad(controls, pedal, eas, ratio);
-  h[T.H_RUDDER_TRIM] =
-    D.rampAt(d[D.D_TRIM_FROM], d[D.D_TRIM_TO], d[D.D_TRIM_T0], d[D.D_TRIM_T1], t) +
-    pedalToRudderRad(held(1, inputs.rudderTrim), controls.rudderMaxRad);
-  h[T.H_RUDDER_FAULT] = d[D.D_RUDDER_FAULT];
-  h[T.H_RUDDER_CMD] = d[D.D_RUDDER_AT];
-  h[T.H_INV_LAG_RUDDER] = d[D.D_RUDDER_FAULT] === 2 ? 1 / HARDOVER_LAG_S : lag;
-  const damper = aircraft.yawDamper;
-  h[T.H_DAMPER_GAIN] = damper !== null && d[D.D_DAMPER_ON] !== 0 ? damper.gainS : 0;
+  holdPilotRudder(core);
+  holdRudder(core);
+  holdSurfaces(h, x);
 }
 
-function holdEngines({ d, e, configurations, engineCount }: Core, t: number): void {
+/**
+ * The pilot's share of the rudder: ratio changer and pedal force at the present speed. What `rudderRatioAt` and
+ * `pilotRudderRad` say, without calls that return numbers (a test compares them).
+ */
+function holdPilotRudder({ h, d, inputs, configurations }: Core): void {
+  const { controls } = configurations[0];
+  const changer = controls.rudderRatio;
+  const state = d[D.D_RATIO_STATE];
+  if (state === 1) h[T.H_RATIO] = d[D.D_RATIO_AT];
+  else if (state === 2 || changer === null) h[T.H_RATIO] = 1;
+  else if (changer.law === 'table') h[T.H_RATIO] = rudderRatioAt(changer, h[T.H_EAS]);
+  else {
+    const k = h[T.H_EAS] > changer.fullUpToMps ? changer.fullUpToMps / h[T.H_EAS] : 1;
+    h[T.H_RATIO] = changer.law === 'inverse' ? k : k * k;
+  }
+  const clips = changer !== null && changer.mode === 'limit';
+  const travel = controls.rudderMaxRad;
+  let limit = h[T.H_RATIO] * travel;
+  const force = controls.pedalForce;
+  if (force !== null) {
+    let held = force.limitN / force.newtonPerRad;
+    if (force.kind === 'reversible') {
+      const speeds = force.atMps / h[T.H_EAS];
+      held *= speeds * speeds;
+    } else if (!clips) held *= h[T.H_RATIO];
+    if (held < limit) limit = held;
+  }
+  const pedal = D.heldWithin(1, inputs.pedal);
+  const asked = PEDAL_TO_RUDDER * pedal * travel;
+  h[T.H_RUDDER_PILOT] = D.heldWithin(limit, clips ? asked : h[T.H_RATIO] * asked);
+}
+
+/** Trim, yaw damper and faults of the rudder. */
+function holdRudder({ h, d, x, inputs, configurations }: Core): void {
+  const aircraft = configurations[0];
+  const { controls } = aircraft;
+  h[T.H_RUDDER_TRIM] =
+    D.rampAt(d[D.D_TRIM_FROM], d[D.D_TRIM_TO], d[D.D_TRIM_T0], d[D.D_TRIM_T1], h[T.H_TIME]) +
+    PEDAL_TO_RUDDER * D.heldWithin(1, inputs.rudderTrim) * controls.rudderMaxRad;
+  // The damper is sampled at the tick (ours); δr > 0 yaws left, so a positive gain opposes yaw to the right.
+  const damper = aircraft.yawDamper;
+  h[T.H_DAMPER] =
+    damper !== null && d[D.D_DAMPER_ON] !== 0
+      ? D.heldWithin(damper.authorityRad, damper.gainS * (x[X.X_R] - x[X.X_WASHOUT]))
+      : 0;
+  const fault = d[D.D_RUDDER_FAULT];
+  h[T.H_RUDDER_CMD] =
+    fault !== 0
+      ? d[D.D_RUDDER_AT]
+      : D.heldWithin(controls.rudderMaxRad, h[T.H_RUDDER_PILOT] + h[T.H_RUDDER_TRIM] + h[T.H_DAMPER]);
+  h[T.H_INV_LAG_RUDDER] = fault === 2 ? 1 / HARDOVER_LAG_S : h[T.H_INV_LAG];
+}
+
+function holdEngines({ h, d, e, configurations, engineCount }: Core): void {
   const { engines } = configurations[0];
+  const t = h[T.H_TIME];
   for (let i = 0; i < engineCount; i++) {
     const k = D.D_ENGINES + i * D.ENGINE_MEMORY;
     const at = i * T.ENGINE_STRIDE;
@@ -220,13 +271,8 @@ function holdEngines({ d, e, configurations, engineCount }: Core, t: number): vo
   }
 }
 
-/** Whether turbulence acts at a run time. */
-function turbulent(d: Float64Array, t: number): boolean {
-  if (d[D.D_TURB_TO_W20] !== 0 || d[D.D_TURB_TO_HIGH] !== 0) return true;
-  return t < d[D.D_TURB_T1] && (d[D.D_TURB_FROM_W20] !== 0 || d[D.D_TURB_FROM_HIGH] !== 0);
-}
-
-function holdAir({ h, d, x, setup, groundM, turbulence, configurations }: Core, t: number): void {
+function holdAir({ h, d, x, setup, groundM, turbulence, configurations }: Core): void {
+  const t = h[T.H_TIME];
   const changing = t >= d[D.D_WIND_T0] && t < d[D.D_WIND_T1];
   h[T.H_WIND_VARIES] = changing || setup.air.profile !== 'none' ? 1 : 0;
   h[T.H_WIND_NORTH] = d[D.D_WIND_TO_N];
@@ -250,71 +296,4 @@ function holdAir({ h, d, x, setup, groundM, turbulence, configurations }: Core, 
   h[T.H_GUST_V] = gustV;
   h[T.H_GUST_P] = gustP;
   h[T.H_GUST_R] = gustR;
-}
-
-function holdPitch({ h, d, x, inputs, setup }: Core): void {
-  const mode = d[D.D_PITCH_MODE];
-  h[T.H_PITCH] = mode === PITCH_CODES['hold-lift'] ? 0 : 1;
-  h[T.H_INTEGRAL_NEXT] = d[D.D_SPEED_INTEGRAL];
-  let path = d[D.D_PATH];
-  let rate = 0;
-  if (mode === PITCH_CODES['hold-speed'] || mode === PITCH_CODES.decelerate) {
-    const temperature = temperatureK(x[X.X_HEIGHT]);
-    const pressure = h[T.H_DENSITY] * GAS_CONSTANT * temperature;
-    const sound = Math.sqrt(HEAT_RATIO * GAS_CONSTANT * temperature);
-    const excess = casInAir(x[X.X_V], pressure, sound) - d[D.D_SPEED_TARGET];
-    const integral = d[D.D_SPEED_INTEGRAL];
-    const wanted = P.speedHoldPathRad(excess, integral);
-    if (!P.speedHoldClamped(excess, integral)) h[T.H_INTEGRAL_NEXT] = integral + excess * TICK_S;
-    rate = held(P.SPEED_PATH_RATE_RADS, (wanted - path) / TICK_S);
-  } else if (mode === PITCH_CODES.glidepath && setup.runway) {
-    const { runway } = setup;
-    path = P.glidepathPathRad(
-      runway.glidepathRad,
-      runway.thresholdM - P.alongRunwayM(x[X.X_NORTH], x[X.X_EAST], runway.headingRad),
-      x[X.X_HEIGHT] - runway.elevationM,
-      runway.gearHeightM,
-    );
-  } else if (mode === PITCH_CODES.manual) {
-    const next = path + P.MANUAL_RATE_RADS * held(1, inputs.pitch) * TICK_S;
-    const top = Math.max(P.MANUAL_LIMIT_RAD, path);
-    const bottom = Math.min(-P.MANUAL_LIMIT_RAD, path);
-    rate = ((next > top ? top : next < bottom ? bottom : next) - path) / TICK_S;
-  }
-  h[T.H_PATH] = path;
-  h[T.H_PATH_RATE] = rate;
-}
-
-/** Writes what the tick just flown leaves in the memory: ramps, filters, the tick count. */
-export function commitTick(core: Core): void {
-  const { h, d, e, x, engineCount, turbulence, stream, configurations } = core;
-  const t = h[T.H_TIME];
-  if (!core.linear) {
-    d[D.D_PATH] = h[T.H_PATH] + h[T.H_PATH_RATE] * TICK_S;
-    d[D.D_SPEED_INTEGRAL] = h[T.H_INTEGRAL_NEXT];
-  }
-  if (d[D.D_SPEED_FALL] !== 0) {
-    d[D.D_SPEED_TARGET] = Math.max(d[D.D_SPEED_FLOOR], d[D.D_SPEED_TARGET] - d[D.D_SPEED_FALL] * TICK_S);
-  }
-  for (let i = 0, k = D.D_ENGINES; i < engineCount; i++, k += D.ENGINE_MEMORY) {
-    d[k + D.K_FEATHER_AT] = e[i * T.ENGINE_STRIDE + T.E_FEATHER_NEXT];
-  }
-  if (turbulent(d, t)) {
-    const speed = Math.max(x[X.X_V], 1);
-    advanceTurbulence(d, D.D_TURB_X1, stream, speed, turbulence.lateralLengthM, configurations[0].spanM, TICK_S);
-  }
-  const tick = d[D.D_TICK] + 1;
-  d[D.D_TICK] = tick;
-  if (d[D.D_GUST_COUNT] !== 0) retireGusts(d, tick * TICK_S, x[X.X_DISTANCE]);
-  if (d[D.D_CONFIG_NEXT] >= 0 && tick * TICK_S - d[D.D_CONFIG_T0] >= CONFIGURATION_CHANGE_S) {
-    startConfiguration(d, d[D.D_CONFIG_NEXT]);
-  }
-}
-
-/** Begins the change to a configuration now; the one in force is blended out. */
-export function startConfiguration(d: Float64Array, index: number): void {
-  d[D.D_CONFIG_OLD] = d[D.D_CONFIG];
-  d[D.D_CONFIG] = index;
-  d[D.D_CONFIG_T0] = d[D.D_TICK] * TICK_S;
-  d[D.D_CONFIG_NEXT] = -1;
 }

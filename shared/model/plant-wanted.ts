@@ -15,7 +15,14 @@ const CLOSURES: Readonly<Record<Technique, TrimClosure>> = {
   'ball-centred': { kind: 'ball-centred' },
 };
 
-/** Wanted values to be filled; all zero and not found. */
+/**
+ * Wanted values to be filled; all zero and not found.
+ *
+ * @returns  A fresh record.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  plant-types.ts
+ */
 export function createWanted(): WantedValues {
   return {
     found: false,
@@ -30,9 +37,16 @@ export function createWanted(): WantedValues {
 }
 
 /**
- * Fills wanted values of a core: the straight trim of the technique at the present speed, path, density, thrust and
- * drag of the engines and aileron effectiveness. Pedal and stick are what reaches the surfaces from the present trim at
+ * A function that fills wanted values of a core.
+ *
+ * The straight trim of the technique at the present speed, path, density, thrust and drag of the engines and aileron effectiveness. Pedal and stick are what reaches the surfaces from the present trim at
  * the present ratio. Allocates nothing.
+ *
+ * @param core  The plant's shared parts.
+ * @returns     The filling function; rad, cockpit signs for pedal and stick.
+ * @throws      Nothing; `found` is false where no trim exists.
+ * @sign        As plant-types.ts.
+ * @source      Flight model, trim.
  */
 export function createWantedSolver(core: Core): (out: WantedValues, technique: Technique) => void {
   const { x, h, e, d, solver, trim, configurations, engineCount } = core;

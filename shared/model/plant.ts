@@ -1,15 +1,17 @@
+import { STREAM_STATE_LENGTH } from '../numerics/random.ts';
 import { createPlantEvents } from './plant-events.ts';
 import * as D from './plant-memory.ts';
 import { createObserver } from './plant-observe.ts';
 import { createCore } from './plant-start.ts';
-import { commitTick, prepareTick, readInputs } from './plant-tick.ts';
+import { commitTick } from './plant-commit.ts';
+import { prepareTick, readInputs } from './plant-tick.ts';
 import { TICK_S } from './plant-types.ts';
 import type { Plant, PlantOptions, PlantSetup } from './plant-types.ts';
 import { createWantedSolver } from './plant-wanted.ts';
-import { stateName } from './state-layout.ts';
+import { stateName, X_AILERON } from './state-layout.ts';
 import { H_CONFIG_HELD } from './tick-held.ts';
 
-export { createObservation } from './plant-observe.ts';
+export { createObservation } from './observation.ts';
 export { createWanted } from './plant-wanted.ts';
 
 /**
@@ -32,6 +34,7 @@ export function createPlant(setup: PlantSetup, options: PlantOptions = {}): Plan
   const { x, d, h, motion, stream } = core;
   const n = x.length;
   const next = new Float64Array(n);
+  const streamState = new Float64Array(STREAM_STATE_LENGTH);
   const { integrate } = options;
   const observe = createObserver(core);
   const wanted = createWantedSolver(core);
@@ -78,7 +81,8 @@ export function createPlant(setup: PlantSetup, options: PlantOptions = {}): Plan
     },
     ...createPlantEvents(core),
     save() {
-      stream.saveInto(d, D.D_STREAM);
+      stream.saveInto(streamState, 0);
+      streamState.forEach((word, i) => (d[D.D_STREAM + i] = word));
       const { stick, pedal, pitch, rudderTrim, levers, feather } = core.inputs;
       const data = new Float64Array(n + d.length + 4 + 2 * core.engineCount);
       data.set(x);
@@ -90,11 +94,12 @@ export function createPlant(setup: PlantSetup, options: PlantOptions = {}): Plan
       const { inputs } = core;
       const controls = n + d.length;
       x.set(data.subarray(0, n));
-      d.set(data.subarray(n, controls));
+      for (let i = 0; i < d.length; i++) d[i] = data[n + i];
       [inputs.stick, inputs.pedal, inputs.pitch, inputs.rudderTrim] = data.subarray(controls, controls + 4);
       inputs.levers.set(data.subarray(controls + 4, controls + 4 + core.engineCount));
       inputs.feather.set(data.subarray(controls + 4 + core.engineCount));
-      stream.restoreFrom(d, D.D_STREAM);
+      streamState.set(data.subarray(n + D.D_STREAM, n + D.D_STREAM + STREAM_STATE_LENGTH));
+      stream.restoreFrom(streamState, 0);
       h[H_CONFIG_HELD] = -1; // the held configuration is computed afresh
       fault = null;
     },
@@ -105,7 +110,10 @@ export function createPlant(setup: PlantSetup, options: PlantOptions = {}): Plan
   };
 }
 
+/** Names the first state that is not finite, surfaces and thrusts before the motion they would spoil. */
 function faultText(tick: number, state: Float64Array): string {
-  const index = state.findIndex((value) => !Number.isFinite(value));
+  const broken = (value: number): boolean => !Number.isFinite(value);
+  const late = state.subarray(X_AILERON).findIndex(broken);
+  const index = late >= 0 ? late + X_AILERON : state.findIndex(broken);
   return `tick ${tick}: the ${stateName(index)} is not finite`;
 }

@@ -34,12 +34,28 @@ const NAMES = [
   'air distance',
 ];
 
-/** Number of integrated states with `engineCount` engines. */
+/**
+ * Number of integrated states.
+ *
+ * @param engineCount  Number of engines.
+ * @returns  Length of `Plant.x`.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  This file.
+ */
 export function stateLength(engineCount: number): number {
   return X_THRUST + engineCount;
 }
 
-/** Name for people of the state at an index. */
+/**
+ * Name for people of the state at an index.
+ *
+ * @param index  Place in `Plant.x`.
+ * @returns  A few words.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  This file.
+ */
 export function stateName(index: number): string {
   return NAMES[index] ?? `thrust of engine ${index - X_THRUST + 1}`;
 }

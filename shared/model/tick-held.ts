@@ -3,8 +3,6 @@
  * per-engine ones (`Core.e`), and of what a recorded evaluation leaves behind (`Core.made`).
  * One flat Float64Array each: a write to a captured `let` would allocate.
  */
-import { DERIVATIVE_COUNT } from './derivatives.ts';
-
 // constants of the aircraft and the start
 export const H_AREA = 0;
 export const H_SPAN = 1;
@@ -19,7 +17,6 @@ export const H_CL_TRIM = 9;
 export const H_INV_LAG = 10;
 export const H_AILERON_RATE = 11;
 export const H_RUDDER_RATE = 12;
-export const H_RUDDER_MAX = 13;
 export const H_INV_WASHOUT = 14;
 export const H_HAS_JET = 15;
 export const H_HAS_FIN = 16;
@@ -62,15 +59,14 @@ export const H_PATH_RATE = 49;
 export const H_INTEGRAL_NEXT = 50;
 // controls
 export const H_AILERON_CMD = 51;
-export const H_INV_LAG_AILERON = 52;
 export const H_AILERON_EFFECT = 53;
-export const H_RUDDER_FAULT = 54;
-export const H_RUDDER_CMD = 55; // of the fault
+export const H_DECAY_HALF = 54; // exp(−t/lag) over half a tick and a whole one
+export const H_RUDDER_CMD = 55;
 export const H_INV_LAG_RUDDER = 56;
 export const H_RUDDER_PILOT = 57; // the pilot's share
 export const H_RUDDER_TRIM = 58;
-export const H_DAMPER_GAIN = 59;
-export const H_DAMPER_LIMIT = 60;
+export const H_DAMPER = 59; // the yaw damper's share
+export const H_DECAY_FULL = 60;
 export const H_RATIO = 61;
 export const H_EAS = 62;
 export const H_FIN_DROP = 63;
@@ -81,8 +77,13 @@ export const H_TAN_PATH = 66;
 export const H_SIN_PATH = 67;
 /** Density at the start of the tick (of the start of the run in the small-disturbance motion). */
 export const H_DENSITY = 68;
-export const H_LINEAR = 69;
-export const HELD_LENGTH = H_LINEAR + DERIVATIVE_COUNT;
+export const H_CL_LOWEST = 69;
+/** Surfaces at half and at the end of the tick. */
+export const H_AILERON_HALF = 70;
+export const H_AILERON_FULL = 71;
+export const H_RUDDER_HALF = 72;
+export const H_RUDDER_FULL = 73;
+export const HELD_LENGTH = 74;
 
 // per engine
 export const E_FACTOR = 0; // share of the healthy full-lever thrust that is asked for
@@ -125,8 +126,8 @@ export const M_WIND_AZ = 21;
 export const M_GUST_V = 22;
 export const M_GUST_P = 23;
 export const M_GUST_R = 24;
-export const M_DAMPER = 25;
-export const M_SIGMA_JET = 26;
-export const M_SOUND = 27;
-export const M_LET_GO = 28;
+export const M_SIGMA_JET = 25;
+export const M_SOUND = 26;
+export const M_LET_GO = 27; // not 0 when the assistant lets go
+export const M_REGIME = 28; // which pieces of the equations hold; a change within a step is a corner
 export const MADE_LENGTH = 29;

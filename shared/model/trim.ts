@@ -64,7 +64,14 @@ const BANK_TOLERANCE_RAD = 1e-12;
 const LARGEST_BANK_RAD = 85 * DEG;
 const SINGULAR = 1e-12;
 
-/** A trim record to be filled by `TrimSolver.solve`. */
+/**
+ * A trim record to be filled by `TrimSolver.solveInto`; all zero.
+ *
+ * @returns  A fresh record; rad, N.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  This file.
+ */
 export function createTrimSolution(): TrimSolution {
   return {
     betaRad: 0,
@@ -201,7 +208,15 @@ export function trimStraight(aircraft: Aircraft, condition: TrimCondition, closu
   return out;
 }
 
-/** One sentence for people about a failed trim. */
+/**
+ * One sentence for people about a failed trim.
+ *
+ * @param failure  Why there is no trim.
+ * @returns  The sentence.
+ * @throws  Nothing.
+ * @sign  none
+ * @source  This file.
+ */
 export function trimFailureText(failure: TrimFailure): string {
   return failure === 'singular-trim'
     ? 'Straight flight has no unique trim here: aileron and rudder do not balance rolling and yawing independently.'

@@ -97,7 +97,7 @@ export interface Normals {
  * @source        Covariance of the filters, derived in `advanceTurbulence`.
  */
 export function startTurbulence(
-  s: Float64Array,
+  s: number[],
   at: number,
   noise: Normals,
   tasMps: number,
@@ -133,7 +133,7 @@ export function startTurbulence(
  * @source        MIL-F-8785C 3.7.5 filters; the project's reference table, turbulence; step derived here.
  */
 export function advanceTurbulence(
-  s: Float64Array,
+  s: number[],
   at: number,
   noise: Normals,
   tasMps: number,
@@ -186,7 +186,7 @@ function apart(a: number, b: number): number {
 
 /** Three normal numbers with the given covariance (Cholesky) and means, written from `at`. */
 function drawInto(
-  s: Float64Array,
+  s: number[],
   at: number,
   noise: Normals,
   q11: number,
@@ -213,13 +213,34 @@ function drawInto(
   s[at + 2] = m3 + l31 * n1 + l32 * n2 + l33 * n3;
 }
 
-/** Lateral gust of the filter states; m/s. */
-export function lateralGustMps(s: Float64Array, at: number, sigmaMps: number): number {
+/**
+ * Lateral gust of the filter states; m/s.
+ *
+ * @param s  Filter states.
+ * @param at  Place of x1.
+ * @param sigmaMps  rms; m/s.
+ * @returns  v_g = σ/√2 (√3 x1 + (1−√3) x2); m/s.
+ * @throws  Nothing.
+ * @sign  air moving to the right positive
+ * @source  MIL-F-8785C 3.7.5 (Hv).
+ */
+export function lateralGustMps(s: number[], at: number, sigmaMps: number): number {
   return sigmaMps * Math.sqrt(0.5) * (C1 * s[at] + C2 * s[at + 1]);
 }
 
-/** Yaw gust of the filter states; rad/s. */
-export function yawGustRadS(s: Float64Array, at: number, sigmaMps: number, spanM: number): number {
+/**
+ * Yaw gust of the filter states; rad/s.
+ *
+ * @param s  Filter states.
+ * @param at  Place of x1.
+ * @param sigmaMps  rms of the lateral gust; m/s.
+ * @param spanM  Wing span; m.
+ * @returns  r_g; rad/s.
+ * @throws  Nothing.
+ * @sign  air turning to the right positive
+ * @source  MIL-F-8785C 3.7.5 (Hr).
+ */
+export function yawGustRadS(s: number[], at: number, sigmaMps: number, spanM: number): number {
   const difference = C1 * s[at] + C2 * s[at + 1] - s[at + 2];
   return (sigmaMps * Math.sqrt(0.5) * difference * PI) / (3 * spanM);
 }

@@ -1,5 +1,6 @@
 import { EigenvalueDecomposition, Matrix } from 'ml-matrix';
 import { balance } from './balance.ts';
+import { inverseIteration } from './eigenvector.ts';
 import { requireFinite } from './errors.ts';
 
 /** A complex vector as its real and imaginary parts. */
@@ -69,9 +70,21 @@ export function eigenDecomposition(a: ArrayLike<number>, n: number): EigenDecomp
       vector.re[i] = columns.get(i, realColumn) * scale[i];
       if (im[j] !== 0) vector.im[i] = columns.get(i, realColumn + 1) * scale[i] * (im[j] > 0 ? 1 : -1);
     }
-    vectors.push(normalised(vector));
+    vectors.push(
+      normalised(isFinite(vector) ? vector : fallback(scaled.to1DArray(), n, re[j] / norm, im[j] / norm, scale)),
+    );
   }
   return { re, im, vectors };
+}
+
+function isFinite({ re, im }: ComplexVector): boolean {
+  return re.every(Number.isFinite) && im.every(Number.isFinite);
+}
+
+/** The vector by inverse iteration, where back substitution has divided by nothing. */
+function fallback(a: number[], n: number, re: number, im: number, scale: Float64Array): ComplexVector {
+  const { re: x, im: y } = inverseIteration(a, n, re, im);
+  return { re: x.map((value, i) => value * scale[i]), im: y.map((value, i) => value * scale[i]) };
 }
 
 /** The same direction with unit length and its largest component real and positive. */

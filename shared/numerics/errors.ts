@@ -21,7 +21,15 @@ export class NumericsError extends Error {
   }
 }
 
-/** Throws `non-finite-input` when a value of the array is NaN or infinite, `bad-dimension` when its length differs. */
+/**
+ * Passes an array of the wanted length without NaN or infinity, refuses any other.
+ *
+ * @param values  What the caller was given.
+ * @param length  How many are needed.
+ * @param name    How the message calls them.
+ * @throws {NumericsError} bad-dimension when the length differs, non-finite-input when a value is NaN or infinite.
+ * @source        derived here.
+ */
 export function requireFinite(values: ArrayLike<number>, length: number, name: string): void {
   if (values.length !== length) {
     throw new NumericsError('bad-dimension', `${name} has ${values.length} values, ${length} are needed`);

@@ -107,7 +107,13 @@ export function polynomialRoots(coefficients: ArrayLike<number>): Roots {
   return { re, im };
 }
 
-/** The coefficients from the first that is more than rounding. */
+/**
+ * The coefficients from the first that is more than rounding.
+ *
+ * @param coefficients  Highest power first.
+ * @returns             A view of a fresh array; empty when all are rounding.
+ * @source              derived here: leading ones below NEGLIGIBLE_LEAD of the largest are dropped.
+ */
 export function significantCoefficients(coefficients: ArrayLike<number>): Float64Array {
   let largest = 0;
   for (let i = 0; i < coefficients.length; i++) largest = Math.max(largest, Math.abs(coefficients[i]));
@@ -116,7 +122,15 @@ export function significantCoefficients(coefficients: ArrayLike<number>): Float6
   return Float64Array.from(coefficients).subarray(first);
 }
 
-/** Real and imaginary part of a real polynomial (highest power first) at the complex point re + i·im. */
+/**
+ * Value of a real polynomial at the complex point re + i·im.
+ *
+ * @param coefficients  Highest power first.
+ * @param re            Real part of the point.
+ * @param im            Imaginary part of the point.
+ * @returns             Real and imaginary part of the value.
+ * @source              Horner's scheme.
+ */
 export function evaluatePolynomial(
   coefficients: ArrayLike<number>,
   re: number,

@@ -42,7 +42,7 @@ export interface BudgetEvaluator {
  * @throws what `createRun` and `createReferencePilot` throw.
  */
 export function createBudgetEvaluator(spec: RunSpec): BudgetEvaluator {
-  const run = createRun(spec);
+  const run = createRun(spec, { lean: true });
   const counted = new Set(
     spec.scenario.criteria.filter((c) => c.required && !REACTION_MEASURES.includes(c.measure)).map((c) => c.id),
   );

@@ -33,6 +33,16 @@ export interface RunSpec {
   seed: number;
   /** Given by the server for an attempt; drawn from the seed otherwise. */
   drawn?: DrawnValues;
+  /** Events a class added at run time, with the tick before whose input they were added; ascending. */
+  injected?: readonly { tick: number; event: ScenarioEvent }[];
+}
+
+export interface RunOptions {
+  /**
+   * For thousands of runs at once: no state hash (`stateHash` refuses) and no watch for the limits of the data (`warnings`
+   * without them). Results are the same.
+   */
+  lean?: boolean;
 }
 
 export interface FiredEvent {
@@ -86,9 +96,13 @@ export interface Run {
   readonly durationTicks: number;
   readonly ended: EndReason | null;
   readonly endDetail: string | null;
-  /** Observation of the present tick; refreshed by every step. The same object each time. */
+  /**
+   * Observation of the present tick. The same object each time; its members are worked out when they are read, so reading
+   * them is right at any time and steps that nobody looks at cost nothing.
+   */
   readonly now: Observation;
   readonly fired: readonly FiredEvent[];
+  /** Remarks: times outside the data with causes, pedal reversals, what does not fit the airframe, events that never came. */
   readonly warnings: readonly string[];
   /** Messages being shown at this tick. */
   readonly messages: readonly { text: string; untilS: number }[];
@@ -109,7 +123,7 @@ export interface Run {
   leave(): void;
   criteria(): RunningCriterion[];
   results(): CriterionResult[];
-  /** All required criteria met (near counts as met). */
+  /** All required criteria met (near counts as met); never true of a run that was left or whose state was not finite. */
   passed(): boolean;
   /** Running hash over every state since tick 0, 16 hex digits. */
   stateHash(): string;
@@ -117,4 +131,5 @@ export interface Run {
   restore(snapshot: RunSnapshot): void;
 }
 
-export type CreateRun = (spec: RunSpec) => Run;
+/** Throws ScenarioError (scenario-errors.ts) when the scenario does not fit the airframe, ModelError when it cannot be trimmed. */
+export type CreateRun = (spec: RunSpec, options?: RunOptions) => Run;

@@ -43,7 +43,7 @@ export function parseScenario(input: unknown): ParsedScenario {
   const parsed = scenarioSchema.safeParse(input);
   if (!parsed.success) {
     const issues = issuesFromSchema(parsed.error, input).map((issue) => explained(issue, input));
-    return { ok: false, issues };
+    return { ok: false, issues: issues.filter((issue, i) => !issues.slice(0, i).some((other) => sameIssue(issue, other))) };
   }
   const issues: FieldIssue[] = [];
   const warnings: FieldIssue[] = [];
@@ -55,6 +55,10 @@ export function parseScenario(input: unknown): ParsedScenario {
   if (issues.length > 0) return { ok: false, issues };
   // The schema accepted it, so the input has the document's type.
   return { ok: true, scenario: parsed.data, document: input as ScenarioDocument, warnings };
+}
+
+function sameIssue(a: FieldIssue, b: FieldIssue): boolean {
+  return a.field === b.field && a.rule === b.rule && a.message === b.message;
 }
 
 /** Refusals that would drown in followers: another version, thousands of events. */
@@ -107,9 +111,10 @@ function explained(issue: FieldIssue, input: unknown): FieldIssue {
   if (/^\/events\/\d+\/at$/u.test(field) || (/^\/events\/\d+\/at\//u.test(field) && issue.rule !== 'minimum' && issue.rule !== 'maximum')) {
     return explainedTrigger(issue, input);
   }
-  if (/^\/criteria\/\d+\/limit$/u.test(field)) {
+  const limit = /^\/criteria\/\d+\/limit/u.exec(field)?.[0];
+  if (limit !== undefined && membersOf(valueAt(input, limit), ['max', 'min', 'within']).length !== 1) {
     return {
-      field,
+      field: limit,
       rule: 'limit',
       message: 'a limit is {"max", "unit"}, {"min", "unit"} or {"within": [a, b], "unit"}',
       remedy: 'Give exactly one of max, min and within, and the unit.',
@@ -118,11 +123,14 @@ function explained(issue: FieldIssue, input: unknown): FieldIssue {
   return issue;
 }
 
+/** Which of some members an unknown value has. */
+function membersOf(value: unknown, names: readonly string[]): string[] {
+  return typeof value === 'object' && value !== null ? names.filter((name) => Object.hasOwn(value, name)) : [];
+}
+
 function explainedTrigger(issue: FieldIssue, input: unknown): FieldIssue {
   const at = /^\/events\/\d+\/at/u.exec(issue.field)?.[0] ?? issue.field;
-  const value = valueAt(input, at);
-  const given = typeof value === 'object' && value !== null ? Object.keys(value) : [];
-  const forms = ['time_s', 'after', 'when'].filter((name) => given.includes(name));
+  const forms = membersOf(valueAt(input, at), ['time_s', 'after', 'when']);
   if (forms.length === 1) return issue;
   return {
     field: at,

@@ -29,8 +29,8 @@ type Seen = Pick<Observation, 'tick' | 'pedal' | 'rRadS' | 'phiRad' | 'rudderSat
 
 export interface ReactionTracker {
   readonly marks: ReactionMarks;
-  /** Starts counting from this tick; the first call counts. */
-  begin(now: Seen): void;
+  /** Starts counting from an event; `now` is the first observation after it. The first call counts. */
+  begin(now: Seen, eventTick: number): void;
   see(now: Seen, deadSide: -1 | 0 | 1): void;
 }
 
@@ -55,9 +55,9 @@ export function createReactionTracker(): ReactionTracker {
 
   return {
     marks,
-    begin(now) {
+    begin(now, eventTick) {
       if (marks.eventTick !== null) return;
-      marks.eventTick = now.tick;
+      marks.eventTick = eventTick;
       marks.peakBankTick = now.tick;
       marks.peakBankRad = now.phiRad;
       pedalAtEvent = now.pedal;
@@ -67,8 +67,10 @@ export function createReactionTracker(): ReactionTracker {
       // Toward the live side; with no engine failed, against the yaw.
       const side = deadSide !== 0 ? deadSide : now.rRadS > 0 ? -1 : now.rRadS < 0 ? 1 : 0;
       const push = (now.pedal - pedalAtEvent) * side;
-      correctSince = push >= PEDAL_STEP ? (correctSince ?? now.tick) : null;
-      wrongSince = push <= -PEDAL_STEP ? (wrongSince ?? now.tick) : null;
+      // What an observation shows was held over the tick that led to it.
+      const held = now.tick - 1;
+      correctSince = push >= PEDAL_STEP ? (correctSince ?? held) : null;
+      wrongSince = push <= -PEDAL_STEP ? (wrongSince ?? held) : null;
       if (marks.firstCorrectPedalTick === null && correctSince !== null && now.tick - correctSince >= holdTicks) {
         marks.firstCorrectPedalTick = correctSince;
         marks.correctSide = side;

@@ -19,7 +19,18 @@ const SHARED_ORDER = ['units', 'numerics', 'model', 'analysis', 'scenario', 'con
 
 /** Inside src: which rooms each room may import besides itself. Files directly in src may import every room. */
 const CLIENT_ROOMS = {
-  views: ['features', 'stores', 'services', 'runner', 'components', 'composables', 'stage', 'router', 'styles', 'assets'],
+  views: [
+    'features',
+    'stores',
+    'services',
+    'runner',
+    'components',
+    'composables',
+    'stage',
+    'router',
+    'styles',
+    'assets',
+  ],
   features: ['stores', 'services', 'runner', 'components', 'composables', 'stage', 'router', 'styles', 'assets'],
   stores: ['services', 'runner'],
   services: [],

@@ -1,6 +1,6 @@
 import { Column, Entity, Index, JoinColumn, ManyToOne, OneToMany, PrimaryColumn, type Relation } from 'typeorm';
 import { OrganisationEntity } from './organisation.entity.ts';
-import { PersonRoleEntity } from './person-role.entity.ts';
+import type { PersonRoleEntity } from './person-role.entity.ts';
 
 @Entity('person')
 @Index('ux_person_email_key', ['emailKey'], { unique: true })
@@ -43,6 +43,7 @@ export class PersonEntity {
   @Column({ name: 'deactivated_at', type: 'datetime', precision: 3, nullable: true })
   deactivatedAt!: Date | null;
 
-  @OneToMany(() => PersonRoleEntity, (role) => role.person)
+  /** Named by its table: the two entities refer to each other and must not import each other. */
+  @OneToMany('person_role', 'person')
   roles?: Relation<PersonRoleEntity[]>;
 }

@@ -2,6 +2,7 @@ import { airCases } from './air-checks.ts';
 import { controlSpeedCases } from './control-speed-checks.ts';
 import { shippedControlSpeedCases } from './control-speed-facts.ts';
 import { criteriaCases } from './criteria-checks.ts';
+import { dimensionalCases } from './dimensional-checks.ts';
 import { etkinCases } from './etkin-checks.ts';
 import { finCases } from './fin-checks.ts';
 import { modesCases } from './modes-checks.ts';
@@ -24,6 +25,7 @@ export function allChecks(airframes: ShippedAirframes): PublishedCase[] {
   return [
     ...etkinCases(),
     ...modesCases(),
+    ...dimensionalCases(),
     ...responseCases(),
     ...trapCases(),
     ...controlSpeedCases(),

@@ -5,9 +5,10 @@ import { classicalApproximations } from '../approximations.ts';
 import type { Approximation } from '../approximations.ts';
 import { values } from './case-builders.ts';
 import type { ValueRow } from './case-builders.ts';
-import { ETKIN_747, ETKIN_747_MATRIX } from './data-sets.ts';
+import { ETKIN_747 } from './data-sets.ts';
 import { COMPUTED, dutchPhiOverBeta, ETKIN_MATRIX, fourRoots, modeOfKind, systemOf } from './modes-helpers.ts';
 import type { PublishedCase } from './published-case.ts';
+import { ETKIN_747_MATRIX } from './textbook-matrices.ts';
 
 const SOURCE = 'Etkin & Reid, Dynamics of Flight, 3rd ed. 1996, eq. 6.7,1–6.7,2 and section 6.8';
 const ROOTS = { spiral: -0.0072973, roll: -0.56248, re: -0.033011, im: 0.94655 };

@@ -1,10 +1,11 @@
 import { FT, SLUG } from '../../units/constants.ts';
 import { values } from './case-builders.ts';
-import { B747_APPROACH, C310_APPROACH, DC8_APPROACH, LEARJET_CRUISE, NAVION, NAVION_MATRIX } from './data-sets.ts';
+import { B747_APPROACH, C310_APPROACH, DC8_APPROACH, LEARJET_CRUISE, NAVION } from './data-sets.ts';
 import { DC8_APPROACH_DIMENSIONAL, DC8_CRUISE_DIMENSIONAL, primedSystem } from './dimensional-sets.ts';
 import { COMPUTED, dutchPhiOverBeta, fourRoots, modeOfKind, systemOf } from './modes-helpers.ts';
 import type { PublishedCase } from './published-case.ts';
 import { analyseSet } from './set-airframe.ts';
+import { NAVION_MATRIX } from './textbook-matrices.ts';
 
 const SLUG_FT2 = SLUG * FT * FT;
 

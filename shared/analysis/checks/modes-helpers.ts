@@ -3,9 +3,9 @@ import { lateralModes } from '../modes.ts';
 import type { Mode, ModeKind } from '../modes.ts';
 import { phiOverBeta } from '../stability-map.ts';
 import type { ValueRow } from './case-builders.ts';
-import { ETKIN_747_MATRIX, ETKIN_747_SPEED } from './data-sets.ts';
 import type { PublishedSet } from './data-sets.ts';
 import { analyseSet } from './set-airframe.ts';
+import { ETKIN_747_MATRIX, ETKIN_747_SPEED } from './textbook-matrices.ts';
 
 /** What a case carries whose expected number was worked out independently. */
 export const COMPUTED = { provenance: 'computed', source: 'worked out independently from the printed inputs' } as const;

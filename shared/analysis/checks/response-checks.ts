@@ -1,15 +1,13 @@
-import { DEG, FT } from '../../units/constants.ts';
+import { DEG } from '../../units/constants.ts';
 import { rollRateExtrema, timeToBankS } from '../roll-performance.ts';
 import { transferFunction } from '../transfer-functions.ts';
 import type { TransferFunction } from '../transfer-functions.ts';
 import { values } from './case-builders.ts';
 import type { ValueRow } from './case-builders.ts';
 import { DC8_APPROACH } from './data-sets.ts';
-import { DC8_APPROACH_DIMENSIONAL, DC8_CRUISE_DIMENSIONAL, primedSystem } from './dimensional-sets.ts';
-import type { DimensionalName, DimensionalSet, PrimedName } from './dimensional-sets.ts';
+import { DC8_APPROACH_DIMENSIONAL, primedSystem } from './dimensional-sets.ts';
 import { COMPUTED, modeOfKind } from './modes-helpers.ts';
 import type { PublishedCase } from './published-case.ts';
-import { analyseSet } from './set-airframe.ts';
 
 const PHI = 3;
 
@@ -89,71 +87,11 @@ function stepRows(): ValueRow[] {
   ];
 }
 
-/** Dimensional and primed derivatives from the coefficients, ft and slug. */
-function dimensionalRows(id: string, what: string, printed: DimensionalSet): ValueRow[] {
-  const plain = (name: DimensionalName): number => {
-    const { system, aircraft } = analyseSet(printed.set);
-    const { qbarPa, tasMps, derivatives: d } = system;
-    const force = (qbarPa * aircraft.wingAreaM2) / system.massKg / FT;
-    const roll = (qbarPa * aircraft.wingAreaM2 * aircraft.spanM) / system.Ixx;
-    const yaw = (roll * system.Ixx) / system.Izz;
-    const rate = aircraft.spanM / (2 * tasMps);
-    const all: Record<DimensionalName, number> = {
-      Yb: force * d[0],
-      Ydr: force * d[4],
-      Lb: roll * d[5],
-      Lp: roll * rate * d[6],
-      Lr: roll * rate * d[7],
-      Lda: roll * d[8],
-      Ldr: roll * d[9],
-      Nb: yaw * d[10],
-      Np: yaw * rate * d[11],
-      Nr: yaw * rate * d[12],
-      Nda: yaw * d[13],
-      Ndr: yaw * d[14],
-    };
-    return all[name];
-  };
-  const primed = (name: PrimedName): number => {
-    const { A, B } = analyseSet(printed.set).system;
-    const all: Record<PrimedName, number> = {
-      Lb: A[4],
-      Lp: A[5],
-      Lr: A[6],
-      Lda: B.aileron[1],
-      Ldr: B.rudder[1],
-      Nb: A[8],
-      Np: A[9],
-      Nr: A[10],
-      Nda: B.aileron[2],
-      Ndr: B.rudder[2],
-    };
-    return all[name];
-  };
-  /** Half a per cent, or one unit of the last printed digit. */
-  const tolerance = (value: number, digits: number) => Math.max(0.005 * Math.abs(value), digits);
-  const digit = (name: string) => (name.startsWith('Y') ? 0.01 : 0.001);
-  const rows: ValueRow[] = [];
-  for (const [name, value] of Object.entries(printed.plain)) {
-    const key = name as DimensionalName; // the entries of a record have its keys
-    rows.push([`${id}-${name}`, `${what}: ${name}`, '', value, tolerance(value, digit(name)), () => plain(key)]);
-  }
-  for (const [name, value] of Object.entries(printed.primed)) {
-    const key = name as PrimedName; // the same
-    rows.push([`${id}-${name}-primed`, `${what}: ${name}′`, '', value, tolerance(value, 0.001), () => primed(key)]);
-  }
-  return rows;
-}
-
-/** The DC-8: transfer function, step response, dimensional derivatives. */
+/** The DC-8: transfer function and step response. */
 export function responseCases(): PublishedCase[] {
   const seen = { source: DC8_APPROACH.source, provenance: 'seen' } as const;
   return [
     ...values({ group: 'Transfer function: DC-8 approach', ...seen }, transferRows()),
     ...values({ group: 'Step response: DC-8 approach', ...COMPUTED }, stepRows()),
-    ...values({ group: 'Dimensional derivatives: DC-8', ...seen }, [
-      ...dimensionalRows('dc8-1', 'Approach', DC8_APPROACH_DIMENSIONAL),
-      ...dimensionalRows('dc8-3', 'Cruise', DC8_CRUISE_DIMENSIONAL),
-    ]),
   ];
 }

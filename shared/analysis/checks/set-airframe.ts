@@ -3,6 +3,7 @@ import { parseAirframe } from '../../model/airframe-schema.ts';
 import type { Airframe } from '../../model/airframe-schema.ts';
 import { prepareAircraft } from '../../model/aircraft.ts';
 import type { Aircraft } from '../../model/aircraft.ts';
+import type { LateralDerivatives } from '../../model/conversions.ts';
 import { buildSmallDisturbance } from '../../model/small-disturbance.ts';
 import type { LateralCondition, SmallDisturbance } from '../../model/small-disturbance.ts';
 import { NumericsError } from '../../numerics/errors.ts';
@@ -16,6 +17,27 @@ function factors(set: PublishedSet): { length: number; mass: number; force: numb
 /** Lift coefficient of level flight with the set's own numbers. */
 function liftCoefficient(set: PublishedSet): number {
   return set.W / (0.5 * set.rho * set.V * set.V * set.S);
+}
+
+/** The coefficients of a set under the names of the airframe format. */
+export function derivativesOfSet({ derivatives: d }: PublishedSet): LateralDerivatives {
+  return {
+    CY_beta: d.CYb,
+    CY_p: d.CYp,
+    CY_r: d.CYr,
+    CY_da: 0,
+    CY_dr: d.CYdr,
+    Cl_beta: d.Clb,
+    Cl_p: d.Clp,
+    Cl_r: d.Clr,
+    Cl_da: d.Clda,
+    Cl_dr: d.Cldr,
+    Cn_beta: d.Cnb,
+    Cn_p: d.Cnp,
+    Cn_r: d.Cnr,
+    Cn_da: d.Cnda,
+    Cn_dr: d.Cndr,
+  };
 }
 
 /**
@@ -32,7 +54,6 @@ function liftCoefficient(set: PublishedSet): number {
 export function documentOfSet(set: PublishedSet): Record<string, unknown> {
   const { length, mass } = factors(set);
   const inertia = mass * length * length;
-  const d = set.derivatives;
   return {
     format: 'sidewash.airframe/1',
     name: set.aircraft.slice(0, 80),
@@ -55,21 +76,7 @@ export function documentOfSet(set: PublishedSet): Record<string, unknown> {
           {
             CL: liftCoefficient(set),
             alpha_deg: set.alphaDeg,
-            CY_beta: d.CYb,
-            CY_p: d.CYp,
-            CY_r: d.CYr,
-            CY_da: 0,
-            CY_dr: d.CYdr,
-            Cl_beta: d.Clb,
-            Cl_p: d.Clp,
-            Cl_r: d.Clr,
-            Cl_da: d.Clda,
-            Cl_dr: d.Cldr,
-            Cn_beta: d.Cnb,
-            Cn_p: d.Cnp,
-            Cn_r: d.Cnr,
-            Cn_da: d.Cnda,
-            Cn_dr: d.Cndr,
+            ...derivativesOfSet(set),
           },
         ],
       },

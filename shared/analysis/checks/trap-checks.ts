@@ -1,12 +1,17 @@
+import { derivativesBodyToStability, derivativesStabilityToBody } from '../../model/conversions.ts';
+import type { LateralDerivatives } from '../../model/conversions.ts';
 import { inertiasStabilityToBody } from '../../model/inertia.ts';
-import { cos, sin } from '../../numerics/elementary.ts';
+import { buildSmallDisturbance } from '../../model/small-disturbance.ts';
 import { DEG } from '../../units/constants.ts';
+import { withParameter } from '../parameters.ts';
+import type { DerivativeName } from '../parameters.ts';
 import { facts, shown } from './case-builders.ts';
 import type { FactRow } from './case-builders.ts';
 import { B747_APPROACH, ETKIN_747, NAVION } from './data-sets.ts';
-import type { PublishedDerivatives, PublishedSet } from './data-sets.ts';
+import type { PublishedSet } from './data-sets.ts';
 import { modeOfKind, systemOf } from './modes-helpers.ts';
 import type { PublishedCase } from './published-case.ts';
+import { analyseSet, derivativesOfSet } from './set-airframe.ts';
 
 /** Angle of attack of the power approach about which the inertias are turned; deg. */
 const ALPHA_DEG = 5.7;
@@ -20,21 +25,15 @@ function dampingOf(set: PublishedSet): number {
 /** Angle of attack of a slow flight, at which taking body-axis derivatives for stability-axis ones is fatal; deg. */
 const SLOW_ALPHA_DEG = 12;
 
-/** The same derivatives about body axes: moments and rates turned by the angle of attack. */
-function aboutBodyAxes(d: PublishedDerivatives, alphaRad: number): PublishedDerivatives {
-  const c = cos(alphaRad);
-  const s = sin(alphaRad);
-  return {
-    ...d,
-    CYp: d.CYp * c - d.CYr * s,
-    CYr: d.CYr * c + d.CYp * s,
-    Clb: d.Clb * c - d.Cnb * s,
-    Cnb: d.Cnb * c + d.Clb * s,
-    Clp: d.Clp * c * c + d.Cnr * s * s - (d.Clr + d.Cnp) * s * c,
-    Clr: d.Clr * c * c - d.Cnp * s * s + (d.Clp - d.Cnr) * s * c,
-    Cnp: d.Cnp * c * c - d.Clr * s * s + (d.Clp - d.Cnr) * s * c,
-    Cnr: d.Cnr * c * c + d.Clp * s * s + (d.Clr + d.Cnp) * s * c,
-  };
+/** Dutch roll damping of a set whose derivatives are replaced as they stand. */
+function dampingWith(set: PublishedSet, derivatives: LateralDerivatives): number {
+  const { aircraft, condition } = analyseSet(set);
+  let changed = aircraft;
+  for (const [name, value] of Object.entries(derivatives)) {
+    // the members of a derivative row have the names of the sweep's parameters
+    changed = withParameter(changed, condition, name as DerivativeName, value).aircraft;
+  }
+  return modeOfKind(buildSmallDisturbance(changed, condition).A, 'dutch-roll').zeta ?? NaN;
 }
 
 const ROWS: readonly FactRow[] = [
@@ -44,11 +43,13 @@ const ROWS: readonly FactRow[] = [
     'Body-axis derivatives taken as stability-axis ones can make a stable Dutch roll unstable',
     () => {
       const right = dampingOf(ETKIN_747);
-      const derivatives = aboutBodyAxes(ETKIN_747.derivatives, SLOW_ALPHA_DEG * DEG);
-      const wrong = dampingOf({ ...ETKIN_747, derivatives });
+      const body = derivativesStabilityToBody(derivativesOfSet(ETKIN_747), SLOW_ALPHA_DEG * DEG);
+      const wrong = dampingWith(ETKIN_747, body);
+      const converted = dampingWith(ETKIN_747, derivativesBodyToStability(body, SLOW_ALPHA_DEG * DEG));
+      const holds = right > 0 && wrong < 0 && Math.abs(converted - right) < 1e-9;
       return {
-        holds: right > 0 && wrong < 0,
-        shown: `ζ ${shown(right)} becomes ${shown(wrong)} at ${SLOW_ALPHA_DEG}°`,
+        holds,
+        shown: `ζ ${shown(right)}, at ${SLOW_ALPHA_DEG}° ${shown(wrong)}, converted ${shown(converted)}`,
       };
     },
   ],

@@ -5,11 +5,11 @@
  * functions) is refused with its place.
  */
 import type { MathNode, OperatorNode } from 'mathjs';
-import { EXPRESSION_FUNCTIONS, EXPRESSION_NAMES } from './names.ts';
-import type { ExpressionInputs } from './names.ts';
-import { ExpressionError, MAX_EXPRESSION_NESTING, PERCENT_SYMBOL, SINCE_SYMBOL } from './tokens.ts';
+import { EXPRESSION_FUNCTIONS, EXPRESSION_NAMES, isState, MADE_SIGNAL, STATE_SIGNAL } from './names.ts';
+import type { ExpressionInputs, SignalName } from './names.ts';
+import { ExpressionError, MAX_EXPRESSION_NESTING, SINCE_SYMBOL } from './tokens.ts';
 import type { Token } from './tokens.ts';
-import { dimensionWords, NUMBER, sameDimension, TIME, timesPower, UNITS, unitsOf, WORD_UNITS } from './units.ts';
+import { dimensionWords, NUMBER, sameDimension, TIME, timesPower, UNITS, unitsOf } from './units.ts';
 import type { Dimension } from './units.ts';
 
 export type NumberReader = (x: ExpressionInputs) => number;
@@ -20,6 +20,8 @@ export interface Quantity {
   dimension: Dimension;
   read: NumberReader;
   constant: number | null;
+  /** Place among the signals when the part is a bare name: comparisons with a constant then read it directly. */
+  signal: SignalName | null;
   position: number;
 }
 export interface Truth {
@@ -36,6 +38,22 @@ const COMPARISONS: Readonly<Record<string, (a: NumberReader, b: NumberReader) =>
   largerEq: (a, b) => (x) => a(x) >= b(x),
   equal: (a, b) => (x) => a(x) === b(x),
   unequal: (a, b) => (x) => a(x) !== b(x),
+};
+const STATE_WITH_CONSTANT: Readonly<Record<string, (k: number, c: number) => TruthReader>> = {
+  smaller: (k, c) => (x) => x.x[k] < c,
+  smallerEq: (k, c) => (x) => x.x[k] <= c,
+  larger: (k, c) => (x) => x.x[k] > c,
+  largerEq: (k, c) => (x) => x.x[k] >= c,
+  equal: (k, c) => (x) => x.x[k] === c,
+  unequal: (k, c) => (x) => x.x[k] !== c,
+};
+const MADE_WITH_CONSTANT: Readonly<Record<string, (k: number, c: number) => TruthReader>> = {
+  smaller: (k, c) => (x) => x.v[k] < c,
+  smallerEq: (k, c) => (x) => x.v[k] <= c,
+  larger: (k, c) => (x) => x.v[k] > c,
+  largerEq: (k, c) => (x) => x.v[k] >= c,
+  equal: (k, c) => (x) => x.v[k] === c,
+  unequal: (k, c) => (x) => x.v[k] !== c,
 };
 const COMPARISONS_WITH_CONSTANT: Readonly<Record<string, (a: NumberReader, c: number) => TruthReader>> = {
   smaller: (a, c) => (x) => a(x) < c,
@@ -55,10 +73,7 @@ export class Compiler {
   private last = 0;
 
   constructor(tokens: readonly Token[]) {
-    this.leaves = tokens.filter(
-      (token) =>
-        (token.kind !== 'sign' && !['and', 'or', 'not'].includes(token.text)) || (token.kind === 'sign' && token.text === '%'),
-    );
+    this.leaves = tokens.filter((token) => token.kind !== 'sign' && !['and', 'or', 'not'].includes(token.text));
   }
 
   compile(node: MathNode, depth: number): Part {
@@ -118,7 +133,14 @@ export class Compiler {
       );
     }
     if (!this.names.includes(token.text)) this.names.push(token.text);
-    return { type: 'quantity', dimension: known.dimension, read: known.read, constant: null, position: token.position };
+    return {
+      type: 'quantity',
+      dimension: known.dimension,
+      read: signalReader(known.signal),
+      constant: null,
+      signal: known.signal,
+      position: token.position,
+    };
   }
 
   private call(node: MathNode, depth: number): Quantity {
@@ -127,7 +149,7 @@ export class Compiler {
       const id = token.text;
       if (!this.sinceIds.includes(id)) this.sinceIds.push(id);
       this.skipSinceSymbol(node);
-      return { type: 'quantity', dimension: TIME, read: (x) => x.sinceS(id), constant: null, position: token.position };
+      return { type: 'quantity', dimension: TIME, read: (x) => x.sinceS(id), constant: null, signal: null, position: token.position };
     }
     if (!EXPRESSION_FUNCTIONS.includes(token.text)) {
       throw this.refuse(`"${token.text}" is not a function`, `Functions are ${EXPRESSION_FUNCTIONS.join(', ')} and since(id).`, token.position);
@@ -149,11 +171,11 @@ export class Compiler {
     const f = a.read;
     const position = token.position;
     if (token.text === 'abs') {
-      return { type: 'quantity', dimension: a.dimension, read: (x) => Math.abs(f(x)), constant: null, position };
+      return { type: 'quantity', dimension: a.dimension, read: (x) => Math.abs(f(x)), constant: null, signal: null, position };
     }
     if (token.text === 'sqrt') {
       const half = timesPower(NUMBER, a.dimension, 0.5);
-      return { type: 'quantity', dimension: half, read: (x) => Math.sqrt(f(x)), constant: null, position };
+      return { type: 'quantity', dimension: half, read: (x) => Math.sqrt(f(x)), constant: null, signal: null, position };
     }
     for (const other of args) this.requireSame(a, other, token.text);
     const readers = args.map((arg) => arg.read);
@@ -163,7 +185,7 @@ export class Compiler {
       for (let i = 1; i < readers.length; i++) best = pick(best, readers[i](x));
       return best;
     };
-    return { type: 'quantity', dimension: a.dimension, read, constant: null, position };
+    return { type: 'quantity', dimension: a.dimension, read, constant: null, signal: null, position };
   }
 
   /** since(…) was tokenised as one word; its placeholder argument must be the only one and carries no token of its own. */
@@ -187,7 +209,7 @@ export class Compiler {
       if (fn === 'unaryPlus') return part;
       const f = part.read;
       if (part.constant !== null) return constantPart(-part.constant, part.dimension, part.position);
-      return { ...part, read: (x) => -f(x) };
+      return { ...part, signal: null, read: (x) => -f(x) };
     }
     if (fn === 'and' || fn === 'or') {
       const left = this.truth(this.compile(args[0], depth), fn);
@@ -211,11 +233,7 @@ export class Compiler {
     const left = this.quantity(this.compile(args[0], depth), 'the left of a comparison');
     const right = this.quantity(this.compile(args[1], depth), 'the right of a comparison');
     this.requireSame(left, right, 'a comparison');
-    const read =
-      right.constant === null
-        ? COMPARISONS[fn](left.read, right.read)
-        : COMPARISONS_WITH_CONSTANT[fn](left.read, right.constant);
-    return { type: 'truth', read, position: left.position };
+    return { type: 'truth', read: comparisonReader(fn, left, right), position: left.position };
   }
 
   private arithmetic(fn: string, left: Quantity, right: Quantity): Quantity {
@@ -234,21 +252,21 @@ export class Compiler {
             ? left.constant + right.constant
             : left.constant - right.constant;
     if (constant !== null) return constantPart(constant, dimension, left.position);
-    return { type: 'quantity', dimension, read, constant, position: left.position };
+    return { type: 'quantity', dimension, read, constant, signal: null, position: left.position };
   }
 
   /** A number (or parenthesis) followed by a unit. */
   private withUnit(args: MathNode[], depth: number): Quantity {
     const left = this.quantity(this.compile(args[0], depth), 'the number before a unit');
-    const unit = unitSymbol(args[1]);
-    if (unit === null) {
+    const token = this.leaves[this.next];
+    if (args[1].type !== 'SymbolNode' || token === undefined || !(Object.hasOwn(UNITS, token.text) || token.text === 'min')) {
       throw this.refuse('an operator is missing here', 'Write + − * / or a comparison between the two parts.');
     }
-    const token = this.take();
-    if (unit === 'min') {
+    this.take();
+    if (token.text === 'min') {
       throw this.refuse('"min" is a unit only in ft/min', 'Write ft/min, or times in s.', token.position);
     }
-    return this.scale(left, UNITS[unit]);
+    return this.scale(left, UNITS[token.text]);
   }
 
   private scale(left: Quantity, unit: { dimension: Dimension; factor: number }): Quantity {
@@ -256,27 +274,10 @@ export class Compiler {
     const factor = unit.factor;
     if (left.constant !== null) return constantPart(left.constant * factor, dimension, left.position);
     const f = left.read;
-    return { ...left, dimension, read: (x) => f(x) * factor };
+    return { ...left, signal: null, dimension, read: (x) => f(x) * factor };
   }
 
-  /** A quotient, or the second half of a compound unit such as deg/s. */
   private quotient(args: MathNode[], depth: number): Quantity {
-    const divisor = unitSymbol(args[1]);
-    const [number, upper] = unitEnd(args[0]);
-    if (divisor !== null && upper !== null && number !== null) {
-      const left = this.quantity(this.compile(number, depth), 'the number before a unit');
-      const upperToken = this.take();
-      this.take();
-      const compound = `${upper}/${divisor}`;
-      if (!Object.hasOwn(UNITS, compound)) {
-        throw this.refuse(
-          `"${compound}" is not a unit of expressions`,
-          'Compound units are m/s, ft/min, deg/s and kt/s.',
-          upperToken.position,
-        );
-      }
-      return this.scale(left, UNITS[compound]);
-    }
     const left = this.quantity(this.compile(args[0], depth), 'the left of "/"');
     const right = this.quantity(this.compile(args[1], depth), 'the right of "/"');
     const dimension = timesPower(left.dimension, right.dimension, -1);
@@ -285,7 +286,7 @@ export class Compiler {
     if (left.constant !== null && right.constant !== null) {
       return constantPart(left.constant / right.constant, dimension, left.position);
     }
-    return { type: 'quantity', dimension, read: (x) => a(x) / b(x), constant: null, position: left.position };
+    return { type: 'quantity', dimension, read: (x) => a(x) / b(x), constant: null, signal: null, position: left.position };
   }
 
   private quantity(part: Part, where: string): Quantity {
@@ -310,8 +311,28 @@ export class Compiler {
   }
 }
 
+/** Reads a signal where it stands. */
+export function signalReader(name: SignalName): NumberReader {
+  if (isState(name)) {
+    const k = STATE_SIGNAL[name];
+    return (x) => x.x[k];
+  }
+  const k = MADE_SIGNAL[name];
+  return (x) => x.v[k];
+}
+
+function comparisonReader(fn: string, left: Quantity, right: Quantity): TruthReader {
+  if (right.constant === null) return COMPARISONS[fn](left.read, right.read);
+  if (left.signal !== null) {
+    return isState(left.signal)
+      ? STATE_WITH_CONSTANT[fn](STATE_SIGNAL[left.signal], right.constant)
+      : MADE_WITH_CONSTANT[fn](MADE_SIGNAL[left.signal], right.constant);
+  }
+  return COMPARISONS_WITH_CONSTANT[fn](left.read, right.constant);
+}
+
 function constantPart(value: number, dimension: Dimension, position: number): Quantity {
-  return { type: 'quantity', dimension, read: () => value, constant: value, position };
+  return { type: 'quantity', dimension, read: () => value, constant: value, signal: null, position };
 }
 
 function childrenOf(node: MathNode): MathNode[] {
@@ -323,24 +344,4 @@ function childrenOf(node: MathNode): MathNode[] {
 /** Arguments of a call, without the called name. */
 function argumentsOf(node: MathNode): MathNode[] {
   return 'args' in node && Array.isArray(node.args) ? node.args : [];
-}
-
-function symbolName(node: MathNode): string | null {
-  return node.type === 'SymbolNode' && 'name' in node && typeof node.name === 'string' ? node.name : null;
-}
-
-/** The unit that a lone symbol names; "min" counts, for ft/min. */
-function unitSymbol(node: MathNode): string | null {
-  const name = symbolName(node);
-  if (name === null) return null;
-  if (name === PERCENT_SYMBOL) return '%';
-  return WORD_UNITS.includes(name) || name === 'min' ? name : null;
-}
-
-/** The parts of "number unit", when a node is that. */
-function unitEnd(node: MathNode): [MathNode | null, string | null] {
-  if (node.type !== 'OperatorNode') return [null, null];
-  const operator = node as OperatorNode;
-  if (String(operator.fn) !== 'multiply' || !operator.implicit) return [null, null];
-  return [operator.args[0], unitSymbol(operator.args[1])];
 }

@@ -24,6 +24,8 @@ export interface CompiledCondition {
   names: readonly string[];
   /** True when the condition holds and every event it reads has fired. */
   holds(x: ExpressionInputs): boolean;
+  /** The same for a caller who knows that every event it reads has fired. */
+  holdsOnceFired(x: ExpressionInputs): boolean;
 }
 
 export interface CompiledQuantity {
@@ -39,8 +41,34 @@ type Compiled<T> = ({ ok: true } & T) | { ok: false; problem: ExpressionProblem 
 
 const { parse } = create({ parseDependencies });
 
+type CompiledAsCondition = Compiled<{ condition: CompiledCondition }>;
+type CompiledAsQuantity = Compiled<{ quantity: CompiledQuantity }>;
+
+/** Compiled expressions are pure, so thousands of runs of one scenario share them. */
+const conditions = new Map<string, CompiledAsCondition>();
+const quantities = new Map<string, CompiledAsQuantity>();
+const MOST_KEPT = 500;
+
+function kept<T>(known: Map<string, T>, source: string, compile: () => T): T {
+  const found = known.get(source);
+  if (found !== undefined) return found;
+  if (known.size >= MOST_KEPT) known.clear();
+  const made = compile();
+  known.set(source, made);
+  return made;
+}
+
 /** A condition for a trigger, or the place and reason of its refusal. */
-export function compileCondition(source: string): Compiled<{ condition: CompiledCondition }> {
+export function compileCondition(source: string): CompiledAsCondition {
+  return kept(conditions, source, () => conditionOf(source));
+}
+
+/** A quantity for the measure "expression", or the place and reason of its refusal. */
+export function compileQuantity(source: string): CompiledAsQuantity {
+  return kept(quantities, source, () => quantityOf(source));
+}
+
+function conditionOf(source: string): CompiledAsCondition {
   return guarded(() => {
     const { part, compiler } = compileAny(source);
     if (part.type !== 'truth') {
@@ -59,12 +87,11 @@ export function compileCondition(source: string): Compiled<{ condition: Compiled
             for (const id of ids) if (Number.isNaN(x.sinceS(id))) return false;
             return read(x);
           };
-    return { condition: { source, sinceIds: ids, names: compiler.names, holds } };
+    return { condition: { source, sinceIds: ids, names: compiler.names, holds, holdsOnceFired: read } };
   });
 }
 
-/** A quantity for the measure "expression", or the place and reason of its refusal. */
-export function compileQuantity(source: string): Compiled<{ quantity: CompiledQuantity }> {
+function quantityOf(source: string): CompiledAsQuantity {
   return guarded(() => {
     const { part, compiler } = compileAny(source);
     if (part.type !== 'quantity') {

@@ -1,92 +1,98 @@
-/** The quantities an expression may read, each with its dimension, its meaning and where it comes from. */
+/** The quantities an expression may read, each with its dimension, its meaning and its place among the signals. */
+import * as X from '../../model/state-layout.ts';
 import { ANGLE, ANGULAR_RATE, LENGTH, NUMBER, SPEED, TIME, WIDTH } from './units.ts';
 import type { Dimension } from './units.ts';
 
-/** What an expression reads at one tick; SI and radians, angles of the cockpit's horizon right positive. */
+/**
+ * Places of the signals that are states of the plant (state-layout.ts): they are read where they stand. SI and radians.
+ */
+export const STATE_SIGNAL = {
+  betaRad: X.X_BETA,
+  pRadS: X.X_P,
+  rRadS: X.X_R,
+  phiRad: X.X_PHI,
+  thetaRad: X.X_THETA,
+  psiRad: X.X_PSI,
+  tasMps: X.X_V,
+  heightM: X.X_HEIGHT,
+  aileronRad: X.X_AILERON,
+  rudderRad: X.X_RUDDER,
+} as const;
+
+/** Places of the signals that are worked out, each tick, when somebody needs them. SI and radians. */
+export const MADE_SIGNAL = {
+  timeS: 0,
+  pedal: 1,
+  stick: 2,
+  casMps: 3,
+  /** Above the runway elevation (sea level without a runway). */
+  heightAboveRunwayM: 4,
+  /** In [0, 2π). */
+  headingRad: 5,
+  /** Unwrapped since the start. */
+  turnedRad: 6,
+  ballWidths: 7,
+  vmcMps: 8,
+  stallMps: 9,
+} as const;
+export const MADE_COUNT = 10;
+
+export type StateSignal = keyof typeof STATE_SIGNAL;
+export type MadeSignal = keyof typeof MADE_SIGNAL;
+export type SignalName = StateSignal | MadeSignal;
+
+export function isState(name: SignalName): name is StateSignal {
+  return name in STATE_SIGNAL;
+}
+
+/** What an expression reads at one tick. Flat arrays: triggers run twenty at a time, 120 times a second. */
 export interface ExpressionInputs {
-  readonly timeS: number;
-  readonly casMps: number;
-  readonly tasMps: number;
-  /** Above the runway elevation (sea level without a runway); m. */
-  readonly heightAboveRunwayM: number;
-  /** In [0, 2π); rad. */
-  readonly headingRad: number;
-  /** Unwrapped since the start, right positive; rad. */
-  readonly turnedRad: number;
-  readonly phiRad: number;
-  readonly betaRad: number;
-  readonly rRadS: number;
-  readonly pRadS: number;
-  readonly pedal: number;
-  readonly stick: number;
-  readonly rudderRad: number;
-  readonly aileronRad: number;
-  readonly ballWidths: number;
-  readonly vmcMps: number;
-  readonly stallMps: number;
-  /** Seconds since the event fired; NaN when it has not (ticks before the present one count). */
+  /** The plant's states. */
+  readonly x: Float64Array;
+  /** What is worked out from them. */
+  readonly v: Float64Array;
+  /** Seconds since the event fired; NaN when it has not. */
   sinceS(id: string): number;
 }
 
-type NumericInput = Exclude<keyof ExpressionInputs, 'sinceS'>;
-
 export interface ExpressionName {
   readonly dimension: Dimension;
-  readonly input: NumericInput;
+  readonly signal: SignalName;
   /** For the editor's list. */
   readonly meaning: string;
-  readonly read: (x: ExpressionInputs) => number;
 }
 
-/** Names of an expression. The readers are written out so that each is a monomorphic property access. */
+/** Names of an expression. */
 export const EXPRESSION_NAMES: Readonly<Record<string, ExpressionName>> = {
-  t: { dimension: TIME, input: 'timeS', meaning: 'run time', read: (x) => x.timeS },
-  ias: { dimension: SPEED, input: 'casMps', meaning: 'indicated airspeed', read: (x) => x.casMps },
-  tas: { dimension: SPEED, input: 'tasMps', meaning: 'true airspeed', read: (x) => x.tasMps },
+  t: { dimension: TIME, signal: 'timeS', meaning: 'run time' },
+  ias: { dimension: SPEED, signal: 'casMps', meaning: 'indicated airspeed' },
+  tas: { dimension: SPEED, signal: 'tasMps', meaning: 'true airspeed' },
   height: {
     dimension: LENGTH,
-    input: 'heightAboveRunwayM',
+    signal: 'heightAboveRunwayM',
     meaning: 'height above the runway, or above sea level without one',
-    read: (x) => x.heightAboveRunwayM,
   },
-  heading: { dimension: ANGLE, input: 'headingRad', meaning: 'heading, 0 to 360 deg', read: (x) => x.headingRad },
+  heading: { dimension: ANGLE, signal: 'headingRad', meaning: 'heading, 0 to 360 deg' },
   turned: {
     dimension: ANGLE,
-    input: 'turnedRad',
+    signal: 'turnedRad',
     meaning: 'heading change since the start, right positive, not wrapped',
-    read: (x) => x.turnedRad,
   },
-  bank: { dimension: ANGLE, input: 'phiRad', meaning: 'bank, right positive', read: (x) => x.phiRad },
-  sideslip: {
-    dimension: ANGLE,
-    input: 'betaRad',
-    meaning: 'sideslip, wind from the right positive',
-    read: (x) => x.betaRad,
-  },
-  yaw_rate: { dimension: ANGULAR_RATE, input: 'rRadS', meaning: 'yaw rate, right positive', read: (x) => x.rRadS },
-  roll_rate: { dimension: ANGULAR_RATE, input: 'pRadS', meaning: 'roll rate, right positive', read: (x) => x.pRadS },
-  pedal: { dimension: NUMBER, input: 'pedal', meaning: 'pedal, right positive, 1 = full', read: (x) => x.pedal },
-  stick: { dimension: NUMBER, input: 'stick', meaning: 'stick, right positive, 1 = full', read: (x) => x.stick },
-  rudder: {
-    dimension: ANGLE,
-    input: 'rudderRad',
-    meaning: 'rudder deflection, trailing edge left positive',
-    read: (x) => x.rudderRad,
-  },
-  aileron: {
-    dimension: ANGLE,
-    input: 'aileronRad',
-    meaning: 'aileron deflection, rolling right positive',
-    read: (x) => x.aileronRad,
-  },
-  ball: { dimension: WIDTH, input: 'ballWidths', meaning: 'slip ball, right positive', read: (x) => x.ballWidths },
+  bank: { dimension: ANGLE, signal: 'phiRad', meaning: 'bank, right positive' },
+  sideslip: { dimension: ANGLE, signal: 'betaRad', meaning: 'sideslip, wind from the right positive' },
+  yaw_rate: { dimension: ANGULAR_RATE, signal: 'rRadS', meaning: 'yaw rate, right positive' },
+  roll_rate: { dimension: ANGULAR_RATE, signal: 'pRadS', meaning: 'roll rate, right positive' },
+  pedal: { dimension: NUMBER, signal: 'pedal', meaning: 'pedal, right positive, 1 = full' },
+  stick: { dimension: NUMBER, signal: 'stick', meaning: 'stick, right positive, 1 = full' },
+  rudder: { dimension: ANGLE, signal: 'rudderRad', meaning: 'rudder deflection, trailing edge left positive' },
+  aileron: { dimension: ANGLE, signal: 'aileronRad', meaning: 'aileron deflection, rolling right positive' },
+  ball: { dimension: WIDTH, signal: 'ballWidths', meaning: 'slip ball, right positive' },
   vmc: {
     dimension: SPEED,
-    input: 'vmcMps',
+    signal: 'vmcMps',
     meaning: 'computed minimum control speed (critical engine, bank up to 5 deg, full lever) at the start',
-    read: (x) => x.vmcMps,
   },
-  stall: { dimension: SPEED, input: 'stallMps', meaning: 'computed 1 g stall speed at the start', read: (x) => x.stallMps },
+  stall: { dimension: SPEED, signal: 'stallMps', meaning: 'computed 1 g stall speed at the start' },
 };
 
 /** Functions an expression may call, beside since(id). */

@@ -5,7 +5,7 @@
  * the same order, so the n-th leaf stands at the n-th place.
  */
 import { EXPRESSION_FUNCTIONS, EXPRESSION_NAMES } from './names.ts';
-import { WORD_UNITS } from './units.ts';
+import { UNITS, WORD_UNITS } from './units.ts';
 
 export const MAX_EXPRESSION_LENGTH = 400;
 export const MAX_EXPRESSION_NESTING = 16;
@@ -33,8 +33,8 @@ export interface Token {
   position: number;
 }
 
-/** Stands for "%" in the text that mathjs reads, because mathjs takes % for a remainder or "percent of". */
-export const PERCENT_SYMBOL = 'pct_';
+/** Stands for "%" and for compound units: mathjs takes % for a remainder or "percent of", and 1/5 deg/s for (1/5 deg)/s. */
+const UNIT_SYMBOL = 'unit_';
 /** Prefix of the placeholder for the event id inside since(…); ids may contain hyphens. */
 export const SINCE_SYMBOL = 'ev_';
 
@@ -124,10 +124,37 @@ export function tokenise(source: string): Token[] {
       );
     }
     if (sign[0] === ')') depth--;
-    tokens.push({ kind: 'sign', text: sign[0], position: at });
+    tokens.push({ kind: sign[0] === '%' ? 'name' : 'sign', text: sign[0], position: at });
     at += sign[0].length;
   }
-  return tokens;
+  return withCompoundUnits(tokens);
+}
+
+/** Joins unit / unit into one compound unit, as deg/s; refuses a quotient that is none. */
+function withCompoundUnits(tokens: readonly Token[]): Token[] {
+  const joined: Token[] = [];
+  for (let i = 0; i < tokens.length; i++) {
+    const upper = tokens[i];
+    const lower = tokens[i + 2];
+    const quotient =
+      upper.kind === 'name' && WORD_UNITS.includes(upper.text) && tokens[i + 1]?.text === '/' && lower?.kind === 'name';
+    const isCall = tokens[i + 3]?.text === '(';
+    if (!quotient || isCall || !(WORD_UNITS.includes(lower.text) || lower.text === 'min')) {
+      joined.push(upper);
+      continue;
+    }
+    const text = `${upper.text}/${lower.text}`;
+    if (!Object.hasOwn(UNITS, text)) {
+      throw new ExpressionError(
+        upper.position,
+        `"${text}" is not a unit of expressions`,
+        'Compound units are m/s, ft/min, deg/s and kt/s.',
+      );
+    }
+    joined.push({ kind: 'name', text, position: upper.position });
+    i += 2;
+  }
+  return joined;
 }
 
 function pushName(tokens: Token[], text: string, name: string, at: number): number {
@@ -176,7 +203,7 @@ export function parserText(tokens: readonly Token[], source: string): ParserText
     if (token.kind !== 'since' && ends) closeDownTo(depth, token.position);
     if (token.text === ')' && token.kind === 'sign') depth--;
     if (token.kind === 'since') put(` since(${SINCE_SYMBOL})`, token.position);
-    else if (token.text === '%') put(` ${PERCENT_SYMBOL}`, token.position);
+    else if (token.kind === 'name' && /[%/]/u.test(token.text)) put(` ${UNIT_SYMBOL}`, token.position);
     else put(` ${token.text}`, token.position);
     if (token.text === '(') depth++;
     if (token.text === 'not' && token.kind === 'name') {

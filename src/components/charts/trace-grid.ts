@@ -58,7 +58,9 @@ export function rangeFor(row: TraceRow, columns: readonly (TraceColumn | undefin
 /** The value at a run time, the nearest sample of the grid; null when unknown. */
 export function valueAt(column: TraceColumn | undefined, timeS: number): number | null {
   if (!column || column.length === 0) return null;
-  return column[Math.min(column.length - 1, gridIndex(timeS))] ?? null;
+  const k = Math.min(column.length - 1, gridIndex(timeS));
+  // Between the last sample and the next the last one holds.
+  return column[k] ?? column[Math.max(0, k - 1)] ?? null;
 }
 
 /** Positions of flags kept `gap` apart to the right of their stems, in time order. */

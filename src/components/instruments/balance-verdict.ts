@@ -19,7 +19,7 @@ export const SETTLE_S = 0.25;
 const SEEK_S = 0.5;
 
 export type DeadSide = -1 | 0 | 1;
-/** `dead` and `live` mean left and right while no side is dead. */
+/** While no side is dead, `dead` means that right pedal is wanted and `live` that left pedal is. */
 export type BalanceVerdict = 'balanced' | 'dead' | 'live';
 
 export interface BalanceNow {
@@ -111,7 +111,7 @@ export function createVerdictTracker(): VerdictTracker {
 /** The word beside the strip. */
 export function verdictWord(verdict: BalanceVerdict, deadSide: DeadSide): string {
   if (verdict === 'balanced') return 'Balanced';
-  if (deadSide === 0) return verdict === 'dead' ? 'Nose to the left' : 'Nose to the right';
+  if (deadSide === 0) return verdict === 'dead' ? 'Wants right pedal' : 'Wants left pedal';
   return verdict === 'dead' ? 'Toward dead side' : 'Toward live side';
 }
 

@@ -36,10 +36,10 @@ export function briefFacts(scenario: Scenario, airframe: Airframe, units: UnitPr
 
 /** Who flies pitch; yaw and roll are always the pilot's. */
 export function pitchWords(scenario: Scenario, units: UnitPreference): string {
-  const pitch = scenario.automation.pitch;
+  const pitch = scenario.automation.pitch ?? { mode: 'hold-path' };
   switch (pitch.mode) {
     case 'hold-path':
-      return `Pitch is flown for you: it holds a path of ${formatQuantity((pitch.path_deg ?? scenario.start.path_deg) * DEG, 'angle', units, 1)}.`;
+      return `Pitch is flown for you: it holds a path of ${formatQuantity((('path_deg' in pitch ? pitch.path_deg : undefined) ?? scenario.start.path_deg) * DEG, 'angle', units, 1)}.`;
     case 'hold-speed':
       return 'Pitch is flown for you: it holds the airspeed.';
     case 'hold-lift':

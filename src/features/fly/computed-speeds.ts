@@ -17,8 +17,8 @@ export function computeSpeeds(scenario: Scenario, airframe: Airframe): ComputedS
   const heightM = scenario.start.height_ft * FT;
   try {
     const aircraft = prepareAircraft(airframe, {
-      configuration: scenario.configuration,
-      loading: scenario.loading ?? undefined,
+      configuration: scenario.configuration ?? undefined,
+      loading: scenario.loading,
       dorsal: scenario.automation.dorsalFin,
     });
     const stallMps = casFromTas(stallTasMps(aircraft, densityAt(heightM)), heightM);

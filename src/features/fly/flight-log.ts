@@ -118,7 +118,7 @@ export function createFlightLog(): FlightLog {
           put({
             id: `criterion-${criterion.id}`,
             timeS: criterion.atS ?? timeS,
-            text: passed ? `Limit passed: ${criterion.title}` : `Not met: ${criterion.title}`,
+            text: `Not met: ${criterion.title}`,
             kind: 'not',
           }) || added;
       }

@@ -34,6 +34,15 @@ export function countWords(
   return passed ? `Required criteria met; ${parts.join(', ')}` : parts.join(', ');
 }
 
+/** "Met, all 5 criteria", "Not met, 2 of 5 criteria". */
+export function verdictWords(criteria: readonly Pick<CriterionResult, 'verdict'>[], passed: boolean): string {
+  const total = criteria.length;
+  const missed = criteria.filter((c) => c.verdict === 'not-met' || c.verdict === 'not-reached').length;
+  if (total === 0) return 'No criteria';
+  if (missed === 0) return `Met, all ${total} criteria`;
+  return `${passed ? 'Met, but' : 'Not met,'} ${missed} of ${total} criteria${passed ? ' missed' : ''}`;
+}
+
 /** Where the recording is. Plain: what is safe, what is still to come. */
 export function deliveryWords(status: DeliveryStatus<unknown> | null, durable: boolean): string {
   if (!status) return '';

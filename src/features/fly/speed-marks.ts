@@ -12,11 +12,7 @@ export interface ComputedSpeeds {
 /**
  * The stall is the hatched floor where it is the higher of the two: below it a minimum control speed means nothing.
  */
-export function speedMarks(
-  airframe: Airframe,
-  configuration: string | undefined,
-  computed: ComputedSpeeds,
-): SpeedMark[] {
+export function speedMarks(airframe: Airframe, configuration: string | null, computed: ComputedSpeeds): SpeedMark[] {
   const marks: SpeedMark[] = [];
   const { minimumControlMps: vmc, stallMps: stall } = computed;
   const stallIsFloor = stall !== null && (vmc === null || stall >= vmc);

@@ -1,5 +1,4 @@
-import { computed, ref, shallowRef } from 'vue';
-import type { Scenario } from '#shared/scenario/scenario-schema.ts';
+import { ref, shallowRef } from 'vue';
 import type { RunningCriterion } from '#shared/scenario/run-types.ts';
 import type { TraceFlag } from '../../components/charts/trace-grid.ts';
 import type { DeadSide } from '../../components/instruments/balance-verdict.ts';
@@ -40,8 +39,12 @@ export function useFlightNotes() {
 
   /** After every tick. */
   function tick({ run }: Flight): void {
-    if (reactions.marks.eventTick !== null) reactions.see(run.now, run.deadSide);
-    else if (zeroEvent(run.fired)) reactions.begin(run.now);
+    if (reactions.marks.eventTick !== null) {
+      reactions.see(run.now, run.deadSide);
+      return;
+    }
+    const first = zeroEvent(run.fired);
+    if (first) reactions.begin(run.now, first.tick);
   }
 
   function look({ run }: Flight, criteria: readonly RunningCriterion[]): void {
@@ -71,10 +74,3 @@ export function useFlightNotes() {
 
   return { deadSide, zero, flags, lines, messages, validity, display, revealed, begin, tick, look, note };
 }
-
-/** True when the pilot moves the nose up and down in some part of the scenario. */
-export const handsPitch = (scenario: Scenario): boolean =>
-  scenario.automation.pitch.mode === 'manual' ||
-  scenario.events.some((event) => event.kind === 'pitch-mode' && event.mode === 'manual');
-
-export const useHandsPitch = (scenario: () => Scenario) => computed(() => handsPitch(scenario()));

@@ -17,9 +17,14 @@ export interface ReplaySurvey {
   hasEvent: boolean;
   /** Dead side at the end, for limits and words. */
   deadSide: DeadSide;
+  /** The way flown, ten places a second, for the ribbon. */
+  track: { ticks: number[]; northM: number[]; eastM: number[]; heightAboveRunwayM: number[] };
   /** One frame a second, counted from the zero, both ways. */
   film: ReadonlyMap<number, FilmFrame>;
 }
+
+/** Ticks between places of the track: ten a second. */
+const TRACK_TICKS = 12;
 
 export const balanceOf = (now: Observation): BalanceNow => ({
   timeS: now.timeS,
@@ -53,6 +58,7 @@ export function surveyReplay(replay: Replay, channels: readonly ChannelId[]): Re
   const verdicts = createVerdictTracker();
   const wanted = blankWanted();
   const film = new Map<number, FilmFrame>();
+  const track: ReplaySurvey['track'] = { ticks: [], northM: [], eastM: [], heightAboveRunwayM: [] };
   replay.seek(0);
   const startPsi = replay.run.now.psiRad;
   let zeroTick: number | null = null;
@@ -64,9 +70,15 @@ export function surveyReplay(replay: Replay, channels: readonly ChannelId[]): Re
       const first = zeroEvent(run.fired);
       if (first) {
         zeroTick = first.tick;
-        tracker.begin(run.now);
+        tracker.begin(run.now, first.tick);
       }
     } else tracker.see(run.now, run.deadSide);
+    if (tick % TRACK_TICKS === 0) {
+      track.ticks.push(tick);
+      track.northM.push(run.now.northM);
+      track.eastM.push(run.now.eastM);
+      track.heightAboveRunwayM.push(run.now.heightAboveRunwayM);
+    }
     if (tick % GRID_TICKS !== 0) continue;
     channels.forEach((id, i) => {
       const value = CHANNELS[id].read(run.now, startPsi);
@@ -84,5 +96,13 @@ export function surveyReplay(replay: Replay, channels: readonly ChannelId[]): Re
     const miss = (f: FilmFrame): number => Math.abs(f.timeS - zeroS - key);
     if (!known || miss(frame) < miss(known)) film.set(key, frame);
   }
-  return { columns, marks: tracker.marks, zeroS, hasEvent: zeroTick !== null, deadSide: replay.run.deadSide, film };
+  return {
+    columns,
+    marks: tracker.marks,
+    zeroS,
+    hasEvent: zeroTick !== null,
+    deadSide: replay.run.deadSide,
+    track,
+    film,
+  };
 }

@@ -17,7 +17,9 @@ export function flyReference(question: ReferenceQuestion): ReferenceRun {
     drawn: question.drawn,
   });
   const length = Math.floor(run.durationTicks / SAMPLE_TICKS) + 1;
-  const columns = Object.fromEntries(CHANNEL_IDS.map((id) => [id, new Float32Array(length)])) as ReferenceRun['columns']; // one entry for each id
+  const columns = Object.fromEntries(
+    CHANNEL_IDS.map((id) => [id, new Float32Array(length)]),
+  ) as ReferenceRun['columns']; // one entry for each id
   const ghost = Object.fromEntries(GHOST_MEMBERS.map((id) => [id, new Float64Array(length)])) as Record<
     GhostMember,
     Float64Array

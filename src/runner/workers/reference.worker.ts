@@ -8,7 +8,11 @@ self.addEventListener('message', (event: MessageEvent<ReferenceQuestion>) => {
   try {
     answer = { id: question.id, ok: true, run: flyReference(question) };
   } catch (error) {
-    answer = { id: question.id, ok: false, message: error instanceof Error ? error.message : 'the reference run failed' };
+    answer = {
+      id: question.id,
+      ok: false,
+      message: error instanceof Error ? error.message : 'the reference run failed',
+    };
   }
   self.postMessage(answer);
 });

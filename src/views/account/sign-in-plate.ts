@@ -37,6 +37,14 @@ export const LARGE_PLATE: PlateSpec = {
   place: [0.5, 0.54],
 };
 
+export const MEDIUM_PLATE: PlateSpec = {
+  ...LARGE_PLATE,
+  width: 548,
+  height: 600,
+  focal: 640,
+  place: [0.5, 0.5],
+};
+
 export const SMALL_PLATE: PlateSpec = {
   ...common,
   width: 342,

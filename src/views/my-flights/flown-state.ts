@@ -12,6 +12,6 @@ const WORDS = { met: 'Met', near: 'Met, close', 'not-met': 'Not met yet', 'not-r
 export function flownState(attempts: ScenarioSummary['attempts']): FlownState {
   if (attempts === null) return { state: 'waiting', word: 'Not flown', met: false };
   const verdict = attempts.lastVerdict;
-  if (verdict === null) return { state: 'waiting', word: 'Not complete', met: false };
+  if (verdict === null) return { state: 'waiting', word: 'No result', met: false };
   return { state: verdict, word: WORDS[verdict], met: verdict === 'met' || verdict === 'near' };
 }

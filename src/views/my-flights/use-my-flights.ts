@@ -68,11 +68,10 @@ export function useMyFlights() {
   const margins = computed(() => leastMargins(details.data.value ?? []));
   const nextSummary = computed(() => scenarios.data.value?.items.find((item) => item.slug === nextSlug.value) ?? null);
   const bestS = computed(() => (next.data.value ? bestPedalS(pedals.value, next.data.value.scenario.title) : null));
-  const pedalLimitS = computed(
-    () =>
-      next.data.value?.scenario.criteria.find((criterion) => criterion.measure === 'first-correct-pedal')?.limit.max ??
-      null,
-  );
+  const pedalLimitS = computed(() => {
+    const judged = next.data.value?.scenario.criteria.find((each) => each.measure === 'first-correct-pedal');
+    return judged && 'max' in judged.limit ? judged.limit.max : null;
+  });
 
   return {
     query,

@@ -4,7 +4,8 @@
  * configuration or wind). Same elementary functions; density once a step. It exists to be compared with, in time and in
  * its numbers.
  */
-import { cos, sin } from '#shared/numerics/elementary.ts';
+import { packedDoubles } from '#shared/numerics/packed-doubles.ts';
+import { sinCosInto } from '#shared/numerics/sin-cos.ts';
 import type { Aircraft } from '#shared/model/aircraft.ts';
 import { densityAt } from '#shared/model/atmosphere.ts';
 
@@ -54,6 +55,7 @@ export function createKernel(a: Aircraft, c: KernelControls): (x: Float64Array, 
   const at = new Float64Array(14);
   const sum = new Float64Array(14);
   const k = new Float64Array(14);
+  const angles = packedDoubles(12);
 
   return (x, steps) => {
     for (let step = 0; step < steps; step++) {
@@ -69,14 +71,19 @@ export function createKernel(a: Aircraft, c: KernelControls): (x: Float64Array, 
         const V = s[6];
         const da = s[10];
         const dr = s[11];
-        const sb = sin(beta);
-        const cb = cos(beta);
-        const sf = sin(s[3]);
-        const cf = cos(s[3]);
-        const st = sin(theta);
-        const ct = cos(theta);
-        const sp = sin(s[5]);
-        const cp = cos(s[5]);
+        angles[0] = beta;
+        angles[1] = s[3];
+        angles[2] = theta;
+        angles[3] = s[5];
+        sinCosInto(angles, 4);
+        const sb = angles[4];
+        const cb = angles[5];
+        const sf = angles[6];
+        const cf = angles[7];
+        const st = angles[8];
+        const ct = angles[9];
+        const sp = angles[10];
+        const cp = angles[11];
         const u = V * cb;
         const v = V * sb;
         const part = (-LAPSE * (s[9] - h0)) / T0;

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { createView, polygonNormal, rotation } from '../../../src/components/plate/projection.ts';
 import { drawPlate, type PlateSpec } from '../../../src/components/plate/plate-scene.ts';
-import { LARGE_PLATE, SMALL_PLATE } from '../../../src/views/account/sign-in-plate.ts';
+import { LARGE_PLATE, MEDIUM_PLATE, SMALL_PLATE } from '../../../src/views/account/sign-in-plate.ts';
 
 const camera = { from: [0, 0, 10] as const, headingDeg: 0, downDeg: 0, focal: 500, centre: [400, 300] as const };
 
@@ -75,12 +75,15 @@ describe('plate scene', () => {
     expect(x(-8)).toBeLessThan(x(0));
   });
 
-  it.each([LARGE_PLATE, SMALL_PLATE])('writes only finite numbers and keeps the labels inside', (spec) => {
-    const { shapes, labels } = drawPlate(spec);
-    expect(shapes.map((shape) => shape.d).join('')).not.toMatch(/NaN|Infinity/);
-    for (const label of labels) {
-      expect(label.x).toBeGreaterThan(0);
-      expect(label.x).toBeLessThan(spec.width);
-    }
-  });
+  it.each([LARGE_PLATE, MEDIUM_PLATE, SMALL_PLATE])(
+    'writes only finite numbers and keeps the labels inside',
+    (spec) => {
+      const { shapes, labels } = drawPlate(spec);
+      expect(shapes.map((shape) => shape.d).join('')).not.toMatch(/NaN|Infinity/);
+      for (const label of labels) {
+        expect(label.x).toBeGreaterThan(0);
+        expect(label.x).toBeLessThan(spec.width);
+      }
+    },
+  );
 });

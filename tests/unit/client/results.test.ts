@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { AttemptDetail } from '#shared/contracts/attempts.ts';
 import { whenWords } from '../../../src/views/date-words.ts';
-import { limitWords, valueWords } from '../../../src/views/measure-words.ts';
+import { measureWords, valueWords } from '../../../src/views/measure-words.ts';
 import { flownState } from '../../../src/views/my-flights/flown-state.ts';
 import { leastMargins } from '../../../src/views/my-flights/least-margins.ts';
 import { pedalChart } from '../../../src/views/my-flights/pedal-chart.ts';
@@ -115,10 +115,9 @@ describe('words', () => {
     expect(valueWords(null, 's')).toBe('–');
   });
 
-  it('says which way a limit goes', () => {
-    expect(limitWords({ max: 20, unit: 'deg' })).toBe('at most 20°');
-    expect(limitWords({ min: 1.5, unit: 'kt' })).toBe('at least 1.5 kt');
-    expect(limitWords({ within: [-5, 5], unit: 'deg' })).toBe('−5.0° to 5.0°');
+  it('names a measure, and lets one that is not known any more stand', () => {
+    expect(measureWords('first-correct-pedal')).toBe('First correct pedal');
+    expect(measureWords('a-measure-of-old')).toBe('a-measure-of-old');
   });
 
   it('calls the day today, yesterday, then by its date', () => {
@@ -130,9 +129,9 @@ describe('words', () => {
     expect(whenWords(at(2025, 4, 28, 9), now)).toBe('28 May 2025');
   });
 
-  it('tells flown, not complete and judged apart', () => {
+  it('tells not flown, without result and judged apart', () => {
     expect(flownState(null).word).toBe('Not flown');
-    expect(flownState({ mine: 2, lastVerdict: null })).toMatchObject({ word: 'Not complete', met: false });
+    expect(flownState({ mine: 2, lastVerdict: null })).toMatchObject({ word: 'No result', met: false });
     expect(flownState({ mine: 2, lastVerdict: 'near' })).toMatchObject({ word: 'Met, close', met: true });
     expect(flownState({ mine: 2, lastVerdict: 'not-met' }).met).toBe(false);
   });

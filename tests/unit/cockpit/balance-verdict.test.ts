@@ -67,9 +67,9 @@ describe('instant verdict', () => {
     expect(instantVerdict(now(0, 0.7), wanted(6, 0.7), 1)).toBe('live');
   });
 
-  it('speaks of left and right while both engines run', () => {
-    expect(verdictWord(instantVerdict(now(6, 0), wanted(0, 0), 0), 0)).toBe('Nose to the left');
-    expect(verdictWord(instantVerdict(now(-6, 0), wanted(0, 0), 0), 0)).toBe('Nose to the right');
+  it('names the pedal while both engines run', () => {
+    expect(verdictWord(instantVerdict(now(6, 0), wanted(0, 0), 0), 0)).toBe('Wants right pedal');
+    expect(verdictWord(instantVerdict(now(-6, 0), wanted(0, 0), 0), 0)).toBe('Wants left pedal');
   });
 });
 

@@ -49,7 +49,7 @@ describe('flight log', () => {
       [-2, 'hello happens', 'plain'],
       [0, 'cut happens', 'failure'],
       [1.7, 'Right pedal begins', 'plain'],
-      [3, 'Limit passed: Heading within 20°', 'not'],
+      [3, 'Not met: Heading within 20°', 'not'],
     ]);
   });
   it('does not announce a criterion that can still be met', () => {

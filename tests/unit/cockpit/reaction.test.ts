@@ -16,8 +16,8 @@ function track({ pedal, yaw = () => 0, bank = () => 0 }: Flown, deadSide: -1 | 0
   for (let tick = 0; tick <= 1200; tick += 1) {
     const t = tick / 120;
     const now = observation({ tick, timeS: t, pedal: pedal(t), rRadS: yaw(t), phiRad: bank(t) });
-    if (tick === 120) tracker.begin(now);
-    else tracker.see(now, tick > 120 ? deadSide : 0);
+    if (tick === 121) tracker.begin(now, 120);
+    else tracker.see(now, tick > 121 ? deadSide : 0);
   }
   return tracker.marks;
 }
@@ -25,13 +25,13 @@ function track({ pedal, yaw = () => 0, bank = () => 0 }: Flown, deadSide: -1 | 0
 describe('reaction marks', () => {
   it('first correct pedal: 10 % beyond its value at the event, held for 0.2 s, toward the live side', () => {
     const marks = track({ pedal: (t) => (t < 2.5 ? 0.05 : 0.2) });
-    expect(marks.firstCorrectPedalTick).toBe(300);
+    expect(marks.firstCorrectPedalTick).toBe(299);
     expect(marks.correctSide).toBe(1);
     expect(marks.firstWrongPedalTick).toBeNull();
   });
   it('a jab of less than 0.2 s is none', () => {
     const marks = track({ pedal: (t) => (t > 2 && t < 2.15 ? 0.5 : t > 4 ? 0.5 : 0) });
-    expect(marks.firstCorrectPedalTick).toBe(481);
+    expect(marks.firstCorrectPedalTick).toBe(480);
   });
   it('the other way is the wrong pedal, mirrored for the right engine', () => {
     expect(track({ pedal: (t) => (t > 2 ? -0.4 : 0) }).firstWrongPedalTick).not.toBeNull();

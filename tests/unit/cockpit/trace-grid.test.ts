@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { createPictureQuality } from '../../../src/runner/picture-quality.ts';
 import { createRedrawPacer } from '../../../src/components/charts/redraw-pacer.ts';
 import {
   type TraceRow,
@@ -63,5 +64,29 @@ describe('redraw pacer', () => {
     const pacer = createRedrawPacer();
     for (let i = 1; i < 200; i += 1) pacer.due(i * 1000);
     expect(pacer.rateHz).toBe(30);
+  });
+});
+
+describe('picture quality', () => {
+  const run = (quality: ReturnType<typeof createPictureQuality>, gapMs: number, frames: number, from: number) => {
+    let changes = 0;
+    for (let i = 1; i <= frames; i += 1) if (quality.frame(from + i * gapMs)) changes += 1;
+    return changes;
+  };
+  it('falls step by step while frames are slow, and stays at full on a fast machine', () => {
+    const quality = createPictureQuality();
+    expect(run(quality, 1000 / 60, 600, 0)).toBe(0);
+    expect(quality.resolution).toBe(1);
+    expect(run(quality, 34, 51, 10_000)).toBe(1);
+    expect(quality.resolution).toBe(0.8);
+    run(quality, 34, 1000, 20_000);
+    expect(quality.resolution).toBe(0.45);
+  });
+  it('rises again only after long fast stretches', () => {
+    const quality = createPictureQuality();
+    run(quality, 34, 60, 0);
+    expect(run(quality, 1000 / 60, 300, 10_000)).toBe(0);
+    expect(run(quality, 1000 / 60, 500, 20_000)).toBe(1);
+    expect(quality.resolution).toBe(1);
   });
 });

@@ -16,10 +16,25 @@ describe('an airframe as a table of members', () => {
   }
 
   it('names the row that cannot be read', () => {
-    expect(tableToDocument([['/mass/mass_kg', 1], ['mass', 2]])).toMatchObject({ ok: false, row: 2 });
+    expect(
+      tableToDocument([
+        ['/mass/mass_kg', 1],
+        ['mass', 2],
+      ]),
+    ).toMatchObject({ ok: false, row: 2 });
     expect(tableToDocument([['/a/1', 1]])).toMatchObject({ ok: true });
-    expect(tableToDocument([['/a/0', 1], ['/a/2', 1]])).toMatchObject({ ok: false, row: 2 });
-    expect(tableToDocument([['/a', 1], ['/a', 1]])).toMatchObject({ ok: false, row: 2, message: '/a is given twice' });
+    expect(
+      tableToDocument([
+        ['/a/0', 1],
+        ['/a/2', 1],
+      ]),
+    ).toMatchObject({ ok: false, row: 2 });
+    expect(
+      tableToDocument([
+        ['/a', 1],
+        ['/a', 1],
+      ]),
+    ).toMatchObject({ ok: false, row: 2, message: '/a is given twice' });
     expect(tableToDocument([])).toMatchObject({ ok: false });
   });
 

@@ -19,7 +19,8 @@ export const fileShape = {
     const name = path.posix.basename(file, extension);
     return {
       Program(node) {
-        const report = (/** @type {string} */ message) => context.report({ node, loc: { line: 1, column: 0 }, message });
+        const report = (/** @type {string} */ message) =>
+          context.report({ node, loc: { line: 1, column: 0 }, message });
         if (extension === '.vue' && !PASCAL.test(name)) report(`Components are named PascalCase.vue, not ${name}.vue.`);
         if (extension !== '.vue' && !KEBAB.test(name) && !COMPOSABLE.test(name)) {
           report(`Modules are named kebab-case.ts (composables useThing.ts), not ${name}${extension}.`);

@@ -78,7 +78,9 @@ function parameterName(parameter) {
 function returnsValue(fn) {
   const annotation = fn.returnType?.typeAnnotation;
   if (annotation) return !['TSVoidKeyword', 'TSNeverKeyword'].includes(annotation.type) && !annotation.asserts;
-  return fn.body.type !== 'BlockStatement' || fn.body.body.some((/** @type {any} */ part) => part.type === 'ReturnStatement');
+  return (
+    fn.body.type !== 'BlockStatement' || fn.body.body.some((/** @type {any} */ part) => part.type === 'ReturnStatement')
+  );
 }
 
 /**

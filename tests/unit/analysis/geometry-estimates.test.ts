@@ -1,0 +1,99 @@
+import { describe, expect, it } from 'vitest';
+import { controlSpeedParagraphs, designGustMps } from '#shared/analysis/certification.ts';
+import {
+  dorsalFinStallDeg,
+  estimateDihedralEffect,
+  estimateFin,
+  estimateRudder,
+  finLiftSlope,
+  flapEffectiveness,
+} from '#shared/analysis/geometry-estimates.ts';
+import { DEG, FT } from '#shared/units/constants.ts';
+
+const FIN = {
+  wingAreaM2: 17,
+  wingSpanM: 11.3,
+  aspectRatio: 7.5,
+  wingSweepRad: 0,
+  finAreaM2: 2.1,
+  finSpanM: 1.8,
+  fuselageRadiusM: 0.3,
+  fuselageDepthM: 1.4,
+  wingBelowCentreM: 0.3,
+  armM: 4.7,
+  heightM: 0.75,
+  liftSlopePerRad: 2.9,
+  alphaRad: 0,
+};
+
+describe('fin estimate', () => {
+  it('has the signs of a fin behind and above, and grows with its area', () => {
+    const small = estimateFin(FIN);
+    const large = estimateFin({ ...FIN, finAreaM2: 3 });
+    expect(small.CY_beta).toBeLessThan(0);
+    expect(small.Cn_beta).toBeGreaterThan(0);
+    expect(small.Cl_beta).toBeLessThan(0);
+    expect(small.Cn_r).toBeLessThan(0);
+    expect(small.CY_r).toBeGreaterThan(0);
+    expect(large.Cn_beta).toBeGreaterThan(small.Cn_beta);
+  });
+
+  it('loses height over the axis with angle of attack', () => {
+    expect(estimateFin({ ...FIN, alphaRad: 10 * DEG }).Cl_beta).toBeGreaterThan(estimateFin(FIN).Cl_beta);
+  });
+
+  it('names a size that cannot be', () => {
+    expect(() => estimateFin({ ...FIN, finAreaM2: 0 })).toThrow(/finAreaM2/u);
+    expect(() => estimateFin({ ...FIN, fuselageDepthM: -1 })).toThrow(/fuselageDepthM/u);
+  });
+});
+
+describe('rudder and flap', () => {
+  it('yaws left and rolls right for trailing edge left', () => {
+    const { CY_dr, Cn_dr, Cl_dr } = estimateRudder(FIN, 0.35, 0.9);
+    expect(CY_dr).toBeGreaterThan(0);
+    expect(Cn_dr).toBeLessThan(0);
+    expect(Cl_dr).toBeGreaterThan(0);
+  });
+
+  it('is nothing without a flap and everything with a full one', () => {
+    expect(flapEffectiveness(0)).toBeCloseTo(0, 12);
+    expect(flapEffectiveness(1)).toBeCloseTo(1, 12);
+    expect(() => flapEffectiveness(1.2)).toThrow(/outside 0 … 1/u);
+  });
+
+  it('has the thin-aerofoil lift slope for a very long fin', () => {
+    expect(finLiftSlope(1e6, 0)).toBeCloseTo(2 * Math.PI, 3);
+    expect(finLiftSlope(1.5, 0)).toBeLessThan(2.4);
+  });
+});
+
+describe('dihedral and sweep', () => {
+  it('give −aΓ/4 and −CL·tan Λ/2 on a rectangular wing (strip theory)', () => {
+    const { dihedral, sweep, total } = estimateDihedralEffect(5 * DEG, 30 * DEG, 1, 5, 0.6);
+    expect(dihedral).toBeCloseTo((-5 * 5 * DEG) / 4, 12);
+    expect(sweep).toBeCloseTo((-0.6 * Math.tan(30 * DEG)) / 2, 12);
+    expect(total).toBeCloseTo(dihedral + sweep, 12);
+  });
+});
+
+describe('dorsal fin', () => {
+  it('raises the stall angle in proportion up to a tenth of the fin', () => {
+    expect(dorsalFinStallDeg(15, 0)).toBe(15);
+    expect(dorsalFinStallDeg(15, 0.05)).toBeCloseTo(21.25, 12);
+    expect(dorsalFinStallDeg(15, 0.2)).toBe(27.5);
+  });
+});
+
+describe('paragraphs', () => {
+  it('compare the minimum control speed with 1.13 VSR and 1.2 VS1', () => {
+    expect(controlSpeedParagraphs(34, 30).map((p) => p.met)).toEqual([false, true]);
+    expect(controlSpeedParagraphs(33.8, 30).map((p) => p.met)).toEqual([true, true]);
+    expect(controlSpeedParagraphs(36.1, 30).map((p) => p.met)).toEqual([false, false]);
+  });
+
+  it('know gradient distances from 30 to 350 ft only', () => {
+    expect(() => designGustMps(0, 20 * FT)).toThrow(/30 to 350 ft/u);
+    expect(() => designGustMps(0, 400 * FT)).toThrow(/30 to 350 ft/u);
+  });
+});
