@@ -1,0 +1,65 @@
+import { randomUUID } from 'node:crypto';
+import compression from 'compression';
+import cookieParser from 'cookie-parser';
+import express, { type Express, type RequestHandler } from 'express';
+import { REQUEST_ID_HEADER } from '#shared/contracts/wire-names.ts';
+import type { Environment } from './config/environment.ts';
+import type { Logger } from './config/log.ts';
+import { airframesRouter } from './http/airframes.router.ts';
+import { attemptsRouter } from './http/attempts.router.ts';
+import { createCookies } from './http/cookies.ts';
+import { csrfProtection } from './http/csrf.middleware.ts';
+import { errorMapper, unknownRoute } from './http/error-mapper.ts';
+import { healthRouter } from './http/health.router.ts';
+import { scenariosRouter } from './http/scenarios.router.ts';
+import { securityHeaders } from './http/security-headers.ts';
+import { requireSession } from './http/session.middleware.ts';
+import { sessionRouter } from './http/session.router.ts';
+import type { Services } from './services/create-services.ts';
+
+const LARGEST_JSON = '1mb';
+
+export interface AppSetup {
+  services: Services;
+  log: Logger;
+  env: Pick<Environment, 'publicOrigins' | 'secureCookies' | 'proxies' | 'dev'>;
+  /** Serves the client: the built files, or the sources with hot reload. */
+  client?: RequestHandler;
+}
+
+/** The HTTP half of the product, without listening. */
+export function createApp({ services, log, env, client }: AppSetup): Express {
+  const app = express();
+  app.disable('x-powered-by');
+  app.set('trust proxy', env.proxies);
+  app.set('query parser', 'simple');
+  const cookies = createCookies(env.secureCookies);
+
+  app.use((_request, response, next) => {
+    response.set(REQUEST_ID_HEADER, randomUUID());
+    next();
+  });
+  app.use(securityHeaders(env.dev, env.secureCookies));
+  app.use(compression());
+
+  const api = express.Router();
+  api.use((_request, response, next) => {
+    response.set('cache-control', 'no-store');
+    next();
+  });
+  api.use('/health', healthRouter(services.database));
+  api.use(cookieParser());
+  api.use(csrfProtection(cookies, env.publicOrigins));
+  api.use(express.json({ limit: LARGEST_JSON }));
+  api.use('/session', sessionRouter(services.sessions, cookies));
+  const signedIn = requireSession(services.sessions);
+  api.use('/airframes', signedIn, airframesRouter(services.airframes));
+  api.use('/scenarios', signedIn, scenariosRouter(services.scenarios));
+  api.use('/attempts', signedIn, attemptsRouter(services.attempts));
+  api.use(unknownRoute);
+  app.use('/api', api);
+
+  if (client) app.use(client);
+  app.use(errorMapper(log));
+  return app;
+}

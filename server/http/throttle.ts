@@ -1,0 +1,47 @@
+import type { Request } from 'express';
+import { ipKeyGenerator, rateLimit } from 'express-rate-limit';
+import { ProblemError } from '../services/problem-error.ts';
+
+const WINDOW_MS = 15 * 60 * 1000;
+
+/** Failed sign-ins allowed in a quarter of an hour: for one account from anywhere, and for one address over all accounts. */
+export const SIGN_IN_LIMITS = { account: 10, address: 60 } as const;
+
+function limiter(limit: number, keyGenerator: (request: Request) => string) {
+  return rateLimit({
+    windowMs: WINDOW_MS,
+    limit,
+    standardHeaders: 'draft-8',
+    legacyHeaders: false,
+    skipSuccessfulRequests: true,
+    keyGenerator,
+    handler: (request, _response, next) => {
+      const limited: unknown = Reflect.get(request, 'rateLimit');
+      const resetAt: unknown =
+        typeof limited === 'object' && limited !== null ? Reflect.get(limited, 'resetTime') : null;
+      const seconds =
+        resetAt instanceof Date ? Math.max(1, Math.ceil((resetAt.getTime() - Date.now()) / 1000)) : WINDOW_MS / 1000;
+      next(
+        new ProblemError('throttled', `Too many failed sign-ins. Try again in ${Math.ceil(seconds / 60)} minutes.`, {
+          retryAfterS: seconds,
+        }),
+      );
+    },
+  });
+}
+
+function accountOf(request: Request): string {
+  const body: unknown = request.body;
+  const email: unknown = typeof body === 'object' && body !== null ? Reflect.get(body, 'email') : null;
+  return typeof email === 'string'
+    ? `account:${email.normalize('NFKC').trim().toLowerCase().slice(0, 254)}`
+    : 'account:';
+}
+
+/** Limits of the sign-in route. Counts live in this process. */
+export function signInThrottles() {
+  return [
+    limiter(SIGN_IN_LIMITS.address, (request) => `address:${ipKeyGenerator(request.ip ?? '')}`),
+    limiter(SIGN_IN_LIMITS.account, accountOf),
+  ];
+}

@@ -1,0 +1,91 @@
+import { createServer } from 'node:http';
+import type { AddressInfo } from 'node:net';
+import path from 'node:path';
+import { createApp, type AppSetup } from './app.ts';
+import { ConfigurationError, readEnvironment } from './config/environment.ts';
+import { createLog } from './config/log.ts';
+import { PROGRAM_VERSION } from './config/program-version.ts';
+import { projectFolder } from './config/project-folder.ts';
+import { tokenSecret } from './config/token-secret.ts';
+import { openDatabase } from './data/database.ts';
+import { seedEmptyDatabase } from './data/seeds/seed-empty-database.ts';
+import { staticFiles } from './http/static-files.ts';
+import { attachSockets } from './realtime/sockets.ts';
+import { createServices } from './services/create-services.ts';
+
+const TIDY_EVERY_MS = 3600 * 1000;
+
+/** Starts the product's server: schema, seed, listen; prints one line for the launcher when it serves. */
+async function main(): Promise<void> {
+  const env = readEnvironment(process.env);
+  const log = createLog(env);
+  const { database, migrations } = await openDatabase({ url: env.databaseUrl, connections: env.databaseConnections });
+  const services = createServices({ database, tokenSecret: tokenSecret(env.jwtSecret, env.dataFolder) });
+  const seed = await seedEmptyDatabase({
+    database,
+    folder: path.join(projectFolder, 'scenarios'),
+    hashPassword: services.passwords.hash,
+    now: () => new Date(),
+  });
+  for (const problem of seed.problems) {
+    log.warn(problem);
+    console.error(problem);
+  }
+
+  const http = createServer();
+  let closeClient = async (): Promise<void> => {};
+  let client: AppSetup['client'];
+  if (env.dev) {
+    const { createServer: createVite } = await import('vite');
+    const vite = await createVite({
+      root: projectFolder,
+      server: { middlewareMode: true, ws: { server: http } },
+      appType: 'spa',
+    });
+    client = vite.middlewares;
+    closeClient = () => vite.close();
+  } else client = staticFiles(path.join(projectFolder, 'dist', 'client'));
+
+  const app = createApp({ services, log, env, client });
+  http.on('request', (request, response) => void app(request, response));
+  const sockets = attachSockets({ http, sessions: services.sessions, log, publicOrigins: env.publicOrigins });
+  await new Promise<void>((resolve, reject) => {
+    http.once('error', reject);
+    http.listen(env.port, env.host, resolve);
+  });
+  const tidy = setInterval(
+    () => void services.sessions.tidy().catch((error: unknown) => log.error({ err: error }, 'tidy failed')),
+    TIDY_EVERY_MS,
+  );
+  tidy.unref();
+
+  let stopping = false;
+  const stop = async (): Promise<void> => {
+    if (stopping) return;
+    stopping = true;
+    clearInterval(tidy);
+    await sockets.close();
+    http.closeAllConnections();
+    await closeClient();
+    await services.close();
+    await database.close();
+    log.info('stopped');
+    process.exit(0);
+  };
+  process.on('SIGTERM', () => void stop());
+  process.on('SIGINT', () => void stop());
+
+  const { port } = http.address() as AddressInfo; // it listens on a port, not on a pipe
+  const host = env.host === '0.0.0.0' || env.host === '::' ? 'localhost' : env.host;
+  const address = env.publicOrigins[0] ?? `http://${host.includes(':') ? `[${host}]` : host}:${port}`;
+  log.info({ address, version: PROGRAM_VERSION, migrations, seeded: seed.seeded }, 'serving');
+  console.log(
+    `SIDEWASH_READY ${JSON.stringify({ address, version: PROGRAM_VERSION, migrations: migrations.length, seeded: seed.seeded, problems: seed.problems.length })}`,
+  );
+}
+
+main().catch((error: unknown) => {
+  if (error instanceof ConfigurationError) for (const sentence of error.sentences) console.error(sentence);
+  else console.error(error instanceof Error ? (error.stack ?? error.message) : error);
+  process.exit(1);
+});

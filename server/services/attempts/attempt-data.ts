@@ -1,0 +1,16 @@
+import { parseAirframe, type Airframe } from '#shared/model/airframe-schema.ts';
+import { parseScenario, type Scenario } from '#shared/scenario/scenario-schema.ts';
+
+/** The scenario of a stored document. What the database holds was parsed when it was stored: a fault here is ours. */
+export function storedScenario(document: unknown): Scenario {
+  const parsed = parseScenario(document);
+  if (!parsed.ok) throw new Error(`A stored scenario does not parse: ${parsed.issues[0]?.message ?? 'no reason'}.`);
+  return parsed.scenario;
+}
+
+/** The airframe of a stored document. */
+export function storedAirframe(document: unknown): Airframe {
+  const parsed = parseAirframe(document);
+  if (!parsed.ok) throw new Error(`A stored airframe does not parse: ${parsed.issues[0]?.message ?? 'no reason'}.`);
+  return parsed.airframe;
+}

@@ -1,0 +1,82 @@
+import { randomUUID } from 'node:crypto';
+import type { AttemptResult, CompleteAttemptBody } from '#shared/contracts/attempts.ts';
+import type { Database } from '../../data/database.ts';
+import type { ResultRecord } from '../../data/repositories/attempts.repository.ts';
+import { requireDeed, type Actor } from '../permissions.ts';
+import { notFound, ProblemError } from '../problem-error.ts';
+import type { Caller } from '../sessions/sessions.service.ts';
+import type { WorkerPool } from '../workers/worker-pool.ts';
+import { rerunResultSchema, type RerunJob } from './result-of-run.ts';
+
+export function attemptResult({
+  verdict: _verdict,
+  worst: _worst,
+  strip: _strip,
+  ...result
+}: ResultRecord): AttemptResult {
+  return result;
+}
+
+/** Closes an attempt: integrates its recording again in a worker and stores that as the result. Repeating it is no error. */
+export function createCompleteAttempt(setup: { database: Database; reruns: WorkerPool; now: () => Date }) {
+  const { database, reruns, now } = setup;
+  return async (actor: Actor, id: string, body: CompleteAttemptBody, caller: Caller): Promise<AttemptResult> => {
+    requireDeed(actor, 'attempt.fly');
+    const detail = await database.attempts.findDetail(actor.organisationId, id);
+    if (detail === null || detail.personId !== actor.personId) throw notFound('attempt');
+    if (detail.result !== null) return attemptResult(detail.result);
+    const chunks = await database.chunks.all(id);
+    if (chunks.length < body.chunkCount) {
+      const missing = Array.from({ length: body.chunkCount - chunks.length }, (_, i) => chunks.length + i);
+      throw new ProblemError(
+        'chunks-missing',
+        `${missing.length} chunks have not arrived yet; send them and complete again.`,
+        { missing },
+      );
+    }
+    if (chunks.length > body.chunkCount) {
+      throw new ProblemError(
+        'conflict',
+        `${chunks.length} chunks are stored, not ${body.chunkCount}; complete with that number.`,
+      );
+    }
+    const job: RerunJob = {
+      scenario: detail.scenario.document,
+      airframe: detail.scenario.airframe.document,
+      seed: detail.seed,
+      drawn: detail.drawn,
+      chunkKey: detail.chunkKey,
+      chunks: chunks.map(({ hash, bytes }) => ({ hash, bytes: new Uint8Array(bytes) })),
+    };
+    const computed = rerunResultSchema.parse(await reruns.run(job));
+    const at = now();
+    const result: ResultRecord = { ...computed, computedAt: at.toISOString() };
+    return database.transaction(async (on) => {
+      const locked = await on.attempts.lock(actor.organisationId, id);
+      if (locked === null) throw notFound('attempt');
+      const before = await on.attempts.findResult(id);
+      if (before !== null) return attemptResult(before);
+      if ((await on.chunks.count(id)) !== chunks.length) {
+        throw new ProblemError('conflict', 'A chunk arrived meanwhile; complete again.');
+      }
+      await on.attempts.insertResult(randomUUID(), id, true, result);
+      await on.attempts.markComplete(id, at);
+      await on.audit.append({
+        organisationId: actor.organisationId,
+        at,
+        actorId: actor.personId,
+        deed: 'attempt.completed',
+        subjectKind: 'attempt',
+        subjectId: id,
+        detail: {
+          passed: result.passed,
+          ended: result.ended,
+          statesAgree: result.statesAgree,
+          modelVersion: result.modelVersion,
+        },
+        address: caller.address,
+      });
+      return attemptResult(result);
+    });
+  };
+}

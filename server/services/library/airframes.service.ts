@@ -1,0 +1,33 @@
+import type { AirframeListQuery, AirframeRevision, AirframeSummary } from '#shared/contracts/airframes.ts';
+import type { Page } from '#shared/contracts/paging.ts';
+import type { Database } from '../../data/database.ts';
+import { storedAirframe } from '../attempts/attempt-data.ts';
+import { requireDeed, type Actor } from '../permissions.ts';
+import { notFound } from '../problem-error.ts';
+
+export function createAirframesService({ database }: { database: Database }) {
+  return {
+    async list(actor: Actor, query: AirframeListQuery): Promise<Page<AirframeSummary>> {
+      requireDeed(actor, 'airframe.read');
+      const rows = await database.airframes.list(actor.organisationId, query);
+      return { ...rows, page: query.page, pageSize: query.pageSize };
+    },
+
+    async revision(actor: Actor, slug: string, number: number): Promise<AirframeRevision> {
+      requireDeed(actor, 'airframe.read');
+      const found = await database.airframes.findRevision(actor.organisationId, slug, number);
+      if (found === null) throw notFound('airframe revision');
+      return {
+        slug: found.slug,
+        revision: found.revision,
+        status: found.status,
+        note: found.note,
+        createdBy: found.createdBy,
+        createdAt: found.createdAt.toISOString(),
+        releasedAt: found.releasedAt?.toISOString() ?? null,
+        airframe: storedAirframe(found.document),
+      };
+    },
+  };
+}
+export type AirframesService = ReturnType<typeof createAirframesService>;
