@@ -7,7 +7,7 @@ export interface Area {
   roles: readonly Role[];
 }
 
-export type AreaName = 'my-flights' | 'airframes' | 'scenarios';
+export type AreaName = 'my-flights' | 'airframes' | 'analysis' | 'scenarios';
 
 const EVERYONE: readonly Role[] = ['trainee', 'instructor', 'engineer', 'administrator'];
 
@@ -15,6 +15,7 @@ const EVERYONE: readonly Role[] = ['trainee', 'instructor', 'engineer', 'adminis
 export const AREAS: readonly Area[] = [
   { name: 'my-flights', label: 'My flights', to: '/my-flights', roles: ['trainee', 'instructor'] },
   { name: 'airframes', label: 'Airframes', to: '/airframes', roles: ['engineer', 'instructor'] },
+  { name: 'analysis', label: 'Analysis', to: '/analysis', roles: ['engineer', 'instructor'] },
   { name: 'scenarios', label: 'Scenarios', to: '/scenarios', roles: EVERYONE },
 ];
 

@@ -60,6 +60,32 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Airframes', area: 'airframes', roles: ['engineer', 'instructor'], purpose: 'read airframes' },
   },
   {
+    path: '/airframes/:slug/revisions/:revision',
+    name: 'airframe-data',
+    component: () => import('../views/airframes/AirframeDataView.vue'),
+    props: true,
+    meta: { title: 'Airframe data', area: 'airframes', roles: ['engineer', 'instructor'], purpose: 'read airframes' },
+  },
+  {
+    path: '/airframes/:slug/difference',
+    name: 'airframe-difference',
+    component: () => import('../views/airframes/RevisionDifferenceView.vue'),
+    props: true,
+    meta: { title: 'Difference', area: 'airframes', roles: ['engineer', 'instructor'], purpose: 'read airframes' },
+  },
+  {
+    path: '/analysis',
+    name: 'analysis',
+    component: () => import('../views/analysis/AnalysisView.vue'),
+    meta: { title: 'Analysis', area: 'analysis', roles: ['engineer', 'instructor'], purpose: 'use the analysis' },
+  },
+  {
+    path: '/checks',
+    name: 'checks',
+    component: () => import('../views/checks/ChecksView.vue'),
+    meta: { title: 'Checks', area: 'analysis', roles: ['engineer', 'instructor'], purpose: 'see the checks' },
+  },
+  {
     path: '/account',
     name: 'account',
     component: () => import('../views/account/AccountView.vue'),
