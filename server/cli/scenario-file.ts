@@ -45,7 +45,9 @@ async function airframeOf(args: ParsedArguments, file: string, scenario: Scenari
       `${file}: /airframe/slug: known-airframe: there is no file scenarios/airframes/${slug}.json (give one with --airframe FILE)`,
     );
   }
-  notes.push(`The airframe is read from scenarios/airframes/${slug}.json; its revision (${revision} is wanted) is not checked.`);
+  notes.push(
+    `The airframe is read from scenarios/airframes/${slug}.json; its revision (${revision} is wanted) is not checked.`,
+  );
   return readAirframe(shipped, quiet);
 }
 

@@ -6,7 +6,9 @@ export function staticFiles(folder: string): Router {
   const router = Router();
   router.use(
     '/assets',
-    express.static(path.join(folder, 'assets'), { immutable: true, maxAge: '365d', fallthrough: false, index: false }),
+    express.static(path.join(folder, 'assets'), { immutable: true, maxAge: '365d', index: false }),
+    // A missing asset is missing: the application in its place would only fail later.
+    (_request, response) => void response.status(404).type('text/plain').send('There is no such file.'),
   );
   router.use(
     express.static(folder, {

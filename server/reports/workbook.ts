@@ -16,7 +16,11 @@ export type WorkbookCell = string | number | boolean | Date | null;
  */
 export async function streamWorkbook(
   out: Writable,
-  sheets: readonly { name: string; columns: readonly WorkbookColumn[]; rows: AsyncIterable<WorkbookCell[]> | Iterable<WorkbookCell[]> }[],
+  sheets: readonly {
+    name: string;
+    columns: readonly WorkbookColumn[];
+    rows: AsyncIterable<WorkbookCell[]> | Iterable<WorkbookCell[]>;
+  }[],
 ): Promise<number> {
   const workbook = new ExcelJS.stream.xlsx.WorkbookWriter({ stream: out, useStyles: true, useSharedStrings: false });
   workbook.creator = 'Sidewash';

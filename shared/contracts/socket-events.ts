@@ -2,7 +2,9 @@
 
 export interface ServerEvents {
   /** This person's sessions were ended (sign out everywhere, deactivation); the client signs out. */
-  'session:revoked': (notice: { reason: 'signed-out' | 'signed-out-everywhere' | 'token-reused' | 'deactivated' | 'roles-changed' }) => void;
+  'session:revoked': (notice: {
+    reason: 'signed-out' | 'signed-out-everywhere' | 'token-reused' | 'deactivated' | 'roles-changed';
+  }) => void;
 }
 
 /** Acknowledgement of every request: data, or an error code of problem.ts. */

@@ -87,16 +87,35 @@ function checkEngine(event: ScenarioEvent, i: number, airframe: Airframe, refuse
 function checkSystems(event: ScenarioEvent, i: number, airframe: Airframe, warn: Add): void {
   const { controls } = airframe;
   if (event.kind === 'yaw-damper' && !airframe.yawDamper) {
-    warn(`/events/${i}`, 'no-yaw-damper', `"${airframe.name}" has no yaw damper: the event has no effect`, 'Remove it.');
+    warn(
+      `/events/${i}`,
+      'no-yaw-damper',
+      `"${airframe.name}" has no yaw damper: the event has no effect`,
+      'Remove it.',
+    );
   }
   if (event.kind === 'rudder-ratio' && !controls.rudderRatio) {
-    warn(`/events/${i}`, 'no-rudder-ratio', `"${airframe.name}" has no rudder ratio: the event has no effect`, 'Remove it.');
+    warn(
+      `/events/${i}`,
+      'no-rudder-ratio',
+      `"${airframe.name}" has no rudder ratio: the event has no effect`,
+      'Remove it.',
+    );
   }
   const travel = event.kind === 'aileron-jam' ? controls.aileronMax_deg : controls.rudderMax_deg;
   const deg =
-    event.kind === 'rudder-trim' ? event.deg : event.kind === 'rudder-jam' || event.kind === 'aileron-jam' ? event.at_deg : undefined;
+    event.kind === 'rudder-trim'
+      ? event.deg
+      : event.kind === 'rudder-jam' || event.kind === 'aileron-jam'
+        ? event.at_deg
+        : undefined;
   if (deg !== undefined && Math.abs(deg) > travel) {
-    warn(`/events/${i}`, 'beyond-travel', `${deg}° lies beyond the travel of ${travel}°: the surface stops there`, 'Lower it.');
+    warn(
+      `/events/${i}`,
+      'beyond-travel',
+      `${deg}° lies beyond the travel of ${travel}°: the surface stops there`,
+      'Lower it.',
+    );
   }
 }
 
@@ -105,7 +124,12 @@ function warnOfControlSpeed(scenario: Scenario, airframe: Airframe, warn: Add): 
   if (airframe.engines.length > 1) return;
   const reads = (field: string, names: readonly string[]): void => {
     if (!names.includes('vmc')) return;
-    warn(field, 'no-control-speed', `"${airframe.name}" has no minimum control speed: the expression has no value`, 'Leave vmc out.');
+    warn(
+      field,
+      'no-control-speed',
+      `"${airframe.name}" has no minimum control speed: the expression has no value`,
+      'Leave vmc out.',
+    );
   };
   scenario.events.forEach(({ at }, i) => {
     const compiled = 'when' in at ? compileCondition(at.when) : null;

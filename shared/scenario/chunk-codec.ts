@@ -151,16 +151,21 @@ export type DecodedChunk = { ok: true; content: ChunkContent } | { ok: false; re
  */
 export function decodeBytes(bytes: Uint8Array, engineCount: number): DecodedChunk {
   const refuse = (reason: string): DecodedChunk => ({ ok: false, reason });
-  if (bytes.length > LARGEST_CHUNK_BYTES) return refuse(`${bytes.length} bytes are more than a chunk can have (${LARGEST_CHUNK_BYTES})`);
+  if (bytes.length > LARGEST_CHUNK_BYTES)
+    return refuse(`${bytes.length} bytes are more than a chunk can have (${LARGEST_CHUNK_BYTES})`);
   if (bytes.length < HEADER_BYTES) return refuse(`${bytes.length} bytes are too few for a chunk`);
   const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
   if (view.getUint32(0, true) !== CHUNK_MAGIC) return refuse('the bytes are not a recording');
-  if (view.getUint8(4) !== CHUNK_VERSION) return refuse(`version ${view.getUint8(4)} of the recording is not known here`);
-  if (view.getUint8(5) !== engineCount) return refuse(`it was recorded with ${view.getUint8(5)} engines; the airframe has ${engineCount}`);
+  if (view.getUint8(4) !== CHUNK_VERSION)
+    return refuse(`version ${view.getUint8(4)} of the recording is not known here`);
+  if (view.getUint8(5) !== engineCount)
+    return refuse(`it was recorded with ${view.getUint8(5)} engines; the airframe has ${engineCount}`);
   const tickCount = view.getUint16(14, true);
   const markCount = view.getUint16(16, true);
-  if (tickCount > LARGEST_CHUNK_TICKS) return refuse(`${tickCount} ticks are more than a chunk holds (${LARGEST_CHUNK_TICKS})`);
-  if (markCount > LARGEST_CHUNK_MARKS) return refuse(`${markCount} clock marks are more than a chunk holds (${LARGEST_CHUNK_MARKS})`);
+  if (tickCount > LARGEST_CHUNK_TICKS)
+    return refuse(`${tickCount} ticks are more than a chunk holds (${LARGEST_CHUNK_TICKS})`);
+  if (markCount > LARGEST_CHUNK_MARKS)
+    return refuse(`${markCount} clock marks are more than a chunk holds (${LARGEST_CHUNK_MARKS})`);
   if (tickCount === 0 && markCount === 0) return refuse('the chunk is empty');
   let stateHash = '';
   for (let i = 18; i < HEADER_BYTES; i++) stateHash += view.getUint8(i).toString(16).padStart(2, '0');
@@ -211,9 +216,13 @@ export function decodeBytes(bytes: Uint8Array, engineCount: number): DecodedChun
     if (kind === undefined) return refuse('a clock mark is of no known kind');
     if (!Number.isFinite(value)) return refuse('a clock mark has no finite value');
     if (kind === 'rate' && (value <= 0 || value > 1)) return refuse(`a clock rate of ${value} is not between 0 and 1`);
-    if (kind === 'rewind' && (!Number.isInteger(value) || value < 0 || value > tick)) return refuse('a rewind does not lead back');
+    if (kind === 'rewind' && (!Number.isInteger(value) || value < 0 || value > tick))
+      return refuse('a rewind does not lead back');
     marks.push(kind === 'rate' || kind === 'rewind' ? { kind, tick, value } : { kind, tick });
   }
   if (at !== bytes.length) return refuse(`${bytes.length - at} bytes are left over`);
-  return { ok: true, content: { index: view.getUint32(6, true), startTick, tickCount, engineCount, stateHash, channels, marks } };
+  return {
+    ok: true,
+    content: { index: view.getUint32(6, true), startTick, tickCount, engineCount, stateHash, channels, marks },
+  };
 }

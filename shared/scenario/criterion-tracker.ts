@@ -104,7 +104,11 @@ export class CriterionTracker {
     const opened = this.phase === RUNNING || this.phase === DONE;
     const si = opened ? measure.value : NaN;
     const value = Number.isNaN(si) ? null : si / this.factor;
-    const note = !opened ? undefined : value === null && spec.mayNeverCome && this.phase === DONE ? 'never' : measure.note();
+    const note = !opened
+      ? undefined
+      : value === null && spec.mayNeverCome && this.phase === DONE
+        ? 'never'
+        : measure.note();
     const base = { id, title, measure: criterion.measure, required, value, limit: { ...limit } };
     if (value === null) {
       const verdict: Verdict = opened && spec.mayNeverCome && this.phase === DONE ? 'not-met' : 'not-reached';
@@ -164,6 +168,10 @@ export function marginOf(value: number, limit: Limit): number {
 export function verdictOf(margin: number, limit: Limit): Verdict {
   if (!(margin >= 0)) return 'not-met';
   const size =
-    'max' in limit ? Math.abs(limit.max) : 'min' in limit ? Math.abs(limit.min) : 0.5 * (limit.within[1] - limit.within[0]);
+    'max' in limit
+      ? Math.abs(limit.max)
+      : 'min' in limit
+        ? Math.abs(limit.min)
+        : 0.5 * (limit.within[1] - limit.within[0]);
   return size > 0 && margin <= NEAR_SHARE * size ? 'near' : 'met';
 }

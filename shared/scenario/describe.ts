@@ -47,9 +47,13 @@ export function eventText(event: ScenarioEvent): string {
     case 'turbulence':
       return event.level === 'none' ? 'Turbulence ends' : `${capital(event.level)} turbulence begins`;
     case 'rudder-jam':
-      return event.at_deg === undefined ? 'Rudder jams where it is' : `Rudder jams at ${surface(event.at_deg, 'rudder')}`;
+      return event.at_deg === undefined
+        ? 'Rudder jams where it is'
+        : `Rudder jams at ${surface(event.at_deg, 'rudder')}`;
     case 'aileron-jam':
-      return event.at_deg === undefined ? 'Ailerons jam where they are' : `Ailerons jam at ${surface(event.at_deg, 'aileron')}`;
+      return event.at_deg === undefined
+        ? 'Ailerons jam where they are'
+        : `Ailerons jam at ${surface(event.at_deg, 'aileron')}`;
     case 'rudder-hardover':
       return `Rudder runs hard over to the ${event.to}`;
     case 'aileron-half':
@@ -93,7 +97,8 @@ function gustText(event: Extract<ScenarioEvent, { kind: 'gust' }>): string {
       : event.gradientDistance_m === undefined
         ? `, peak after ${plainNumber(event.over_s ?? 0)} s`
         : `, peak after ${plainNumber(event.gradientDistance_m)} m`;
-  if (event.axis === 'lateral') return `Gust from the ${event.from}, ${plainNumber(event.peak_kt)} kt, ${shape}${length}`;
+  if (event.axis === 'lateral')
+    return `Gust from the ${event.from}, ${plainNumber(event.peak_kt)} kt, ${shape}${length}`;
   const side = event.peak_deg_s < 0 ? 'left' : 'right';
   const word = event.axis === 'yaw-rate' ? 'Yawing' : 'Rolling';
   return `${word} gust to the ${side}, ${plainNumber(Math.abs(event.peak_deg_s))}°/s, ${shape}${length}`;
@@ -140,12 +145,14 @@ function pitchText(pitch: PitchText): string {
 /** When an event happens, as "at 3 s" or "4 s after cut". */
 export function triggerText(at: ScenarioTrigger): string {
   if ('time_s' in at) return `at ${plainNumber(at.time_s)} s`;
-  if ('after' in at) return at.delay_s === 0 ? `right after ${at.after}` : `${plainNumber(at.delay_s)} s after ${at.after}`;
+  if ('after' in at)
+    return at.delay_s === 0 ? `right after ${at.after}` : `${plainNumber(at.delay_s)} s after ${at.after}`;
   return `when ${at.when}`;
 }
 
 function edgeText(edge: WindowEdge): string {
-  if (typeof edge !== 'string') return `${plainNumber(edge.plus_s)} s after ${edge.after === 'start' ? 'the start' : edge.after}`;
+  if (typeof edge !== 'string')
+    return `${plainNumber(edge.plus_s)} s after ${edge.after === 'start' ? 'the start' : edge.after}`;
   return edge === 'start' || edge === 'end' ? `the ${edge}` : edge;
 }
 

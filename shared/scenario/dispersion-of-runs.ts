@@ -38,7 +38,10 @@ export function flyDispersion(job: DispersionJob): DispersionRow[] {
   for (let draw = job.from; draw < job.to; draw++) {
     try {
       const airframe = drawAirframe(job.airframe, fields, job.seed, draw);
-      const run = createRun({ scenario: job.scenario, airframe, seed: job.scenario.seed, drawn: job.drawn }, { lean: true });
+      const run = createRun(
+        { scenario: job.scenario, airframe, seed: job.scenario.seed, drawn: job.drawn },
+        { lean: true },
+      );
       flyRun(run, job.pilot === 'reference' ? createReferencePilot(run, job.delayS) : handsOff());
       rows.push({ draw, values: run.results().map((r) => r.value), passed: run.passed(), problem: null });
     } catch (error) {

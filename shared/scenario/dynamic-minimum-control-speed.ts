@@ -59,9 +59,11 @@ export function dynamicMinimumControlSpeed(
   const probe = plantAt(airframe, request, 60);
   const stallTas = stallTasMps(probe?.aircraft ?? prepared(airframe, request), densityAt(heightM));
   const stallCasMps = casFromTas(stallTas, heightM);
-  if (airframe.engines.length === 0) return { found: false, reason: 'no-engine', message: 'the airframe has no engine', stallCasMps };
+  if (airframe.engines.length === 0)
+    return { found: false, reason: 'no-engine', message: 'the airframe has no engine', stallCasMps };
   const name = airframe.engines[request.failed]?.name;
-  if (name === undefined) throw new ModelError('unknown-engine', `there is no engine number ${request.failed}`, 'failed');
+  if (name === undefined)
+    throw new ModelError('unknown-engine', `there is no engine number ${request.failed}`, 'failed');
   const held = (casMps: number): boolean | null => heldAt(airframe, request, casMps);
   const atStall = held(stallCasMps);
   const answer = (casMps: number, belowStall: boolean): DynamicSpeed => ({
@@ -90,8 +92,18 @@ export function dynamicMinimumControlSpeed(
     low = cas;
   }
   return trimmed
-    ? { found: false, reason: 'not-held-at-any-speed', message: `the cut is not held at any speed up to ${HIGHEST_STALLS} stall speeds`, stallCasMps }
-    : { found: false, reason: 'cannot-be-trimmed', message: 'straight flight at full lever cannot be trimmed', stallCasMps };
+    ? {
+        found: false,
+        reason: 'not-held-at-any-speed',
+        message: `the cut is not held at any speed up to ${HIGHEST_STALLS} stall speeds`,
+        stallCasMps,
+      }
+    : {
+        found: false,
+        reason: 'cannot-be-trimmed',
+        message: 'straight flight at full lever cannot be trimmed',
+        stallCasMps,
+      };
 }
 
 type Request = Parameters<typeof dynamicMinimumControlSpeed>[1];
@@ -118,7 +130,8 @@ function plantAt(airframe: Airframe, request: Request, casMps: number): Plant | 
       seed: 1,
     });
   } catch (error) {
-    if (error instanceof ModelError && (error.code === 'singular-trim' || error.code === 'trim-beyond-travel')) return null;
+    if (error instanceof ModelError && (error.code === 'singular-trim' || error.code === 'trim-beyond-travel'))
+      return null;
     throw error;
   }
 }
@@ -128,7 +141,11 @@ function heldAt(airframe: Airframe, request: Request, casMps: number): boolean |
   if (!plant) return null;
   let pilot;
   try {
-    pilot = createPilotCore(plant, { kind: 'hold-heading' }, 'zero-sideslip', { tasMps: plant.x[X.X_V], heightM: request.heightM, thetaRad: 0 });
+    pilot = createPilotCore(plant, { kind: 'hold-heading' }, 'zero-sideslip', {
+      tasMps: plant.x[X.X_V],
+      heightM: request.heightM,
+      thetaRad: 0,
+    });
   } catch (error) {
     if (error instanceof NumericsError) return false;
     throw error;
@@ -143,7 +160,8 @@ function heldAt(airframe: Airframe, request: Request, casMps: number): boolean |
       plant.inputs.pedal = Math.round(pilot.pedal * FULL) / FULL;
     }
     if (!plant.step()) return false;
-    if (Math.abs(plant.x[X.X_PSI]) > DYNAMIC_LIMITS.headingRad || Math.abs(plant.x[X.X_PHI]) > DYNAMIC_LIMITS.bankRad) return false;
+    if (Math.abs(plant.x[X.X_PSI]) > DYNAMIC_LIMITS.headingRad || Math.abs(plant.x[X.X_PHI]) > DYNAMIC_LIMITS.bankRad)
+      return false;
   }
   return true;
 }

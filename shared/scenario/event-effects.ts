@@ -85,7 +85,8 @@ export function applyEvent(event: ScenarioEvent, on: EffectTargets): void {
 /** A gust for the plant. A ramp by distance or a one-minus-cosine by time is turned at the present true airspeed. */
 function gustOf(event: Gust, tasMps: number): Parameters<Plant['addGust']>[0] {
   const { axis, shape, gradientDistance_m: distance, over_s: over } = event;
-  const peak = event.axis === 'lateral' ? (event.from === 'left' ? 1 : -1) * event.peak_kt * KT : event.peak_deg_s * DEG;
+  const peak =
+    event.axis === 'lateral' ? (event.from === 'left' ? 1 : -1) * event.peak_kt * KT : event.peak_deg_s * DEG;
   if (shape === 'step') return { axis, shape, peak };
   if (shape === 'ramp') return { axis, shape, peak, overS: over ?? (distance ?? 0) / tasMps };
   return { axis, shape, peak, gradientDistanceM: distance ?? (over ?? 0) * tasMps };

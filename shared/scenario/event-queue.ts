@@ -73,7 +73,11 @@ export class EventQueue {
   private withReads(record: EventRecord, find: (id: string) => EventRecord | undefined): EventRecord {
     for (const id of record.condition?.sinceIds ?? []) {
       const read = find(id);
-      if (!read) throw new ScenarioError('bad-event', `the event "${record.event.id}" reads since(${id}), which is not in this run`);
+      if (!read)
+        throw new ScenarioError(
+          'bad-event',
+          `the event "${record.event.id}" reads since(${id}), which is not in this run`,
+        );
       record.reads.push(read);
     }
     return record;
@@ -131,7 +135,16 @@ function recordOf(event: ScenarioEvent, after: EventRecord | null, injected: boo
   const { at } = event;
   const ticks = 'time_s' in at ? ticksOf(at.time_s) : 'after' in at ? ticksOf(at.delay_s) : 0;
   const condition = 'when' in at ? conditionOf(event.id, at.when) : null;
-  return { event, injected, firedTick: -1, ticks, after, condition, holds: condition?.holdsOnceFired ?? null, reads: [] };
+  return {
+    event,
+    injected,
+    firedTick: -1,
+    ticks,
+    after,
+    condition,
+    holds: condition?.holdsOnceFired ?? null,
+    reads: [],
+  };
 }
 
 function conditionOf(id: string, when: string): CompiledCondition {

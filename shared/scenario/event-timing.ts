@@ -64,7 +64,11 @@ function edgeTiming(edge: WindowEdge, timings: ReadonlyMap<string, EventTiming>,
 }
 
 /** True when a window closes before it opens in every run. */
-export function endsBeforeStart(from: WindowEdge, to: WindowEdge, scenario: Pick<Scenario, 'events' | 'duration_s'>): boolean {
+export function endsBeforeStart(
+  from: WindowEdge,
+  to: WindowEdge,
+  scenario: Pick<Scenario, 'events' | 'duration_s'>,
+): boolean {
   const timings = timingsOf(scenario.events);
   const opens = edgeTiming(from, timings, scenario.duration_s);
   const closes = edgeTiming(to, timings, scenario.duration_s);

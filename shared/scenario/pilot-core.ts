@@ -132,8 +132,22 @@ export function createPilotCore(
       const clamped = clamp(headingError, HEADING_CLAMP_RAD);
       const z0 = x[X.X_BETA] - betaStar;
       const z3 = x[X.X_PHI] - phiStar;
-      const aileron = -(gains[0] * z0 + gains[1] * x[X.X_P] + gains[2] * x[X.X_R] + gains[3] * z3 + gains[4] * clamped + gains[5] * memory.integral);
-      const rudder = -(gains[6] * z0 + gains[7] * x[X.X_P] + gains[8] * x[X.X_R] + gains[9] * z3 + gains[10] * clamped + gains[11] * memory.integral);
+      const aileron = -(
+        gains[0] * z0 +
+        gains[1] * x[X.X_P] +
+        gains[2] * x[X.X_R] +
+        gains[3] * z3 +
+        gains[4] * clamped +
+        gains[5] * memory.integral
+      );
+      const rudder = -(
+        gains[6] * z0 +
+        gains[7] * x[X.X_P] +
+        gains[8] * x[X.X_R] +
+        gains[9] * z3 +
+        gains[10] * clamped +
+        gains[11] * memory.integral
+      );
       // Commands stay within the surfaces' travel; pedal and stick are what brings the surfaces there from the present trim.
       const aileronWanted = clamp(aileronStar + aileron, controls.aileronMaxRad);
       const rudderWanted = rudderStar + rudder;

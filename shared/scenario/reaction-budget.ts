@@ -16,7 +16,14 @@ export const DELAY_RESOLUTION_S = 0.02;
 /** Criteria of these measures judge the reaction itself and do not bind the budget. */
 export const REACTION_MEASURES: readonly MeasureName[] = ['first-correct-pedal', 'wrong-pedal-time'];
 /** Values that may come back inside their limit while the run goes on. */
-const NOT_FINAL: readonly string[] = ['climb-rate', 'speed-regained', 'lever-reduced', 'nose-lowered', 'feathered-within', 'yaw-arrested'];
+const NOT_FINAL: readonly string[] = [
+  'climb-rate',
+  'speed-regained',
+  'lever-reduced',
+  'nose-lowered',
+  'feathered-within',
+  'yaw-arrested',
+];
 /** How often a run is looked at for a criterion that has already failed; ticks. */
 const LOOK_TICKS = 30;
 
@@ -55,7 +62,12 @@ export function createBudgetEvaluator(spec: RunSpec): BudgetEvaluator {
     const first = byEvent ? firstEventTick(now) : 0;
     if (now.ended !== null) return;
     // One snapshot at the first event, then one a grid step as far as a delay can reach.
-    if (first !== null && now.tick > first && now.tick - first <= longest + spacing && (now.tick - first - 1) % spacing === 0) {
+    if (
+      first !== null &&
+      now.tick > first &&
+      now.tick - first <= longest + spacing &&
+      (now.tick - first - 1) % spacing === 0
+    ) {
       snapshots.push(now.save());
     }
   });
@@ -106,7 +118,8 @@ function failures(results: readonly CriterionResult[], counted: ReadonlySet<stri
 function finalFailures(criteria: readonly RunningCriterion[], counted: ReadonlySet<string>): string[] {
   return criteria
     .filter((c) => {
-      if (!counted.has(c.id) || c.value === null || c.limit.max === undefined || NOT_FINAL.includes(c.measure)) return false;
+      if (!counted.has(c.id) || c.value === null || c.limit.max === undefined || NOT_FINAL.includes(c.measure))
+        return false;
       return c.phase !== 'waiting' && c.value > c.limit.max;
     })
     .map((c) => c.id);
@@ -134,7 +147,10 @@ export function budgetGrid(): number[] {
  * The search as a dialogue: yields delays to evaluate (any order, any number of workers), receives their outcomes.
  * The first round is the grid, each further round halves every change that is still wider than the resolution.
  */
-export function* searchBudget(withoutPilot: DelayOutcome, binds: boolean): Generator<number[], ReactionBudget, DelayOutcome[]> {
+export function* searchBudget(
+  withoutPilot: DelayOutcome,
+  binds: boolean,
+): Generator<number[], ReactionBudget, DelayOutcome[]> {
   const plain = { binding: null, intervalsS: [] as [number, number][], resolutionS: DELAY_RESOLUTION_S };
   if (!binds) return { budgetS: null, reason: 'no-criteria', ...plain };
   if (withoutPilot.met) return { budgetS: null, reason: 'met-hands-off', ...plain };

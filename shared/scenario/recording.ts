@@ -188,7 +188,8 @@ export class RecordingPlayer {
   }
 
   private rewind(tick: number, index: number): void {
-    if (tick > this.lineage.length) throw new RecordingError('gap', index, `chunk ${index} rewinds to tick ${tick}, which was not flown`);
+    if (tick > this.lineage.length)
+      throw new RecordingError('gap', index, `chunk ${index} rewinds to tick ${tick}, which was not flown`);
     while (this.snapshots.length > 1 && this.snapshots[this.snapshots.length - 1].tick > tick) this.snapshots.pop();
     const from = this.snapshots[this.snapshots.length - 1];
     this.run.restore(from);

@@ -64,7 +64,8 @@ export function createReplay(
     seek(tick) {
       const target = Math.min(last, Math.max(0, Math.round(tick)));
       const ahead = target - run.tick;
-      if (ahead < 0 || ahead > KEYFRAME_TICKS) run.restore(keyframes[Math.min(keyframes.length - 1, Math.floor(target / KEYFRAME_TICKS))]);
+      if (ahead < 0 || ahead > KEYFRAME_TICKS)
+        run.restore(keyframes[Math.min(keyframes.length - 1, Math.floor(target / KEYFRAME_TICKS))]);
       while (run.tick < target) {
         const { content, at } = branch[run.tick];
         const before = run.tick;

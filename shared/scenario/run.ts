@@ -116,8 +116,7 @@ export const createRun: CreateRun = (spec, options = {}) => {
       freezeRequested = true;
     },
   };
-  const numbersLength =
-    STATE_HASH_LENGTH + ValidityWatch.MEMORY + board.memoryLength;
+  const numbersLength = STATE_HASH_LENGTH + ValidityWatch.MEMORY + board.memoryLength;
   if (!lean) plant.hashInto(hash);
 
   function readInputs(sample: ControlSample): void {
@@ -152,7 +151,10 @@ export const createRun: CreateRun = (spec, options = {}) => {
   }
 
   function inject(event: Parameters<Run['inject']>[0]): void {
-    const { issues } = checkAgainstAirframe({ ...scenario, configuration: null, loading: null, events: [event] }, airframe);
+    const { issues } = checkAgainstAirframe(
+      { ...scenario, configuration: null, loading: null, events: [event] },
+      airframe,
+    );
     const own = issues.filter(({ field }) => field.startsWith('/events/'));
     if (own.length > 0) throw new ScenarioError('bad-event', own[0].message, own);
     queue.inject(withDrawnValues(event, drawValues({ events: [event] }, seed)));

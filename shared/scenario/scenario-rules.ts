@@ -43,7 +43,12 @@ function checkStart(scenario: Scenario, report: Report): void {
 
 function needsRunway(scenario: Scenario, mode: string | undefined, field: string, report: Report): void {
   if (mode !== 'glidepath' || scenario.runway) return;
-  report(field, 'needs-runway', 'the pitch mode glidepath needs a runway', 'Add "runway", or choose another pitch mode.');
+  report(
+    field,
+    'needs-runway',
+    'the pitch mode glidepath needs a runway',
+    'Add "runway", or choose another pitch mode.',
+  );
 }
 
 function checkIds({ events, criteria }: Scenario, report: Report): void {
@@ -171,7 +176,12 @@ function checkVariation(event: ScenarioEvent, i: number, report: Report): void {
       const tried = eventSchema.safeParse(withMember(event, member, value));
       const issue = tried.success ? null : tried.error.issues[0];
       if (!issue) continue;
-      report(field, 'range', `${value} is not allowed for ${member}: ${issue.message.toLowerCase()}`, 'Keep the range inside what the member allows.');
+      report(
+        field,
+        'range',
+        `${value} is not allowed for ${member}: ${issue.message.toLowerCase()}`,
+        'Keep the range inside what the member allows.',
+      );
       break;
     }
   }
@@ -192,23 +202,44 @@ function checkShape(event: ScenarioEvent, i: number, report: Report, warn: Repor
     report(`${field}/duration_s`, 'required', `a ${event.shape} needs duration_s`, 'Add its duration in seconds.');
   }
   if (event.kind === 'input' && event.shape === 'step' && event.duration_s !== undefined) {
-    warn(`${field}/duration_s`, 'unused', 'a step stays: its duration_s has no effect', 'Remove duration_s, or choose a pulse.');
+    warn(
+      `${field}/duration_s`,
+      'unused',
+      'a step stays: its duration_s has no effect',
+      'Remove duration_s, or choose a pulse.',
+    );
   }
   if (event.kind !== 'gust') return;
   const both = event.gradientDistance_m !== undefined && event.over_s !== undefined;
   const neither = event.gradientDistance_m === undefined && event.over_s === undefined;
   if (event.shape === 'step') {
     if (neither) return;
-    warn(`${field}/shape`, 'unused', 'a step gust comes at once: its length has no effect', 'Choose ramp or one-minus-cosine.');
+    warn(
+      `${field}/shape`,
+      'unused',
+      'a step gust comes at once: its length has no effect',
+      'Choose ramp or one-minus-cosine.',
+    );
   } else if (neither) {
     const wanted = event.shape === 'ramp' ? 'over_s' : 'gradientDistance_m';
-    report(`${field}/${wanted}`, 'required', `a ${event.shape} gust needs ${wanted}`, `Add ${wanted}: the peak is reached there.`);
+    report(
+      `${field}/${wanted}`,
+      'required',
+      `a ${event.shape} gust needs ${wanted}`,
+      `Add ${wanted}: the peak is reached there.`,
+    );
   } else if (both) {
     report(`${field}/over_s`, 'one-of', 'a gust has gradientDistance_m or over_s, not both', 'Remove one of them.');
   }
 }
 
-function checkCriterion(scenario: Scenario, criterion: ScenarioCriterion, i: number, report: Report, warn: Report): void {
+function checkCriterion(
+  scenario: Scenario,
+  criterion: ScenarioCriterion,
+  i: number,
+  report: Report,
+  warn: Report,
+): void {
   const field = `/criteria/${i}`;
   const dimension = measuredDimension(scenario, criterion, field, report);
   checkLimit(criterion, dimension, field, report);
@@ -216,15 +247,30 @@ function checkCriterion(scenario: Scenario, criterion: ScenarioCriterion, i: num
   checkEdge(scenario, criterion.from, `${field}/from`, report);
   checkEdge(scenario, criterion.to, `${field}/to`, report);
   if (endsBeforeStart(criterion.from, criterion.to, scenario)) {
-    report(`${field}/to`, 'window', 'the window ends before it starts', 'Exchange "from" and "to", or lengthen the window.');
+    report(
+      `${field}/to`,
+      'window',
+      'the window ends before it starts',
+      'Exchange "from" and "to", or lengthen the window.',
+    );
   }
   if (criterion.measure.startsWith('touchdown-') && !scenario.runway) {
-    warn(`${field}/measure`, 'needs-runway', 'without a runway there is no touchdown: this is never reached', 'Add "runway".');
+    warn(
+      `${field}/measure`,
+      'needs-runway',
+      'without a runway there is no touchdown: this is never reached',
+      'Add "runway".',
+    );
   }
 }
 
 /** Dimension of the measured value; null when it cannot be told. */
-function measuredDimension(scenario: Scenario, criterion: ScenarioCriterion, field: string, report: Report): Dimension | null {
+function measuredDimension(
+  scenario: Scenario,
+  criterion: ScenarioCriterion,
+  field: string,
+  report: Report,
+): Dimension | null {
   if (criterion.measure !== 'expression') {
     if (criterion.expression !== undefined) {
       report(
@@ -237,7 +283,12 @@ function measuredDimension(scenario: Scenario, criterion: ScenarioCriterion, fie
     return MEASURE_TABLE[criterion.measure].dimension;
   }
   if (criterion.expression === undefined) {
-    report(`${field}/expression`, 'required', 'the measure "expression" needs an expression', 'Add it, as "abs(bank)".');
+    report(
+      `${field}/expression`,
+      'required',
+      'the measure "expression" needs an expression',
+      'Add it, as "abs(bank)".',
+    );
     return null;
   }
   const compiled = compileQuantity(criterion.expression);
@@ -278,7 +329,12 @@ function checkLimit(criterion: ScenarioCriterion, dimension: Dimension | null, f
     );
   }
   if ('within' in limit && limit.within[0] > limit.within[1]) {
-    report(`${field}/limit/within`, 'ascending', 'the lower end lies above the upper end', 'Write the lower value first.');
+    report(
+      `${field}/limit/within`,
+      'ascending',
+      'the lower end lies above the upper end',
+      'Write the lower value first.',
+    );
   }
   if (measure === 'pedal-reversals' && !('max' in limit)) {
     report(
@@ -299,9 +355,16 @@ function checkRegained(criterion: ScenarioCriterion, field: string, report: Repo
     }
     return;
   }
-  if (value === undefined) report(`${field}/value`, 'required', 'speed-regained needs the speed "value"', 'Add value and unit.');
+  if (value === undefined)
+    report(`${field}/value`, 'required', 'speed-regained needs the speed "value"', 'Add value and unit.');
   const speed = unitsOf(UNITS.kt.dimension);
-  if (unit === undefined) report(`${field}/unit`, 'required', 'speed-regained needs the unit of its value', `Add one of ${speed.join(', ')}.`);
+  if (unit === undefined)
+    report(
+      `${field}/unit`,
+      'required',
+      'speed-regained needs the unit of its value',
+      `Add one of ${speed.join(', ')}.`,
+    );
   else if (!speed.includes(unit)) {
     report(`${field}/unit`, 'unit', `"${unit}" is not a unit of speed`, `Use ${speed.join(' or ')}.`);
   }

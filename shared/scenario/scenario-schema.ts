@@ -43,7 +43,10 @@ export function parseScenario(input: unknown): ParsedScenario {
   const parsed = scenarioSchema.safeParse(input);
   if (!parsed.success) {
     const issues = issuesFromSchema(parsed.error, input).map((issue) => explained(issue, input));
-    return { ok: false, issues: issues.filter((issue, i) => !issues.slice(0, i).some((other) => sameIssue(issue, other))) };
+    return {
+      ok: false,
+      issues: issues.filter((issue, i) => !issues.slice(0, i).some((other) => sameIssue(issue, other))),
+    };
   }
   const issues: FieldIssue[] = [];
   const warnings: FieldIssue[] = [];
@@ -106,9 +109,18 @@ function explained(issue: FieldIssue, input: unknown): FieldIssue {
   if (EVENT_AT.test(parent) && field.endsWith('/lane')) {
     const kind = kindOf(parent);
     const lane = Object.entries(EVENT_KINDS).find(([name]) => name === kind)?.[1].lane;
-    if (lane) return { field, rule: 'lane', message: `the kind "${kind}" belongs to the lane "${lane}"`, remedy: `Write "lane": "${lane}".` };
+    if (lane)
+      return {
+        field,
+        rule: 'lane',
+        message: `the kind "${kind}" belongs to the lane "${lane}"`,
+        remedy: `Write "lane": "${lane}".`,
+      };
   }
-  if (/^\/events\/\d+\/at$/u.test(field) || (/^\/events\/\d+\/at\//u.test(field) && issue.rule !== 'minimum' && issue.rule !== 'maximum')) {
+  if (
+    /^\/events\/\d+\/at$/u.test(field) ||
+    (/^\/events\/\d+\/at\//u.test(field) && issue.rule !== 'minimum' && issue.rule !== 'maximum')
+  ) {
     return explainedTrigger(issue, input);
   }
   const limit = /^\/criteria\/\d+\/limit/u.exec(field)?.[0];
@@ -145,5 +157,7 @@ function explainedTrigger(issue: FieldIssue, input: unknown): FieldIssue {
 
 /** The start levers of a scenario for an airframe with so many engines. */
 export function startLevers(scenario: Scenario, engineCount: number): number[] {
-  return scenario.start.levers ? [...scenario.start.levers] : new Array<number>(engineCount).fill(SCENARIO_DEFAULTS.lever);
+  return scenario.start.levers
+    ? [...scenario.start.levers]
+    : new Array<number>(engineCount).fill(SCENARIO_DEFAULTS.lever);
 }

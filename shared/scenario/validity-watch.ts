@@ -63,7 +63,9 @@ export class ValidityWatch {
     }
     const swings = this.reversals.value;
     if (swings > 0) {
-      lines.push(`Rapid pedal reversals: ${swings}. In life they can exceed the structure's strength; never alternate full rudder.`);
+      lines.push(
+        `Rapid pedal reversals: ${swings}. In life they can exceed the structure's strength; never alternate full rudder.`,
+      );
     }
     return lines;
   }

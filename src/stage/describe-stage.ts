@@ -11,7 +11,12 @@ const VIEW_WORDS: Record<CameraName, string> = {
   top: 'Seen from above',
   side: 'Seen from the right side',
 };
-const ENGINE_WORDS = ['runs', 'has failed and windmills', 'has failed, propeller feathered', 'has lost part of its thrust'] as const;
+const ENGINE_WORDS = [
+  'runs',
+  'has failed and windmills',
+  'has failed, propeller feathered',
+  'has lost part of its thrust',
+] as const;
 /** Below this a force or moment is called none: share of weight, and of weight times span. */
 const LEAST_FORCE = 0.002;
 const LEAST_MOMENT = 0.0004;
@@ -58,9 +63,13 @@ function arrowWords(id: ArrowId, now: Observation, spanM: number): string {
   const name = ARROW_NAMES[id].toLowerCase();
   const weight = now.forceWeightN;
   const side = (force: number): string =>
-    Math.abs(force) < LEAST_FORCE * weight ? `${name} none` : `${name} ${amount(force)} to the ${force > 0 ? 'right' : 'left'}`;
+    Math.abs(force) < LEAST_FORCE * weight
+      ? `${name} none`
+      : `${name} ${amount(force)} to the ${force > 0 ? 'right' : 'left'}`;
   const turn = (moment: number): string =>
-    Math.abs(moment) < LEAST_MOMENT * weight * spanM ? `${name} none` : `${name} ${amount(moment)} metres to the ${moment > 0 ? 'right' : 'left'}`;
+    Math.abs(moment) < LEAST_MOMENT * weight * spanM
+      ? `${name} none`
+      : `${name} ${amount(moment)} metres to the ${moment > 0 ? 'right' : 'left'}`;
   switch (id) {
     case 'R':
       return side(now.forceRudderN);

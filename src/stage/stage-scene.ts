@@ -52,7 +52,8 @@ export class StageScene {
 
   setColours(palette: StagePalette): void {
     this.palette = palette;
-    for (const part of [this.ground, this.runway, this.ribbon, this.cue, this.aeroplane, this.ghost]) part?.setColours(palette);
+    for (const part of [this.ground, this.runway, this.ribbon, this.cue, this.aeroplane, this.ghost])
+      part?.setColours(palette);
   }
 
   /** Poses everything for one instant. */

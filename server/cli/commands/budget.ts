@@ -41,14 +41,21 @@ function jsonOf(budget: ReactionBudget): Record<string, unknown> {
 }
 
 function textOf(scenario: Scenario, budget: ReactionBudget, notes: string[]): string[] {
-  const titleOf = (id: string | null): string => scenario.criteria.find((criterion) => criterion.id === id)?.title ?? '–';
+  const titleOf = (id: string | null): string =>
+    scenario.criteria.find((criterion) => criterion.id === id)?.title ?? '–';
   const lines = [`${scenario.title}: reaction budget`, ''];
   if (budget.reason === 'no-criteria') lines.push('None: no required criterion but those of the reaction itself.');
   else if (budget.reason === 'met-hands-off') lines.push('None: every required criterion is met hands off.');
   else if (budget.reason === 'not-met-at-0') {
-    lines.push(`None: the reference pilot does not meet the criteria even without delay. First: ${titleOf(budget.binding)}.`);
-  } else if (budget.capped === true) lines.push(`${fixed(budget.budgetS, 2)} s or more: met at every delay that is looked at.`);
-  else lines.push(`${fixed(budget.budgetS, 2)} s (to ${fixed(budget.resolutionS, 2)} s). First to fail beyond it: ${titleOf(budget.binding)}.`);
+    lines.push(
+      `None: the reference pilot does not meet the criteria even without delay. First: ${titleOf(budget.binding)}.`,
+    );
+  } else if (budget.capped === true)
+    lines.push(`${fixed(budget.budgetS, 2)} s or more: met at every delay that is looked at.`);
+  else
+    lines.push(
+      `${fixed(budget.budgetS, 2)} s (to ${fixed(budget.resolutionS, 2)} s). First to fail beyond it: ${titleOf(budget.binding)}.`,
+    );
   const later = budget.intervalsS.filter(([from]) => from > 0);
   for (const [from, to] of later) lines.push(`Met again from ${fixed(from, 2)} s to ${fixed(to, 2)} s (listed only).`);
   return notes.length > 0 ? [...lines, '', ...notes] : lines;

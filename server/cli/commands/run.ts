@@ -33,7 +33,8 @@ export const command: Command = {
       flyRun(made, pilot === 'reference' ? createReferencePilot(made, delayS) : handsOff(), Infinity, takes.take);
       return { run: made, trace: takes };
     });
-    if (run.ended === 'non-finite') throw new UsageError(`${file}: the run stopped: ${run.endDetail ?? 'a state is not finite'}`);
+    if (run.ended === 'non-finite')
+      throw new UsageError(`${file}: the run stopped: ${run.endDetail ?? 'a state is not finite'}`);
     if (csv !== undefined) await writeCsv(csv, trace.csv());
     const warnings = [...notes, ...run.warnings];
     const who = pilot === 'reference' ? `reference pilot, ${fixed(delayS, 2)} s` : 'hands off';
@@ -46,7 +47,8 @@ export const command: Command = {
 function pilotOption(args: ParsedArguments): { pilot: 'hands-off' | 'reference'; delayS: number } {
   const delay = quantityOption(args, 'delay', 'time');
   const pilot = choiceOption(args, 'pilot', ['hands-off', 'reference'] as const);
-  if (delay !== undefined && pilot === 'hands-off') throw new UsageError('--delay: hands off has no delay; choose --pilot reference');
+  if (delay !== undefined && pilot === 'hands-off')
+    throw new UsageError('--delay: hands off has no delay; choose --pilot reference');
   if (delay !== undefined && !(delay >= 0 && delay <= LONGEST_DELAY_S)) {
     throw new UsageError(`--delay: ${args.values.get('delay')} is outside 0 s to ${LONGEST_DELAY_S} s`);
   }
@@ -80,17 +82,24 @@ function jsonOf(run: Run, extremes: Extremes, warnings: string[]): Record<string
   };
 }
 
-const VERDICTS = { met: 'met', near: 'met, near the limit', 'not-met': 'not met', 'not-reached': 'not reached' } as const;
+const VERDICTS = {
+  met: 'met',
+  near: 'met, near the limit',
+  'not-met': 'not met',
+  'not-reached': 'not reached',
+} as const;
 
 function textOf(title: string, who: string, run: Run, extremes: Extremes, warnings: string[]): string[] {
-  const rows = run.results().map((result) => [
-    result.title,
-    valueText(result),
-    limitText(run.spec.scenario.criteria.find(({ id }) => id === result.id)?.limit ?? { max: NaN, unit: '' }),
-    fixed(result.margin, 2),
-    result.atS === null ? '–' : `${fixed(result.atS, 2)} s`,
-    `${VERDICTS[result.verdict]}${result.note === undefined ? '' : ` (${result.note})`}${result.required ? '' : ', not required'}`,
-  ]);
+  const rows = run
+    .results()
+    .map((result) => [
+      result.title,
+      valueText(result),
+      limitText(run.spec.scenario.criteria.find(({ id }) => id === result.id)?.limit ?? { max: NaN, unit: '' }),
+      fixed(result.margin, 2),
+      result.atS === null ? '–' : `${fixed(result.atS, 2)} s`,
+      `${VERDICTS[result.verdict]}${result.note === undefined ? '' : ` (${result.note})`}${result.required ? '' : ', not required'}`,
+    ]);
   const head = ['Criterion', 'Value', 'Limit', 'Margin', 'At', 'Verdict'];
   return [
     `${title}: ${who}`,

@@ -15,7 +15,9 @@ export function fontFiles(): Record<Face, readonly string[]> {
   const mono = folder('@fontsource/jetbrains-mono');
   const chain = (weight: 400 | 600, first: 'text' | 'mono'): string[] => {
     const t = ['latin', 'latin-ext'].map((s) => join(text, `radio-canada-${s}-${weight}-normal.woff`));
-    const m = ['latin', 'latin-ext', 'greek', 'cyrillic'].map((s) => join(mono, `jetbrains-mono-${s}-${weight}-normal.woff`));
+    const m = ['latin', 'latin-ext', 'greek', 'cyrillic'].map((s) =>
+      join(mono, `jetbrains-mono-${s}-${weight}-normal.woff`),
+    );
     return first === 'text' ? [...t, ...m] : [...m, ...t];
   };
   return { text: chain(400, 'text'), bold: chain(600, 'text'), mono: chain(400, 'mono'), monoBold: chain(600, 'mono') };

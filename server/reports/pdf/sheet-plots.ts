@@ -37,7 +37,8 @@ export function roundTicks(range: readonly [number, number], count: number): num
   const power = 10 ** Math.floor(Math.log10(raw));
   const step = ([1, 2, 2.5, 5, 10].find((s) => s * power >= raw) ?? 10) * power;
   const ticks: number[] = [];
-  for (let k = Math.ceil(range[0] / step - 1e-9); k * step <= range[1] + step * 1e-9; k++) ticks.push(Number((k * step).toPrecision(12)));
+  for (let k = Math.ceil(range[0] / step - 1e-9); k * step <= range[1] + step * 1e-9; k++)
+    ticks.push(Number((k * step).toPrecision(12)));
   return ticks;
 }
 
@@ -49,9 +50,12 @@ export function drawPlot(sheet: Sheet, plot: SheetPlot, advance = true): void {
   const top = sheet.y + 4;
   const bottom = top + plot.height - (plot.xName ? 30 : 20);
   const px = (v: number): number => left + ((v - plot.xRange[0]) / (plot.xRange[1] - plot.xRange[0])) * (right - left);
-  const py = (v: number): number => bottom - ((v - plot.yRange[0]) / (plot.yRange[1] - plot.yRange[0])) * (bottom - top);
+  const py = (v: number): number =>
+    bottom - ((v - plot.yRange[0]) / (plot.yRange[1] - plot.yRange[0])) * (bottom - top);
 
-  d.save().rect(left, top, right - left, bottom - top).clip();
+  d.save()
+    .rect(left, top, right - left, bottom - top)
+    .clip();
   for (const area of plot.areas ?? []) {
     const trace = (): void => {
       area.points.forEach(([a, b], i) => (i ? d.lineTo(px(a), py(b)) : d.moveTo(px(a), py(b))));
@@ -93,13 +97,27 @@ export function drawPlot(sheet: Sheet, plot: SheetPlot, advance = true): void {
     sheet.text.line(level.text, left + 5, py(level.y) - 10, { face: 'mono', size: 7.5 });
   }
   d.restore();
-  d.lineWidth(1).rect(left, top, right - left, bottom - top).stroke('#000');
+  d.lineWidth(1)
+    .rect(left, top, right - left, bottom - top)
+    .stroke('#000');
   for (const t of plot.xTicks) {
-    d.lineWidth(0.75).moveTo(px(t), bottom).lineTo(px(t), bottom + 3).stroke('#000');
-    sheet.text.line(plot.xText?.(t) ?? String(t), px(t) - 25, bottom + 5, { face: 'mono', size: 7, align: 'centre' }, 50);
+    d.lineWidth(0.75)
+      .moveTo(px(t), bottom)
+      .lineTo(px(t), bottom + 3)
+      .stroke('#000');
+    sheet.text.line(
+      plot.xText?.(t) ?? String(t),
+      px(t) - 25,
+      bottom + 5,
+      { face: 'mono', size: 7, align: 'centre' },
+      50,
+    );
   }
   for (const t of plot.yTicks) {
-    d.lineWidth(0.75).moveTo(left - 3, py(t)).lineTo(left, py(t)).stroke('#000');
+    d.lineWidth(0.75)
+      .moveTo(left - 3, py(t))
+      .lineTo(left, py(t))
+      .stroke('#000');
     sheet.text.line(plot.yText?.(t) ?? String(t), plot.x - 6, py(t) - 4, { face: 'mono', size: 7, align: 'right' }, 30);
   }
   if (plot.xName) sheet.text.line(plot.xName, left, bottom + 15, { size: 7.5, align: 'centre' }, right - left);
@@ -107,7 +125,13 @@ export function drawPlot(sheet: Sheet, plot: SheetPlot, advance = true): void {
     const x = px(point.x);
     const y = py(point.y);
     if (x < left - 1 || x > right + 1 || y < top - 1 || y > bottom + 1) continue;
-    if (point.shape === 'cross') d.lineWidth(2).moveTo(x - 4, y - 4).lineTo(x + 4, y + 4).moveTo(x + 4, y - 4).lineTo(x - 4, y + 4).stroke('#000');
+    if (point.shape === 'cross')
+      d.lineWidth(2)
+        .moveTo(x - 4, y - 4)
+        .lineTo(x + 4, y + 4)
+        .moveTo(x + 4, y - 4)
+        .lineTo(x - 4, y + 4)
+        .stroke('#000');
     else if (point.shape === 'ring') d.lineWidth(1.5).circle(x, y, 3.2).fillAndStroke('#fff', '#000');
     else d.circle(x, y, 3.2).fill('#000');
     if (point.text) sheet.text.line(point.text, x + 7, y - 11, { face: 'monoBold', size: 7.5 });

@@ -9,7 +9,9 @@ interface GlyphSource {
   hasGlyphForCodePoint(code: number): boolean;
 }
 const glyphSource = z.object({
-  font: z.custom<GlyphSource>((value) => typeof value === 'object' && value !== null && 'hasGlyphForCodePoint' in value),
+  font: z.custom<GlyphSource>(
+    (value) => typeof value === 'object' && value !== null && 'hasGlyphForCodePoint' in value,
+  ),
 });
 
 export interface TextStyle {
@@ -35,7 +37,12 @@ export class SheetText {
         doc.registerFont(name, file);
         return name;
       });
-    this.names = { text: register('text'), bold: register('bold'), mono: register('mono'), monoBold: register('monoBold') };
+    this.names = {
+      text: register('text'),
+      bold: register('bold'),
+      mono: register('mono'),
+      monoBold: register('monoBold'),
+    };
   }
 
   private has(name: string, code: number): boolean {
@@ -68,7 +75,10 @@ export class SheetText {
 
   width(text: string, style: TextStyle = {}): number {
     this.doc.fontSize(style.size ?? 9);
-    return this.runs(text, style.face ?? 'text').reduce((sum, run) => sum + this.doc.font(run.name).widthOfString(run.text), 0);
+    return this.runs(text, style.face ?? 'text').reduce(
+      (sum, run) => sum + this.doc.font(run.name).widthOfString(run.text),
+      0,
+    );
   }
 
   /** One line with its baseline box top at y. `width` shortens with an ellipsis and places right or centred text. */

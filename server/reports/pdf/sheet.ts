@@ -84,12 +84,19 @@ export class Sheet {
   private newPage(): void {
     this.doc.addPage();
     this.y = TOP;
-    this.doc.save().translate(LEFT, this.y - 3).scale(0.45).fillColor('#000');
+    this.doc
+      .save()
+      .translate(LEFT, this.y - 3)
+      .scale(0.45)
+      .fillColor('#000');
     for (const path of MARK) this.doc.path(path).fill();
     this.doc.restore();
     this.text.line('Sidewash', LEFT + 22, this.y - 1, { face: 'bold', size: 12 });
     const box = this.text.width(this.head.number, { face: 'monoBold', size: 9 }) + 14;
-    this.doc.lineWidth(1).rect(LEFT + WIDTH - box, this.y - 4, box, 20).stroke('#000');
+    this.doc
+      .lineWidth(1)
+      .rect(LEFT + WIDTH - box, this.y - 4, box, 20)
+      .stroke('#000');
     this.text.line(this.head.number, LEFT + WIDTH - box + 7, this.y, { face: 'monoBold', size: 9 });
     const x = LEFT + WIDTH - box - 208;
     this.text.line(this.head.organisation, x, this.y - 4, { size: 8, align: 'right' }, 200);
@@ -100,7 +107,11 @@ export class Sheet {
   }
 
   rule(weight = 0.75): void {
-    this.doc.lineWidth(weight).moveTo(LEFT, this.y).lineTo(LEFT + WIDTH, this.y).stroke('#000');
+    this.doc
+      .lineWidth(weight)
+      .moveTo(LEFT, this.y)
+      .lineTo(LEFT + WIDTH, this.y)
+      .stroke('#000');
   }
 
   /** Starts a new page unless `height` points are left; sections call it so that they never split. */
@@ -115,14 +126,25 @@ export class Sheet {
     this.doc.lineWidth(1).rect(LEFT, this.y, WIDTH, 33).stroke('#000');
     items.forEach((item, i) => {
       const x = LEFT + i * w;
-      if (i > 0) this.doc.lineWidth(0.75).moveTo(x, this.y).lineTo(x, this.y + 33).stroke('#000');
+      if (i > 0)
+        this.doc
+          .lineWidth(0.75)
+          .moveTo(x, this.y)
+          .lineTo(x, this.y + 33)
+          .stroke('#000');
       this.text.line(item.label, x + 6, this.y + 5, { size: 7.5, colour: '#333' }, w - 12);
       let inset = 6;
       if (item.state) {
         this.glyph(item.state, x + 6, this.y + 18);
         inset = 19;
       }
-      this.text.line(item.value, x + inset, this.y + 17, { face: item.mono ? 'monoBold' : 'bold', size: 9.5 }, w - inset - 4);
+      this.text.line(
+        item.value,
+        x + inset,
+        this.y + 17,
+        { face: item.mono ? 'monoBold' : 'bold', size: 9.5 },
+        w - inset - 4,
+      );
     });
     this.y += 40;
   }
@@ -160,7 +182,11 @@ export class Sheet {
         x += w;
       });
       this.y += 13;
-      this.doc.lineWidth(1).moveTo(LEFT, this.y).lineTo(LEFT + WIDTH, this.y).stroke('#000');
+      this.doc
+        .lineWidth(1)
+        .moveTo(LEFT, this.y)
+        .lineTo(LEFT + WIDTH, this.y)
+        .stroke('#000');
       this.y += 3;
     };
     this.need(40);
@@ -185,7 +211,11 @@ export class Sheet {
         x += w;
       });
       this.y += 14;
-      this.doc.lineWidth(0.5).moveTo(LEFT, this.y).lineTo(LEFT + WIDTH, this.y).stroke('#999');
+      this.doc
+        .lineWidth(0.5)
+        .moveTo(LEFT, this.y)
+        .lineTo(LEFT + WIDTH, this.y)
+        .stroke('#999');
       this.y += 3;
     }
     this.y += 4;
@@ -205,7 +235,11 @@ export class Sheet {
     } else if (state === 'not-met') {
       d.rect(0, 0, 9, 9).fill('#000');
       d.lineWidth(1.3).moveTo(2.4, 2.4).lineTo(6.6, 6.6).moveTo(6.6, 2.4).lineTo(2.4, 6.6).stroke('#fff');
-    } else d.dash(1.6, { space: 1.4 }).circle(c, c, c - 0.6).stroke('#000').undash();
+    } else
+      d.dash(1.6, { space: 1.4 })
+        .circle(c, c, c - 0.6)
+        .stroke('#000')
+        .undash();
     d.restore();
   }
 
@@ -216,7 +250,10 @@ export class Sheet {
     else this.hatch(x, y, at(bar.limit) - x, 9);
     d.lineWidth(0.75).rect(x, y, width, 9).stroke('#000');
     d.rect(x, y + 2.5, Math.max(0.5, at(bar.value) - x), 4).fill('#000');
-    d.lineWidth(1.4).moveTo(at(bar.limit), y - 1).lineTo(at(bar.limit), y + 10).stroke('#000');
+    d.lineWidth(1.4)
+      .moveTo(at(bar.limit), y - 1)
+      .lineTo(at(bar.limit), y + 10)
+      .stroke('#000');
   }
 
   /** Grey diagonal hatch: what is not available. */
@@ -235,7 +272,11 @@ export class Sheet {
     const w = (WIDTH - 16 * (names.length - 1)) / Math.max(1, names.length);
     names.forEach((name, i) => {
       const x = LEFT + i * (w + 16);
-      this.doc.lineWidth(0.75).moveTo(x, this.y).lineTo(x + w, this.y).stroke('#000');
+      this.doc
+        .lineWidth(0.75)
+        .moveTo(x, this.y)
+        .lineTo(x + w, this.y)
+        .stroke('#000');
       this.text.line(name, x, this.y + 4, { size: 8 }, w);
     });
     this.y += 20;
@@ -246,9 +287,15 @@ export class Sheet {
     const range = this.doc.bufferedPageRange();
     for (let i = 0; i < range.count; i++) {
       this.doc.switchToPage(range.start + i);
-      this.doc.lineWidth(0.75).moveTo(LEFT, FOOT).lineTo(LEFT + WIDTH, FOOT).stroke('#000');
+      this.doc
+        .lineWidth(0.75)
+        .moveTo(LEFT, FOOT)
+        .lineTo(LEFT + WIDTH, FOOT)
+        .stroke('#000');
       this.text.line(CAUTION, LEFT, FOOT + 6, { face: 'bold', size: 8 });
-      this.text.line(CAUTION_REST, LEFT + this.text.width(`${CAUTION} `, { face: 'bold', size: 8 }), FOOT + 6, { size: 8 });
+      this.text.line(CAUTION_REST, LEFT + this.text.width(`${CAUTION} `, { face: 'bold', size: 8 }), FOOT + 6, {
+        size: 8,
+      });
       this.text.line(this.head.trace, LEFT, FOOT + 20, { face: 'mono', size: 7.5, colour: '#333' }, 340);
       this.text.line(
         `printed ${this.head.printed} · ${i + 1} of ${range.count}`,

@@ -127,8 +127,12 @@ export class Compiler {
     const known = Object.hasOwn(EXPRESSION_NAMES, token.text) ? EXPRESSION_NAMES[token.text] : null;
     if (known === null) {
       throw this.refuse(
-        EXPRESSION_FUNCTIONS.includes(token.text) ? `${token.text} needs its arguments` : `the unit "${token.text}" has no number before it`,
-        EXPRESSION_FUNCTIONS.includes(token.text) ? `Write ${token.text}(…).` : `Write a number and the unit, as 5 ${token.text}.`,
+        EXPRESSION_FUNCTIONS.includes(token.text)
+          ? `${token.text} needs its arguments`
+          : `the unit "${token.text}" has no number before it`,
+        EXPRESSION_FUNCTIONS.includes(token.text)
+          ? `Write ${token.text}(…).`
+          : `Write a number and the unit, as 5 ${token.text}.`,
         token.position,
       );
     }
@@ -149,10 +153,21 @@ export class Compiler {
       const id = token.text;
       if (!this.sinceIds.includes(id)) this.sinceIds.push(id);
       this.skipSinceSymbol(node);
-      return { type: 'quantity', dimension: TIME, read: (x) => x.sinceS(id), constant: null, signal: null, position: token.position };
+      return {
+        type: 'quantity',
+        dimension: TIME,
+        read: (x) => x.sinceS(id),
+        constant: null,
+        signal: null,
+        position: token.position,
+      };
     }
     if (!EXPRESSION_FUNCTIONS.includes(token.text)) {
-      throw this.refuse(`"${token.text}" is not a function`, `Functions are ${EXPRESSION_FUNCTIONS.join(', ')} and since(id).`, token.position);
+      throw this.refuse(
+        `"${token.text}" is not a function`,
+        `Functions are ${EXPRESSION_FUNCTIONS.join(', ')} and since(id).`,
+        token.position,
+      );
     }
     const args = argumentsOf(node).map((arg) => this.quantity(this.inner(arg, depth), `an argument of ${token.text}`));
     const several = token.text === 'min' || token.text === 'max';
@@ -171,11 +186,25 @@ export class Compiler {
     const f = a.read;
     const position = token.position;
     if (token.text === 'abs') {
-      return { type: 'quantity', dimension: a.dimension, read: (x) => Math.abs(f(x)), constant: null, signal: null, position };
+      return {
+        type: 'quantity',
+        dimension: a.dimension,
+        read: (x) => Math.abs(f(x)),
+        constant: null,
+        signal: null,
+        position,
+      };
     }
     if (token.text === 'sqrt') {
       const half = timesPower(NUMBER, a.dimension, 0.5);
-      return { type: 'quantity', dimension: half, read: (x) => Math.sqrt(f(x)), constant: null, signal: null, position };
+      return {
+        type: 'quantity',
+        dimension: half,
+        read: (x) => Math.sqrt(f(x)),
+        constant: null,
+        signal: null,
+        position,
+      };
     }
     for (const other of args) this.requireSame(a, other, token.text);
     const readers = args.map((arg) => arg.read);
@@ -259,7 +288,11 @@ export class Compiler {
   private withUnit(args: MathNode[], depth: number): Quantity {
     const left = this.quantity(this.compile(args[0], depth), 'the number before a unit');
     const token = this.leaves[this.next];
-    if (args[1].type !== 'SymbolNode' || token === undefined || !(Object.hasOwn(UNITS, token.text) || token.text === 'min')) {
+    if (
+      args[1].type !== 'SymbolNode' ||
+      token === undefined ||
+      !(Object.hasOwn(UNITS, token.text) || token.text === 'min')
+    ) {
       throw this.refuse('an operator is missing here', 'Write + − * / or a comparison between the two parts.');
     }
     this.take();
@@ -286,17 +319,32 @@ export class Compiler {
     if (left.constant !== null && right.constant !== null) {
       return constantPart(left.constant / right.constant, dimension, left.position);
     }
-    return { type: 'quantity', dimension, read: (x) => a(x) / b(x), constant: null, signal: null, position: left.position };
+    return {
+      type: 'quantity',
+      dimension,
+      read: (x) => a(x) / b(x),
+      constant: null,
+      signal: null,
+      position: left.position,
+    };
   }
 
   private quantity(part: Part, where: string): Quantity {
     if (part.type === 'quantity') return part;
-    throw this.refuse(`${where} must be a quantity, but this is true or false`, 'Compare quantities first, then join with and, or, not.', part.position);
+    throw this.refuse(
+      `${where} must be a quantity, but this is true or false`,
+      'Compare quantities first, then join with and, or, not.',
+      part.position,
+    );
   }
 
   private truth(part: Part, word: string): Truth {
     if (part.type === 'truth') return part;
-    throw this.refuse(`${word} joins comparisons, but this is ${dimensionWords(part.dimension)}`, 'Compare it with a value first, as ias < 80 kt.', part.position);
+    throw this.refuse(
+      `${word} joins comparisons, but this is ${dimensionWords(part.dimension)}`,
+      'Compare it with a value first, as ias < 80 kt.',
+      part.position,
+    );
   }
 
   private requireSame(left: Quantity, right: Quantity, where: string): void {

@@ -137,7 +137,8 @@ function parseText(text: string, placeOf: (index: number) => number): MathNode {
     return parse(text);
   } catch (error) {
     // mathjs reports the place as a 1-based `char` on its SyntaxError.
-    const char = error instanceof Error && 'char' in error && typeof error.char === 'number' ? error.char - 1 : text.length;
+    const char =
+      error instanceof Error && 'char' in error && typeof error.char === 'number' ? error.char - 1 : text.length;
     throw new ExpressionError(placeOf(char), 'the expression cannot be read here', readingRemedy(error));
   }
 }

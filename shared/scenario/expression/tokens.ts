@@ -75,7 +75,8 @@ function readSinceId(text: string, from: number): { id: string; idAt: number; en
   let at = from;
   while (text[at] === ' ') at++;
   const remedy = 'Write since(id) with the id of an event of this scenario.';
-  if (text[at] !== '(') throw new ExpressionError(Math.min(at, text.length), 'since needs an event id in parentheses', remedy);
+  if (text[at] !== '(')
+    throw new ExpressionError(Math.min(at, text.length), 'since needs an event id in parentheses', remedy);
   const close = text.indexOf(')', at);
   if (close < 0) throw new ExpressionError(at, 'this parenthesis is not closed', 'Close it with ")".');
   const id = text.slice(at + 1, close).trim();
@@ -103,7 +104,11 @@ export function tokenise(source: string): Token[] {
     if (number) {
       const next = rest[number[0].length] ?? ' ';
       if (next === '.' || !Number.isFinite(Number(number[0]))) {
-        throw new ExpressionError(at, `"${number[0]}${next === '.' ? '.' : ''}" is not a number`, 'Write a plain decimal number.');
+        throw new ExpressionError(
+          at,
+          `"${number[0]}${next === '.' ? '.' : ''}" is not a number`,
+          'Write a plain decimal number.',
+        );
       }
       tokens.push({ kind: 'number', text: number[0], position: at });
       at += number[0].length;

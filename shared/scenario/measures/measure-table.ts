@@ -118,7 +118,13 @@ export const MEASURE_TABLE: Readonly<Record<MeasureName, MeasureSpec>> = {
     direction: 'max',
     mayNeverCome: true,
   },
-  'pedal-force': { label: 'Pedal force', meaning: 'greatest pedal force', dimension: FORCE, unit: 'N', direction: 'max' },
+  'pedal-force': {
+    label: 'Pedal force',
+    meaning: 'greatest pedal force',
+    dimension: FORCE,
+    unit: 'N',
+    direction: 'max',
+  },
   'rudder-saturation-time': {
     label: 'Rudder at its limit',
     meaning: 'time with the rudder at its limit',

@@ -31,7 +31,11 @@ export function valueAtPointer(document: Json, pointer: string): Json | undefine
   let at: Json | undefined = document;
   for (const part of pointerParts(pointer)) {
     if (at === null || typeof at !== 'object') return undefined;
-    at = Array.isArray(at) ? at[Number(part)] : Object.hasOwn(at, part) ? (at as Record<string, Json>)[part] : undefined; // an object here
+    at = Array.isArray(at)
+      ? at[Number(part)]
+      : Object.hasOwn(at, part)
+        ? (at as Record<string, Json>)[part]
+        : undefined; // an object here
   }
   return at;
 }
@@ -75,7 +79,12 @@ export function recordChange(history: DraftHistory, next: Json, field: string, m
 export function undo(history: DraftHistory): DraftHistory {
   const before = history.past.at(-1);
   if (before === undefined) return history;
-  return { present: before, past: history.past.slice(0, -1), future: [history.present, ...history.future], lastField: null };
+  return {
+    present: before,
+    past: history.past.slice(0, -1),
+    future: [history.present, ...history.future],
+    lastField: null,
+  };
 }
 
 /** One step forward again; the same history when there is none. */

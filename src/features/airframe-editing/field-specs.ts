@@ -26,9 +26,30 @@ export const GEOMETRY_FIELDS: readonly FieldSpec[] = [
 export const CONFIGURATION_FIELDS: readonly FieldSpec[] = [
   { at: '/CLmax', label: 'Greatest lift coefficient', dimension: 'ratio', unit: '' },
   { at: '/CD0', label: 'Drag at no lift', dimension: 'ratio', unit: '', optional: true, hint: '0.03 when empty' },
-  { at: '/kInduced', label: 'Induced drag factor', dimension: 'ratio', unit: '', optional: true, hint: '0.05 when empty' },
-  { at: '/CD_beta2', label: 'Drag by sideslip squared', dimension: 'ratio', unit: '', optional: true, hint: '0 when empty' },
-  { at: '/CL_alpha_per_rad', label: 'Lift slope, per rad', dimension: 'ratio', unit: '', optional: true, hint: 'gives the pitch attitude' },
+  {
+    at: '/kInduced',
+    label: 'Induced drag factor',
+    dimension: 'ratio',
+    unit: '',
+    optional: true,
+    hint: '0.05 when empty',
+  },
+  {
+    at: '/CD_beta2',
+    label: 'Drag by sideslip squared',
+    dimension: 'ratio',
+    unit: '',
+    optional: true,
+    hint: '0 when empty',
+  },
+  {
+    at: '/CL_alpha_per_rad',
+    label: 'Lift slope, per rad',
+    dimension: 'ratio',
+    unit: '',
+    optional: true,
+    hint: 'gives the pitch attitude',
+  },
   { at: '/alphaZeroLift_deg', label: 'Angle of no lift', dimension: 'angle', unit: 'deg', optional: true },
 ];
 
@@ -40,7 +61,13 @@ export const FIN_FIELDS: readonly FieldSpec[] = [
   { at: '/sidewash', label: 'Sidewash', dimension: 'ratio', unit: '' },
   { at: '/rudderTau', label: 'Rudder effectiveness', dimension: 'ratio', unit: '' },
   { at: '/stallAngle_deg', label: 'Stall angle', dimension: 'angle', unit: 'deg' },
-  { at: '/stallAngleWithDorsal_deg', label: 'Stall angle with dorsal fin', dimension: 'angle', unit: 'deg', optional: true },
+  {
+    at: '/stallAngleWithDorsal_deg',
+    label: 'Stall angle with dorsal fin',
+    dimension: 'angle',
+    unit: 'deg',
+    optional: true,
+  },
   { at: '/stallDrop', label: 'Loss past the stall', dimension: 'ratio', unit: '' },
 ];
 
@@ -74,13 +101,27 @@ const ENGINE_COMMON: readonly FieldSpec[] = [
 
 const ENGINE_PROPELLER: readonly FieldSpec[] = [
   { at: '/power_W', label: 'Power', dimension: 'power', unit: 'W' },
-  { at: '/efficiency', label: 'Propeller efficiency', dimension: 'ratio', unit: '', optional: true, hint: '0.8 when empty' },
+  {
+    at: '/efficiency',
+    label: 'Propeller efficiency',
+    dimension: 'ratio',
+    unit: '',
+    optional: true,
+    hint: '0.8 when empty',
+  },
   { at: '/bladeOffset_m', label: 'Blade offset', dimension: 'distance', unit: 'm', optional: true },
   { at: '/slipstreamLift', label: 'Slipstream lift', dimension: 'ratio', unit: '', optional: true },
   { at: '/torqueArm_m', label: 'Torque arm', dimension: 'distance', unit: 'm', optional: true },
   { at: '/swirlArm_m', label: 'Swirl arm', dimension: 'distance', unit: 'm', optional: true },
   { at: '/featheredDragArea_m2', label: 'Feathered drag area', dimension: 'area', unit: 'm²', optional: true },
-  { at: '/featherTime_s', label: 'Feathering takes', dimension: 'time', unit: 's', optional: true, hint: '5 s when empty' },
+  {
+    at: '/featherTime_s',
+    label: 'Feathering takes',
+    dimension: 'time',
+    unit: 's',
+    optional: true,
+    hint: '5 s when empty',
+  },
 ];
 
 /** Fields of one engine by its kind. */
@@ -102,7 +143,17 @@ export const STARTING_POINTS = {
   propeller: { name: 'new', kind: 'propeller', y_m: 0, staticThrust_N: 3000, power_W: 120_000 },
   jet: { name: 'new', kind: 'jet', y_m: 0, staticThrust_N: 50_000 },
   loading: { name: 'new loading', mass_kg: 1000, cgAft_m: 0 },
-  fin: { area_m2: 2, arm_m: 5, height_m: 0.8, liftSlope_per_rad: 2.8, sidewash: 0.1, rudderTau: 0.5, stallAngle_deg: 20, stallDrop: 0.4, dorsal: false },
+  fin: {
+    area_m2: 2,
+    arm_m: 5,
+    height_m: 0.8,
+    liftSlope_per_rad: 2.8,
+    sidewash: 0.1,
+    rudderTau: 0.5,
+    stallAngle_deg: 20,
+    stallDrop: 0.4,
+    dorsal: false,
+  },
   yawDamper: { gain_s: 0.5, washout_s: 3, authority_deg: 3 },
   pedalForce: { kind: 'reversible', N_per_deg: 15, at_kt: 80, limit_N: 667 },
   rudderRatio: { fullUpTo_kt: 160, law: 'inverse', mode: 'ratio' },

@@ -81,7 +81,9 @@ function criteriaOf(airframe: Airframe): CriterionLine[] {
       const klass = aircraft.class === 'II' ? 'II-L' : aircraft.class;
       return modalCriteria(found, shape?.phiOverBeta ?? null, klass, configuration.category);
     });
-    return (results ?? []).filter((r) => r.level !== null && typeof r.level === 'number').map((r) => lineOf(r, configuration.name));
+    return (results ?? [])
+      .filter((r) => r.level !== null && typeof r.level === 'number')
+      .map((r) => lineOf(r, configuration.name));
   });
 }
 
@@ -99,6 +101,7 @@ function lineOf(result: CriterionResult, configuration: string): CriterionLine {
 function massWords(airframe: Airframe): string {
   const { geometry, mass } = airframe;
   const aspect = (geometry.wingSpan_m ** 2 / geometry.wingArea_m2).toFixed(1);
-  const product = mass.Ixx_kgm2 * mass.Izz_kgm2 > mass.Ixz_kgm2 ** 2 ? 'Ixx·Izz exceeds Ixz²' : 'Ixx·Izz does not exceed Ixz²';
+  const product =
+    mass.Ixx_kgm2 * mass.Izz_kgm2 > mass.Ixz_kgm2 ** 2 ? 'Ixx·Izz exceeds Ixz²' : 'Ixx·Izz does not exceed Ixz²';
   return `${product}. Aspect ratio ${aspect}. Criteria at release: ${CRITERIA_SPEED} stall speeds, sea level.`;
 }

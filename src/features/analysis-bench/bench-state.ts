@@ -31,7 +31,10 @@ const shiftsText = z
   });
 
 export const benchStateSchema = z.object({
-  tab: z.enum(BENCH_TABS.map((t) => t.value)).catch('modes').default('modes'),
+  tab: z
+    .enum(BENCH_TABS.map((t) => t.value))
+    .catch('modes')
+    .default('modes'),
   airframe: z.string().max(80).default(''),
   revision: number(0, 1_000_000).int().catch(0).default(0),
   /** Further revisions, "slug:revision" separated by commas; three at most. */
@@ -44,7 +47,10 @@ export const benchStateSchema = z.object({
   class: z.enum(['', 'I', 'II-L', 'II-C', 'III', 'IV']).catch('').default(''),
   category: z.enum(['', 'A', 'B', 'C']).catch('').default(''),
   damper: z.enum(['off', 'on']).catch('off').default('off'),
-  sweep: z.enum(['speed', 'height', ...DERIVATIVE_KEYS]).catch('speed').default('speed'),
+  sweep: z
+    .enum(['speed', 'height', ...DERIVATIVE_KEYS])
+    .catch('speed')
+    .default('speed'),
   shifts: shiftsText.catch({}).default({}),
   x: derivative.catch('Cn_beta').default('Cn_beta'),
   y: derivative.catch('Cl_beta').default('Cl_beta'),

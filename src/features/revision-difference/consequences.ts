@@ -52,7 +52,9 @@ export function consequencesOf(airframe: Airframe, condition: Condition): Conseq
   const stallKt = casFromTas(stallTasMps(aircraft, densityAt(heightM)), heightM) / KT;
   const critical = aircraft.engines.length > 0 ? criticalEngine(aircraft, { heightM }) : null;
   const speeds = BANKS.map((deg) =>
-    critical ? minimumControlSpeed(aircraft, { heightM, failed: [critical.index], bank: { exactlyRad: deg * DEG } }) : null,
+    critical
+      ? minimumControlSpeed(aircraft, { heightM, failed: [critical.index], bank: { exactlyRad: deg * DEG } })
+      : null,
   );
   const limit = crosswindLimit(aircraft, tasMps, heightM);
   const binds = (i: number): string => {

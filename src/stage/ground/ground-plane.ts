@@ -89,7 +89,8 @@ export class GroundPlane {
 
   dispose(): void {
     this.ground.dispose();
-    for (const lines of [this.grid, this.horizon, this.ticks, ...this.hairs.map((hair) => hair.segments)]) lines.dispose();
+    for (const lines of [this.grid, this.horizon, this.ticks, ...this.hairs.map((hair) => hair.segments)])
+      lines.dispose();
     for (const material of [this.groundFill, this.gridLine, this.horizonLine, this.tickLine]) material.dispose();
     for (const hair of this.hairs) hair.line.dispose();
   }
@@ -129,7 +130,14 @@ export class GroundPlane {
 
   private gridSegment(along0: number, across0: number, along1: number, across1: number): void {
     const { x: ax, z: az } = this.heading;
-    this.grid.add(along0 * ax - across0 * az, 0, along0 * az + across0 * ax, along1 * ax - across1 * az, 0, along1 * az + across1 * ax);
+    this.grid.add(
+      along0 * ax - across0 * az,
+      0,
+      along0 * az + across0 * ax,
+      along1 * ax - across1 * az,
+      0,
+      along1 * az + across1 * ax,
+    );
   }
 }
 

@@ -18,12 +18,26 @@ export const LAYER = {
 
 /** Flat colour laid over what was drawn before. */
 export function wash(opacity = 1): MeshBasicMaterial {
-  return new MeshBasicMaterial({ transparent: true, opacity, depthTest: false, depthWrite: false, toneMapped: false, side: 2 });
+  return new MeshBasicMaterial({
+    transparent: true,
+    opacity,
+    depthTest: false,
+    depthWrite: false,
+    toneMapped: false,
+    side: 2,
+  });
 }
 
 /** A line laid over what was drawn before; width in CSS pixels. */
 export function layLine(width: number, opacity = 1): LineMaterial {
-  return new LineMaterial({ linewidth: width, transparent: true, opacity, depthTest: false, depthWrite: false, toneMapped: false });
+  return new LineMaterial({
+    linewidth: width,
+    transparent: true,
+    opacity,
+    depthTest: false,
+    depthWrite: false,
+    toneMapped: false,
+  });
 }
 
 /** Sets a material's screen colour. */

@@ -89,7 +89,8 @@ export class Runway {
         for (const side of [-1, 1]) this.mark(from, to, side * inner, side * (inner + pitch * 0.6));
       }
     }
-    for (let at = start + 70; at + DASH_M < end - 70; at += DASH_M + DASH_GAP_M) this.mark(at, at + DASH_M, -0.45, 0.45);
+    for (let at = start + 70; at + DASH_M < end - 70; at += DASH_M + DASH_GAP_M)
+      this.mark(at, at + DASH_M, -0.45, 0.45);
     for (const at of [start + 300, end - 345]) {
       for (const side of [-1, 1]) this.mark(at, at + 45, side * half * 0.32, side * half * 0.5);
     }
@@ -104,7 +105,8 @@ export class Runway {
   }
 
   private mark(from: number, to: number, left: number, right: number): void {
-    if (this.markingCount < this.markings.capacity) this.rectangle(this.markings, this.markingCount++, from, to, left, right);
+    if (this.markingCount < this.markings.capacity)
+      this.rectangle(this.markings, this.markingCount++, from, to, left, right);
   }
 
   /** Along the runway and to its right, on the ground. */
@@ -119,7 +121,14 @@ export class Runway {
 
   private line(lines: DynamicSegments, along0: number, across0: number, along1: number, across1: number): void {
     const { ax, az } = this;
-    lines.add(along0 * ax - across0 * az, 0, along0 * az + across0 * ax, along1 * ax - across1 * az, 0, along1 * az + across1 * ax);
+    lines.add(
+      along0 * ax - across0 * az,
+      0,
+      along0 * az + across0 * ax,
+      along1 * ax - across1 * az,
+      0,
+      along1 * az + across1 * ax,
+    );
   }
 }
 

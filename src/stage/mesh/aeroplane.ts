@@ -36,7 +36,12 @@ export class Aeroplane {
     readonly shape: AirframeShape,
     private readonly look: AeroplaneLook,
   ) {
-    this.fill = new MeshBasicMaterial({ vertexColors: true, toneMapped: false, transparent: true, colorWrite: look === 'solid' });
+    this.fill = new MeshBasicMaterial({
+      vertexColors: true,
+      toneMapped: false,
+      transparent: true,
+      colorWrite: look === 'solid',
+    });
     this.inks = {
       edge: inkLine(look === 'solid' ? 1.3 : 1.25),
       liveRim: inkLine(1.5),
@@ -90,7 +95,8 @@ export class Aeroplane {
     const outline = this.look === 'solid' ? palette.edge : palette.rgb.ink2;
     edge.color.setRGB(outline.r, outline.g, outline.b);
     liveRim.color.setRGB(palette.rgb.live.r, palette.rgb.live.g, palette.rgb.live.b);
-    for (const ink of [deadRim, blade, edgeOnBlade]) ink.color.setRGB(palette.rgb.dead.r, palette.rgb.dead.g, palette.rgb.dead.b);
+    for (const ink of [deadRim, blade, edgeOnBlade])
+      ink.color.setRGB(palette.rgb.dead.r, palette.rgb.dead.g, palette.rgb.dead.b);
     for (const part of this.parts) part.repaint();
     for (const propulsor of this.propulsors) propulsor.setColours(palette);
   }

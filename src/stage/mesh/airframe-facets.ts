@@ -63,7 +63,10 @@ export function rudderFacets(shape: AirframeShape): HingedFacets {
   for (const side of [-1, 1] as const) {
     builder.facet([at(0, rudder.hinge, side), at(0, 1, 0), at(1, 1, 0), at(1, rudder.hinge, side)], [0, side, 0]);
   }
-  builder.facet([at(0, rudder.hinge, -1), at(0, rudder.hinge, 1), at(1, rudder.hinge, 1), at(1, rudder.hinge, -1)], [1, 0, 0]);
+  builder.facet(
+    [at(0, rudder.hinge, -1), at(0, rudder.hinge, 1), at(1, rudder.hinge, 1), at(1, rudder.hinge, -1)],
+    [1, 0, 0],
+  );
   builder.facet([at(1, rudder.hinge, -1), at(1, rudder.hinge, 1), at(1, 1, 0)], [0, 0, -1]);
   builder.facet([at(0, rudder.hinge, -1), at(0, rudder.hinge, 1), at(0, 1, 0)], [0, 0, 1]);
   // about −z (up) seen from above the turn is counter-clockwise: the part behind the hinge swings to the right; +z swings it left
@@ -96,8 +99,14 @@ function addBody(
   }
   const first = stations[0];
   const last = stations[stations.length - 1];
-  builder.facet(Array.from({ length: sides }, (_, k) => ring(first, k)), [1, 0, 0]);
-  builder.facet(Array.from({ length: sides }, (_, k) => ring(last, k)), [-1, 0, 0]);
+  builder.facet(
+    Array.from({ length: sides }, (_, k) => ring(first, k)),
+    [1, 0, 0],
+  );
+  builder.facet(
+    Array.from({ length: sides }, (_, k) => ring(last, k)),
+    [-1, 0, 0],
+  );
 }
 
 function addStrut(builder: FacetBuilder, strut: NonNullable<EngineShape['strut']>): void {
@@ -111,14 +120,26 @@ function addStrut(builder: FacetBuilder, strut: NonNullable<EngineShape['strut']
   const sideways = Math.sign(yTo - yFrom);
   for (const far of [false, true]) {
     const outward: Point = [0, far ? sideways : -sideways, 0];
-    builder.facet([corner(false, false, far), corner(false, true, far), corner(true, true, far), corner(true, false, far)], outward);
+    builder.facet(
+      [corner(false, false, far), corner(false, true, far), corner(true, true, far), corner(true, false, far)],
+      outward,
+    );
   }
   for (const ahead of [false, true]) {
     const outward: Point = [ahead ? 1 : -1, 0, 0];
-    builder.facet([corner(false, ahead, false), corner(false, ahead, true), corner(true, ahead, true), corner(true, ahead, false)], outward);
+    builder.facet(
+      [corner(false, ahead, false), corner(false, ahead, true), corner(true, ahead, true), corner(true, ahead, false)],
+      outward,
+    );
   }
-  builder.facet([corner(true, true, false), corner(true, true, true), corner(true, false, true), corner(true, false, false)], [0, 0, -1]);
-  builder.facet([corner(false, true, false), corner(false, true, true), corner(false, false, true), corner(false, false, false)], [0, 0, 1]);
+  builder.facet(
+    [corner(true, true, false), corner(true, true, true), corner(true, false, true), corner(true, false, false)],
+    [0, 0, -1],
+  );
+  builder.facet(
+    [corner(false, true, false), corner(false, true, true), corner(false, false, true), corner(false, false, false)],
+    [0, 0, 1],
+  );
 }
 
 /** Half thickness of a section at a chord fraction, over the chord. */
@@ -148,7 +169,10 @@ function addPanel(builder: FacetBuilder, panel: Panel, side: -1 | 1, moving: Mov
     for (const surface of [-1, 1] as const) {
       const outward: Point = [0, 0, -surface];
       builder.facet([at(a, 0, 0), at(b, 0, 0), at(b, CREST, surface), at(a, CREST, surface)], outward);
-      builder.facet([at(a, CREST, surface), at(b, CREST, surface), at(b, hinge, surface), at(a, hinge, surface)], outward);
+      builder.facet(
+        [at(a, CREST, surface), at(b, CREST, surface), at(b, hinge, surface), at(a, hinge, surface)],
+        outward,
+      );
       if (!open) builder.facet([at(a, hinge, surface), at(b, hinge, surface), at(b, 1, 0), at(a, 1, 0)], outward);
     }
     if (open) {
@@ -157,11 +181,15 @@ function addPanel(builder: FacetBuilder, panel: Panel, side: -1 | 1, moving: Mov
       builder.facet([at(b, hinge, 1), at(b, 1, 0), at(b, hinge, -1)], [0, -side, 0]);
     }
   }
-  builder.facet([at(1, 0, 0), at(1, CREST, 1), at(1, hinge, 1), at(1, 1, 0), at(1, hinge, -1), at(1, CREST, -1)], [0, side, 0]);
+  builder.facet(
+    [at(1, 0, 0), at(1, CREST, 1), at(1, hinge, 1), at(1, 1, 0), at(1, hinge, -1), at(1, CREST, -1)],
+    [0, side, 0],
+  );
 }
 
 function addFlap(builder: FacetBuilder, panel: Panel, edge: MovingEdge, side: -1 | 1, origin: Point): void {
-  const at = (t: number, c: number, surface: -1 | 0 | 1): Point => relative(wingPoint(panel, t, c, side, surface), origin);
+  const at = (t: number, c: number, surface: -1 | 0 | 1): Point =>
+    relative(wingPoint(panel, t, c, side, surface), origin);
   const { from, to, hinge } = edge;
   for (const surface of [-1, 1] as const) {
     builder.facet([at(from, hinge, surface), at(to, hinge, surface), at(to, 1, 0), at(from, 1, 0)], [0, 0, -surface]);
@@ -191,7 +219,11 @@ function addFin(builder: FacetBuilder, fin: Panel, rudder: MovingEdge): void {
   builder.facet([at(1, 0, 0), at(1, CREST, 1), at(1, h, 1), at(1, h, -1), at(1, CREST, -1)], [0, 0, -1]);
 }
 
-const relative = (point: Point, origin: Point): Point => [point[0] - origin[0], point[1] - origin[1], point[2] - origin[2]];
+const relative = (point: Point, origin: Point): Point => [
+  point[0] - origin[0],
+  point[1] - origin[1],
+  point[2] - origin[2],
+];
 
 function unit(v: Point): Point {
   const length = Math.hypot(v[0], v[1], v[2]);

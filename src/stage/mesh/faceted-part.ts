@@ -67,7 +67,8 @@ export class FacetedPart {
     const triangles: number[] = [];
     facets.forEach((facet, f) => {
       this.firstVertex[f] = triangles.length;
-      for (let i = 1; i + 1 < facet.corners.length; i++) triangles.push(facet.corners[0], facet.corners[i], facet.corners[i + 1]);
+      for (let i = 1; i + 1 < facet.corners.length; i++)
+        triangles.push(facet.corners[0], facet.corners[i], facet.corners[i + 1]);
       const normal = facetNormal(mesh.positions, facet.corners);
       setScene(this.normals, f, normal[0], normal[1], normal[2]);
       const a = facet.corners[0] * 3;
@@ -112,7 +113,9 @@ export class FacetedPart {
       const ny = this.normals[3 * f + 1];
       const nz = this.normals[3 * f + 2];
       const toEye =
-        nx * (eye.x - this.anchors[3 * f]) + ny * (eye.y - this.anchors[3 * f + 1]) + nz * (eye.z - this.anchors[3 * f + 2]);
+        nx * (eye.x - this.anchors[3 * f]) +
+        ny * (eye.y - this.anchors[3 * f + 1]) +
+        nz * (eye.z - this.anchors[3 * f + 2]);
       this.facing[f] = toEye > 0 ? 1 : 0;
       if (toEye <= 0) continue;
       const tone = this.inked[f] === 1 ? 6 : toneFor(nx * light.x + ny * light.y + nz * light.z);

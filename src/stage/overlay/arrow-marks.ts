@@ -102,7 +102,14 @@ export function drawStraight(
 }
 
 /** Draws an arc through points (x, y in a row) with the head at the last one. */
-export function drawArc(ctx: Context, id: 'N' | 'L', points: Float32Array, count: number, ink: string, ground: string): void {
+export function drawArc(
+  ctx: Context,
+  id: 'N' | 'L',
+  points: Float32Array,
+  count: number,
+  ink: string,
+  ground: string,
+): void {
   if (count < 2) return;
   const last = 2 * (count - 1);
   const back = Math.max(0, last - 4);
@@ -154,7 +161,15 @@ function arcPath(ctx: Context, points: Float32Array, count: number, colour: stri
 
 const NO_DASH: number[] = [];
 
-function stroke(ctx: Context, from: number, to: number, width: number, colour: string, dash: readonly number[], round: boolean): void {
+function stroke(
+  ctx: Context,
+  from: number,
+  to: number,
+  width: number,
+  colour: string,
+  dash: readonly number[],
+  round: boolean,
+): void {
   ctx.beginPath();
   ctx.moveTo(from, 0);
   ctx.lineTo(to, 0);

@@ -40,7 +40,13 @@ export function arrowScale(airframe: Pick<Airframe, 'geometry' | 'mass' | 'engin
   const groups: readonly GroupScale[] = [
     { group: 'side', arrows: ['R', 'F', 'Y'], reference: 0.1 * weight, unit: 'N', drawn: 0.4 * span },
     { group: 'lift', arrows: ['LL', 'LR'], reference: 0.5 * weight, unit: 'N', drawn: 0.42 * span },
-    { group: 'thrust', arrows: ['T', 'D'], reference: strongest > 0 ? strongest : 0.2 * weight, unit: 'N', drawn: 0.5 * span },
+    {
+      group: 'thrust',
+      arrows: ['T', 'D'],
+      reference: strongest > 0 ? strongest : 0.2 * weight,
+      unit: 'N',
+      drawn: 0.5 * span,
+    },
     { group: 'weight', arrows: ['W'], reference: weight, unit: 'N', drawn: 0.42 * span },
     { group: 'moment', arrows: ['N', 'L'], reference: 0.02 * weight * span, unit: 'N·m', drawn: Math.PI / 3 },
   ];

@@ -4,7 +4,13 @@
  */
 import { Quaternion, Vector3 } from 'three';
 import type { Observation } from '#shared/model/plant-types.ts';
-import { airDirectionInto, bodyTurnInto, groundDirectionInto, placeInto, stabilityTurnInto } from '../mesh/orientation.ts';
+import {
+  airDirectionInto,
+  bodyTurnInto,
+  groundDirectionInto,
+  placeInto,
+  stabilityTurnInto,
+} from '../mesh/orientation.ts';
 import type { AirframeShape } from '../shape/shape-types.ts';
 import type { StagePalette } from '../view/palette.ts';
 import type { Projector } from './projector.ts';
@@ -37,14 +43,23 @@ export class FlightMarks {
 
   constructor(private readonly shape: AirframeShape) {}
 
-  draw(ctx: CanvasRenderingContext2D, now: Observation, projector: Projector, palette: StagePalette, tags: TagLayout): void {
+  draw(
+    ctx: CanvasRenderingContext2D,
+    now: Observation,
+    projector: Projector,
+    palette: StagePalette,
+    tags: TagLayout,
+  ): void {
     placeInto(this.place, now);
     stabilityTurnInto(this.stability, now);
     bodyTurnInto(this.body, now);
     airDirectionInto(this.air, now, this.stability);
     groundDirectionInto(this.ground, now, this.air);
     // both lines start in the fuselage behind the nose, on its axis
-    this.start.set(0, 0, -0.8 * this.shape.noseX).applyQuaternion(this.body).add(this.place);
+    this.start
+      .set(0, 0, -0.8 * this.shape.noseX)
+      .applyQuaternion(this.body)
+      .add(this.place);
     const { ink, ink2, sky } = palette.css;
     ctx.font = `600 12px ${palette.monoFont}`;
     ctx.lineJoin = 'round';
@@ -62,11 +77,17 @@ export class FlightMarks {
   }
 
   private reach(projector: Projector, direction: Vector3, spans: number): boolean {
-    return projector.project(this.point.copy(direction).multiplyScalar(spans * this.shape.spanM).add(this.start));
+    return projector.project(
+      this.point
+        .copy(direction)
+        .multiplyScalar(spans * this.shape.spanM)
+        .add(this.start),
+    );
   }
 
   private noseLine(ctx: CanvasRenderingContext2D, projector: Projector, ink: string): boolean {
-    if (!projector.project(this.point.set(0, 0, -this.shape.noseX).applyQuaternion(this.body).add(this.place))) return false;
+    if (!projector.project(this.point.set(0, 0, -this.shape.noseX).applyQuaternion(this.body).add(this.place)))
+      return false;
     const { x, y } = projector;
     this.right.set(0, 0, -1).applyQuaternion(this.body);
     if (!this.reach(projector, this.right, NOSE_SPANS)) return false;
@@ -112,7 +133,13 @@ export class FlightMarks {
   }
 
   /** The sideslip as an arc from the nose line to above or below the ring, with its value. */
-  private angle(ctx: CanvasRenderingContext2D, beta: number, projector: Projector, palette: StagePalette, tags: TagLayout): void {
+  private angle(
+    ctx: CanvasRenderingContext2D,
+    beta: number,
+    projector: Projector,
+    palette: StagePalette,
+    tags: TagLayout,
+  ): void {
     ctx.beginPath();
     let begun = false;
     let midX = 0;
@@ -144,7 +171,11 @@ export class FlightMarks {
     const towards = this.ray.set(Math.sin(angle), 0, -Math.cos(angle)).applyQuaternion(this.stability);
     const span = this.shape.spanM;
     for (const [across, along] of STREAKS) {
-      this.point.copy(towards).multiplyScalar(along * PATH_SPANS * span).addScaledVector(this.right, across * span).add(this.start);
+      this.point
+        .copy(towards)
+        .multiplyScalar(along * PATH_SPANS * span)
+        .addScaledVector(this.right, across * span)
+        .add(this.start);
       if (!projector.project(this.point)) continue;
       const { x, y } = projector;
       this.point.addScaledVector(towards, -0.2 * span);

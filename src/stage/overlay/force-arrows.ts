@@ -108,7 +108,10 @@ export class ForceArrows {
       case 'D':
         // on its own line of action: from the mass centre back along the flight path
         this.direction.copy(this.air).negate();
-        arrow.from.copy(this.direction).multiplyScalar(DRAG_BEHIND_SPANS * shape.spanM).add(this.place);
+        arrow.from
+          .copy(this.direction)
+          .multiplyScalar(DRAG_BEHIND_SPANS * shape.spanM)
+          .add(this.place);
         return this.reach(arrow, now.forceDragN);
       case 'W':
         this.direction.set(0, -1, 0);
@@ -173,7 +176,10 @@ export class ForceArrows {
   }
 
   private put(arc: ArcArrow, index: number): void {
-    this.point.applyQuaternion(this.stability).add(this.place).toArray(arc.points, 3 * index);
+    this.point
+      .applyQuaternion(this.stability)
+      .add(this.place)
+      .toArray(arc.points, 3 * index);
   }
 }
 

@@ -128,7 +128,14 @@ export class OverlayPainter {
     for (let i = 0; i < this.pendingCount; i++) {
       const tag = this.pending[i];
       const halfWidth = tag.id.length > 1 ? 11 : 8;
-      this.tags.place(tag.x + TAG_DISTANCE * tag.dx, tag.y + TAG_DISTANCE * tag.dy, tag.dx, tag.dy, halfWidth, TAG_HEIGHT / 2);
+      this.tags.place(
+        tag.x + TAG_DISTANCE * tag.dx,
+        tag.y + TAG_DISTANCE * tag.dy,
+        tag.dx,
+        tag.dy,
+        halfWidth,
+        TAG_HEIGHT / 2,
+      );
       const { x, y } = this.tags;
       const ink = palette.css[tag.id];
       if (this.tags.moved > LEADER_FROM) {

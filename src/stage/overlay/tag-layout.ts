@@ -93,7 +93,12 @@ export class TagLayout {
   }
 
   private inside(x: number, y: number, halfWidth: number, halfHeight: number): boolean {
-    return x >= halfWidth + GAP && x <= this.width - halfWidth - GAP && y >= halfHeight + GAP && y <= this.height - halfHeight - GAP;
+    return (
+      x >= halfWidth + GAP &&
+      x <= this.width - halfWidth - GAP &&
+      y >= halfHeight + GAP &&
+      y <= this.height - halfHeight - GAP
+    );
   }
 
   /** Last resort at the edge of the picture: steps toward the middle until clear, first along the edge, then inward. */
@@ -107,7 +112,8 @@ export class TagLayout {
       for (let inward = 0; inward < 3; inward++) {
         const tryX = x + towardX * inward * (2 * halfWidth + GAP);
         const tryY = y + towardY * along;
-        if (!this.inside(tryX, tryY, halfWidth, halfHeight) || this.overlap(tryX, tryY, halfWidth, halfHeight) >= 0) continue;
+        if (!this.inside(tryX, tryY, halfWidth, halfHeight) || this.overlap(tryX, tryY, halfWidth, halfHeight) >= 0)
+          continue;
         this.x = tryX;
         this.y = tryY;
         return;

@@ -8,7 +8,12 @@ export type HomogeneousPoints = Float64Array;
  * @param out receives the points; room for count + 1.
  * @returns number of points written; 0 when nothing is in front.
  */
-export function clipPolygonNear(points: HomogeneousPoints, count: number, near: number, out: HomogeneousPoints): number {
+export function clipPolygonNear(
+  points: HomogeneousPoints,
+  count: number,
+  near: number,
+  out: HomogeneousPoints,
+): number {
   let written = 0;
   let previous = count - 1;
   let previousIn = points[3 * previous + 2] >= near;
@@ -55,7 +60,13 @@ export function clipSegment(s: ScreenSegment, width: number, height: number, mar
     // p is the speed toward the side, q the distance to it
     const p = side === 0 ? -dx : side === 1 ? dx : side === 2 ? -dy : dy;
     const q =
-      side === 0 ? s.x0 + margin : side === 1 ? width + margin - s.x0 : side === 2 ? s.y0 + margin : height + margin - s.y0;
+      side === 0
+        ? s.x0 + margin
+        : side === 1
+          ? width + margin - s.x0
+          : side === 2
+            ? s.y0 + margin
+            : height + margin - s.y0;
     if (p === 0) {
       if (q < 0) return false;
       continue;

@@ -108,7 +108,16 @@ export function fillTriangle(
   }
 }
 
-function fillSpan(surface: Surface, row: number, y: number, from: number, to: number, q: number, qx: number, fill: TriangleFill): void {
+function fillSpan(
+  surface: Surface,
+  row: number,
+  y: number,
+  from: number,
+  to: number,
+  q: number,
+  qx: number,
+  fill: TriangleFill,
+): void {
   const { colour, depth } = surface;
   const pattern = fill.pattern;
   for (let x = from; x < to; x++, q += qx) {
@@ -119,7 +128,9 @@ function fillSpan(surface: Surface, row: number, y: number, from: number, to: nu
     let share = fill.opacity;
     if (pattern !== null) {
       const u = wrap(pattern.u0 + x * pattern.ux + y * pattern.uy, pattern.side);
-      const at = pattern.lined ? u : wrap(pattern.v0 + x * pattern.vx + y * pattern.vy, pattern.side) * pattern.side + u;
+      const at = pattern.lined
+        ? u
+        : wrap(pattern.v0 + x * pattern.vx + y * pattern.vy, pattern.side) * pattern.side + u;
       share = pattern.tile[at];
       if (share === 0) continue;
     }

@@ -32,14 +32,21 @@ export function chooseRenderer(choice: RendererChoice, webGl: WebGlKind): Render
   if (choice === 'cpu') return { renderer: 'cpu', reason: 'chosen' };
   if (!has) return { renderer: 'cpu', reason: 'no-webgl' };
   if (choice === 'webgl') return { renderer: 'webgl', reason: 'chosen' };
-  return webGl === 'software' ? { renderer: 'cpu', reason: 'software-webgl' } : { renderer: 'webgl', reason: 'hardware' };
+  return webGl === 'software'
+    ? { renderer: 'cpu', reason: 'software-webgl' }
+    : { renderer: 'webgl', reason: 'hardware' };
 }
 
 /** Pixels the CPU renderer fills in a frame at most, before it draws coarser than the screen: about 1920 × 1080. */
 const CPU_PIXELS = 2.1e6;
 
 /** Device pixels a CSS pixel for a picture of this size. */
-export function pixelRatioFor(renderer: ActiveRenderer, width: number, height: number, devicePixelRatio: number): number {
+export function pixelRatioFor(
+  renderer: ActiveRenderer,
+  width: number,
+  height: number,
+  devicePixelRatio: number,
+): number {
   if (renderer === 'webgl') return Math.min(2, devicePixelRatio);
   const affordable = Math.sqrt(CPU_PIXELS / Math.max(1, width * height));
   return Math.min(devicePixelRatio, Math.max(0.5, affordable));

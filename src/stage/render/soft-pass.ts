@@ -39,10 +39,27 @@ export class SoftPass {
   private readonly polygons = new PolygonRaster();
   private readonly segment: ScreenSegment = { x0: 0, y0: 0, q0: 0, x1: 0, y1: 0, q1: 0 };
   private readonly stroke: LineStroke = { width: 1, colour: 0, opacity: 256, depthTest: true, depthOffset: false };
-  private readonly fill: TriangleFill = { colour: 0, opacity: 256, colourWrite: true, depthTest: true, depthWrite: true, pattern: null };
+  private readonly fill: TriangleFill = {
+    colour: 0,
+    opacity: 256,
+    colourWrite: true,
+    depthTest: true,
+    depthWrite: true,
+    pattern: null,
+  };
   private readonly stipple = stippleTile();
   private readonly hatch = hatchTile();
-  private readonly pattern: PatternFill = { tile: this.stipple, side: TILE_SIDE, lined: false, ux: 0, uy: 0, u0: 0, vx: 0, vy: 0, v0: 0 };
+  private readonly pattern: PatternFill = {
+    tile: this.stipple,
+    side: TILE_SIDE,
+    lined: false,
+    ux: 0,
+    uy: 0,
+    u0: 0,
+    vx: 0,
+    vy: 0,
+    v0: 0,
+  };
   private near = 0.1;
   private halfWidth = 0;
   private halfHeight = 0;
@@ -171,7 +188,8 @@ export class SoftPass {
       this.transform(positions, first, 0);
       this.transform(positions, index === null ? t + 1 : index[t + 1], 1);
       this.transform(positions, index === null ? t + 2 : index[t + 2], 2);
-      if (colours !== null) fill.colour = packColour(colours[3 * first], colours[3 * first + 1], colours[3 * first + 2]);
+      if (colours !== null)
+        fill.colour = packColour(colours[3 * first], colours[3 * first + 1], colours[3 * first + 2]);
       let points = raw;
       let count = 3;
       if (raw[2] < near || raw[5] < near || raw[8] < near) {
@@ -219,7 +237,8 @@ export class SoftPass {
 
   private segments(object: LineSegments2): void {
     const material: unknown = object.material;
-    if (!(material instanceof LineMaterial)) throw new Error('The CPU renderer draws LineSegments2 with LineMaterial only.');
+    if (!(material instanceof LineMaterial))
+      throw new Error('The CPU renderer draws LineSegments2 with LineMaterial only.');
     const start = object.geometry.attributes['instanceStart'] as InterleavedBufferAttribute; // always interleaved there
     const array = start.data.array;
     const count = Math.min(object.geometry.instanceCount, array.length / 6);

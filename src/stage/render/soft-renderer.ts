@@ -4,7 +4,16 @@
  * polygons with outlines (ground layers, without depth), LineSegments2 with LineMaterial. Anything else is an error.
  * Colours are screen colours (the stage sets them so); no lights, fog, textures or tone mapping.
  */
-import { type Camera, Color, LinearSRGBColorSpace, NoToneMapping, type Object3D, PCFShadowMap, type Scene, Vector2 } from 'three';
+import {
+  type Camera,
+  Color,
+  LinearSRGBColorSpace,
+  NoToneMapping,
+  type Object3D,
+  PCFShadowMap,
+  type Scene,
+  Vector2,
+} from 'three';
 import { SoftPass } from './soft-pass.ts';
 import { packColour, Surface } from './surface.ts';
 

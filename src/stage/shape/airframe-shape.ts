@@ -84,7 +84,12 @@ function shapeWing(source: ShapeSource, swept: boolean, bodyRadius: number): Pan
   const rootZ = 0.42 * bodyRadius;
   return {
     root: { x: rootX, y: 0, z: rootZ, chord: root },
-    tip: { x: rootX - (span / 2) * sweep, y: span / 2, z: rootZ - (span / 2) * Math.tan(DRAWN_DIHEDRAL_RAD), chord: root * taper },
+    tip: {
+      x: rootX - (span / 2) * sweep,
+      y: span / 2,
+      z: rootZ - (span / 2) * Math.tan(DRAWN_DIHEDRAL_RAD),
+      chord: root * taper,
+    },
     thickness: 0.12,
   };
 }

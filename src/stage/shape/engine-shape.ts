@@ -46,7 +46,13 @@ export function wingAt(wing: Panel, y: number): { x: number; z: number; chord: n
   };
 }
 
-function loft(rows: readonly (readonly [number, number])[], front: number, back: number, radius: number, z: number): Station[] {
+function loft(
+  rows: readonly (readonly [number, number])[],
+  front: number,
+  back: number,
+  radius: number,
+  z: number,
+): Station[] {
   return rows.map(([t, r]) => ({ x: front + (back - front) * t, halfWidth: r * radius, halfHeight: r * radius, z }));
 }
 
@@ -57,7 +63,16 @@ function propeller(engine: EngineData, source: ShapeSource, wing: Panel, body: B
   if (engine.y_m === 0) {
     const first = body.fuselage[0];
     const x = body.noseX + 0.02 * span;
-    return { kind: 'propeller', x, y: 0, z: first.z, discRadius: 0.088 * span, nacelle: [], strut: null, turn: turnOf(engine) };
+    return {
+      kind: 'propeller',
+      x,
+      y: 0,
+      z: first.z,
+      discRadius: 0.088 * span,
+      nacelle: [],
+      strut: null,
+      turn: turnOf(engine),
+    };
   }
   const at = wingAt(wing, engine.y_m);
   const z = at.z - 0.012 * span;
@@ -96,7 +111,16 @@ function jet(engine: EngineData, source: ShapeSource, wing: Panel, body: Body): 
   const distance = Math.abs(y);
   if (distance < 0.4 * body.bodyRadius) {
     const last = body.fuselage[body.fuselage.length - 1];
-    return { kind: 'jet', x: body.tailX, y, z: last.z, discRadius: Math.max(radius, last.halfWidth), nacelle: [], strut: null, turn: 1 };
+    return {
+      kind: 'jet',
+      x: body.tailX,
+      y,
+      z: last.z,
+      discRadius: Math.max(radius, last.halfWidth),
+      nacelle: [],
+      strut: null,
+      turn: 1,
+    };
   }
   if (distance < body.bodyRadius + 2.4 * radius) {
     // beside the rear fuselage
@@ -112,7 +136,16 @@ function jet(engine: EngineData, source: ShapeSource, wing: Panel, body: Body): 
       top: z - 0.1 * radius,
       bottom: z + 0.1 * radius,
     };
-    return { kind: 'jet', x: back, y, z, discRadius: radius, nacelle: loft(JET_NACELLE, front, back, radius, z), strut, turn: 1 };
+    return {
+      kind: 'jet',
+      x: back,
+      y,
+      z,
+      discRadius: radius,
+      nacelle: loft(JET_NACELLE, front, back, radius, z),
+      strut,
+      turn: 1,
+    };
   }
   const at = wingAt(wing, y);
   const front = at.x + 2.5 * radius;
@@ -126,5 +159,14 @@ function jet(engine: EngineData, source: ShapeSource, wing: Panel, body: Body): 
     top: at.z - 0.01 * span,
     bottom: z - 0.8 * radius,
   };
-  return { kind: 'jet', x: back, y, z, discRadius: radius, nacelle: loft(JET_NACELLE, front, back, radius, z), strut, turn: 1 };
+  return {
+    kind: 'jet',
+    x: back,
+    y,
+    z,
+    discRadius: radius,
+    nacelle: loft(JET_NACELLE, front, back, radius, z),
+    strut,
+    turn: 1,
+  };
 }

@@ -42,7 +42,11 @@ export class OrbitPointer {
     const stand = standOf(name);
     const level = Math.cos(stand.elevationRad);
     this.quiet = true;
-    this.standIn.position.set(level * Math.sin(stand.azimuthRad), Math.sin(stand.elevationRad), level * Math.cos(stand.azimuthRad));
+    this.standIn.position.set(
+      level * Math.sin(stand.azimuthRad),
+      Math.sin(stand.elevationRad),
+      level * Math.cos(stand.azimuthRad),
+    );
     this.controls.target.set(0, 0, 0);
     this.controls.update();
     this.quiet = false;

@@ -1,7 +1,17 @@
 /** The instant last shown, so that a repeated call draws nothing and a turned view can be drawn again. */
 import type { Observation } from '#shared/model/plant-types.ts';
 
-const KEYS = ['tick', 'timeS', 'northM', 'eastM', 'heightAboveRunwayM', 'phiRad', 'psiRad', 'thetaRad', 'betaRad'] as const;
+const KEYS = [
+  'tick',
+  'timeS',
+  'northM',
+  'eastM',
+  'heightAboveRunwayM',
+  'phiRad',
+  'psiRad',
+  'thetaRad',
+  'betaRad',
+] as const;
 
 export class Rememberer {
   now: Observation | null = null;

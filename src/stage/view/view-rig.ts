@@ -7,7 +7,14 @@
 import { PerspectiveCamera, Quaternion, Vector3 } from 'three';
 import type { RunwaySetup } from '#shared/model/plant-types.ts';
 import { drawnRunwayLength } from '../ground/runway.ts';
-import { azimuthOf, airDirectionInto, bodyTurnInto, placeInto, type Pose, stabilityTurnInto } from '../mesh/orientation.ts';
+import {
+  azimuthOf,
+  airDirectionInto,
+  bodyTurnInto,
+  placeInto,
+  type Pose,
+  stabilityTurnInto,
+} from '../mesh/orientation.ts';
 import type { AirframeShape } from '../shape/shape-types.ts';
 import type { CameraName } from '../stage-types.ts';
 
@@ -100,7 +107,11 @@ export class ViewRig {
     // the direction in which the camera looks, over the ground
     const look = pathAzimuth - stand.azimuthRad - orbit.azimuthRad;
     const level = distance * Math.cos(elevation);
-    this.eye.set(place.x - level * Math.sin(look), place.y + distance * Math.sin(elevation), place.z + level * Math.cos(look));
+    this.eye.set(
+      place.x - level * Math.sin(look),
+      place.y + distance * Math.sin(elevation),
+      place.z + level * Math.cos(look),
+    );
     this.eye.y = Math.max(this.eye.y, 0.12 * this.shape.spanM);
     this.setField(FIELD_RAD);
     camera.position.copy(this.eye);
@@ -113,7 +124,10 @@ export class ViewRig {
     const { camera, shape } = this;
     bodyTurnInto(this.turn, pose);
     const forward = shape.noseX - 0.16 * shape.lengthM;
-    this.eye.set(0, 1.25 * shape.bodyRadius, -forward).applyQuaternion(this.turn).add(this.place);
+    this.eye
+      .set(0, 1.25 * shape.bodyRadius, -forward)
+      .applyQuaternion(this.turn)
+      .add(this.place);
     camera.near = 0.2 * shape.bodyRadius;
     camera.position.copy(this.eye);
     camera.quaternion.copy(this.turn);

@@ -9,7 +9,8 @@ import { FT, KT } from '#shared/units/constants.ts';
 import { DEG } from '#shared/units/constants.ts';
 
 const max = (value: number, unit: string) => ({ max: value, unit });
-const value = (measure: MeasureName, unit: string, made: Constructed): number | null => judge({ measure, limit: max(1e6, unit) }, made).value;
+const value = (measure: MeasureName, unit: string, made: Constructed): number | null =>
+  judge({ measure, limit: max(1e6, unit) }, made).value;
 /** A triangle from 0 to `peak` at 2 s and back to 0 at 4 s, on from there. */
 const triangle = (peak: number, t: number): number => peak * (1 - Math.abs(t - 2) / 2);
 
@@ -40,13 +41,21 @@ describe('greatest values', () => {
     const swing = (t: number): Moment => ({ bankDeg: t < 1.5 ? -8 : 20 });
     expect(value('bank-dead-side', 'deg', { seconds: 3, moment: swing, deadSide: 1 })).toBeCloseTo(8, 9);
     expect(value('bank-dead-side', 'deg', { seconds: 3, moment: swing, deadSide: -1 })).toBeCloseTo(20, 9);
-    expect(judge({ measure: 'bank-dead-side', limit: max(5, 'deg') }, { seconds: 3, moment: swing }).verdict).toBe('not-reached');
+    expect(judge({ measure: 'bank-dead-side', limit: max(5, 'deg') }, { seconds: 3, moment: swing }).verdict).toBe(
+      'not-reached',
+    );
   });
 
   it('of an expression', () => {
-    const result = judge({ measure: 'expression', expression: 'abs(bank) - 2 deg', limit: max(20, 'deg') }, over((t) => ({ bankDeg: triangle(-18, t) })));
+    const result = judge(
+      { measure: 'expression', expression: 'abs(bank) - 2 deg', limit: max(20, 'deg') },
+      over((t) => ({ bankDeg: triangle(-18, t) })),
+    );
     expect(result.value).toBeCloseTo(16, 9);
-    const never = judge({ measure: 'expression', expression: 'since(gust) * 1 deg/s', limit: max(20, 'deg') }, over(() => ({})));
+    const never = judge(
+      { measure: 'expression', expression: 'since(gust) * 1 deg/s', limit: max(20, 'deg') },
+      over(() => ({})),
+    );
     expect(never.verdict).toBe('not-reached');
   });
 });
@@ -72,7 +81,12 @@ describe('first correct pedal', () => {
     expect(first(pedal(1, 0.5, 1, 0, 0))).toBeNull();
   });
   it('never is not met and says so', () => {
-    expect(judge({ measure: 'first-correct-pedal', limit: max(2, 's') }, pedal(1, 0, 1))).toMatchObject({ value: null, margin: null, verdict: 'not-met', note: 'never' });
+    expect(judge({ measure: 'first-correct-pedal', limit: max(2, 's') }, pedal(1, 0, 1))).toMatchObject({
+      value: null,
+      margin: null,
+      verdict: 'not-met',
+      note: 'never',
+    });
   });
   it('the other way is wrong pedal, and its time adds up', () => {
     const wrong = (made: Constructed): number | null => value('wrong-pedal-time', 's', made);
@@ -84,7 +98,8 @@ describe('first correct pedal', () => {
 });
 
 describe('yaw arrested', () => {
-  const yaw = (rate: (t: number) => number) => judge({ measure: 'yaw-arrested', limit: max(3, 's') }, { seconds: 6, moment: (t) => ({ rDegS: rate(t) }) });
+  const yaw = (rate: (t: number) => number) =>
+    judge({ measure: 'yaw-arrested', limit: max(3, 's') }, { seconds: 6, moment: (t) => ({ rDegS: rate(t) }) });
   it('is the start of the first second below 1°/s after the rate has exceeded 2°/s', () => {
     const result = yaw((t) => (t < 1 ? 0.5 : t < 2 ? -4 : t < 2.5 ? 0.2 : t < 2.6 ? 1.5 : 0));
     expect(result.value).toBeCloseTo(2.6, 2);
@@ -99,7 +114,8 @@ describe('yaw arrested', () => {
 });
 
 describe('pedal reversals', () => {
-  const swings = (pedal: (t: number) => number): number | null => value('pedal-reversals', 'count', { seconds: 8, moment: (t) => ({ pedal: pedal(t) }) });
+  const swings = (pedal: (t: number) => number): number | null =>
+    value('pedal-reversals', 'count', { seconds: 8, moment: (t) => ({ pedal: pedal(t) }) });
   it('count swings from over 60 % to over 60 % the other way within 3 s', () => {
     expect(swings((t) => (t < 1 ? 0.7 : t < 2 ? 0 : -0.7))).toBe(1);
     expect(swings((t) => (t < 1 ? 0.7 : t < 4.1 ? 0 : -0.7))).toBe(0);
@@ -110,7 +126,8 @@ describe('pedal reversals', () => {
 
 describe('recovery', () => {
   it('lever back: 20 % of travel on the live engines', () => {
-    const lever = (right: (t: number) => number, failed = [1, 0]) => value('lever-reduced', 's', { seconds: 3, failed, moment: (t) => ({ levers: [1, right(t)] }) });
+    const lever = (right: (t: number) => number, failed = [1, 0]) =>
+      value('lever-reduced', 's', { seconds: 3, failed, moment: (t) => ({ levers: [1, right(t)] }) });
     expect(lever((t) => (t < 1 ? 0.9 : 0.7))).toBeCloseTo(1, 9);
     expect(lever((t) => (t < 1 ? 0.9 : 0.75))).toBeNull();
     expect(lever((t) => 0.9 - 0.1 * t)).toBeCloseTo(2, 2);
@@ -121,13 +138,20 @@ describe('recovery', () => {
     expect(value('nose-lowered', 's', { seconds: 2, moment: (t) => ({ thetaDeg: 5 - t }) })).toBeNull();
   });
   it('speed regained: above the given value', () => {
-    const regained = (aim: number, unit: string) => judge({ measure: 'speed-regained', value: aim, unit, limit: max(10, 's') }, { seconds: 5, moment: (t) => ({ casKt: 60 + 10 * t }) });
+    const regained = (aim: number, unit: string) =>
+      judge(
+        { measure: 'speed-regained', value: aim, unit, limit: max(10, 's') },
+        { seconds: 5, moment: (t) => ({ casKt: 60 + 10 * t }) },
+      );
     expect(regained(80, 'kt').value).toBeCloseTo(2.0083, 3); // first tick above
     expect(regained(80 * KT, 'm/s').value).toBeCloseTo(2.0083, 3);
     expect(regained(200, 'kt').verdict).toBe('not-met');
   });
   it('climb rate: mean over the window', () => {
-    const climb = judge({ measure: 'climb-rate', limit: { min: 100, unit: 'ft/min' } }, { seconds: 6, moment: (t) => ({ heightM: 100 + (t * 119 * FT) / 60 + Math.sin(Math.PI * t) }) });
+    const climb = judge(
+      { measure: 'climb-rate', limit: { min: 100, unit: 'ft/min' } },
+      { seconds: 6, moment: (t) => ({ heightM: 100 + (t * 119 * FT) / 60 + Math.sin(Math.PI * t) }) },
+    );
     expect(climb.value).toBeCloseTo(119, 6);
     expect(climb.verdict).toBe('near');
   });
@@ -135,7 +159,8 @@ describe('recovery', () => {
 
 describe('engines', () => {
   it('wrong engine: a live one shut by its lever after a failure, or feathered', () => {
-    const count = (moment: (t: number) => Moment, failed = [1, 0]) => value('wrong-engine', 'count', { seconds: 3, failed, moment });
+    const count = (moment: (t: number) => Moment, failed = [1, 0]) =>
+      value('wrong-engine', 'count', { seconds: 3, failed, moment });
     expect(count(() => ({}))).toBe(0);
     expect(count((t) => ({ levers: [1, t > 1 ? 0 : 1] }))).toBe(1);
     expect(count((t) => ({ levers: [t > 1 ? 0 : 1, 1] }))).toBe(0);
@@ -146,7 +171,8 @@ describe('engines', () => {
     expect(count((t) => ({ feather: [0, t > 1 ? 1 : 0], levers: [1, t > 2 ? 0 : 1] }))).toBe(1);
   });
   it('feathered within: every failed engine', () => {
-    const time = (feather: (t: number) => number[], failed: number[]) => value('feathered-within', 's', { seconds: 3, failed, moment: (t) => ({ feather: feather(t) }) });
+    const time = (feather: (t: number) => number[], failed: number[]) =>
+      value('feathered-within', 's', { seconds: 3, failed, moment: (t) => ({ feather: feather(t) }) });
     expect(time((t) => [t >= 1 ? 1 : 0, 0], [1, 0])).toBeCloseTo(1, 9);
     expect(time((t) => [t >= 1 ? 1 : 0, 0], [1, 1])).toBeNull();
     expect(time((t) => [t >= 1 ? 1 : 0, t >= 2 ? 1 : 0], [1, 1])).toBeCloseTo(2, 9);
@@ -156,26 +182,40 @@ describe('engines', () => {
 
 describe('touchdown', () => {
   const moment = (t: number): Moment => ({
-    bankDeg: t < 3 ? 30 : -2, psiDeg: 95, offsetM: -4, acrossMps: -3 * KT,
+    bankDeg: t < 3 ? 30 : -2,
+    psiDeg: 95,
+    offsetM: -4,
+    acrossMps: -3 * KT,
     full: { trackRad: 90 * DEG, verticalSpeedMps: -(300 * FT) / 60 },
   });
   it.each<[MeasureName, string, number]>([
-    ['touchdown-crab', 'deg', 5], ['touchdown-drift', 'kt', 3], ['touchdown-bank', 'deg', 2], ['touchdown-offset', 'm', 4], ['touchdown-sink', 'ft/min', 300],
+    ['touchdown-crab', 'deg', 5],
+    ['touchdown-drift', 'kt', 3],
+    ['touchdown-bank', 'deg', 2],
+    ['touchdown-offset', 'm', 4],
+    ['touchdown-sink', 'ft/min', 300],
   ])('%s is read in its tick', (measure, unit, expected) => {
     const result = judge({ measure, limit: max(1e3, unit) }, { seconds: 3, moment, ended: 'touchdown' });
     expect(result.value).toBeCloseTo(expected, 6);
     expect(result.atS).toBe(3);
-    expect(judge({ measure, limit: max(1e3, unit) }, { seconds: 3, moment, ended: 'completed' }).verdict).toBe('not-reached');
+    expect(judge({ measure, limit: max(1e3, unit) }, { seconds: 3, moment, ended: 'completed' }).verdict).toBe(
+      'not-reached',
+    );
   });
 });
 
 describe('time', () => {
   it.each<[MeasureName, 'outsideData' | 'stallWarning' | 'finStalled' | 'rudderSaturated']>([
-    ['outside-data-time', 'outsideData'], ['stall-warning-time', 'stallWarning'], ['fin-stall-time', 'finStalled'], ['rudder-saturation-time', 'rudderSaturated'],
+    ['outside-data-time', 'outsideData'],
+    ['stall-warning-time', 'stallWarning'],
+    ['fin-stall-time', 'finStalled'],
+    ['rudder-saturation-time', 'rudderSaturated'],
   ])('%s adds up the ticks in it', (measure, member) => {
     const made: Constructed = { seconds: 3, moment: (t) => ({ full: { [member]: (t >= 1 && t < 1.5) || t >= 2.75 } }) };
     expect(value(measure, 's', made)).toBe(0.75);
-    expect(judge({ measure, limit: max(0, 's') }, { seconds: 1, moment: () => ({ full: { [member]: false } }) })).toMatchObject({ value: 0, verdict: 'met', margin: 0 });
+    expect(
+      judge({ measure, limit: max(0, 's') }, { seconds: 1, moment: () => ({ full: { [member]: false } }) }),
+    ).toMatchObject({ value: 0, verdict: 'met', margin: 0 });
   });
 });
 

@@ -13,7 +13,13 @@ import { airframeOf, cutLeft, shippedScenario, specOf } from './support/build-sc
 
 /** Light twin of flight model section 9: 80 kt TAS at 300 ft, path 0, levers 1, cut at 1 s, 12 s flown. */
 function sectionNine(): Run {
-  return createRun(specOf({ start: { ias_kt: casFromTas(80 * KT, 300 * FT) / KT, height_ft: 300, levers: [1, 1] }, duration_s: 13, events: [cutLeft] }));
+  return createRun(
+    specOf({
+      start: { ias_kt: casFromTas(80 * KT, 300 * FT) / KT, height_ft: 300, levers: [1, 1] },
+      duration_s: 13,
+      events: [cutLeft],
+    }),
+  );
 }
 
 describe('the light twin of the flight model, section 9', () => {
@@ -31,19 +37,22 @@ describe('the light twin of the flight model, section 9', () => {
     [1.5, 15.1, 19.8, 0.78],
     [2, 17.7, 31.7, 0.71],
     [2.5, 19.7, 41.5, 0.62],
-  ])('flown by the reference pilot after %s s turns %s°, banks %s°, fin at %s of its stall', (delay, heading, bank, fin) => {
-    const run = sectionNine();
-    const startPsi = run.plant.x[X.X_PSI];
-    const most = { heading: 0, bank: 0, fin: 0 };
-    flyRun(run, createReferencePilot(run, delay), Infinity, ({ plant, now }) => {
-      most.heading = Math.max(most.heading, Math.abs(plant.x[X.X_PSI] - startPsi) / DEG);
-      most.bank = Math.max(most.bank, Math.abs(plant.x[X.X_PHI]) / DEG);
-      most.fin = Math.max(most.fin, Math.abs(now.finAngleRad) / now.finStallAngleRad);
-    });
-    expect(Math.abs(most.heading - heading)).toBeLessThan(Math.max(0.3, 0.03 * heading));
-    expect(Math.abs(most.bank - bank)).toBeLessThan(Math.max(0.3, 0.03 * bank));
-    expect(Math.abs(most.fin - fin)).toBeLessThan(0.03);
-  });
+  ])(
+    'flown by the reference pilot after %s s turns %s°, banks %s°, fin at %s of its stall',
+    (delay, heading, bank, fin) => {
+      const run = sectionNine();
+      const startPsi = run.plant.x[X.X_PSI];
+      const most = { heading: 0, bank: 0, fin: 0 };
+      flyRun(run, createReferencePilot(run, delay), Infinity, ({ plant, now }) => {
+        most.heading = Math.max(most.heading, Math.abs(plant.x[X.X_PSI] - startPsi) / DEG);
+        most.bank = Math.max(most.bank, Math.abs(plant.x[X.X_PHI]) / DEG);
+        most.fin = Math.max(most.fin, Math.abs(now.finAngleRad) / now.finStallAngleRad);
+      });
+      expect(Math.abs(most.heading - heading)).toBeLessThan(Math.max(0.3, 0.03 * heading));
+      expect(Math.abs(most.bank - bank)).toBeLessThan(Math.max(0.3, 0.03 * bank));
+      expect(Math.abs(most.fin - fin)).toBeLessThan(0.03);
+    },
+  );
 });
 
 describe('the reaction budget', () => {
@@ -51,7 +60,12 @@ describe('the reaction budget', () => {
     { id: 'heading', title: 'Heading', measure: 'heading-deviation', from: 'cut', limit: { max: 15, unit: 'deg' } },
     { id: 'react', title: 'Pedal', measure: 'first-correct-pedal', from: 'cut', limit: { max: 0.1, unit: 's' } },
   ];
-  const base: Partial<ScenarioDocument> = { start: { ias_kt: 80, height_ft: 300, levers: [1, 1] }, duration_s: 10, events: [cutLeft], criteria };
+  const base: Partial<ScenarioDocument> = {
+    start: { ias_kt: 80, height_ft: 300, levers: [1, 1] },
+    duration_s: 10,
+    events: [cutLeft],
+    criteria,
+  };
 
   it('ends where the criterion begins to fail, whatever the measures of the reaction say', () => {
     const spec = specOf(base);
@@ -70,12 +84,21 @@ describe('the reaction budget', () => {
   });
 
   it('is none with the reason when nothing can fail, or nothing can help', () => {
-    expect(reactionBudget(specOf({ ...base, criteria: [{ ...criteria[0], limit: { max: 720, unit: 'deg' } }] }))).toMatchObject({ budgetS: null, reason: 'met-hands-off' });
-    expect(reactionBudget(specOf({ ...base, criteria: [{ ...criteria[0], limit: { max: 0.01, unit: 'deg' } }] }))).toMatchObject({ budgetS: null, reason: 'not-met-at-0', binding: 'heading' });
+    expect(
+      reactionBudget(specOf({ ...base, criteria: [{ ...criteria[0], limit: { max: 720, unit: 'deg' } }] })),
+    ).toMatchObject({ budgetS: null, reason: 'met-hands-off' });
+    expect(
+      reactionBudget(specOf({ ...base, criteria: [{ ...criteria[0], limit: { max: 0.01, unit: 'deg' } }] })),
+    ).toMatchObject({ budgetS: null, reason: 'not-met-at-0', binding: 'heading' });
   });
 
   it('is capped at 5 s', () => {
-    const slow = specOf({ ...base, start: { ias_kt: 110, height_ft: 5000, levers: [0.5, 0.5] }, duration_s: 60, criteria: [{ ...criteria[0], limit: { max: 120, unit: 'deg' } }] });
+    const slow = specOf({
+      ...base,
+      start: { ias_kt: 110, height_ft: 5000, levers: [0.5, 0.5] },
+      duration_s: 60,
+      criteria: [{ ...criteria[0], limit: { max: 120, unit: 'deg' } }],
+    });
     expect(reactionBudget(slow)).toMatchObject({ budgetS: 5, capped: true, intervalsS: [[0, 5]] });
   });
 
@@ -86,7 +109,10 @@ describe('the reaction budget', () => {
     for (const delayS of [0, 0.5, 1.31, 1.4, 2.75]) {
       const run = createRun(spec);
       flyRun(run, createReferencePilot(run, delayS));
-      const failed = run.results().filter(({ id, verdict }) => id !== 'react' && verdict === 'not-met').map(({ id }) => id);
+      const failed = run
+        .results()
+        .filter(({ id, verdict }) => id !== 'react' && verdict === 'not-met')
+        .map(({ id }) => id);
       expect(evaluator.evaluate(delayS, true), `${delayS} s`).toEqual({ delayS, met: failed.length === 0, failed });
       expect(evaluator.evaluate(delayS).met).toBe(failed.length === 0);
     }
@@ -116,14 +142,19 @@ describe('the dynamic minimum control speed', () => {
     const held = (ias: number): boolean => {
       const limit = (max: number) => ({ max, unit: 'deg' });
       const run = createRun(
-        specOf({
-          start: { ias_kt: ias, height_ft: 0.001, levers: [1, 1] }, runway: { threshold_m: 0, elevation_ft: -1000 }, duration_s: 10,
-          events: [{ ...cutLeft, at: { time_s: 0 } }],
-          criteria: [
-            { id: 'h', title: 'H', measure: 'heading-deviation', limit: limit(20) },
-            { id: 'b', title: 'B', measure: 'bank', limit: limit(45) },
-          ],
-        }, twin),
+        specOf(
+          {
+            start: { ias_kt: ias, height_ft: 0.001, levers: [1, 1] },
+            runway: { threshold_m: 0, elevation_ft: -1000 },
+            duration_s: 10,
+            events: [{ ...cutLeft, at: { time_s: 0 } }],
+            criteria: [
+              { id: 'h', title: 'H', measure: 'heading-deviation', limit: limit(20) },
+              { id: 'b', title: 'B', measure: 'bank', limit: limit(45) },
+            ],
+          },
+          twin,
+        ),
       );
       flyRun(run, createReferencePilot(run, 1));
       return run.passed();

@@ -10,7 +10,10 @@ import type { ControlSample, Run, RunSpec } from '#shared/scenario/run-types.ts'
 import { airframeOf, cutLeft, fly, shippedScenario, specOf } from './support/build-scenario.ts';
 
 const KEY = '00112233445566aa';
-const spec = specOf({ events: [cutLeft, { id: 'rough', lane: 'air', kind: 'turbulence', level: 'light', at: { time_s: 2 } }], duration_s: 8.5 });
+const spec = specOf({
+  events: [cutLeft, { id: 'rough', lane: 'air', kind: 'turbulence', level: 'light', at: { time_s: 2 } }],
+  duration_s: 8.5,
+});
 
 /** A restless pilot whose inputs repeat from the tick alone. */
 function restless(sample: ControlSample, tick: number): void {
@@ -27,7 +30,12 @@ interface Flown {
 }
 
 /** Records a flight; `rewind` goes back from one tick to another once. */
-function record(of: RunSpec, input: (sample: ControlSample, tick: number) => void, rewind?: { at: number; to: number }, key = KEY): Flown {
+function record(
+  of: RunSpec,
+  input: (sample: ControlSample, tick: number) => void,
+  rewind?: { at: number; to: number },
+  key = KEY,
+): Flown {
   const run = createRun(of);
   const recorder = createRecorder({ attemptKeyHex: key, engineCount: run.plant.engineCount });
   const chunks: RecordedChunk[] = [];
@@ -70,7 +78,12 @@ describe('a recording', () => {
       for (let i = 0; i < decoded.content.tickCount; i++, tick++) {
         restless(wanted, tick);
         expect(decoded.content.channels.map((channel) => channel[i])).toEqual([
-          wanted.stick, wanted.pedal, wanted.pitch, wanted.rudderTrim, ...wanted.levers, ...wanted.feather,
+          wanted.stick,
+          wanted.pedal,
+          wanted.pitch,
+          wanted.rudderTrim,
+          ...wanted.levers,
+          ...wanted.feather,
         ]);
       }
     }
@@ -134,19 +147,24 @@ describe('a bad chunk is refused', () => {
       rerun({ ...spec, attemptKeyHex: KEY }, change(chunks) ?? chunks);
       return 'accepted';
     } catch (error) {
-      if (error instanceof Error && 'code' in error && 'index' in error) return `${String(error.code)} ${String(error.index)}`;
+      if (error instanceof Error && 'code' in error && 'index' in error)
+        return `${String(error.code)} ${String(error.index)}`;
       throw error;
     }
   };
   it.each<[string, (chunks: RecordedChunk[]) => RecordedChunk[] | void, string]>([
-    ['a changed byte', (c) => void (c[3].bytes[40] ^= 1), 'chain-broken 3'],
+    ['a changed byte of the recorded state hash', (c) => void (c[3].bytes[20] ^= 1), 'chain-broken 3'],
     ['a changed magic', (c) => void (c[2].bytes[0] ^= 1), 'unreadable 2'],
     ['another version', (c) => void (c[0].bytes[4] = 9), 'unreadable 0'],
     ['cut short', (c) => void (c[1] = { ...c[1], bytes: c[1].bytes.slice(0, -3) }), 'unreadable 1'],
     ['bytes left over', (c) => void (c[1] = { ...c[1], bytes: new Uint8Array([...c[1].bytes, 0]) }), 'unreadable 1'],
     ['exchanged', (c) => [c[0], c[2], c[1], ...c.slice(3)], 'wrong-number 1'],
     ['left out', (c) => [c[0], ...c.slice(2)], 'wrong-number 1'],
-    ['of another attempt', (c) => [record(spec, restless, undefined, 'ffffffffffffffff').chunks[0], ...c.slice(1)], 'chain-broken 0'],
+    [
+      'of another attempt',
+      (c) => [record(spec, restless, undefined, 'ffffffffffffffff').chunks[0], ...c.slice(1)],
+      'chain-broken 0',
+    ],
     ['with a forged hash', (c) => void (c[4] = { ...c[4], hash: '0123456789abcdef' }), 'chain-broken 4'],
   ])('%s', (_, change, expected) => {
     expect(trial(change)).toBe(expected);
@@ -155,8 +173,10 @@ describe('a bad chunk is refused', () => {
   it('whatever the bytes are, decoding answers and does not throw (seed 7)', () => {
     const stream = createStream(7, 'bytes');
     for (let i = 0; i < 2000; i++) {
-      const bytes = i % 2 === 0 ? flown.chunks[i % 9].bytes.slice() : new Uint8Array(Math.floor(stream.uniform() * 200));
-      for (let k = 0; k < 3; k++) bytes[Math.floor(stream.uniform() * bytes.length)] = Math.floor(stream.uniform() * 256);
+      const bytes =
+        i % 2 === 0 ? flown.chunks[i % 9].bytes.slice() : new Uint8Array(Math.floor(stream.uniform() * 200));
+      for (let k = 0; k < 3; k++)
+        bytes[Math.floor(stream.uniform() * bytes.length)] = Math.floor(stream.uniform() * 256);
       expect(typeof decodeChunk(bytes, 2).ok).toBe('boolean');
     }
   });
@@ -187,7 +207,12 @@ describe('the fixture of a fixed recording', () => {
   const file = new URL('../../fixtures/recording-left-cut.json', import.meta.url);
   /** Inputs as [from tick, pedal, stick, live lever]: held until the next row. Any program can write them out. */
   const HELD: [number, number, number, number][] = [
-    [0, 0, 0, 32767], [430, 9000, 0, 32767], [450, 17000, 1500, 32767], [700, 15000, 2500, 32767], [1100, 14000, 1800, 30000], [1500, 13500, 1600, 32767],
+    [0, 0, 0, 32767],
+    [430, 9000, 0, 32767],
+    [450, 17000, 1500, 32767],
+    [700, 15000, 2500, 32767],
+    [1100, 14000, 1800, 30000],
+    [1500, 13500, 1600, 32767],
   ];
   const held = (sample: ControlSample, tick: number): void => {
     const row = HELD.findLast(([from]) => from <= tick) ?? HELD[0];
@@ -197,7 +222,8 @@ describe('the fixture of a fixed recording', () => {
     const scenario = shippedScenario('left-engine-cut-after-lift-off');
     const run = fly(createRun({ scenario, airframe: airframeOf('light-twin'), seed: 7 }), Infinity, held);
     const made = {
-      about: 'Inputs held from a tick on as [tick, pedal, stick, right lever], all else neutral, and the state hash they must end in.',
+      about:
+        'Inputs held from a tick on as [tick, pedal, stick, right lever], all else neutral, and the state hash they must end in.',
       scenario: 'left-engine-cut-after-lift-off',
       airframe: 'light-twin',
       seed: 7,

@@ -12,20 +12,33 @@ const firedAt = (run: ReturnType<typeof runOf>): string[] => run.fired.map(({ id
 
 describe('triggers', () => {
   it('by time snap to the nearest tick', () => {
-    const run = fly(runOf({ events: [marker('a', { time_s: 1 }), marker('b', { time_s: 0.0124 }), marker('c', { time_s: 0.0126 })] }));
+    const run = fly(
+      runOf({ events: [marker('a', { time_s: 1 }), marker('b', { time_s: 0.0124 }), marker('c', { time_s: 0.0126 })] }),
+    );
     expect(firedAt(run)).toEqual(['b@1', 'c@2', 'a@120']);
     expect(run.fired[2]).toMatchObject({ timeS: 1, lane: 'notes', kind: 'marker', text: 'a', injected: false });
   });
 
   it('fire in array order within a tick; a chain without delay fires at the next tick, whatever its place', () => {
-    const events = [marker('c', { after: 'b' }), marker('b', { after: 'a' }), marker('a', { time_s: 0.5 }), marker('d', { time_s: 0.5 })];
+    const events = [
+      marker('c', { after: 'b' }),
+      marker('b', { after: 'a' }),
+      marker('a', { time_s: 0.5 }),
+      marker('d', { time_s: 0.5 }),
+    ];
     expect(firedAt(fly(runOf({ events })))).toEqual(['a@60', 'd@60', 'b@61', 'c@62']);
     const turned = [marker('a', { time_s: 0.5 }), marker('b', { after: 'a' }), marker('c', { after: 'b', delay_s: 1 })];
     expect(firedAt(fly(runOf({ events: turned })))).toEqual(['a@60', 'b@61', 'c@181']);
   });
 
   it('on a condition fire once, on the first tick where it is true', () => {
-    const run = runOf({ events: [marker('a', { when: 't > 1 s' }), marker('b', { when: 'since(a) >= 0.5 s' }), marker('c', { when: 'pedal > 40 %' })] });
+    const run = runOf({
+      events: [
+        marker('a', { when: 't > 1 s' }),
+        marker('b', { when: 'since(a) >= 0.5 s' }),
+        marker('c', { when: 'pedal > 40 %' }),
+      ],
+    });
     fly(run, Infinity, (sample, tick) => {
       sample.pedal = tick === 30 ? 16384 : 0;
     });
@@ -33,7 +46,9 @@ describe('triggers', () => {
   });
 
   it('on a condition that reads an event which never comes do not fire', () => {
-    const run = fly(runOf({ events: [marker('never', { time_s: 60 }), marker('b', { when: 'not since(never) > 1 s' })] }));
+    const run = fly(
+      runOf({ events: [marker('never', { time_s: 60 }), marker('b', { when: 'not since(never) > 1 s' })] }),
+    );
     expect(run.fired).toEqual([]);
     expect(run.warnings.join(' ')).toContain('The event "never" did not fire.');
   });
@@ -42,7 +57,11 @@ describe('triggers', () => {
     // Light twin, take-off, sea level: minimum control speed 66.3 kt, stall 60.5 kt (flight model, section 9).
     const start = { ias_kt: 90, height_ft: 1, levers: [1, 1] };
     const near = (name: string, low: number, high: number): string => `${name} > ${low} kt and ${name} < ${high} kt`;
-    const run = runOf({ start, duration_s: 0.1, events: [marker('vmc', { when: near('vmc', 66.2, 66.4) }), marker('stall', { when: near('stall', 60.4, 60.6) })] });
+    const run = runOf({
+      start,
+      duration_s: 0.1,
+      events: [marker('vmc', { when: near('vmc', 66.2, 66.4) }), marker('stall', { when: near('stall', 60.4, 60.6) })],
+    });
     expect(firedAt(fly(run, 2))).toEqual(['vmc@0', 'stall@0']);
   });
 });
@@ -73,7 +92,9 @@ describe('a run', () => {
     const landed = fly(runOf({ ...down, start, runway: { threshold_m: 0, gearHeight_m: 2 } }));
     expect(landed.ended).toBe('touchdown');
     expect(landed.now.heightAboveRunwayM).toBeLessThanOrEqual(2);
-    const high = fly(runOf({ ...down, start: { ...start, height_ft: 1100 }, runway: { threshold_m: 0, elevation_ft: 1000 } }));
+    const high = fly(
+      runOf({ ...down, start: { ...start, height_ft: 1100 }, runway: { threshold_m: 0, elevation_ft: 1000 } }),
+    );
     expect(high.ended).toBe('touchdown');
     expect(high.now.heightM).toBeGreaterThan(300);
   });
@@ -120,8 +141,16 @@ describe('a run', () => {
   });
 
   it('adds scripted inputs to the pilot and limits the sum', () => {
-    const input = (shape: 'pulse' | 'doublet' | 'ramp' | 'step', amplitude: number): Event =>
-      ({ id: shape, lane: 'controls', kind: 'input', axis: 'pedal', shape, amplitude, duration_s: 0.5, at: { time_s: 1 } });
+    const input = (shape: 'pulse' | 'doublet' | 'ramp' | 'step', amplitude: number): Event => ({
+      id: shape,
+      lane: 'controls',
+      kind: 'input',
+      axis: 'pedal',
+      shape,
+      amplitude,
+      duration_s: 0.5,
+      at: { time_s: 1 },
+    });
     const pedalAt = (event: Event, ticks: number[], pilot = 0): number[] => {
       const run = runOf({ events: [event] });
       return ticks.map((tick) => {
@@ -139,7 +168,15 @@ describe('a run', () => {
   });
 
   it('overrides a lever until the pilot moves it', () => {
-    const event: Event = { id: 'l', lane: 'engines', kind: 'lever', engine: 'left', position: 0, over_s: 0, at: { time_s: 0.5 } };
+    const event: Event = {
+      id: 'l',
+      lane: 'engines',
+      kind: 'lever',
+      engine: 'left',
+      position: 0,
+      over_s: 0,
+      at: { time_s: 0.5 },
+    };
     const run = runOf({ events: [event] });
     fly(run, 120);
     expect([...run.now.levers]).toEqual([0, 1]);
@@ -153,7 +190,13 @@ describe('a run', () => {
     const side = (slug: string, ...engines: string[]): number => {
       const airframe = airframeOf(slug);
       const start = slug === 'light-twin' ? { ias_kt: 100, height_ft: 2000 } : { ias_kt: 220, height_ft: 5000 };
-      const events = engines.map((engine, i): Event => ({ id: `e${i}`, lane: 'engines', kind: 'engine-failure', engine, at: { time_s: 0 } }));
+      const events = engines.map((engine, i): Event => ({
+        id: `e${i}`,
+        lane: 'engines',
+        kind: 'engine-failure',
+        engine,
+        at: { time_s: 0 },
+      }));
       return fly(runOf({ start, events, duration_s: 5 }, airframe), 1).deadSide;
     };
     expect(side('light-twin')).toBe(0);
@@ -201,7 +244,14 @@ describe('injected events', () => {
   it('fire at once when their time has passed, else at their own trigger', () => {
     const run = runOf({ events: [marker('a', { time_s: 1 })] });
     fly(run, 200);
-    run.inject({ id: 'now', lane: 'engines', kind: 'engine-failure', engine: 'left', propeller: 'windmilling', at: { time_s: 0 } });
+    run.inject({
+      id: 'now',
+      lane: 'engines',
+      kind: 'engine-failure',
+      engine: 'left',
+      propeller: 'windmilling',
+      at: { time_s: 0 },
+    });
     run.inject({ id: 'later', lane: 'notes', kind: 'marker', text: 'x', at: { after: 'now', delay_s: 0.5 } });
     fly(run, 300);
     expect(firedAt(run)).toEqual(['a@120', 'now@200', 'later@260']);
@@ -211,15 +261,32 @@ describe('injected events', () => {
 
   it('are refused when they do not fit', () => {
     const run = runOf({ events: [marker('a', { time_s: 1 })] });
-    expect(() => run.inject({ id: 'a', lane: 'notes', kind: 'marker', text: 'x', at: { time_s: 1 } })).toThrow(/already/u);
-    expect(() => run.inject({ id: 'b', lane: 'notes', kind: 'marker', text: 'x', at: { after: 'z', delay_s: 0 } })).toThrow(/"z"/u);
-    expect(() => run.inject({ id: 'b', lane: 'notes', kind: 'marker', text: 'x', at: { when: 'since(z) > 1 s' } })).toThrow(/since\(z\)/u);
-    expect(() => run.inject({ id: 'b', lane: 'notes', kind: 'marker', text: 'x', at: { when: 'ias < 3' } })).toThrow(/character 7/u);
-    expect(() => run.inject({ id: 'b', lane: 'engines', kind: 'feather', engine: 'middle', at: { time_s: 0 } })).toThrow(/middle/u);
+    expect(() => run.inject({ id: 'a', lane: 'notes', kind: 'marker', text: 'x', at: { time_s: 1 } })).toThrow(
+      /already/u,
+    );
+    expect(() =>
+      run.inject({ id: 'b', lane: 'notes', kind: 'marker', text: 'x', at: { after: 'z', delay_s: 0 } }),
+    ).toThrow(/"z"/u);
+    expect(() =>
+      run.inject({ id: 'b', lane: 'notes', kind: 'marker', text: 'x', at: { when: 'since(z) > 1 s' } }),
+    ).toThrow(/since\(z\)/u);
+    expect(() => run.inject({ id: 'b', lane: 'notes', kind: 'marker', text: 'x', at: { when: 'ias < 3' } })).toThrow(
+      /character 7/u,
+    );
+    expect(() =>
+      run.inject({ id: 'b', lane: 'engines', kind: 'feather', engine: 'middle', at: { time_s: 0 } }),
+    ).toThrow(/middle/u);
   });
 
   it('given with the run give the run that injected them live', () => {
-    const event = { id: 'x', lane: 'engines', kind: 'engine-failure', engine: 'right', propeller: 'windmilling', at: { time_s: 0 } } as const;
+    const event = {
+      id: 'x',
+      lane: 'engines',
+      kind: 'engine-failure',
+      engine: 'right',
+      propeller: 'windmilling',
+      at: { time_s: 0 },
+    } as const;
     const live = runOf({});
     fly(live, 150);
     live.inject(event);
@@ -231,17 +298,33 @@ describe('injected events', () => {
 });
 
 describe('variation', () => {
-  const varied = (id: string, extra: Event[] = []): ScenarioDocument['events'] => [...extra, { ...cutLeft, id, vary: { time_s: [2, 4] } }];
+  const varied = (id: string, extra: Event[] = []): ScenarioDocument['events'] => [
+    ...extra,
+    { ...cutLeft, id, vary: { time_s: [2, 4] } },
+  ];
   it('is drawn from a stream of the event: another event changes nothing', () => {
     const alone = drawValues(scenarioOf({ events: varied('cut') }), 7);
-    const gust: Event = { id: 'g', lane: 'air', kind: 'gust', axis: 'lateral', from: 'left', peak_kt: 10, shape: 'step', at: { time_s: 1 }, vary: { peak_kt: [5, 15], time_s: [0, 1] } };
+    const gust: Event = {
+      id: 'g',
+      lane: 'air',
+      kind: 'gust',
+      axis: 'lateral',
+      from: 'left',
+      peak_kt: 10,
+      shape: 'step',
+      at: { time_s: 1 },
+      vary: { peak_kt: [5, 15], time_s: [0, 1] },
+    };
     const both = drawValues(scenarioOf({ events: varied('cut', [gust]) }), 7);
     expect(both.cut).toEqual(alone.cut);
     expect(Object.keys(both.g).sort()).toEqual(['peak_kt', 'time_s']);
     expect(drawValues(scenarioOf({ events: varied('cut') }), 8).cut).not.toEqual(alone.cut);
   });
   it('spreads evenly over its range', () => {
-    const draws = Array.from({ length: 400 }, (_, seed) => drawValues(scenarioOf({ events: varied('cut') }), seed).cut.time_s);
+    const draws = Array.from(
+      { length: 400 },
+      (_, seed) => drawValues(scenarioOf({ events: varied('cut') }), seed).cut.time_s,
+    );
     expect(Math.min(...draws)).toBeGreaterThanOrEqual(2);
     expect(Math.max(...draws)).toBeLessThanOrEqual(4);
     // Mean of 400 uniform draws on [2, 4]: 3 ± 4 standard errors of 0.029.

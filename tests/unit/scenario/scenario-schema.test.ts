@@ -17,24 +17,71 @@ const withCriteria = (...criteria: object[]): string[] => refusals({ events: [cu
 describe('a scenario file', () => {
   it('takes the example of the design page as it stands', () => {
     const example = {
-      format: 'sidewash.scenario/1', title: 'Left engine cut in the climb', summary: '…', purpose: '…', talkingPoint: '…',
-      airframe: { slug: 'light-twin', revision: 1 }, configuration: 'take-off', loading: null,
-      fidelity: 'large-angle', technique: 'zero-sideslip',
+      format: 'sidewash.scenario/1',
+      title: 'Left engine cut in the climb',
+      summary: '…',
+      purpose: '…',
+      talkingPoint: '…',
+      airframe: { slug: 'light-twin', revision: 1 },
+      configuration: 'take-off',
+      loading: null,
+      fidelity: 'large-angle',
+      technique: 'zero-sideslip',
       start: { ias_kt: 88, height_ft: 300, heading_deg: 90, path_deg: 2, levers: [1, 1] },
       runway: { heading_deg: 90, elevation_ft: 0, width_m: 30, threshold_m: 900, glidepath_deg: 3, gearHeight_m: 1.5 },
       air: { windFrom_deg: 120, wind_kt: 8, profile: 'none', turbulence: 'none' },
       reference: { task: 'hold-heading' },
       automation: { pitch: { mode: 'hold-path', path_deg: 2 }, yawDamper: false, rudderRatio: true },
       allow: { freeze: false, slow: false, rewind: false, arrows: true },
-      seed: 7, duration_s: 30,
+      seed: 7,
+      duration_s: 30,
       events: [
-        { id: 'cut', lane: 'engines', at: { time_s: 3 }, kind: 'engine-failure', engine: 'left', vary: { time_s: [2.5, 4] } },
-        { id: 'gust', lane: 'air', at: { after: 'cut', delay_s: 4 }, kind: 'gust', axis: 'lateral', shape: 'one-minus-cosine', from: 'right', peak_kt: 15, gradientDistance_m: 60 },
-        { id: 'low', lane: 'notes', at: { when: 'ias < vmc + 25 kt and since(cut) > 2 s' }, kind: 'message', text: 'Speed', duration_s: 3 },
+        {
+          id: 'cut',
+          lane: 'engines',
+          at: { time_s: 3 },
+          kind: 'engine-failure',
+          engine: 'left',
+          vary: { time_s: [2.5, 4] },
+        },
+        {
+          id: 'gust',
+          lane: 'air',
+          at: { after: 'cut', delay_s: 4 },
+          kind: 'gust',
+          axis: 'lateral',
+          shape: 'one-minus-cosine',
+          from: 'right',
+          peak_kt: 15,
+          gradientDistance_m: 60,
+        },
+        {
+          id: 'low',
+          lane: 'notes',
+          at: { when: 'ias < vmc + 25 kt and since(cut) > 2 s' },
+          kind: 'message',
+          text: 'Speed',
+          duration_s: 3,
+        },
       ],
       criteria: [
-        { id: 'hdg', title: 'Heading within 20°', measure: 'heading-deviation', from: 'cut', to: 'end', limit: { max: 20, unit: 'deg' }, required: true },
-        { id: 'react', title: 'Correct pedal within 2 s', measure: 'first-correct-pedal', from: 'cut', limit: { max: 2, unit: 's' }, required: true },
+        {
+          id: 'hdg',
+          title: 'Heading within 20°',
+          measure: 'heading-deviation',
+          from: 'cut',
+          to: 'end',
+          limit: { max: 20, unit: 'deg' },
+          required: true,
+        },
+        {
+          id: 'react',
+          title: 'Correct pedal within 2 s',
+          measure: 'first-correct-pedal',
+          from: 'cut',
+          limit: { max: 2, unit: 's' },
+          required: true,
+        },
       ],
     };
     const parsed = parseScenario(example);
@@ -47,7 +94,11 @@ describe('a scenario file', () => {
   it('fills in the defaults of the format', () => {
     const scenario = scenarioOf({ start: { ias_kt: 90, height_ft: 500 } });
     expect(scenario).toMatchObject({
-      fidelity: 'large-angle', technique: 'zero-sideslip', seed: 1, runway: null, configuration: null,
+      fidelity: 'large-angle',
+      technique: 'zero-sideslip',
+      seed: 1,
+      runway: null,
+      configuration: null,
       start: { heading_deg: 360, path_deg: 0 },
       reference: { task: 'hold-heading' },
       air: { wind_kt: 0, profile: 'none', turbulence: 'none' },
@@ -77,7 +128,9 @@ describe('a scenario file', () => {
   it('refuses numbers out of range and starts below the ground', () => {
     expect(refusals({ start: { ias_kt: -90, height_ft: 500 } })).toEqual(['/start/ias_kt positive']);
     expect(refusals({ start: { ias_kt: 90, height_ft: 0 } })).toEqual(['/start/height_ft above-ground']);
-    expect(refusals({ start: { ias_kt: 90, height_ft: 1000 }, runway: { elevation_ft: 1000, threshold_m: 100 } })).toEqual(['/start/height_ft above-ground']);
+    expect(
+      refusals({ start: { ias_kt: 90, height_ft: 1000 }, runway: { elevation_ft: 1000, threshold_m: 100 } }),
+    ).toEqual(['/start/height_ft above-ground']);
     expect(refusals({ duration_s: 0 })).toHaveLength(1);
     expect(refusals({ seed: 1.5 })).toHaveLength(1);
     expect(withEvents(marker('a', { time_s: -1 }))).toEqual(['/events/0/at/time_s minimum']);
@@ -109,12 +162,16 @@ describe('an event', () => {
     expect(withEvents(marker('a', { when: 'since(b) > 1 s' }))).toEqual(['/events/0/at/when known-event']);
     expect(withEvents(marker('a', { after: 'a' }))).toEqual(['/events/0/at cycle']);
     expect(withEvents(marker('a', { after: 'b' }), marker('b', { after: 'a' }))).toEqual(['/events/1/at cycle']);
-    expect(withEvents(marker('a', { when: 'since(b) > 1 s' }), marker('b', { after: 'c' }), marker('c', { after: 'a' }))).toEqual(['/events/2/at cycle']);
+    expect(
+      withEvents(marker('a', { when: 'since(b) > 1 s' }), marker('b', { after: 'c' }), marker('c', { after: 'a' })),
+    ).toEqual(['/events/2/at cycle']);
     expect(withEvents(marker('a', { after: 'b' }), marker('b', { time_s: 1 }))).toEqual([]);
   });
 
   it('tells the place in an expression', () => {
-    const parsed = parseScenario(documentOf({ events: [marker('a', { when: 'ias < 80 knots' }) as ScenarioDocument['events'][number]] }));
+    const parsed = parseScenario(
+      documentOf({ events: [marker('a', { when: 'ias < 80 knots' }) as ScenarioDocument['events'][number]] }),
+    );
     expect(parsed.ok).toBe(false);
     if (parsed.ok) return;
     expect(parsed.issues[0]).toMatchObject({ field: '/events/0/at/when', rule: 'expression' });
@@ -128,7 +185,9 @@ describe('an event', () => {
     expect(vary({ time_s: [-1, 2] })).toEqual(['/events/0/vary/time_s range']);
     expect(vary({ delay_s: [1, 2] })).toEqual(['/events/0/vary/delay_s variable-member']);
     expect(vary({ engine: [1, 2] })).toEqual(['/events/0/vary/engine variable-member']);
-    expect(vary({ fraction: [0, 2] }, { ...cutLeft, kind: 'engine-partial', fraction: 0.5 })).toEqual(['/events/0/vary/fraction range']);
+    expect(vary({ fraction: [0, 2] }, { ...cutLeft, kind: 'engine-partial', fraction: 0.5 })).toEqual([
+      '/events/0/vary/fraction range',
+    ]);
   });
 
   it('has the members its shape needs', () => {
@@ -137,14 +196,28 @@ describe('an event', () => {
     expect(withEvents({ ...gust, shape: 'ramp', over_s: 1 })).toEqual([]);
     expect(withEvents({ ...gust, shape: 'ramp' })).toEqual(['/events/0/over_s required']);
     expect(withEvents({ ...gust, shape: 'one-minus-cosine' })).toEqual(['/events/0/gradientDistance_m required']);
-    expect(withEvents({ ...gust, shape: 'ramp', over_s: 1, gradientDistance_m: 30 })).toEqual(['/events/0/over_s one-of']);
+    expect(withEvents({ ...gust, shape: 'ramp', over_s: 1, gradientDistance_m: 30 })).toEqual([
+      '/events/0/over_s one-of',
+    ]);
     expect(withEvents({ ...gust, axis: 'yaw-rate', shape: 'step' })).not.toEqual([]);
     const input = { id: 'i', lane: 'controls', kind: 'input', axis: 'pedal', amplitude: 0.5, at: { time_s: 1 } };
     expect(withEvents({ ...input, shape: 'doublet' })).toEqual(['/events/0/duration_s required']);
     expect(withEvents({ ...input, shape: 'step' })).toEqual([]);
     expect(withEvents({ ...input, shape: 'step', amplitude: 1.5 })).toEqual(['/events/0/amplitude maximum']);
-    expect(withEvents({ id: 'w', lane: 'air', kind: 'wind-change', windFrom_deg: 10, wind_kt: 5, over_s: 0.5, at: { time_s: 1 } })).toEqual(['/events/0/over_s minimum']);
-    expect(withEvents({ id: 'p', lane: 'systems', kind: 'pitch-mode', mode: 'glidepath', at: { time_s: 1 } })).toEqual(['/events/0/mode needs-runway']);
+    expect(
+      withEvents({
+        id: 'w',
+        lane: 'air',
+        kind: 'wind-change',
+        windFrom_deg: 10,
+        wind_kt: 5,
+        over_s: 0.5,
+        at: { time_s: 1 },
+      }),
+    ).toEqual(['/events/0/over_s minimum']);
+    expect(withEvents({ id: 'p', lane: 'systems', kind: 'pitch-mode', mode: 'glidepath', at: { time_s: 1 } })).toEqual([
+      '/events/0/mode needs-runway',
+    ]);
   });
 });
 
@@ -155,7 +228,9 @@ describe('a criterion', () => {
     expect(withCriteria({ ...bank, limit: { max: 20, unit: 'rad' } })).toEqual(['/criteria/0/limit/unit unit']);
     expect(withCriteria({ ...bank, limit: { unit: 'deg' } })).toEqual(['/criteria/0/limit limit']);
     expect(withCriteria({ ...bank, limit: { max: 1, min: 0, unit: 'deg' } })).toEqual(['/criteria/0/limit limit']);
-    expect(withCriteria({ ...bank, limit: { within: [3, 1], unit: 'deg' } })).toEqual(['/criteria/0/limit/within ascending']);
+    expect(withCriteria({ ...bank, limit: { within: [3, 1], unit: 'deg' } })).toEqual([
+      '/criteria/0/limit/within ascending',
+    ]);
     expect(withCriteria({ ...bank, measure: 'bank-angle' })).toEqual(['/criteria/0/measure one-of']);
   });
 
@@ -165,7 +240,9 @@ describe('a criterion', () => {
     expect(withCriteria({ ...bank, from: 'gust' })).toEqual(['/criteria/0/from known-event']);
     expect(withCriteria({ ...bank, to: { after: 'gust', plus_s: 1 } })).toEqual(['/criteria/0/to/after known-event']);
     expect(withCriteria({ ...bank, from: { after: 'cut', plus_s: -1 } })).toEqual(['/criteria/0/from/plus_s minimum']);
-    expect(withCriteria({ ...bank, from: { after: 'cut', plus_s: 5 }, to: { after: 'cut', plus_s: 2 } })).toEqual(['/criteria/0/to window']);
+    expect(withCriteria({ ...bank, from: { after: 'cut', plus_s: 5 }, to: { after: 'cut', plus_s: 2 } })).toEqual([
+      '/criteria/0/to window',
+    ]);
     expect(withCriteria({ ...bank, from: { after: 'cut', plus_s: 1 }, to: 'cut' })).toEqual(['/criteria/0/to window']);
     expect(withCriteria({ ...bank, from: 'end', to: 'cut' })).toEqual(['/criteria/0/to window']);
     expect(withCriteria({ ...bank, from: 'cut', to: 'start' })).toEqual(['/criteria/0/to window']);
@@ -182,7 +259,10 @@ describe('a criterion', () => {
 
   it('takes members of other measures for a mistake', () => {
     expect(withCriteria({ ...bank, expression: 'abs(bank)' })).toEqual(['/criteria/0/expression unused']);
-    expect(withCriteria({ ...bank, value: 80, unit: 'kt' })).toEqual(['/criteria/0/value unused', '/criteria/0/unit unused']);
+    expect(withCriteria({ ...bank, value: 80, unit: 'kt' })).toEqual([
+      '/criteria/0/value unused',
+      '/criteria/0/unit unused',
+    ]);
     const regained = { id: 's', title: 'S', measure: 'speed-regained', limit: { max: 5, unit: 's' } };
     expect(withCriteria({ ...regained, value: 80, unit: 'kt' })).toEqual([]);
     expect(withCriteria(regained)).toEqual(['/criteria/0/value required', '/criteria/0/unit required']);
@@ -191,14 +271,20 @@ describe('a criterion', () => {
     expect(withCriteria({ ...expression, expression: 'abs(bank) + abs(sideslip)' })).toEqual([]);
     expect(withCriteria(expression)).toEqual(['/criteria/0/expression required']);
     expect(withCriteria({ ...expression, expression: 'ias' })).toEqual(['/criteria/0/limit/unit unit']);
-    expect(withCriteria({ ...expression, expression: 'since(gust) / 1 s' })).toContain('/criteria/0/expression known-event');
+    expect(withCriteria({ ...expression, expression: 'since(gust) / 1 s' })).toContain(
+      '/criteria/0/expression known-event',
+    );
   });
 
   it('never rewards pedal reversals', () => {
     const reversals = { id: 'r', title: 'R', measure: 'pedal-reversals' };
     expect(withCriteria({ ...reversals, limit: { max: 0, unit: 'count' } })).toEqual([]);
-    expect(withCriteria({ ...reversals, limit: { min: 2, unit: 'count' } })).toEqual(['/criteria/0/limit lower-is-better']);
-    expect(withCriteria({ ...reversals, limit: { within: [1, 3], unit: 'count' } })).toEqual(['/criteria/0/limit lower-is-better']);
+    expect(withCriteria({ ...reversals, limit: { min: 2, unit: 'count' } })).toEqual([
+      '/criteria/0/limit lower-is-better',
+    ]);
+    expect(withCriteria({ ...reversals, limit: { within: [1, 3], unit: 'count' } })).toEqual([
+      '/criteria/0/limit lower-is-better',
+    ]);
   });
 });
 
@@ -209,7 +295,9 @@ describe('a scenario on an airframe', () => {
   };
   it('needs the engines, levers, configurations and loadings it names', () => {
     expect(against({ events: [{ ...cutLeft, engine: 'middle' }] }).issues).toEqual(['/events/0/engine known-engine']);
-    expect(against({ start: { ias_kt: 90, height_ft: 500, levers: [1] } }).issues).toEqual(['/start/levers engine-count']);
+    expect(against({ start: { ias_kt: 90, height_ft: 500, levers: [1] } }).issues).toEqual([
+      '/start/levers engine-count',
+    ]);
     expect(against({ configuration: 'cruise' }).issues).toEqual(['/configuration known-configuration']);
     expect(against({ loading: 'ferry' }).issues).toEqual(['/loading known-loading']);
     expect(against({ events: [cutLeft] }).issues).toEqual([]);
@@ -217,9 +305,11 @@ describe('a scenario on an airframe', () => {
   it('warns of events without effect', () => {
     const damper = { id: 'd', lane: 'systems', kind: 'yaw-damper', on: false, at: { time_s: 1 } } as const;
     expect(against({ events: [damper] }).warnings).toEqual(['no-yaw-damper']);
-    expect(against({ events: [damper] , start: { ias_kt: 200, height_ft: 5000 } }, 'twin-jet').warnings).toEqual([]);
+    expect(against({ events: [damper], start: { ias_kt: 200, height_ft: 5000 } }, 'twin-jet').warnings).toEqual([]);
     const feather = { id: 'f', lane: 'engines', kind: 'feather', engine: 'left', at: { time_s: 1 } } as const;
-    expect(against({ events: [feather], start: { ias_kt: 200, height_ft: 5000 } }, 'twin-jet').warnings).toEqual(['jet-feather']);
+    expect(against({ events: [feather], start: { ias_kt: 200, height_ft: 5000 } }, 'twin-jet').warnings).toEqual([
+      'jet-feather',
+    ]);
   });
 });
 

@@ -6,8 +6,17 @@ import type { Run } from '#shared/scenario/run-types.ts';
 import { DEG } from '#shared/units/constants.ts';
 import { airframeOf, fly, shippedScenario } from './support/build-scenario.ts';
 
-const slugs = readdirSync(new URL('../../../scenarios/', import.meta.url)).filter((name) => name.endsWith('.json')).map((name) => name.slice(0, -5));
-const FIRST_SIX = ['left-engine-cut-after-lift-off', 'right-engine-cut-after-lift-off', 'engine-cut-in-the-climb', 'twin-jet-cut-at-low-speed', 'twin-jet-cut-at-high-speed', 'crosswind-gust-on-final'];
+const slugs = readdirSync(new URL('../../../scenarios/', import.meta.url))
+  .filter((name) => name.endsWith('.json'))
+  .map((name) => name.slice(0, -5));
+const FIRST_SIX = [
+  'left-engine-cut-after-lift-off',
+  'right-engine-cut-after-lift-off',
+  'engine-cut-in-the-climb',
+  'twin-jet-cut-at-low-speed',
+  'twin-jet-cut-at-high-speed',
+  'crosswind-gust-on-final',
+];
 
 function start(slug: string): Run {
   const scenario = shippedScenario(slug);
@@ -19,7 +28,9 @@ describe('the first six scenarios', () => {
     expect(flyRun(start(slug), handsOff()).passed()).toBe(false);
     const run = start(slug);
     flyRun(run, createReferencePilot(run, 1));
-    expect(run.results().filter(({ required, verdict }) => required && verdict !== 'met' && verdict !== 'near')).toEqual([]);
+    expect(
+      run.results().filter(({ required, verdict }) => required && verdict !== 'met' && verdict !== 'near'),
+    ).toEqual([]);
     expect(run.passed()).toBe(true);
   });
   it.each(FIRST_SIX)('%s says what it is for', (slug) => {
@@ -57,7 +68,11 @@ describe('the left engine cut after lift-off', () => {
     expect(run.now.psiRad).toBeLessThan(60 * DEG); // started at 90°, turned left
   });
 
-  it.each([[1, 0.45], [1, 0.6], [1.5, 0.5]])('is met by a key: %s s after the cut right pedal of %s held, the wings kept level', (delay, pedal) => {
+  it.each([
+    [1, 0.45],
+    [1, 0.6],
+    [1.5, 0.5],
+  ])('is met by a key: %s s after the cut right pedal of %s held, the wings kept level', (delay, pedal) => {
     const run = start('left-engine-cut-after-lift-off');
     fly(run, Infinity, (sample) => {
       const cut = run.fired[0]?.timeS;
@@ -67,7 +82,12 @@ describe('the left engine cut after lift-off', () => {
       const { phiRad } = run.now;
       sample.stick = acts && phiRad < -3 * DEG ? 10000 : acts && phiRad > 6 * DEG ? -8000 : 0;
     });
-    expect(run.results().map(({ id, verdict }) => `${id} ${verdict}`).filter((line) => line.endsWith('not-met'))).toEqual([]);
+    expect(
+      run
+        .results()
+        .map(({ id, verdict }) => `${id} ${verdict}`)
+        .filter((line) => line.endsWith('not-met')),
+    ).toEqual([]);
     expect(run.passed()).toBe(true);
   });
 

@@ -29,10 +29,46 @@ function busy(sign: 1 | -1): Partial<ScenarioDocument> {
     air: { windFrom_deg: sign * 60, wind_kt: 10, profile: 'power-law' },
     events: [
       { id: 'cut', lane: 'engines', kind: 'engine-failure', engine: 'left', at: { time_s: 1 } },
-      { id: 'gust', lane: 'air', kind: 'gust', axis: 'lateral', from: side('right'), peak_kt: 12, shape: 'one-minus-cosine', gradientDistance_m: 60, at: { after: 'cut', delay_s: 3 } },
-      { id: 'roll', lane: 'air', kind: 'gust', axis: 'roll-rate', peak_deg_s: sign * 4, shape: 'ramp', over_s: 1, at: { time_s: 6 } },
-      { id: 'shift', lane: 'air', kind: 'wind-change', windFrom_deg: sign * 10, wind_kt: 15, over_s: 2, at: { time_s: 7 } },
-      { id: 'push', lane: 'controls', kind: 'input', axis: 'pedal', shape: 'pulse', amplitude: sign * 0.3, duration_s: 2, at: { time_s: 3 } },
+      {
+        id: 'gust',
+        lane: 'air',
+        kind: 'gust',
+        axis: 'lateral',
+        from: side('right'),
+        peak_kt: 12,
+        shape: 'one-minus-cosine',
+        gradientDistance_m: 60,
+        at: { after: 'cut', delay_s: 3 },
+      },
+      {
+        id: 'roll',
+        lane: 'air',
+        kind: 'gust',
+        axis: 'roll-rate',
+        peak_deg_s: sign * 4,
+        shape: 'ramp',
+        over_s: 1,
+        at: { time_s: 6 },
+      },
+      {
+        id: 'shift',
+        lane: 'air',
+        kind: 'wind-change',
+        windFrom_deg: sign * 10,
+        wind_kt: 15,
+        over_s: 2,
+        at: { time_s: 7 },
+      },
+      {
+        id: 'push',
+        lane: 'controls',
+        kind: 'input',
+        axis: 'pedal',
+        shape: 'pulse',
+        amplitude: sign * 0.3,
+        duration_s: 2,
+        at: { time_s: 3 },
+      },
       { id: 'trim', lane: 'controls', kind: 'rudder-trim', deg: sign * -3, at: { time_s: 8 } },
     ],
     criteria: [
@@ -55,7 +91,9 @@ describe('the mirrored scenario on the mirrored airframe', () => {
     expect(one.deadSide).toBe(1);
     expect(other.deadSide).toBe(-1);
     expect(one.tick).toBe(other.tick);
-    const apart = [...one.plant.x].flatMap((value, i) => (value === (ODD.has(i) ? -other.plant.x[i] : other.plant.x[i]) ? [] : [`state ${i}`]));
+    const apart = [...one.plant.x].flatMap((value, i) =>
+      value === (ODD.has(i) ? -other.plant.x[i] : other.plant.x[i]) ? [] : [`state ${i}`],
+    );
     expect(apart).toEqual([]);
     expect(other.results().map(({ value, atS, verdict }) => ({ value, atS, verdict }))).toEqual(
       one.results().map(({ value, atS, verdict }) => ({ value, atS, verdict })),
@@ -72,12 +110,33 @@ describe('in the small-disturbance model', () => {
       const still = fly(runOf({ fidelity: 'small-disturbance', duration_s: 8 }));
       return run.plant.x.slice(0, 6).map((value, i) => value - still.plant.x[i]);
     };
-    const pedal = { id: 'p', lane: 'controls', kind: 'input', axis: 'pedal', shape: 'step', amplitude: 0.05, at: { time_s: 1 } } as const;
-    const gust = { id: 'g', lane: 'air', kind: 'gust', axis: 'lateral', from: 'left', peak_kt: 3, shape: 'step', at: { time_s: 3 } } as const;
+    const pedal = {
+      id: 'p',
+      lane: 'controls',
+      kind: 'input',
+      axis: 'pedal',
+      shape: 'step',
+      amplitude: 0.05,
+      at: { time_s: 1 },
+    } as const;
+    const gust = {
+      id: 'g',
+      lane: 'air',
+      kind: 'gust',
+      axis: 'lateral',
+      from: 'left',
+      peak_kt: 3,
+      shape: 'step',
+      at: { time_s: 3 },
+    } as const;
     const one = answer(pedal);
     const other = answer(gust);
     const both = answer(pedal, gust);
-    both.forEach((value, i) => expect(Math.abs(value - one[i] - other[i])).toBeLessThanOrEqual(1e-12 * (1 + Math.abs(one[i]) + Math.abs(other[i]))));
+    both.forEach((value, i) =>
+      expect(Math.abs(value - one[i] - other[i])).toBeLessThanOrEqual(
+        1e-12 * (1 + Math.abs(one[i]) + Math.abs(other[i])),
+      ),
+    );
     expect(Math.abs(one[X.X_PSI])).toBeGreaterThan(1e-3);
   });
 });

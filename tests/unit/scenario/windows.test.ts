@@ -4,13 +4,22 @@ import { cutLeft, fly, runOf } from './support/build-scenario.ts';
 
 type Criterion = NonNullable<ScenarioDocument['criteria']>[number];
 const turned = (from: Criterion['from'], to: Criterion['to'], over: Partial<Criterion> = {}): Criterion => ({
-  id: 'c', title: 'C', measure: 'heading-deviation', limit: { max: 90, unit: 'deg' }, from, to, ...over,
+  id: 'c',
+  title: 'C',
+  measure: 'heading-deviation',
+  limit: { max: 90, unit: 'deg' },
+  from,
+  to,
+  ...over,
 });
 const later = { id: 'later', lane: 'notes', kind: 'marker', text: 'x', at: { time_s: 3 } } as const;
 const never = { id: 'never', lane: 'notes', kind: 'marker', text: 'x', at: { when: 'ias > 900 kt' } } as const;
 const events = [cutLeft, later, never];
 
-function headings(criterion: Criterion): { result: ReturnType<ReturnType<typeof runOf>['results']>[number]; psi: number[] } {
+function headings(criterion: Criterion): {
+  result: ReturnType<ReturnType<typeof runOf>['results']>[number];
+  psi: number[];
+} {
   const run = runOf({ events, criteria: [criterion], duration_s: 4 });
   const psi: number[] = [run.now.psiRad];
   while (run.ended === null) {
@@ -39,7 +48,9 @@ describe('a window', () => {
     const run = fly(runOf({ events, criteria: [turned('never', 'end')], duration_s: 4 }));
     expect(run.results()[0]).toMatchObject({ value: null, margin: null, atS: null, verdict: 'not-reached' });
     expect(run.passed()).toBe(false);
-    expect(fly(runOf({ events, criteria: [turned('never', 'end', { required: false })], duration_s: 4 })).passed()).toBe(true);
+    expect(
+      fly(runOf({ events, criteria: [turned('never', 'end', { required: false })], duration_s: 4 })).passed(),
+    ).toBe(true);
   });
   it('that would open after its end is not reached', () => {
     const waits = { id: 'waits', lane: 'notes', kind: 'marker', text: 'x', at: { when: 't > 2 s' } } as const;
@@ -52,14 +63,28 @@ describe('a window', () => {
   });
   it('shows its phase and present value while it runs', () => {
     const run = runOf({ events, criteria: [turned('cut', 'later', { measure: 'bank' })], duration_s: 4 });
-    expect(fly(run, 60).criteria()[0]).toMatchObject({ phase: 'waiting', now: null, value: null, verdict: 'not-reached' });
+    expect(fly(run, 60).criteria()[0]).toMatchObject({
+      phase: 'waiting',
+      now: null,
+      value: null,
+      verdict: 'not-reached',
+    });
     expect(fly(run, 240).criteria()[0]).toMatchObject({ phase: 'running' });
     expect(run.criteria()[0].now).toBeCloseTo(Math.abs(degrees(run.now.phiRad)), 9);
     expect(fly(run, 400).criteria()[0].phase).toBe('done');
   });
   it('of a time that has not come counts on while it is open', () => {
-    const run = runOf({ events, duration_s: 4, criteria: [turned('cut', 'end', { measure: 'first-correct-pedal', limit: { max: 2, unit: 's' } })] });
-    expect(fly(run, 240).criteria()[0]).toMatchObject({ phase: 'running', value: null, now: 1, verdict: 'not-reached' });
+    const run = runOf({
+      events,
+      duration_s: 4,
+      criteria: [turned('cut', 'end', { measure: 'first-correct-pedal', limit: { max: 2, unit: 's' } })],
+    });
+    expect(fly(run, 240).criteria()[0]).toMatchObject({
+      phase: 'running',
+      value: null,
+      now: 1,
+      verdict: 'not-reached',
+    });
     expect(fly(run).criteria()[0]).toMatchObject({ phase: 'done', value: null, verdict: 'not-met', note: 'never' });
   });
 });

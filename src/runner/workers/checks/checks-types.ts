@@ -20,8 +20,7 @@ export interface OutcomeLine {
   deviation: number | null;
   detail: string;
 }
-export type ChecksCommand = { kind: 'open'; airframes: Record<string, Airframe> } | { kind: 'run'; ids: string[] } | { kind: 'stop' };
+export type ChecksCommand =
+  { kind: 'open'; airframes: Record<string, Airframe> } | { kind: 'run'; ids: string[] } | { kind: 'stop' };
 export type ChecksReport =
-  | { kind: 'cases'; lines: CheckLine[] }
-  | ({ kind: 'outcome'; id: string } & OutcomeLine)
-  | { kind: 'done' };
+  { kind: 'cases'; lines: CheckLine[] } | ({ kind: 'outcome'; id: string } & OutcomeLine) | { kind: 'done' };

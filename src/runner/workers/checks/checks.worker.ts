@@ -25,7 +25,12 @@ function open(airframes: Record<string, Airframe>): void {
     published: c.kind === 'value' ? c.published : null,
     unit: c.kind === 'value' ? c.unit : '',
     tolerance: c.kind === 'value' ? toleranceOf(c) : null,
-    toleranceText: c.kind === 'value' ? ('relative' in c.tolerance ? `${Number((c.tolerance.relative * 100).toPrecision(3))} %` : String(c.tolerance.absolute)) : '',
+    toleranceText:
+      c.kind === 'value'
+        ? 'relative' in c.tolerance
+          ? `${Number((c.tolerance.relative * 100).toPrecision(3))} %`
+          : String(c.tolerance.absolute)
+        : '',
   }));
   report({ kind: 'cases', lines });
 }

@@ -66,4 +66,10 @@ export function fly(run: Run, toTick = Infinity, input?: (sample: ControlSample,
   return run;
 }
 
-export const cutLeft = { id: 'cut', lane: 'engines', kind: 'engine-failure', engine: 'left', at: { time_s: 1 } } as const;
+export const cutLeft = {
+  id: 'cut',
+  lane: 'engines',
+  kind: 'engine-failure',
+  engine: 'left',
+  at: { time_s: 1 },
+} as const;

@@ -39,7 +39,10 @@ export interface Constructed {
 }
 
 /** The result of a criterion over the whole of a constructed run. */
-export function judge(criterion: Partial<ScenarioCriterion> & Pick<ScenarioCriterion, 'measure' | 'limit'>, made: Constructed): CriterionResult {
+export function judge(
+  criterion: Partial<ScenarioCriterion> & Pick<ScenarioCriterion, 'measure' | 'limit'>,
+  made: Constructed,
+): CriterionResult {
   const full: ScenarioCriterion = { id: 'c', title: 'C', required: true, from: 'start', to: 'end', ...criterion };
   const tracker = new CriterionTracker(full, () => ({ firedTick: -1 }));
   const observation = createObservation(2);
@@ -47,10 +50,25 @@ export function judge(criterion: Partial<ScenarioCriterion> & Pick<ScenarioCrite
   const v = new Float64Array(MADE_COUNT);
   const failure = Uint8Array.from(made.failed ?? [0, 0]);
   const inputs = { feather: new Uint8Array(2) };
-  const engines = { deadSide: made.deadSide ?? 0, anyFailed: failure.some((f) => f !== 0), failure, feathered: new Uint8Array(2) };
+  const engines = {
+    deadSide: made.deadSide ?? 0,
+    anyFailed: failure.some((f) => f !== 0),
+    failure,
+    feathered: new Uint8Array(2),
+  };
   const signals = {
-    tick: 0, x, v, engines, plant: { inputs }, ended: null as EndReason | null, startCasMps: 0, trackErrorRad: 0, trackOffsetM: 0, acrossMps: 0,
-    sinceS: () => NaN, full: () => observation,
+    tick: 0,
+    x,
+    v,
+    engines,
+    plant: { inputs },
+    ended: null as EndReason | null,
+    startCasMps: 0,
+    trackErrorRad: 0,
+    trackOffsetM: 0,
+    acrossMps: 0,
+    sinceS: () => NaN,
+    full: () => observation,
   };
   // The measures read only what is written here; a whole Signals would need an aeroplane.
   const seen = signals as unknown as Signals;
@@ -85,4 +103,3 @@ export function judge(criterion: Partial<ScenarioCriterion> & Pick<ScenarioCrite
   }
   return tracker.result();
 }
-
