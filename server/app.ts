@@ -5,16 +5,20 @@ import express, { type Express, type RequestHandler } from 'express';
 import { REQUEST_ID_HEADER } from '#shared/contracts/wire-names.ts';
 import type { Environment } from './config/environment.ts';
 import type { Logger } from './config/log.ts';
+import { airframeEditingRouter } from './http/airframe-editing.router.ts';
 import { airframesRouter } from './http/airframes.router.ts';
+import { analysisReportsRouter } from './http/analysis-reports.router.ts';
 import { attemptsRouter } from './http/attempts.router.ts';
 import { createCookies } from './http/cookies.ts';
 import { csrfProtection } from './http/csrf.middleware.ts';
+import { debriefRouter, remarksRouter } from './http/debrief.router.ts';
 import { errorMapper, unknownRoute } from './http/error-mapper.ts';
 import { healthRouter } from './http/health.router.ts';
 import { scenariosRouter } from './http/scenarios.router.ts';
 import { securityHeaders } from './http/security-headers.ts';
 import { requireSession } from './http/session.middleware.ts';
 import { sessionRouter } from './http/session.router.ts';
+import { studiesRouter } from './http/studies.router.ts';
 import type { Services } from './services/create-services.ts';
 
 const LARGEST_JSON = '1mb';
@@ -54,8 +58,13 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use('/session', sessionRouter(services.sessions, cookies));
   const signedIn = requireSession(services.sessions);
   api.use('/airframes', signedIn, airframesRouter(services.airframes));
+  api.use('/airframes', signedIn, airframeEditingRouter(services));
+  api.use('/studies', signedIn, studiesRouter(services.studies));
+  api.use('/reports', signedIn, analysisReportsRouter(services));
   api.use('/scenarios', signedIn, scenariosRouter(services.scenarios));
   api.use('/attempts', signedIn, attemptsRouter(services.attempts));
+  api.use('/attempts', signedIn, debriefRouter(services.debrief));
+  api.use('/remarks', signedIn, remarksRouter(services.debrief));
   api.use(unknownRoute);
   app.use('/api', api);
 

@@ -38,7 +38,10 @@ export const CHECK_LANES = [
     { name: 'lint', args: [packageProgram('eslint/bin/eslint.js'), '.'] },
     { name: 'types of shared', args: [packageProgram('typescript/bin/tsc'), '-p', 'tsconfig.shared.json'] },
     // vue-tsc, because tests and what they import reach into .vue files.
-    { name: 'types of server and tests', args: [packageProgram('vue-tsc/bin/vue-tsc.js'), '-p', 'tsconfig.json'] },
+    {
+      name: 'types of server and tests',
+      args: [packageProgram('vue-tsc/bin/vue-tsc.js'), '-p', 'tsconfig.server.json'],
+    },
     { name: 'types of the start scripts', args: [packageProgram('typescript/bin/tsc'), '-p', 'tsconfig.scripts.json'] },
   ],
   [

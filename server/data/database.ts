@@ -1,17 +1,25 @@
 import type { DataSource, EntityManager } from 'typeorm';
 import { type DataSourceSetup, createDataSource } from './data-source.ts';
 import { migrate } from './migrate.ts';
+import {
+  type AirframeEditingRepository,
+  createAirframeEditingRepository,
+} from './repositories/airframe-editing.repository.ts';
 import { type AirframesRepository, createAirframesRepository } from './repositories/airframes.repository.ts';
 import { type AttemptsRepository, createAttemptsRepository } from './repositories/attempts.repository.ts';
 import { type AuditRepository, createAuditRepository } from './repositories/audit.repository.ts';
 import { type ChunksRepository, createChunksRepository } from './repositories/chunks.repository.ts';
+import { type DebriefRepository, createDebriefRepository } from './repositories/debrief.repository.ts';
 import {
   type OrganisationsRepository,
   createOrganisationsRepository,
 } from './repositories/organisations.repository.ts';
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
+import { type ReportCountsRepository, createReportCountsRepository } from './repositories/report-counts.repository.ts';
 import { type ScenariosRepository, createScenariosRepository } from './repositories/scenarios.repository.ts';
 import { type SessionsRepository, createSessionsRepository } from './repositories/sessions.repository.ts';
+import { type SkinsRepository, createSkinsRepository } from './repositories/skins.repository.ts';
+import { type StudiesRepository, createStudiesRepository } from './repositories/studies.repository.ts';
 
 /** All that services may ask of the database; inside {@link Database.transaction} the same on one connection. */
 export interface Repositories {
@@ -19,9 +27,14 @@ export interface Repositories {
   readonly people: PeopleRepository;
   readonly sessions: SessionsRepository;
   readonly airframes: AirframesRepository;
+  readonly airframeEditing: AirframeEditingRepository;
+  readonly skins: SkinsRepository;
+  readonly studies: StudiesRepository;
+  readonly reportCounts: ReportCountsRepository;
   readonly scenarios: ScenariosRepository;
   readonly attempts: AttemptsRepository;
   readonly chunks: ChunksRepository;
+  readonly debrief: DebriefRepository;
   readonly audit: AuditRepository;
 }
 
@@ -38,9 +51,14 @@ function repositories(manager: EntityManager): Repositories {
     people: createPeopleRepository(manager),
     sessions: createSessionsRepository(manager),
     airframes: createAirframesRepository(manager),
+    airframeEditing: createAirframeEditingRepository(manager),
+    skins: createSkinsRepository(manager),
+    studies: createStudiesRepository(manager),
+    reportCounts: createReportCountsRepository(manager),
     scenarios: createScenariosRepository(manager),
     attempts: createAttemptsRepository(manager),
     chunks: createChunksRepository(manager),
+    debrief: createDebriefRepository(manager),
     audit: createAuditRepository(manager),
   };
 }

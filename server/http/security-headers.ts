@@ -12,7 +12,8 @@ export function securityHeaders(dev: boolean, secure: boolean): RequestHandler {
         styleSrc: dev ? ["'self'", "'unsafe-inline'"] : ["'self'"],
         imgSrc: ["'self'", 'data:', 'blob:'],
         fontSrc: ["'self'"],
-        connectSrc: dev ? ["'self'", 'ws:', 'wss:'] : ["'self'"],
+        // Textures of an uploaded model are read from memory, as blob: addresses.
+        connectSrc: dev ? ["'self'", 'blob:', 'ws:', 'wss:'] : ["'self'", 'blob:'],
         workerSrc: ["'self'", 'blob:'],
         objectSrc: ["'none'"],
         baseUri: ["'self'"],

@@ -1,14 +1,23 @@
 import type { Database } from '../data/database.ts';
+import { createAirframeDetail } from './airframes/airframe-detail.ts';
+import { createAirframeDrafts } from './airframes/airframe-drafts.ts';
+import { createAirframeFiles } from './airframes/airframe-files.ts';
+import { createAirframeRelease } from './airframes/airframe-release.ts';
+import { createAirframeSkins } from './airframes/airframe-skins.ts';
 import { createCompleteAttempt } from './attempts/complete-attempt.ts';
 import { createReadAttempts } from './attempts/read-attempts.ts';
 import { createStartAttempt } from './attempts/start-attempt.ts';
 import { createStoreChunk } from './attempts/store-chunk.ts';
+import { createPrintDebrief } from './debrief/print-debrief.ts';
+import { createDebriefService } from './debrief/debrief.service.ts';
 import { createAirframesService } from './library/airframes.service.ts';
 import { createScenariosService } from './library/scenarios.service.ts';
 import { createAccessTokens } from './sessions/access-tokens.ts';
 import { createPasswords } from './sessions/passwords.ts';
 import { createSessionNotices } from './sessions/session-notices.ts';
 import { createSessionsService } from './sessions/sessions.service.ts';
+import { createAnalysisReports } from './studies/analysis-reports.ts';
+import { createStudiesService } from './studies/studies.service.ts';
 import { createWorkerPool } from './workers/worker-pool.ts';
 
 export interface ServicesSetup {
@@ -21,6 +30,9 @@ export interface ServicesSetup {
 export function createServices({ database, tokenSecret, now = () => new Date() }: ServicesSetup) {
   const passwordThreads = createWorkerPool('password', 1);
   const reruns = createWorkerPool('rerun', 2);
+  const reports = createWorkerPool('analysis-report', 1);
+  const debriefs = createWorkerPool('debrief', 1);
+  const sheets = createWorkerPool('sheet', 1);
   const passwords = createPasswords(passwordThreads);
   return {
     database,
@@ -33,6 +45,15 @@ export function createServices({ database, tokenSecret, now = () => new Date() }
       now,
     }),
     airframes: createAirframesService({ database }),
+    airframeEditing: {
+      detail: createAirframeDetail({ database }),
+      drafts: createAirframeDrafts({ database, now }),
+      release: createAirframeRelease({ database, now }),
+      files: createAirframeFiles({ database, sheets }),
+      skins: createAirframeSkins({ database, now }),
+    },
+    studies: createStudiesService({ database, now }),
+    printAnalysis: createAnalysisReports({ database, threads: reports, now }),
     scenarios: createScenariosService({ database }),
     attempts: {
       start: createStartAttempt({ database, now }),
@@ -40,8 +61,9 @@ export function createServices({ database, tokenSecret, now = () => new Date() }
       complete: createCompleteAttempt({ database, reruns, now }),
       ...createReadAttempts({ database, now }),
     },
+    debrief: { ...createDebriefService({ database, now }), print: createPrintDebrief({ database, debriefs, now }) },
     close: async (): Promise<void> => {
-      await Promise.all([passwordThreads.close(), reruns.close()]);
+      await Promise.all([passwordThreads.close(), reruns.close(), debriefs.close(), sheets.close(), reports.close()]);
     },
   };
 }

@@ -12,11 +12,16 @@ export interface Actor {
 
 const ALLOWED = {
   'airframe.read': ['engineer', 'instructor'],
+  'airframe.edit': ['engineer'],
+  'study.read': ['engineer', 'instructor'],
+  'study.edit': ['engineer'],
   'scenario.read-published': ['trainee', 'instructor', 'engineer', 'administrator'],
   'scenario.read-draft': ['instructor'],
   'attempt.fly': ['trainee', 'instructor'],
   'attempt.read-own': ['trainee', 'instructor', 'engineer', 'administrator'],
   'attempt.read-others': ['instructor', 'administrator'],
+  'attempt.remark': ['instructor'],
+  'attempt.sign-off': ['instructor'],
 } as const satisfies Record<string, readonly Role[]>;
 
 export type Deed = keyof typeof ALLOWED;

@@ -10,6 +10,15 @@ export const tagSchema = z
   .max(40, 'A tag has at most 40 characters.');
 export const noteSchema = z.string().trim().max(2000, 'A note has at most 2,000 characters.');
 
+/** A warning of the data as it was answered in words at release. */
+export const releaseAnswerSchema = z.object({
+  field: z.string(),
+  rule: z.string(),
+  message: z.string(),
+  answer: z.string(),
+});
+export type ReleaseAnswer = z.infer<typeof releaseAnswerSchema>;
+
 export const revisionLineSchema = z.object({
   revision: z.number().int().min(1),
   status: airframeStatusSchema,
@@ -21,6 +30,9 @@ export const revisionLineSchema = z.object({
   releasedAt: z.iso.datetime().nullable(),
   retiredAt: z.iso.datetime().nullable(),
   changedAt: z.iso.datetime(),
+  changedBy: z.string().nullable(),
+  /** The warnings of a released revision with their answers; empty for a draft. */
+  answers: z.array(releaseAnswerSchema),
 });
 export type RevisionLine = z.infer<typeof revisionLineSchema>;
 
@@ -78,6 +90,34 @@ export const draftSchema = airframeRevisionSchema.omit({ airframe: true }).exten
 });
 export type AirframeDraft = z.infer<typeof draftSchema>;
 
+/** Address query of a value's history: a JSON Pointer into the document (RFC 6901). */
+export const valueHistoryQuerySchema = z.strictObject({
+  field: z.string().min(1).max(300).regex(/^\//, 'A field starts with /, as /mass/mass_kg.'),
+});
+
+/** One value over all revisions, newest first. */
+export const valueHistorySchema = z.object({
+  field: z.string(),
+  entries: z.array(
+    z.object({
+      revision: z.number().int().min(1),
+      status: airframeStatusSchema,
+      /** False when the revision has no such member; `value` is null then. */
+      given: z.boolean(),
+      value: z.unknown(),
+      /** What the revision says about this value: the entry of `sources` that names it or the nearest member around it. */
+      source: z.string().nullable(),
+      uncertaintyPct: z.number().nullable(),
+      /** True when the revision before has another value, or none. */
+      changed: z.boolean(),
+      by: z.string().nullable(),
+      at: z.iso.datetime(),
+      note: z.string(),
+    }),
+  ),
+});
+export type ValueHistory = z.infer<typeof valueHistorySchema>;
+
 /** Release needs every warning of the data answered in words, and a note. */
 export const releaseSchema = z.strictObject({
   note: z.string().trim().min(3, 'Say in a few words why this revision is released.').max(2000),
@@ -95,7 +135,15 @@ export type ReleaseRequest = z.input<typeof releaseSchema>;
 
 export const setTagsSchema = z.strictObject({ tags: z.array(tagSchema).max(20) });
 
-/** Cells of an uploaded sheet, as read; formulas come as their text and are never run. */
+/** Largest file that is read as a sheet, and largest skin; bytes. */
+export const MAX_SHEET_BYTES = 10 * 1024 * 1024;
+export const MAX_SKIN_BYTES = 8 * 1024 * 1024;
+export const MAX_DOCUMENT_BYTES = 512 * 1024;
+
+/**
+ * Cells of an uploaded sheet, as read; formulas come as their text and are never run. Cells of a CSV file are all text
+ * (null where empty); those of a workbook have their own type. Rows and columns of remarks count from 1.
+ */
 export const sheetCellsSchema = z.object({
   fileName: z.string(),
   sheets: z.array(

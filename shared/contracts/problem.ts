@@ -16,10 +16,14 @@ export const PROBLEM_STATUS = {
   conflict: 409,
   'chunks-missing': 409,
   'attempt-closed': 409,
+  /** Someone else saved since the version named in If-Match was read. */
+  'changed-meanwhile': 412,
   'too-large': 413,
   'unsupported-media-type': 415,
   validation: 422,
   'chunk-refused': 422,
+  /** The deed needs an If-Match header with the version that was read. */
+  'version-needed': 428,
   throttled: 429,
   internal: 500,
   unavailable: 503,

@@ -2,11 +2,17 @@
  * An airframe file as a two-column table of members, for CSV and workbooks: one row a value, named by JSON Pointer.
  * The table holds the file exactly: reading it back gives the same document.
  */
-import { jsonPointer } from './field-issue.ts';
+import { jsonPointer, valueAt } from './field-issue.ts';
 
 export const TABLE_HEAD = ['field', 'value'] as const;
 
+/** Head of an exported table: its third column says what each value is, so that reading it back gives the same document. */
+export const EXACT_TABLE_HEAD = ['field', 'value', 'kind'] as const;
+
 export type TableCell = string | number | boolean | null;
+/** "quoted" is a text written as in JSON, within quotation marks: no program takes it for a formula or trims it. */
+export type TableKind = 'text' | 'quoted' | 'number' | 'yes-no' | 'empty' | 'list' | 'group';
+export type ExactRow = [string, TableCell, TableKind];
 
 /** Largest number of rows that is read back; a full airframe has a few hundred. */
 export const LARGEST_TABLE_ROWS = 20_000;
@@ -40,6 +46,32 @@ export function documentToTable(document: unknown): [string, TableCell][] {
   return rows;
 }
 
+/** Texts that a spreadsheet would run, trim or change. */
+const NEEDS_QUOTES = /^$|^[=+\-@"']|^\s|\s$|[\u0000-\u001f\u007f]|_x[0-9A-Fa-f]{4}_/;
+
+/**
+ * Rows of a document with the kind of each value: what exports hold.
+ *
+ * @param document  Parsed JSON.
+ * @returns         [pointer, value, kind] rows in the document's order.
+ * @throws          Nothing.
+ * @sign            none
+ * @source          JSON Pointer, RFC 6901; JSON strings, RFC 8259.
+ */
+export function documentToExactTable(document: unknown): ExactRow[] {
+  return documentToTable(document).map(([field, value]) => {
+    if (value === null) return [field, null, 'empty'];
+    if (typeof value === 'number') return [field, value, 'number'];
+    if (typeof value === 'boolean') return [field, value, 'yes-no'];
+    const here = valueAt(document, field);
+    if (typeof here === 'object' && here !== null) return [field, value, Array.isArray(here) ? 'list' : 'group'];
+    return NEEDS_QUOTES.test(value) ? [field, quoted(value), 'quoted'] : [field, value, 'text'];
+  });
+}
+
+/** As a JSON string, without the sequences that workbooks take for a character. */
+const quoted = (text: string): string => JSON.stringify(text).replaceAll(/_x(?=[0-9A-Fa-f]{4}_)/g, '\\u005fx');
+
 export type DocumentFromTable =
   { ok: true; document: unknown } | { ok: false; row: number; message: string; remedy: string };
 
@@ -64,7 +96,8 @@ const TEXT_MEMBERS = new Set([
 /**
  * The document of a table of members.
  *
- * @param rows  Rows of cells, [pointer, value] first; further columns are ignored; the head row may be present.
+ * @param rows  Rows of cells, [pointer, value] first; the head row may be present, and where it names a third column "kind",
+ *              that column is obeyed. Further columns are ignored.
  * @returns     The document, still to be parsed by the airframe schema; or the first row that cannot be read.
  * @throws      Nothing.
  * @sign        none
@@ -81,9 +114,11 @@ export function tableToDocument(rows: readonly (readonly unknown[])[]): Document
   }
   let document: unknown;
   const seen = new Set<string>();
+  let exact = false;
   for (let i = 0; i < rows.length; i++) {
     const [rawField, rawValue] = rows[i];
     const field = typeof rawField === 'string' ? rawField.trim() : '';
+    if (field === TABLE_HEAD[0]) exact = rows[i][2] === EXACT_TABLE_HEAD[2];
     if (field === TABLE_HEAD[0] || (field === '' && (rawValue === undefined || rawValue === null || rawValue === '')))
       continue;
     const refuse = (message: string, remedy: string): DocumentFromTable => ({ ok: false, row: i + 1, message, remedy });
@@ -103,7 +138,10 @@ export function tableToDocument(rows: readonly (readonly unknown[])[]): Document
     if (parts.some((part) => part === '__proto__' || part === 'constructor' || part === 'prototype')) {
       return refuse(`${field} is not a member of this format`, 'Remove the row.');
     }
-    const placed = place(document, parts, cellValue(rawValue, parts[parts.length - 1]));
+    const kind = exact ? rows[i][2] : undefined;
+    if (kind === 'number' && !readsAsNumber(rawValue))
+      return refuse(`${field} is "${String(rawValue)}", not a number`, 'Write it with a decimal point, such as 0.087.');
+    const placed = place(document, parts, exactValue(rawValue, kind) ?? cellValue(rawValue, parts[parts.length - 1]));
     if (!placed.ok)
       return refuse(
         `${field} does not fit the rows before it: ${placed.message}`,
@@ -114,6 +152,25 @@ export function tableToDocument(rows: readonly (readonly unknown[])[]): Document
   if (document === undefined)
     return { ok: false, row: 1, message: 'the table has no rows', remedy: 'Export an airframe to see the layout.' };
   return { ok: true, document };
+}
+
+function readsAsNumber(raw: unknown): boolean {
+  if (raw === null || raw === undefined || typeof raw === 'number') return true;
+  return typeof raw === 'string' && !Number.isNaN(Number(raw));
+}
+
+/** The value as its kind says; undefined where the kind leaves it open. */
+function exactValue(raw: unknown, kind: unknown): unknown {
+  const text = raw === null || raw === undefined ? '' : String(raw);
+  if (kind === 'text') return text;
+  if (kind !== 'quoted') return undefined;
+  try {
+    const value: unknown = JSON.parse(text);
+    return typeof value === 'string' ? value : text;
+  } catch {
+    // Retyped without quotation marks: the text as it stands.
+    return text;
+  }
 }
 
 function cellValue(raw: unknown, member: string): unknown {

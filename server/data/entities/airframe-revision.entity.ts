@@ -67,6 +67,21 @@ export class AirframeRevisionEntity {
   @Column({ name: 'retired_at', type: 'datetime', precision: 3, nullable: true })
   retiredAt!: Date | null;
 
+  /** Warnings of the data as answered at release; null for a draft. */
+  @Column({ name: 'release_answers', type: 'json', nullable: true })
+  releaseAnswers!: unknown;
+
+  /** Counts the saves of a draft. */
+  @Column({ type: 'int', unsigned: true })
+  version!: number;
+
+  @Column({ name: 'changed_by', type: 'uuid', nullable: true })
+  changedById!: string | null;
+
+  @ManyToOne(() => PersonEntity)
+  @JoinColumn({ name: 'changed_by', foreignKeyConstraintName: 'fk_airframe_revision_changer' })
+  changedBy?: Relation<PersonEntity> | null;
+
   /** Last change of the data or the status. */
   @Column({ name: 'changed_at', type: 'datetime', precision: 3 })
   changedAt!: Date;

@@ -1,4 +1,7 @@
+import { AirframeListingEntity } from './airframe-listing.entity.ts';
 import { AirframeRevisionEntity } from './airframe-revision.entity.ts';
+import { AirframeSkinPartEntity } from './airframe-skin-part.entity.ts';
+import { AirframeSkinEntity } from './airframe-skin.entity.ts';
 import { AirframeTagEntity } from './airframe-tag.entity.ts';
 import { AirframeEntity } from './airframe.entity.ts';
 import { AttemptChunkEntity } from './attempt-chunk.entity.ts';
@@ -11,9 +14,14 @@ import { OrganisationEntity } from './organisation.entity.ts';
 import { PersonRoleEntity } from './person-role.entity.ts';
 import { PersonEntity } from './person.entity.ts';
 import { RefreshTokenEntity } from './refresh-token.entity.ts';
+import { RemarkEntity } from './remark.entity.ts';
+import { ReportCountEntity } from './report-count.entity.ts';
 import { ScenarioRevisionEntity } from './scenario-revision.entity.ts';
 import { ScenarioEntity } from './scenario.entity.ts';
 import { SessionEntity } from './session.entity.ts';
+import { SignOffEntity } from './sign-off.entity.ts';
+import { StudyAirframeEntity } from './study-airframe.entity.ts';
+import { StudyEntity } from './study.entity.ts';
 
 /** Every entity of the data source. */
 export const ENTITIES = [
@@ -33,4 +41,12 @@ export const ENTITIES = [
   AttemptChunkEntity,
   AttemptResultEntity,
   AuditEntryEntity,
+  RemarkEntity,
+  SignOffEntity,
+  AirframeListingEntity,
+  AirframeSkinEntity,
+  AirframeSkinPartEntity,
+  StudyEntity,
+  StudyAirframeEntity,
+  ReportCountEntity,
 ];

@@ -1,5 +1,12 @@
 import { Foundation1764547200000 } from './1764547200000-foundation.ts';
 import { Guards1764547200001 } from './1764547200001-guards.ts';
+import { Debrief1764547250000 } from './1764547250000-debrief.ts';
+import { EngineersBench1764547300000 } from './1764547300000-engineers-bench.ts';
 
 /** Migrations in the order in which they run. */
-export const MIGRATIONS = [Foundation1764547200000, Guards1764547200001];
+export const MIGRATIONS = [
+  Foundation1764547200000,
+  Guards1764547200001,
+  Debrief1764547250000,
+  EngineersBench1764547300000,
+];

@@ -9,6 +9,16 @@ export interface SheetSeries {
   /** Side that is not available, hatched. */
   forbid?: 'above' | 'below';
 }
+export interface SheetPoint {
+  x: number;
+  y: number;
+  text?: string;
+  /** Side of the mark on which its text stands; default right, above. */
+  side?: 'right' | 'left';
+  shape?: 'disc' | 'ring' | 'cross';
+  /** Of a disc or ring; default 3.2. */
+  radius?: number;
+}
 export interface SheetPlot {
   x: number;
   width: number;
@@ -21,7 +31,9 @@ export interface SheetPlot {
   yText?: (value: number) => string;
   xName?: string;
   series: readonly SheetSeries[];
-  points?: readonly { x: number; y: number; text?: string; shape?: 'disc' | 'ring' | 'cross' }[];
+  points?: readonly SheetPoint[];
+  /** Texts without a mark, centred; boxed ones stand on white. */
+  labels?: readonly { x: number; y: number; text: string; boxed?: boolean }[];
   /** Grey areas in plot units, e.g. level regions. */
   areas?: readonly { points: readonly (readonly [number, number])[]; grey?: string; hatched?: boolean }[];
   levels?: readonly { y: number; text: string }[];
@@ -94,7 +106,7 @@ export function drawPlot(sheet: Sheet, plot: SheetPlot, advance = true): void {
   }
   for (const level of plot.levels ?? []) {
     d.lineWidth(0.8).dash(6, { space: 2 }).moveTo(left, py(level.y)).lineTo(right, py(level.y)).stroke('#000').undash();
-    sheet.text.line(level.text, left + 5, py(level.y) - 10, { face: 'mono', size: 7.5 });
+    onWhite(sheet, level.text, left + 6, py(level.y) - 11);
   }
   d.restore();
   d.lineWidth(1)
@@ -132,11 +144,34 @@ export function drawPlot(sheet: Sheet, plot: SheetPlot, advance = true): void {
         .moveTo(x + 4, y - 4)
         .lineTo(x - 4, y + 4)
         .stroke('#000');
-    else if (point.shape === 'ring') d.lineWidth(1.5).circle(x, y, 3.2).fillAndStroke('#fff', '#000');
-    else d.circle(x, y, 3.2).fill('#000');
-    if (point.text) sheet.text.line(point.text, x + 7, y - 11, { face: 'monoBold', size: 7.5 });
+    else if (point.shape === 'ring')
+      d.lineWidth(1.5)
+        .circle(x, y, point.radius ?? 3.2)
+        .fillAndStroke('#fff', '#000');
+    else d.circle(x, y, point.radius ?? 3.2).fill('#000');
+    if (point.text) {
+      const width = sheet.text.width(point.text, { face: 'monoBold', size: 7.5 });
+      onWhite(sheet, point.text, point.side === 'left' ? x - 7 - width : x + 7, y - 11);
+    }
+  }
+  for (const label of plot.labels ?? []) {
+    const width = sheet.text.width(label.text, { face: 'monoBold', size: 7.5 });
+    const [x, y] = [px(label.x) - width / 2, py(label.y) - 4.5];
+    if (label.boxed)
+      d.lineWidth(0.9)
+        .rect(x - 3.5, y - 2, width + 7, 12)
+        .fillAndStroke('#fff', '#000');
+    if (label.boxed) sheet.text.line(label.text, x, y, { face: 'monoBold', size: 7.5 });
+    else onWhite(sheet, label.text, x, y);
   }
   if (advance) sheet.y += plot.height + 8;
+}
+
+/** A short text that stays readable over lines and hatching. */
+function onWhite(sheet: Sheet, text: string, x: number, y: number): void {
+  const width = sheet.text.width(text, { face: 'monoBold', size: 7.5 });
+  sheet.doc.rect(x - 1.5, y - 0.5, width + 3, 9.5).fill('#fff');
+  sheet.text.line(text, x, y, { face: 'monoBold', size: 7.5 });
 }
 
 function tracePath(d: Sheet['doc'], series: SheetSeries, px: (v: number) => number, py: (v: number) => number): void {

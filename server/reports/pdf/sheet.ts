@@ -154,12 +154,18 @@ export class Sheet {
     this.need(height + 28);
     this.rule(0.75);
     this.y += 5;
-    const box = this.text.width(String(number), { face: 'monoBold', size: 8 }) + 9;
-    this.doc.lineWidth(1).rect(LEFT, this.y, box, 13).stroke('#000');
-    this.text.line(String(number), LEFT + 4.5, this.y + 1.5, { face: 'monoBold', size: 8 });
-    this.text.line(title, LEFT + box + 7, this.y + 0.5, { face: 'bold', size: 10 });
-    if (aside) this.text.line(aside, LEFT, this.y + 1, { size: 8, colour: '#333', align: 'right' }, WIDTH);
+    this.sectionHead(number, title, LEFT, WIDTH, aside);
     this.y += 19;
+  }
+
+  /** The head alone, for sections side by side. */
+  sectionHead(number: number | string, title: string, x: number, width: number, aside = ''): void {
+    const box = this.text.width(String(number), { face: 'monoBold', size: 8 }) + 9;
+    this.doc.lineWidth(1).rect(x, this.y, box, 13).stroke('#000');
+    this.text.line(String(number), x + 4.5, this.y + 1.5, { face: 'monoBold', size: 8 });
+    this.text.line(title, x + box + 7, this.y + 0.5, { face: 'bold', size: 10 });
+    const taken = box + 14 + this.text.width(title, { face: 'bold', size: 10 });
+    if (aside) this.text.line(aside, x + taken, this.y + 1, { size: 8, colour: '#333', align: 'right' }, width - taken);
   }
 
   paragraph(content: string, style: TextStyle = {}): void {

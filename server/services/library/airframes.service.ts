@@ -1,9 +1,19 @@
 import type { AirframeListQuery, AirframeRevision, AirframeSummary } from '#shared/contracts/airframes.ts';
+import { type Airframe, parseAirframe } from '#shared/model/airframe-schema.ts';
 import type { Page } from '#shared/contracts/paging.ts';
 import type { Database } from '../../data/database.ts';
 import { storedAirframe } from '../attempts/attempt-data.ts';
 import { requireDeed, type Actor } from '../permissions.ts';
-import { notFound } from '../problem-error.ts';
+import { notFound, ProblemError } from '../problem-error.ts';
+
+/** The airframe of a draft, which may not be finished. */
+function draftAirframe(document: unknown): Airframe {
+  const parsed = parseAirframe(document);
+  if (parsed.ok) return parsed.airframe;
+  throw new ProblemError('validation', 'This draft is not finished: its data has errors. Open it to mend them.', {
+    errors: parsed.issues,
+  });
+}
 
 export function createAirframesService({ database }: { database: Database }) {
   return {
@@ -25,7 +35,7 @@ export function createAirframesService({ database }: { database: Database }) {
         createdBy: found.createdBy,
         createdAt: found.createdAt.toISOString(),
         releasedAt: found.releasedAt?.toISOString() ?? null,
-        airframe: storedAirframe(found.document),
+        airframe: found.status === 'draft' ? draftAirframe(found.document) : storedAirframe(found.document),
       };
     },
   };

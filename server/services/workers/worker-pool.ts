@@ -9,8 +9,14 @@ const replySchema = z.union([
   z.object({ ok: z.literal(false), message: z.string() }),
 ]);
 
+/** A job that took longer than it was given; its thread was ended. */
+export class JobTimeout extends Error {
+  override readonly name = 'JobTimeout';
+}
+
 interface Job {
   message: unknown;
+  withinMs: number | null;
   resolve: (value: unknown) => void;
   reject: (error: Error) => void;
 }
@@ -18,34 +24,43 @@ interface Job {
 interface Thread {
   worker: Worker;
   job: Job | null;
+  clock?: NodeJS.Timeout;
 }
 
 export interface WorkerPool {
   /** Runs one job in a thread and resolves with what it posted; the caller parses it. */
-  run(message: unknown): Promise<unknown>;
+  run(message: unknown, options?: { withinMs?: number }): Promise<unknown>;
   close(): Promise<void>;
 }
 
+/** A table that needs more memory than this ends its thread. */
+const SHEET_MEGABYTES = 512;
+
 /** The thread of a worker: from TypeScript beside this file, or bundled beside the server. */
 function startThread(name: string): Worker {
+  const resourceLimits = name === 'sheet' ? { maxOldGenerationSizeMb: SHEET_MEGABYTES } : undefined;
   const here = fileURLToPath(import.meta.url);
   const folder = path.dirname(here);
-  if (!here.endsWith('.ts')) return new Worker(path.join(folder, `${name}.worker.js`));
+  if (!here.endsWith('.ts')) return new Worker(path.join(folder, `${name}.worker.js`), { resourceLimits });
   const file = pathToFileURL(path.join(folder, `${name}.worker.ts`)).href;
-  return new Worker(path.join(folder, 'run-from-source.mjs'), { workerData: { file }, execArgv: [] });
+  return new Worker(path.join(folder, 'run-from-source.mjs'), { workerData: { file }, execArgv: [], resourceLimits });
 }
 
 /**
  * Up to `size` threads of the worker `name`, started when first needed. A thread that dies fails its own job only;
  * the next job gets a new one.
  */
-export function createWorkerPool(name: 'password' | 'rerun', size: number): WorkerPool {
+export function createWorkerPool(
+  name: 'password' | 'rerun' | 'debrief' | 'sheet' | 'analysis-report',
+  size: number,
+): WorkerPool {
   const threads = new Set<Thread>();
   const waiting: Job[] = [];
   let closed = false;
 
   const fail = (thread: Thread, error: Error): void => {
     threads.delete(thread);
+    clearTimeout(thread.clock);
     thread.job?.reject(error);
     thread.job = null;
     if (!closed) dispatch();
@@ -56,6 +71,7 @@ export function createWorkerPool(name: 'password' | 'rerun', size: number): Work
     thread.worker.on('message', (message: unknown) => {
       const { job } = thread;
       thread.job = null;
+      clearTimeout(thread.clock);
       thread.worker.unref();
       const reply = replySchema.safeParse(message);
       if (!reply.success) job?.reject(new Error(`Worker ${name} posted something unreadable.`));
@@ -76,19 +92,27 @@ export function createWorkerPool(name: 'password' | 'rerun', size: number): Work
       const job = free === null ? undefined : waiting.shift();
       if (free === null || job === undefined) return;
       free.job = job;
+      const { withinMs } = job;
+      if (withinMs !== null) {
+        const late = () => {
+          fail(free, new JobTimeout(`Worker ${name} took longer than ${withinMs} ms.`));
+          void free.worker.terminate();
+        };
+        free.clock = setTimeout(late, withinMs);
+      }
       free.worker.ref(); // a job keeps the process alive, an idle thread does not
       free.worker.postMessage(job.message);
     }
   };
 
   return {
-    run: (message) =>
+    run: (message, { withinMs } = {}) =>
       new Promise((resolve, reject) => {
         if (closed) {
           reject(new Error(`Worker pool ${name} is closed.`));
           return;
         }
-        waiting.push({ message, resolve, reject });
+        waiting.push({ message, withinMs: withinMs ?? null, resolve, reject });
         dispatch();
       }),
     close: async () => {

@@ -1,97 +1,11 @@
-/** The condition that all figures of the Analysis screen share, and the aircraft prepared for it. */
-import { prepareAircraft, stallTasMps, type Aircraft } from '#shared/model/aircraft.ts';
-import { casFromTas } from '#shared/model/airspeeds.ts';
-import { densityAt } from '#shared/model/atmosphere.ts';
-import type { Airframe } from '#shared/model/airframe-schema.ts';
-import { buildSmallDisturbance, type SmallDisturbance } from '#shared/model/small-disturbance.ts';
-import type { AircraftClass, FlightCategory } from '#shared/analysis/criteria-tables.ts';
-import { KT } from '#shared/units/constants.ts';
+/** What the analysis worker shares with the page about a condition; computed in shared, where printed reports use it too. */
+import * as bench from '#shared/analysis/bench-condition.ts';
 
-export const DERIVATIVE_KEYS = [
-  'CY_beta',
-  'CY_p',
-  'CY_r',
-  'CY_da',
-  'CY_dr',
-  'Cl_beta',
-  'Cl_p',
-  'Cl_r',
-  'Cl_da',
-  'Cl_dr',
-  'Cn_beta',
-  'Cn_p',
-  'Cn_r',
-  'Cn_da',
-  'Cn_dr',
-] as const;
-export type DerivativeKey = (typeof DERIVATIVE_KEYS)[number];
-
-export interface BenchCondition {
-  configuration: string;
-  loading: string | null;
-  /** True airspeed, m/s. */
-  tasMps: number;
-  heightM: number;
-  /** Overrides; null takes what the data says. */
-  klass: AircraftClass | null;
-  category: FlightCategory | null;
-  yawDamper: boolean;
-  /** Added to every row of a derivative, per rad. */
-  shifts: Partial<Record<DerivativeKey, number>>;
-}
-
-/** One compared revision. The first of a list is the one being looked at; shifts apply to it alone. */
-export interface BenchSubject {
-  label: string;
-  airframe: Airframe;
-}
-
-export interface PreparedSubject {
-  label: string;
-  airframe: Airframe;
-  aircraft: Aircraft;
-  system: SmallDisturbance;
-  klass: AircraftClass;
-  category: FlightCategory;
-}
-
-/** The airframe with derivatives moved by a constant in every row of every configuration. */
-export function shiftedAirframe(airframe: Airframe, shifts: BenchCondition['shifts']): Airframe {
-  const moved = Object.entries(shifts).filter(([, by]) => by !== 0);
-  if (moved.length === 0) return airframe;
-  return {
-    ...airframe,
-    configurations: airframe.configurations.map((c) => ({
-      ...c,
-      derivatives: c.derivatives.map((row) => {
-        const next = { ...row };
-        for (const key of DERIVATIVE_KEYS) next[key] = row[key] + (shifts[key] ?? 0);
-        return next;
-      }),
-    })),
-  };
-}
-
-/** Prepared for one condition. Throws the model's named errors. */
-export function prepareSubject(subject: BenchSubject, condition: BenchCondition, moved: boolean): PreparedSubject {
-  const airframe = moved ? shiftedAirframe(subject.airframe, condition.shifts) : subject.airframe;
-  const configuration = airframe.configurations.some((c) => c.name === condition.configuration)
-    ? condition.configuration
-    : airframe.configurations[0]?.name;
-  const loading = airframe.loadings?.some((l) => l.name === condition.loading) ? condition.loading : null;
-  const aircraft = prepareAircraft(airframe, { configuration, loading });
-  const system = buildSmallDisturbance(aircraft, { tasMps: condition.tasMps, heightM: condition.heightM });
-  return {
-    label: subject.label,
-    airframe,
-    aircraft,
-    system,
-    klass: condition.klass ?? (aircraft.class === 'II' ? 'II-L' : aircraft.class),
-    category: condition.category ?? aircraft.category,
-  };
-}
-
-/** 1 g stall at the condition's height: calibrated, kt. */
-export function stallKt(aircraft: Aircraft, heightM: number): number {
-  return casFromTas(stallTasMps(aircraft, densityAt(heightM)), heightM) / KT;
-}
+export const DERIVATIVE_KEYS = bench.DERIVATIVE_KEYS;
+export const prepareSubject = bench.prepareSubject;
+export const shiftedAirframe = bench.shiftedAirframe;
+export const stallKt = bench.stallKt;
+export type DerivativeKey = bench.DerivativeKey;
+export type BenchCondition = bench.BenchCondition;
+export type BenchSubject = bench.BenchSubject;
+export type PreparedSubject = bench.PreparedSubject;

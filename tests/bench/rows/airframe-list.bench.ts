@@ -1,0 +1,220 @@
+import fs from 'node:fs';
+import { Agent, createServer, request, type RequestListener, type RequestOptions } from 'node:http';
+import type { AddressInfo } from 'node:net';
+import path from 'node:path';
+import express from 'express';
+import { createPool } from 'mysql2/promise';
+import type { EntityManager } from 'typeorm';
+import { z } from 'zod';
+import { airframeListQuerySchema } from '#shared/contracts/airframes.ts';
+import { CSRF_COOKIE, CSRF_HEADER } from '#shared/contracts/wire-names.ts';
+import { createApp } from '../../../server/app.ts';
+import { prepareDataFolder } from '../../../server/bootstrap/data-folder.mjs';
+import { startMariadb } from '../../../server/bootstrap/mariadb.mjs';
+import { createLog } from '../../../server/config/log.ts';
+import { projectFolder } from '../../../server/config/project-folder.ts';
+import { openDatabase } from '../../../server/data/database.ts';
+import { createAirframesRepository } from '../../../server/data/repositories/airframes.repository.ts';
+import { DEMONSTRATION } from '../../../server/data/seeds/demonstration-people.ts';
+import { seedEmptyDatabase } from '../../../server/data/seeds/seed-empty-database.ts';
+import { createServices } from '../../../server/services/create-services.ts';
+import { freshDataFolder } from '../../e2e/support/product.ts';
+import { defineBench, median, quantile } from '../harness.ts';
+
+const AIRFRAMES = 5000;
+const REVISIONS = 10;
+const REQUESTS = 400;
+const ROUNDS = 5;
+const AT_ONCE = 4;
+const GOAL_P95_MS = 50;
+const QUERIES = [
+  'class=III&sort=name&page=3',
+  'engineKind=jet&sort=-updatedAt',
+  'status=released&class=II-L&sort=-name&page=2',
+  'tag=even&sort=name&page=4',
+  'search=bench+airframe+41&sort=name',
+];
+
+/** The list of airframes over HTTP, signed in, beside the same SQL sent raw from a bare handler. */
+export default defineBench({
+  name: 'airframe-list',
+  claim: `${AIRFRAMES} airframes × ${REVISIONS} revisions: a filtered and sorted page of the list`,
+  async run({ note, cleanUp }) {
+    const dataFolder = freshDataFolder();
+    cleanUp(() => fs.rmSync(dataFolder, { recursive: true, force: true }));
+    prepareDataFolder(dataFolder);
+    const mariadb = await startMariadb({ dataFolder, say: () => undefined });
+    cleanUp(() => mariadb.stop());
+    const { database } = await openDatabase({ url: mariadb.url, connections: 10 });
+    cleanUp(() => database.close());
+    const services = createServices({ database, tokenSecret: 'bench '.repeat(8) });
+    cleanUp(() => services.close());
+    await seedEmptyDatabase({
+      database,
+      folder: path.join(projectFolder, 'scenarios'),
+      hashPassword: services.passwords.hash,
+      now: () => new Date(),
+    });
+    const pool = createPool({ uri: mariadb.url, connectionLimit: 10, timezone: 'Z' });
+    cleanUp(() => pool.end());
+    const seededFrom = performance.now();
+    const filler = await pool.getConnection(); // its temporary table is its own
+    for (const statement of FILL) await filler.query(statement);
+    filler.release();
+    const [sizes] = await pool.query('SELECT COUNT(*) AS n, AVG(LENGTH(document)) AS bytes FROM airframe_revision');
+    const [{ n, bytes }] = sizesSchema.parse(sizes);
+    note(
+      `${n} revisions of ${Math.round(bytes)} bytes filled in ${((performance.now() - seededFrom) / 1000).toFixed(1)} s`,
+    );
+
+    const env = { publicOrigins: [], secureCookies: false, proxies: 0, dev: false };
+    const app = createApp({ services, log: createLog({ log: 'off', logLevel: 'error', dataFolder: '' }), env });
+    const product = await listen((incoming, response) => void app(incoming, response), cleanUp);
+    const headers = await signIn(product);
+    const [organisations] = await pool.query('SELECT id FROM organisation');
+    const [{ id: organisationId }] = z.tuple([z.object({ id: z.string() })]).parse(organisations);
+    const statements = new Map<string, [string, unknown[]][]>();
+    for (const query of QUERIES) statements.set(query, await recordStatements(query, organisationId));
+    const bare = express();
+    bare.get('/list', async (asked, response) => {
+      const recorded = statements.get(String(asked.query['q'])) ?? [];
+      const answers = await Promise.all(recorded.map(([sql, values]) => pool.query(sql, values)));
+      response.json(answers.map(([rows]) => rows));
+    });
+    const baseline = await listen((incoming, response) => void bare(incoming, response), cleanUp);
+    const ours = (i: number) => `${product}/api/airframes?${QUERIES[i % QUERIES.length]}`;
+    const raw = (i: number) => `${baseline}/list?q=${encodeURIComponent(QUERIES[i % QUERIES.length])}`;
+    await load(ours, headers);
+    await load(raw, {});
+    const ratios: number[] = [];
+    const times: number[] = [];
+    const rates: number[] = [];
+    for (let round = 0; round < ROUNDS; round++) {
+      const rawRun = await load(raw, {});
+      const ourRun = await load(ours, headers);
+      times.push(...ourRun.times);
+      rates.push(ourRun.perSecond);
+      ratios.push(ourRun.perSecond / rawRun.perSecond);
+    }
+    const ratio = median(ratios);
+    const p95 = quantile(times, 0.95);
+    return {
+      value: median(rates),
+      unit: 'pages/s',
+      ratio: 1 / ratio,
+      baseline: `the same SQL through mysql2 from a bare Express handler: ${(median(rates) / ratio).toFixed(0)} pages/s`,
+      goal: `≥ half the baseline, p95 ≤ ${GOAL_P95_MS} ms`,
+      met: ratio >= 0.5 && p95 <= GOAL_P95_MS,
+      details: [
+        { label: 'share of the baseline', value: ratio, unit: '' },
+        { label: `p95, ${AT_ONCE} at once`, value: p95, unit: 'ms' },
+        ...QUERIES.map((query, i) => ({
+          label: query,
+          value: median(times.filter((_, t) => t % QUERIES.length === i)),
+          unit: 'ms',
+        })),
+      ],
+    };
+  },
+});
+
+const sizesSchema = z.tuple([z.object({ n: z.coerce.number(), bytes: z.coerce.number() })]);
+
+/** Made within the database from the seeded light twin: five thousand airframes, their tags and revisions. */
+const FILL = [
+  `CREATE TEMPORARY TABLE model SELECT r.organisation_id, r.document, r.created_by FROM airframe_revision r INNER JOIN airframe a ON a.id = r.airframe_id WHERE a.slug = 'light-twin'`,
+  `INSERT INTO airframe SELECT UUID(), m.organisation_id, CONCAT('bench-airframe-', s.seq), NOW(3) FROM model m, seq_1_to_${AIRFRAMES} s`,
+  `INSERT INTO airframe_tag SELECT id, IF(SUBSTRING_INDEX(slug, '-', -1) MOD 2 = 0, 'even', 'odd') FROM airframe WHERE slug LIKE 'bench-%'`,
+  `INSERT INTO airframe_revision (id, organisation_id, airframe_id, number, status, name, airplane_class, engine_count, engine_kind, search_text, newest, newest_of_status, document, note, created_at, changed_at, released_at, version)
+   SELECT UUID(), m.organisation_id, a.id, s.seq, IF(s.seq = ${REVISIONS} AND SUBSTRING_INDEX(a.slug, '-', -1) MOD 3 = 0, 'draft', 'released'),
+     CONCAT('Bench airframe ', SUBSTRING_INDEX(a.slug, '-', -1)),
+     ELT(1 + SUBSTRING_INDEX(a.slug, '-', -1) MOD 4, 'I', 'II', 'III', 'IV'), 2, ELT(1 + SUBSTRING_INDEX(a.slug, '-', -1) MOD 2, 'jet', 'propeller'),
+     CONCAT('Bench airframe ', SUBSTRING_INDEX(a.slug, '-', -1), ' Invented for demonstration: plausible for the class, not any real aeroplane.'),
+     s.seq = ${REVISIONS}, s.seq = ${REVISIONS} OR (s.seq = ${REVISIONS} - 1 AND SUBSTRING_INDEX(a.slug, '-', -1) MOD 3 = 0),
+     m.document, 'Filled for the bench.', NOW(3), NOW(3) + INTERVAL s.seq SECOND + INTERVAL SUBSTRING_INDEX(a.slug, '-', -1) SECOND, NOW(3), 1
+   FROM airframe a, model m, seq_1_to_${REVISIONS} s WHERE a.slug LIKE 'bench-%' ORDER BY a.id, s.seq`,
+  'ANALYZE TABLE airframe, airframe_revision, airframe_tag',
+];
+
+type CleanUp = (action: () => unknown) => void;
+
+async function listen(handler: RequestListener, cleanUp: CleanUp): Promise<string> {
+  const server = createServer(handler);
+  await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
+  cleanUp(() => {
+    server.closeAllConnections();
+    return new Promise((resolve) => server.close(resolve));
+  });
+  return `http://127.0.0.1:${(server.address() as AddressInfo).port}`; // listens on a port, not on a pipe
+}
+
+/** Cookies of a signed-in engineer. */
+async function signIn(address: string): Promise<Record<string, string>> {
+  const cookies = new Map<string, string>();
+  const take = (response: Response): void => {
+    for (const cookie of response.headers.getSetCookie()) {
+      const [name, value] = cookie.split(';')[0].split('=');
+      cookies.set(name, value);
+    }
+  };
+  const cookie = (): string => [...cookies].map(([name, value]) => `${name}=${value}`).join('; ');
+  take(await fetch(`${address}/api/session`));
+  const answer = await fetch(`${address}/api/session`, {
+    method: 'POST',
+    headers: {
+      cookie: cookie(),
+      origin: address,
+      'content-type': 'application/json',
+      [CSRF_HEADER]: decodeURIComponent(cookies.get(CSRF_COOKIE) ?? ''),
+    },
+    body: JSON.stringify({ email: `a.reyes@${DEMONSTRATION.domain}`, password: DEMONSTRATION.password }),
+  });
+  if (!answer.ok) throw new Error(`Signing in answered ${answer.status}.`);
+  take(answer);
+  return { cookie: cookie() };
+}
+
+/** The SQL that the product sends for a list query, with its values. */
+async function recordStatements(url: string, organisationId: string): Promise<[string, unknown[]][]> {
+  const recorded: [string, unknown[]][] = [];
+  const manager = {
+    query: (sql: string, values: unknown[]) => {
+      recorded.push([sql, values]);
+      return Promise.resolve(sql.includes('COUNT(*) AS total') ? [{ total: 0 }] : []);
+    },
+  };
+  const query = airframeListQuerySchema.parse(Object.fromEntries(new URLSearchParams(url)));
+  await createAirframesRepository(manager as unknown as EntityManager).list(organisationId, query); // the list sends plain statements only
+  return recorded;
+}
+
+/** Sends the requests, some at once over kept connections. */
+async function load(addressOf: (i: number) => string, headers: Record<string, string>) {
+  const agent = new Agent({ keepAlive: true, maxSockets: AT_ONCE });
+  const times: number[] = [];
+  let next = 0;
+  const started = performance.now();
+  const worker = async (): Promise<void> => {
+    while (next < REQUESTS) {
+      const i = next++;
+      const from = performance.now();
+      await get(addressOf(i), { agent, headers });
+      times[i] = performance.now() - from;
+    }
+  };
+  await Promise.all(Array.from({ length: AT_ONCE }, worker));
+  const perSecond = REQUESTS / ((performance.now() - started) / 1000);
+  agent.destroy();
+  return { times, perSecond };
+}
+
+function get(address: string, options: RequestOptions): Promise<void> {
+  return new Promise((resolve, reject) => {
+    request(address, options, (response) => {
+      if (response.statusCode !== 200) reject(new Error(`${address} answered ${response.statusCode}.`));
+      response.resume().on('end', resolve).on('error', reject);
+    })
+      .on('error', reject)
+      .end();
+  });
+}
