@@ -54,6 +54,7 @@ export const chunkRefusalSchema = z.object({
     'too-long',
     'ahead-of-clock',
     'after-last',
+    'not-allowed',
   ]),
   expected: z.number().int().min(0).nullable(),
 });

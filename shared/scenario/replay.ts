@@ -15,6 +15,8 @@ export interface Replay {
   readonly observation: Observation;
   /** Every event of the whole branch, whatever the present tick. */
   readonly fired: readonly FiredEvent[];
+  /** Where the flight went back and on from an earlier tick, in the order of the deeds. */
+  readonly rewinds: readonly { fromTick: number; toTick: number }[];
   /** Whether every recorded state hash was met while integrating. */
   readonly agrees: boolean;
   readonly firstDifferenceTick: number | null;
@@ -48,6 +50,9 @@ export function createReplay(
   const branch = player.branch;
   const last = run.tick;
   const fired = run.fired.map((event) => ({ ...event }));
+  const rewinds = contents
+    .flatMap((content) => content.marks)
+    .flatMap(({ kind, tick, value }) => (kind === 'rewind' ? [{ fromTick: tick, toTick: value ?? 0 }] : []));
   const sample = run.neutralSample();
   // Rewinds may have left keyframes of abandoned branches behind the present end.
   while (keyframes.length > 1 && keyframes[keyframes.length - 1].tick > last) keyframes.pop();
@@ -59,6 +64,7 @@ export function createReplay(
       return run.now;
     },
     fired,
+    rewinds,
     agrees: firstDifferenceTick === null,
     firstDifferenceTick,
     seek(tick) {

@@ -17,6 +17,7 @@ import {
   copyPoseInto,
   createPose,
 } from './observation-copy.ts';
+import { createFlownBranch } from './flown-branch.ts';
 
 export type FlightPhase = 'ready' | 'running' | 'frozen' | 'ended';
 /** Why the clock stands: the pilot, the scenario, a hidden page, a sleeping page, a slow machine, a lost device. */
@@ -30,6 +31,8 @@ export interface FlightEvents {
   held?: (heldMs: number) => void;
   chunk?: (chunk: RecordedChunk) => void;
   ended?: (reason: EndReason, detail: string | null) => void;
+  /** The flight goes on from an earlier tick: what was flown after it stays recorded as a branch of its own. */
+  branched?: (tick: number, fromTick: number) => void;
 }
 
 export interface FlightSetup {
@@ -53,6 +56,14 @@ export interface FlightSession {
   freeze(reason: FreezeReason): void;
   resume(nowMs: number): void;
   setRate(rate: number): void;
+  /** Flies one tick of a frozen flight with the controls as they are held. */
+  step(): void;
+  /** The last tick flown on this branch. */
+  readonly headTick: number;
+  /** Shows a frozen flight at an earlier tick, or again at a later one up to the head. Going on from there makes a branch. */
+  standAt(tick: number): void;
+  /** Tells `visit` every tick of the branch again, from the start to the present one. */
+  retrace(visit: (run: Run) => void): void;
   /** Ends the flight before its end. */
   leave(): void;
   /** Chunks handed on so far. */
@@ -73,6 +84,9 @@ export function createFlightSession(setup: FlightSetup): FlightSession {
   let chunkCount = 0;
   /** Ticks since the last chunk: the state hash is worth its cost only once a second. */
   let pending = 0;
+  const branch = createFlownBranch(run);
+  /** State hash at the head while an earlier tick is shown; null at the head. */
+  let headHash: string | null = null;
 
   const setPhase = (next: FlightPhase, reason: FreezeReason | null): void => {
     phase = next;
@@ -87,6 +101,21 @@ export function createFlightSession(setup: FlightSetup): FlightSession {
   const letGo = (): void => {
     for (const source of sources) source.release();
   };
+
+  /** Leaves what was flown after the shown tick behind, in the recording and here. */
+  function branchOff(): void {
+    if (headHash === null) return;
+    const from = branch.head;
+    if (run.tick < from) {
+      recorder.mark({ kind: 'rewind', tick: from, value: run.tick });
+      handOn(recorder.cut(headHash));
+      pending = 0;
+      branch.cutAt(run.tick);
+      branch.lastSampleInto(axes);
+      events.branched?.(run.tick, from);
+    }
+    headHash = null;
+  }
 
   function finish(): void {
     clock.stop();
@@ -111,6 +140,7 @@ export function createFlightSession(setup: FlightSetup): FlightSession {
     const tick = run.tick;
     copyPoseInto(before, run.now);
     run.step(sample);
+    branch.add(sample);
     // Every input is recorded, also the one after which the model left its numbers: the server must find the same.
     recorder.add(sample, tick);
     pending += 1;
@@ -172,6 +202,7 @@ export function createFlightSession(setup: FlightSetup): FlightSession {
     resume(nowMs) {
       if (phase !== 'frozen') return;
       letGo();
+      branchOff();
       recorder.mark({ kind: 'resume', tick: run.tick });
       clock.start(nowMs);
       setPhase('running', null);
@@ -181,8 +212,33 @@ export function createFlightSession(setup: FlightSetup): FlightSession {
       clock.rate = rate;
       recorder.mark({ kind: 'rate', tick: run.tick, value: rate });
     },
+    get headTick() {
+      return branch.head;
+    },
+    step() {
+      if (phase !== 'frozen') return;
+      branchOff();
+      flyTick();
+    },
+    standAt(tick) {
+      if (phase !== 'frozen') return;
+      headHash ??= run.stateHash();
+      branch.standAt(Math.max(0, Math.min(branch.head, Math.round(tick))));
+      if (run.tick === branch.head) headHash = null;
+    },
+    retrace(visit) {
+      const here = run.tick;
+      branch.standAt(0);
+      for (let tick = 1; tick <= here; tick += 1) {
+        branch.standAt(tick);
+        visit(run);
+      }
+    },
     leave() {
       if (phase === 'ended' || phase === 'ready') return;
+      // What is shown of the past is not where the flight stands.
+      if (headHash !== null) branch.standAt(branch.head);
+      headHash = null;
       run.leave();
       finish();
     },

@@ -5,8 +5,6 @@ export interface AirframeCopies {
   name: string;
   airplaneClass: string;
   engineCount: number;
-  engineKind: EngineKinds;
-  searchText: string;
 }
 
 const UNNAMED = 'Unnamed airframe';

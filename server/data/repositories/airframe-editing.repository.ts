@@ -134,7 +134,8 @@ export function createAirframeEditingRepository(manager: EntityManager) {
     },
 
     async setTags(airframeId: string, tags: readonly string[]): Promise<void> {
-      await manager.delete(AirframeTagEntity, { airframeId });
+      const held = await manager.exists(AirframeTagEntity, { where: { airframeId } });
+      if (held) await manager.delete(AirframeTagEntity, { airframeId });
       await insertTags(manager, airframeId, tags);
       await refreshListing(manager, airframeId);
     },

@@ -44,6 +44,10 @@ export async function refreshListing(manager: EntityManager, airframeId: string)
       searchKey: comparisonKey(searched).slice(0, LONGEST_SEARCH_KEY),
     };
   });
-  await manager.delete(AirframeListingEntity, { airframeId });
-  await manager.insert(AirframeListingEntity, rows);
+  // Only rows that are there are deleted: deleting none would lock the gap in which another airframe is being inserted.
+  const before = await manager.find(AirframeListingEntity, { select: { listedAs: true }, where: { airframeId } });
+  for (const { listedAs } of before)
+    if (!newest.has(listedAs))
+      await manager.delete(AirframeListingEntity, { organisationId: airframe.organisationId, listedAs, airframeId });
+  await manager.upsert(AirframeListingEntity, rows, ['organisationId', 'listedAs', 'airframeId']);
 }

@@ -26,7 +26,8 @@ export function createSkinsRepository(manager: EntityManager) {
     },
 
     async replace(airframeId: string, skin: SkinRecord & { bytes: Buffer }, by: string): Promise<void> {
-      await manager.delete(AirframeSkinEntity, { airframeId });
+      const held = await manager.exists(AirframeSkinEntity, { where: { airframeId } });
+      if (held) await manager.delete(AirframeSkinEntity, { airframeId });
       const { bytes, ...record } = skin;
       await manager.insert(AirframeSkinEntity, { ...record, airframeId, uploadedById: by });
       for (let index = 0; index * PART_BYTES < bytes.length; index++) {

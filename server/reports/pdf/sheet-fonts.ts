@@ -1,5 +1,7 @@
+import { readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { dirname, join } from 'node:path';
+import { unpackWoff } from './unpack-woff.ts';
 
 const require = createRequire(import.meta.url);
 
@@ -7,6 +9,15 @@ export type Face = 'text' | 'bold' | 'mono' | 'monoBold';
 
 function folder(packageName: string): string {
   return join(dirname(require.resolve(`${packageName}/package.json`)), 'files');
+}
+
+const unpacked = new Map<string, Buffer>();
+
+/** The font of a file, unpacked once in the life of the process. */
+export function fontOf(file: string): Buffer {
+  const font = unpacked.get(file) ?? unpackWoff(readFileSync(file));
+  unpacked.set(file, font);
+  return font;
 }
 
 /** Files tried in turn for a character, per face: the face itself, then its wider subsets. */

@@ -1,6 +1,6 @@
 import type PDFDocument from 'pdfkit';
 import { z } from 'zod';
-import { fontFiles, type Face } from './sheet-fonts.ts';
+import { fontFiles, fontOf, type Face } from './sheet-fonts.ts';
 
 type Doc = InstanceType<typeof PDFDocument>;
 
@@ -34,7 +34,7 @@ export class SheetText {
     const register = (face: Face): string[] =>
       files[face].map((file, i) => {
         const name = `${face}-${i}`;
-        doc.registerFont(name, file);
+        doc.registerFont(name, fontOf(file));
         return name;
       });
     this.names = {

@@ -17,6 +17,7 @@ const REMEMBERED = 5000;
 interface Facts {
   engineCount: number;
   durationTicks: number;
+  allow: { slow: boolean; rewind: boolean };
 }
 
 export interface ChunkUpload {
@@ -37,9 +38,11 @@ export function createStoreChunk({ database, now }: { database: Database; now: (
     if (remembered) return remembered;
     const detail = await on.attempts.findDetail(organisationId, id);
     if (detail === null) throw notFound('attempt');
+    const scenario = storedScenario(detail.scenario.document);
     const facts = {
       engineCount: storedAirframe(detail.scenario.airframe.document).engines.length,
-      durationTicks: Math.round(storedScenario(detail.scenario.document).duration_s * TICK_RATE_HZ),
+      durationTicks: Math.round(scenario.duration_s * TICK_RATE_HZ),
+      allow: { slow: scenario.allow.slow, rewind: scenario.allow.rewind },
     };
     if (known.size >= REMEMBERED) known.clear();
     known.set(id, facts);
@@ -99,7 +102,10 @@ export function createStoreChunk({ database, now }: { database: Database; now: (
       }
       let nextTick = content.tickCount > 0 ? content.startTick + content.tickCount : startTick;
       for (const mark of content.marks) {
+        if (mark.kind === 'rate' && !facts.allow.slow && mark.value !== 1)
+          throw refuse('not-allowed', 'the scenario is flown without slow motion');
         if (mark.kind !== 'rewind') continue;
+        if (!facts.allow.rewind) throw refuse('not-allowed', 'the scenario is flown without rewinding');
         if ((mark.value ?? 0) > nextTick) throw refuse('unreadable', 'it rewinds to a tick that was not flown');
         nextTick = mark.value ?? 0;
       }

@@ -5,7 +5,7 @@ import { cloneObservation } from '../../runner/observation-copy.ts';
 import { GHOST_MEMBERS, type ReferenceRun } from '../../runner/workers/reference-types.ts';
 
 export interface Ghost {
-  /** Null once the reference run is over. The same object each time. */
+  /** Null before the start and after the end of the other run. The same object each time. */
   at(timeS: number): Observation | null;
 }
 
@@ -15,7 +15,7 @@ export function createGhost(like: Observation, run: ReferenceRun): Ghost {
     at(timeS) {
       const place = timeS * GRID_HZ;
       const k = Math.floor(place);
-      if (k + 1 >= run.samples) return null;
+      if (k < 0 || k + 1 >= run.samples || Number.isNaN(run.ghost.northM[k])) return null;
       const share = place - k;
       for (const member of GHOST_MEMBERS) {
         const column = run.ghost[member];

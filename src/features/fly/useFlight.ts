@@ -9,6 +9,7 @@ import { getScenario } from '../../services/scenarios-api.ts';
 import { useCockpitStore } from '../../stores/cockpit.store.ts';
 import { useDeliveryStore } from '../../stores/delivery.store.ts';
 import { useSessionStore } from '../../stores/session.store.ts';
+import { zeroS } from './flight-log.ts';
 import { type Flight, startFlight } from './start-flight.ts';
 
 export interface LocalResult {
@@ -25,6 +26,8 @@ export interface FlightHooks {
   tick: (flight: Flight) => void;
   phase: (phase: FlightPhase, reason: FreezeReason | null) => void;
   held: (heldMs: number) => void;
+  /** The flight goes on from an earlier tick: what came after it is set aside. */
+  branched: (flight: Flight, fromTick: number) => void;
 }
 
 /** The life of a flight on one scenario: load, brief, start, fly, end, and the server's result. */
@@ -41,6 +44,8 @@ export function useFlight(slug: () => string, revision: () => number | undefined
   const phase = ref<FlightPhase | 'briefing'>('briefing');
   const freezeReason = ref<FreezeReason | null>(null);
   const rate = ref(1);
+  /** Tick shown and last tick flown while the clock stands; the zero of its times stays that of the head. */
+  const standing = ref({ tick: 0, headTick: 0, zeroS: 0 });
   const local = shallowRef<LocalResult | null>(null);
   let loading: AbortController | null = null;
   /** One key a press of Start, so that a repeated request does not count a second try. */
@@ -68,9 +73,11 @@ export function useFlight(slug: () => string, revision: () => number | undefined
       phase: (now, reason) => {
         phase.value = now;
         freezeReason.value = reason;
+        lookWhereItStands();
         hooks.phase(now, reason);
       },
       held: hooks.held,
+      branched: (_tick, fromTick) => hooks.branched(next, fromTick),
       ended: (ended, detail) => {
         local.value = {
           ended,
@@ -120,6 +127,22 @@ export function useFlight(slug: () => string, revision: () => number | undefined
   });
   const serverResult = computed<AttemptResult | null>(() => status.value?.result ?? null);
 
+  function lookWhereItStands(): void {
+    const session = flight.value?.session;
+    if (!session) return;
+    const { run, headTick } = session;
+    const zero = run.tick === headTick ? zeroS(run.fired) : standing.value.zeroS;
+    standing.value = { tick: run.tick, headTick, zeroS: zero };
+  }
+  function standAt(tick: number): void {
+    flight.value?.session.standAt(tick);
+    lookWhereItStands();
+  }
+  function step(): void {
+    flight.value?.session.step();
+    lookWhereItStands();
+  }
+
   function setRate(next: number): void {
     flight.value?.session.setRate(next);
     rate.value = next;
@@ -157,6 +180,9 @@ export function useFlight(slug: () => string, revision: () => number | undefined
     freezeReason,
     rate,
     setRate,
+    standing,
+    standAt,
+    step,
     local,
     status,
     serverResult,

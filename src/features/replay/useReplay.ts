@@ -1,11 +1,10 @@
 import { computed, onScopeDispose, ref, shallowRef, watch } from 'vue';
 import type { AttemptDetail } from '#shared/contracts/attempts.ts';
 import { TICK_RATE_HZ } from '#shared/model/plant-types.ts';
-import { type Replay, createReplay } from '#shared/scenario/replay.ts';
+import type { Replay } from '#shared/scenario/replay.ts';
 import { DEBRIEF_CHANNELS } from '../../runner/channels.ts';
 import { causeOf } from '../../services/api-error.ts';
-import { getAttempt, getAttemptChunks } from '../../services/attempts-api.ts';
-import { bytesFromBase64 } from './chunk-bytes.ts';
+import { openAttempt } from './open-attempt.ts';
 import { type ReplaySurvey, surveyReplay } from './survey.ts';
 
 export const REPLAY_RATES = [1, 0.5, 0.25] as const;
@@ -35,29 +34,10 @@ export function useReplay(attemptId: () => string) {
     survey.value = null;
     playing.value = false;
     try {
-      const [detail, { chunks }] = await Promise.all([
-        getAttempt(attemptId(), mine.signal),
-        getAttemptChunks(attemptId(), mine.signal),
-      ]);
+      const { detail, replay: made } = await openAttempt(attemptId(), mine.signal);
       if (loading !== mine) return;
       attempt.value = detail;
-      if (chunks.length === 0) return;
-      const made = createReplay(
-        {
-          scenario: detail.scenario,
-          airframe: detail.airframe.airframe,
-          seed: detail.seed,
-          drawn: detail.drawn,
-          attemptKeyHex: detail.chunkKey,
-        },
-        chunks.map((chunk) => ({
-          index: chunk.index,
-          startTick: chunk.startTick,
-          tickCount: chunk.tickCount,
-          hash: chunk.hash,
-          bytes: bytesFromBase64(chunk.bytesBase64),
-        })),
-      );
+      if (!made) return;
       survey.value = surveyReplay(made, DEBRIEF_CHANNELS);
       replay.value = made;
       seek(0);

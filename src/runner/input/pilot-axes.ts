@@ -43,13 +43,19 @@ export function quantiseInto(out: ControlSample, axes: PilotAxes): void {
   }
 }
 
-/** Axes of a sample, for a start from what is held already. */
-export function axesOf(sample: ControlSample): PilotAxes {
-  const axes = createPilotAxes(Array.from(sample.levers, (value) => value / FULL));
+/** Puts the axes where a sample holds them. */
+export function axesInto(axes: PilotAxes, sample: ControlSample): void {
+  for (let i = 0; i < axes.levers.length; i += 1) axes.levers[i] = sample.levers[i] / FULL;
   axes.stick = sample.stick / FULL;
   axes.pedal = sample.pedal / FULL;
   axes.pitch = sample.pitch / FULL;
   axes.rudderTrim = sample.rudderTrim / FULL;
   axes.feather.set(sample.feather);
+}
+
+/** Axes of a sample, for a start from what is held already. */
+export function axesOf(sample: ControlSample): PilotAxes {
+  const axes = createPilotAxes(Array.from(sample.levers));
+  axesInto(axes, sample);
   return axes;
 }

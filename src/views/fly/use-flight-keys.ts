@@ -7,6 +7,8 @@ export interface FlightKeyTargets {
   phase: () => FlightPhase | 'briefing';
   /** Space: freeze or go on. */
   toggleFreeze: () => void;
+  /** One tick of a frozen flight. */
+  step: () => void;
   nextView: () => void;
   toggleGhost: () => void;
 }
@@ -34,6 +36,7 @@ export function useFlightKeys(targets: FlightKeyTargets, source: Window = window
     }
     if (event.code === 'KeyV' && !event.repeat) return targets.nextView();
     if (event.code === 'KeyG' && !event.repeat) return targets.toggleGhost();
+    if (event.code === 'KeyN') return targets.step();
     if (phase !== 'running') return;
     if (flight.keyboard.press(event.code)) event.preventDefault();
   });

@@ -1,24 +1,11 @@
-import fs from 'node:fs';
-import { Agent, createServer, request, type RequestListener, type RequestOptions } from 'node:http';
-import type { AddressInfo } from 'node:net';
-import path from 'node:path';
+import { Agent, request, type RequestOptions } from 'node:http';
 import express from 'express';
 import { createPool } from 'mysql2/promise';
 import type { EntityManager } from 'typeorm';
 import { z } from 'zod';
 import { airframeListQuerySchema } from '#shared/contracts/airframes.ts';
-import { CSRF_COOKIE, CSRF_HEADER } from '#shared/contracts/wire-names.ts';
-import { createApp } from '../../../server/app.ts';
-import { prepareDataFolder } from '../../../server/bootstrap/data-folder.mjs';
-import { startMariadb } from '../../../server/bootstrap/mariadb.mjs';
-import { createLog } from '../../../server/config/log.ts';
-import { projectFolder } from '../../../server/config/project-folder.ts';
-import { openDatabase } from '../../../server/data/database.ts';
 import { createAirframesRepository } from '../../../server/data/repositories/airframes.repository.ts';
-import { DEMONSTRATION } from '../../../server/data/seeds/demonstration-people.ts';
-import { seedEmptyDatabase } from '../../../server/data/seeds/seed-empty-database.ts';
-import { createServices } from '../../../server/services/create-services.ts';
-import { freshDataFolder } from '../../e2e/support/product.ts';
+import { listen, startBenchProduct } from '../bench-product.ts';
 import { defineBench, median, quantile } from '../harness.ts';
 
 const AIRFRAMES = 5000;
@@ -40,22 +27,8 @@ export default defineBench({
   name: 'airframe-list',
   claim: `${AIRFRAMES} airframes × ${REVISIONS} revisions: a filtered and sorted page of the list`,
   async run({ note, cleanUp }) {
-    const dataFolder = freshDataFolder();
-    cleanUp(() => fs.rmSync(dataFolder, { recursive: true, force: true }));
-    prepareDataFolder(dataFolder);
-    const mariadb = await startMariadb({ dataFolder, say: () => undefined });
-    cleanUp(() => mariadb.stop());
-    const { database } = await openDatabase({ url: mariadb.url, connections: 10 });
-    cleanUp(() => database.close());
-    const services = createServices({ database, tokenSecret: 'bench '.repeat(8) });
-    cleanUp(() => services.close());
-    await seedEmptyDatabase({
-      database,
-      folder: path.join(projectFolder, 'scenarios'),
-      hashPassword: services.passwords.hash,
-      now: () => new Date(),
-    });
-    const pool = createPool({ uri: mariadb.url, connectionLimit: 10, timezone: 'Z' });
+    const product = await startBenchProduct(cleanUp);
+    const pool = createPool({ uri: product.databaseUrl, connectionLimit: 10, timezone: 'Z' });
     cleanUp(() => pool.end());
     const seededFrom = performance.now();
     const filler = await pool.getConnection(); // its temporary table is its own
@@ -67,10 +40,6 @@ export default defineBench({
       `${n} revisions of ${Math.round(bytes)} bytes filled in ${((performance.now() - seededFrom) / 1000).toFixed(1)} s`,
     );
 
-    const env = { publicOrigins: [], secureCookies: false, proxies: 0, dev: false };
-    const app = createApp({ services, log: createLog({ log: 'off', logLevel: 'error', dataFolder: '' }), env });
-    const product = await listen((incoming, response) => void app(incoming, response), cleanUp);
-    const headers = await signIn(product);
     const [organisations] = await pool.query('SELECT id FROM organisation');
     const [{ id: organisationId }] = z.tuple([z.object({ id: z.string() })]).parse(organisations);
     const statements = new Map<string, [string, unknown[]][]>();
@@ -82,16 +51,16 @@ export default defineBench({
       response.json(answers.map(([rows]) => rows));
     });
     const baseline = await listen((incoming, response) => void bare(incoming, response), cleanUp);
-    const ours = (i: number) => `${product}/api/airframes?${QUERIES[i % QUERIES.length]}`;
+    const ours = (i: number) => `${product.address}/api/airframes?${QUERIES[i % QUERIES.length]}`;
     const raw = (i: number) => `${baseline}/list?q=${encodeURIComponent(QUERIES[i % QUERIES.length])}`;
-    await load(ours, headers);
+    await load(ours, product.headers);
     await load(raw, {});
     const ratios: number[] = [];
     const times: number[] = [];
     const rates: number[] = [];
     for (let round = 0; round < ROUNDS; round++) {
       const rawRun = await load(raw, {});
-      const ourRun = await load(ours, headers);
+      const ourRun = await load(ours, product.headers);
       times.push(...ourRun.times);
       rates.push(ourRun.perSecond);
       ratios.push(ourRun.perSecond / rawRun.perSecond);
@@ -120,59 +89,34 @@ export default defineBench({
 
 const sizesSchema = z.tuple([z.object({ n: z.coerce.number(), bytes: z.coerce.number() })]);
 
-/** Made within the database from the seeded light twin: five thousand airframes, their tags and revisions. */
+const NUMBER = `SUBSTRING_INDEX(a.slug, '-', -1)`;
+const KIND = `ELT(1 + ${NUMBER} MOD 2, 'jet', 'propeller')`;
+const TAG = `IF(${NUMBER} MOD 2 = 0, 'even', 'odd')`;
+const listing = (listedAs: string, condition: string): string =>
+  `INSERT INTO airframe_listing
+   SELECT r.organisation_id, ${listedAs}, r.airframe_id, a.slug, r.number, r.status, r.name, r.airplane_class, 2, ${KIND},
+     ${TAG}, CONCAT('\n', ${TAG}, '\n'),
+     LOWER(CONCAT(r.name, ' Invented for demonstration: plausible for the class, not any real aeroplane. ', a.slug)), r.changed_at
+   FROM airframe_revision r INNER JOIN airframe a ON a.id = r.airframe_id WHERE a.slug LIKE 'bench-%' AND ${condition}`;
+
+/** Made within the database from the seeded light twin: five thousand airframes, their tags, revisions and listings. */
 const FILL = [
-  `CREATE TEMPORARY TABLE model SELECT r.organisation_id, r.document, r.created_by FROM airframe_revision r INNER JOIN airframe a ON a.id = r.airframe_id WHERE a.slug = 'light-twin'`,
-  `INSERT INTO airframe SELECT UUID(), m.organisation_id, CONCAT('bench-airframe-', s.seq), NOW(3) FROM model m, seq_1_to_${AIRFRAMES} s`,
-  `INSERT INTO airframe_tag SELECT id, IF(SUBSTRING_INDEX(slug, '-', -1) MOD 2 = 0, 'even', 'odd') FROM airframe WHERE slug LIKE 'bench-%'`,
-  `INSERT INTO airframe_revision (id, organisation_id, airframe_id, number, status, name, airplane_class, engine_count, engine_kind, search_text, newest, newest_of_status, document, note, created_at, changed_at, released_at, version)
-   SELECT UUID(), m.organisation_id, a.id, s.seq, IF(s.seq = ${REVISIONS} AND SUBSTRING_INDEX(a.slug, '-', -1) MOD 3 = 0, 'draft', 'released'),
-     CONCAT('Bench airframe ', SUBSTRING_INDEX(a.slug, '-', -1)),
-     ELT(1 + SUBSTRING_INDEX(a.slug, '-', -1) MOD 4, 'I', 'II', 'III', 'IV'), 2, ELT(1 + SUBSTRING_INDEX(a.slug, '-', -1) MOD 2, 'jet', 'propeller'),
-     CONCAT('Bench airframe ', SUBSTRING_INDEX(a.slug, '-', -1), ' Invented for demonstration: plausible for the class, not any real aeroplane.'),
-     s.seq = ${REVISIONS}, s.seq = ${REVISIONS} OR (s.seq = ${REVISIONS} - 1 AND SUBSTRING_INDEX(a.slug, '-', -1) MOD 3 = 0),
-     m.document, 'Filled for the bench.', NOW(3), NOW(3) + INTERVAL s.seq SECOND + INTERVAL SUBSTRING_INDEX(a.slug, '-', -1) SECOND, NOW(3), 1
+  `CREATE TEMPORARY TABLE model SELECT r.organisation_id, r.document FROM airframe_revision r
+   INNER JOIN airframe a ON a.id = r.airframe_id WHERE a.slug = 'light-twin'`,
+  `INSERT INTO airframe SELECT UUID(), m.organisation_id, CONCAT('bench-airframe-', s.seq), NOW(3)
+   FROM model m, seq_1_to_${AIRFRAMES} s`,
+  `INSERT INTO airframe_tag SELECT a.id, ${TAG} FROM airframe a WHERE a.slug LIKE 'bench-%'`,
+  `INSERT INTO airframe_revision (id, organisation_id, airframe_id, number, status, name, airplane_class, engine_count,
+     document, note, created_at, changed_at, released_at, version)
+   SELECT UUID(), m.organisation_id, a.id, s.seq, IF(s.seq = ${REVISIONS} AND ${NUMBER} MOD 3 = 0, 'draft', 'released'),
+     CONCAT('Bench airframe ', ${NUMBER}), ELT(1 + ${NUMBER} MOD 4, 'I', 'II', 'III', 'IV'), 2, m.document,
+     'Filled for the bench.', NOW(3), NOW(3) + INTERVAL s.seq SECOND + INTERVAL ${NUMBER} SECOND, NOW(3), 1
    FROM airframe a, model m, seq_1_to_${REVISIONS} s WHERE a.slug LIKE 'bench-%' ORDER BY a.id, s.seq`,
-  'ANALYZE TABLE airframe, airframe_revision, airframe_tag',
+  listing(`'any'`, `r.number = ${REVISIONS}`),
+  listing(`'draft'`, `r.number = ${REVISIONS} AND r.status = 'draft'`),
+  listing(`'released'`, `r.number = ${REVISIONS} - (${NUMBER} MOD 3 = 0)`),
+  'ANALYZE TABLE airframe, airframe_revision, airframe_tag, airframe_listing',
 ];
-
-type CleanUp = (action: () => unknown) => void;
-
-async function listen(handler: RequestListener, cleanUp: CleanUp): Promise<string> {
-  const server = createServer(handler);
-  await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
-  cleanUp(() => {
-    server.closeAllConnections();
-    return new Promise((resolve) => server.close(resolve));
-  });
-  return `http://127.0.0.1:${(server.address() as AddressInfo).port}`; // listens on a port, not on a pipe
-}
-
-/** Cookies of a signed-in engineer. */
-async function signIn(address: string): Promise<Record<string, string>> {
-  const cookies = new Map<string, string>();
-  const take = (response: Response): void => {
-    for (const cookie of response.headers.getSetCookie()) {
-      const [name, value] = cookie.split(';')[0].split('=');
-      cookies.set(name, value);
-    }
-  };
-  const cookie = (): string => [...cookies].map(([name, value]) => `${name}=${value}`).join('; ');
-  take(await fetch(`${address}/api/session`));
-  const answer = await fetch(`${address}/api/session`, {
-    method: 'POST',
-    headers: {
-      cookie: cookie(),
-      origin: address,
-      'content-type': 'application/json',
-      [CSRF_HEADER]: decodeURIComponent(cookies.get(CSRF_COOKIE) ?? ''),
-    },
-    body: JSON.stringify({ email: `a.reyes@${DEMONSTRATION.domain}`, password: DEMONSTRATION.password }),
-  });
-  if (!answer.ok) throw new Error(`Signing in answered ${answer.status}.`);
-  take(answer);
-  return { cookie: cookie() };
-}
 
 /** The SQL that the product sends for a list query, with its values. */
 async function recordStatements(url: string, organisationId: string): Promise<[string, unknown[]][]> {

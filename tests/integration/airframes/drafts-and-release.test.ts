@@ -98,6 +98,19 @@ describe('a new airframe', () => {
     expect(problem(answer.body).detail).toContain('512 KiB');
   });
 
+  it('is made beside many others at the same time, each under a name of its own', async () => {
+    const make = (i: number) =>
+      (i % 2 === 0 ? engineer : colleague)('POST', '/api/airframes', {
+        json: { document: { name: `Parallel ${i % 3}` }, tags: [`t${i}`] },
+      });
+    const answers = await Promise.all(Array.from({ length: 16 }, (_, i) => make(i)));
+    expect(answers.map(({ status }) => status)).toEqual(Array.from({ length: 16 }, () => 201));
+    const slugs = new Set(answers.map(({ body }) => (body as { slug: string }).slug));
+    expect(slugs.size).toBe(16);
+    const list = airframePageSchema.parse((await engineer('GET', '/api/airframes?search=parallel')).body);
+    expect(list.total).toBe(16);
+  });
+
   it('is duplicated under another name, as a draft', async () => {
     const answer = await engineer('POST', '/api/airframes/four-jet/duplicate', {
       json: { revision: 1, name: 'Study copy' },

@@ -84,6 +84,11 @@ export function fakeRun(): FakeRun {
       ended ??= 'left';
     },
     stateHash: () => '00000000000000aa',
+    save: () => ({ tick: now.tick, stateHash: '00000000000000aa' }),
+    restore(snapshot: { tick: number }) {
+      now.tick = snapshot.tick;
+      now.timeS = now.tick / 120;
+    },
   };
   fake.run = run as unknown as Run; // the session uses these members only
   return fake;

@@ -2,7 +2,7 @@ import fs from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { parseAirframe } from '#shared/model/airframe-schema.ts';
 import { DEG } from '#shared/units/constants.ts';
-import { createRecorder, type RecordedChunk } from '#shared/scenario/recording.ts';
+import { createRecorder, rerun, type RecordedChunk } from '#shared/scenario/recording.ts';
 import { createReplay } from '#shared/scenario/replay.ts';
 import { createRun } from '#shared/scenario/run.ts';
 import { parseScenario } from '#shared/scenario/scenario-schema.ts';
@@ -155,5 +155,86 @@ describe('reading a trace beside its run', () => {
     // Left engine cut and nobody at the controls for five seconds: it rolls left, far.
     expect(worst * DEG).toBeLessThan(-0.5);
     expect(Math.min(...reference.columns.heading)).toBeLessThan(-10);
+  });
+});
+
+describe('a flight that goes back and on from there', () => {
+  const run = createRun({ scenario, airframe, seed: SEED });
+  const keyboard = createKeyboardSource(run.plant.engineCount);
+  const chunks: RecordedChunk[] = [];
+  const branches: [number, number][] = [];
+  const session = createFlightSession({
+    run,
+    recorder: createRecorder({ attemptKeyHex: KEY, engineCount: run.plant.engineCount }),
+    sources: [keyboard],
+    events: {
+      chunk: (chunk) => chunks.push(chunk),
+      branched: (tick, from) => branches.push([tick, from]),
+    },
+  });
+  let now = 0;
+  const flyTo = (tick: number): void => {
+    while (session.phase === 'running' && run.tick < tick) session.frame((now += 8));
+  };
+  session.start(0);
+  flyTo(700);
+  const firstHash = new Map<number, string>();
+  session.freeze('pilot');
+  const head = run.tick;
+  const headHash = run.stateHash();
+
+  it('shows any earlier tick and comes back to the head without a trace', () => {
+    for (const tick of [0, 1, 119, 120, 121, 361, head]) {
+      session.standAt(tick);
+      expect(run.tick).toBe(tick);
+      firstHash.set(tick, run.stateHash());
+    }
+    expect(run.stateHash()).toBe(headHash);
+    session.standAt(361);
+    expect(run.stateHash()).toBe(firstHash.get(361));
+    session.standAt(head);
+    session.step();
+    expect(run.tick).toBe(head + 1);
+    expect(branches).toEqual([]);
+  });
+
+  it('goes on from an earlier tick, is recorded as a branch, and integrates again to the same state', () => {
+    session.standAt(361);
+    session.resume(now);
+    expect(branches).toEqual([[361, head + 1]]);
+    keyboard.press('KeyX');
+    flyTo(500);
+    keyboard.lift('KeyX');
+    session.freeze('pilot');
+    session.standAt(400);
+    session.step();
+    expect(run.tick).toBe(401);
+    session.resume(now);
+    while (session.phase === 'running') session.frame((now += 8));
+    expect(branches).toHaveLength(2);
+    const again = rerun({ scenario, airframe, seed: SEED, attemptKeyHex: KEY }, chunks);
+    expect(again.stateHashesAgree).toBe(true);
+    expect(again.run.stateHash()).toBe(run.stateHash());
+    expect(again.run.tick).toBe(run.tick);
+    expect(run.stateHash()).not.toBe(fly([16.7]).run.stateHash());
+  });
+
+  it('is left where it stands, not where it is being looked at', () => {
+    const other = createRun({ scenario, airframe, seed: SEED });
+    const kept: RecordedChunk[] = [];
+    const left = createFlightSession({
+      run: other,
+      recorder: createRecorder({ attemptKeyHex: KEY, engineCount: other.plant.engineCount }),
+      sources: [],
+      events: { chunk: (chunk) => kept.push(chunk) },
+    });
+    left.start(0);
+    for (let t = 8; t < 3000; t += 8) left.frame(t);
+    left.freeze('pilot');
+    const stands = other.tick;
+    left.standAt(50);
+    left.leave();
+    expect(other.tick).toBe(stands);
+    expect(rerun({ scenario, airframe, seed: SEED, attemptKeyHex: KEY }, kept).stateHashesAgree).toBe(true);
   });
 });
