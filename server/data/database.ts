@@ -1,4 +1,5 @@
 import type { DataSource, EntityManager } from 'typeorm';
+import { untilNoDeadlock } from './deadlock.ts';
 import { type DataSourceSetup, createDataSource } from './data-source.ts';
 import { migrate } from './migrate.ts';
 import {
@@ -39,6 +40,7 @@ export interface Repositories {
 }
 
 export interface Database extends Repositories {
+  /** Runs `work` on one connection, all of it or nothing; again from the start when the database chose it to end a deadlock. */
   transaction<T>(work: (repositories: Repositories) => Promise<T>): Promise<T>;
   /** Resolves when the database answers. */
   ping(): Promise<void>;
@@ -67,7 +69,7 @@ function repositories(manager: EntityManager): Repositories {
 export function databaseOf(source: DataSource): Database {
   return {
     ...repositories(source.manager),
-    transaction: (work) => source.transaction((manager) => work(repositories(manager))),
+    transaction: (work) => untilNoDeadlock(() => source.transaction((manager) => work(repositories(manager)))),
     ping: async () => {
       await source.query('SELECT 1');
     },
