@@ -30,7 +30,7 @@ export function standardBindings(device: Pick<DeviceReading, 'mapping'>): Device
   return {
     axes: {
       roll: plainBinding('axis', 0, 'roll'),
-      pitch: { ...plainBinding('axis', 1, 'pitch'), turned: false },
+      pitch: plainBinding('axis', 1, 'pitch'),
       pedals: plainBinding('axis', 2, 'pedals'),
     },
     buttons: { freeze: 9, view: 3, 'trim-left': 14, 'trim-right': 15 },
