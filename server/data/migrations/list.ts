@@ -2,6 +2,7 @@ import { Foundation1764547200000 } from './1764547200000-foundation.ts';
 import { Guards1764547200001 } from './1764547200001-guards.ts';
 import { Debrief1764547250000 } from './1764547250000-debrief.ts';
 import { EngineersBench1764547300000 } from './1764547300000-engineers-bench.ts';
+import { Rewinds1764547350000 } from './1764547350000-rewinds.ts';
 
 /** Migrations in the order in which they run. */
 export const MIGRATIONS = [
@@ -9,4 +10,5 @@ export const MIGRATIONS = [
   Guards1764547200001,
   Debrief1764547250000,
   EngineersBench1764547300000,
+  Rewinds1764547350000,
 ];
