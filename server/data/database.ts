@@ -17,6 +17,10 @@ import {
 } from './repositories/organisations.repository.ts';
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
 import { type ReportCountsRepository, createReportCountsRepository } from './repositories/report-counts.repository.ts';
+import {
+  type ScenarioEditingRepository,
+  createScenarioEditingRepository,
+} from './repositories/scenario-editing.repository.ts';
 import { type ScenariosRepository, createScenariosRepository } from './repositories/scenarios.repository.ts';
 import { type SessionsRepository, createSessionsRepository } from './repositories/sessions.repository.ts';
 import { type SkinsRepository, createSkinsRepository } from './repositories/skins.repository.ts';
@@ -33,6 +37,7 @@ export interface Repositories {
   readonly studies: StudiesRepository;
   readonly reportCounts: ReportCountsRepository;
   readonly scenarios: ScenariosRepository;
+  readonly scenarioEditing: ScenarioEditingRepository;
   readonly attempts: AttemptsRepository;
   readonly chunks: ChunksRepository;
   readonly debrief: DebriefRepository;
@@ -58,6 +63,7 @@ function repositories(manager: EntityManager): Repositories {
     studies: createStudiesRepository(manager),
     reportCounts: createReportCountsRepository(manager),
     scenarios: createScenariosRepository(manager),
+    scenarioEditing: createScenarioEditingRepository(manager),
     attempts: createAttemptsRepository(manager),
     chunks: createChunksRepository(manager),
     debrief: createDebriefRepository(manager),
