@@ -16,6 +16,7 @@ import {
   createOrganisationsRepository,
 } from './repositories/organisations.repository.ts';
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
+import { type PlaylistsRepository, createPlaylistsRepository } from './repositories/playlists.repository.ts';
 import { type ReportCountsRepository, createReportCountsRepository } from './repositories/report-counts.repository.ts';
 import {
   type ScenarioEditingRepository,
@@ -41,6 +42,7 @@ export interface Repositories {
   readonly attempts: AttemptsRepository;
   readonly chunks: ChunksRepository;
   readonly debrief: DebriefRepository;
+  readonly playlists: PlaylistsRepository;
   readonly audit: AuditRepository;
 }
 
@@ -67,6 +69,7 @@ function repositories(manager: EntityManager): Repositories {
     attempts: createAttemptsRepository(manager),
     chunks: createChunksRepository(manager),
     debrief: createDebriefRepository(manager),
+    playlists: createPlaylistsRepository(manager),
     audit: createAuditRepository(manager),
   };
 }

@@ -14,6 +14,7 @@ import { createAirframesService } from './library/airframes.service.ts';
 import { createScenariosService } from './library/scenarios.service.ts';
 import { createScenarioDrafts } from './scenarios/scenario-drafts.ts';
 import { createScenarioPublishing } from './scenarios/scenario-publishing.ts';
+import { createPlaylistsService } from './playlists/playlists.service.ts';
 import { createAccessTokens } from './sessions/access-tokens.ts';
 import { createPasswords } from './sessions/passwords.ts';
 import { createSessionNotices } from './sessions/session-notices.ts';
@@ -54,6 +55,7 @@ export function createServices({ database, tokenSecret, now = () => new Date() }
       files: createAirframeFiles({ database, sheets }),
       skins: createAirframeSkins({ database, now }),
     },
+    playlists: createPlaylistsService({ database, now }),
     studies: createStudiesService({ database, now }),
     printAnalysis: createAnalysisReports({ database, threads: reports, now }),
     scenarios: createScenariosService({ database }),

@@ -23,6 +23,15 @@ const ALLOWED = {
   'attempt.read-others': ['instructor', 'administrator'],
   'attempt.remark': ['instructor'],
   'attempt.sign-off': ['instructor'],
+  'playlist.read': ['instructor'],
+  'playlist.edit': ['instructor'],
+  'assignment.read-own': ['trainee', 'instructor', 'engineer', 'administrator'],
+  'assignment.read': ['instructor', 'administrator'],
+  'assignment.edit': ['instructor'],
+  'record.read-own': ['trainee', 'instructor', 'engineer', 'administrator'],
+  'record.read': ['instructor', 'administrator'],
+  'record.correct': ['instructor'],
+  'record.rule': ['administrator'],
 } as const satisfies Record<string, readonly Role[]>;
 
 export type Deed = keyof typeof ALLOWED;

@@ -12,6 +12,7 @@ export function attemptResult({
   verdict: _verdict,
   worst: _worst,
   strip: _strip,
+  firstPedalS: _firstPedalS,
   ...result
 }: ResultRecord): AttemptResult {
   return result;
