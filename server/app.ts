@@ -8,6 +8,7 @@ import type { Logger } from './config/log.ts';
 import { airframeEditingRouter } from './http/airframe-editing.router.ts';
 import { airframesRouter } from './http/airframes.router.ts';
 import { analysisReportsRouter } from './http/analysis-reports.router.ts';
+import { assignmentsRouter } from './http/assignments.router.ts';
 import { attemptsRouter } from './http/attempts.router.ts';
 import { createCookies } from './http/cookies.ts';
 import { csrfProtection } from './http/csrf.middleware.ts';
@@ -68,6 +69,7 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use('/attempts', signedIn, attemptsRouter(services.attempts));
   api.use('/attempts', signedIn, debriefRouter(services.debrief));
   api.use('/remarks', signedIn, remarksRouter(services.debrief));
+  api.use('/assignments', signedIn, assignmentsRouter(services.assignments));
   api.use('/playlists', signedIn, playlistsRouter(services.playlists));
   api.use(unknownRoute);
   app.use('/api', api);

@@ -7,6 +7,7 @@ import {
   createAirframeEditingRepository,
 } from './repositories/airframe-editing.repository.ts';
 import { type AirframesRepository, createAirframesRepository } from './repositories/airframes.repository.ts';
+import { type AssignmentsRepository, createAssignmentsRepository } from './repositories/assignments.repository.ts';
 import { type AttemptsRepository, createAttemptsRepository } from './repositories/attempts.repository.ts';
 import { type AuditRepository, createAuditRepository } from './repositories/audit.repository.ts';
 import { type ChunksRepository, createChunksRepository } from './repositories/chunks.repository.ts';
@@ -42,6 +43,7 @@ export interface Repositories {
   readonly attempts: AttemptsRepository;
   readonly chunks: ChunksRepository;
   readonly debrief: DebriefRepository;
+  readonly assignments: AssignmentsRepository;
   readonly playlists: PlaylistsRepository;
   readonly audit: AuditRepository;
 }
@@ -69,6 +71,7 @@ function repositories(manager: EntityManager): Repositories {
     attempts: createAttemptsRepository(manager),
     chunks: createChunksRepository(manager),
     debrief: createDebriefRepository(manager),
+    assignments: createAssignmentsRepository(manager),
     playlists: createPlaylistsRepository(manager),
     audit: createAuditRepository(manager),
   };

@@ -10,6 +10,10 @@ import { createStartAttempt } from './attempts/start-attempt.ts';
 import { createStoreChunk } from './attempts/store-chunk.ts';
 import { createPrintDebrief } from './debrief/print-debrief.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
+import { createAssignmentsService } from './assignments/assignments.service.ts';
+import { createNotices, type QueueMail } from './assignments/notices.ts';
+import { createTellAuthor } from './assignments/tell-author.ts';
+import { createReadAssignments } from './assignments/read-assignments.ts';
 import { createAirframesService } from './library/airframes.service.ts';
 import { createScenariosService } from './library/scenarios.service.ts';
 import { createScenarioDrafts } from './scenarios/scenario-drafts.ts';
@@ -27,16 +31,24 @@ export interface ServicesSetup {
   database: Database;
   tokenSecret: string;
   now?: () => Date;
+  /** Address under which people reach the product, for links in mail. */
+  address?: () => string;
+  queueMail?: QueueMail;
 }
 
 /** All use cases over one database, with the threads they need. `close` ends the threads. */
-export function createServices({ database, tokenSecret, now = () => new Date() }: ServicesSetup) {
+export function createServices(setup: ServicesSetup) {
+  const { database, tokenSecret, now = () => new Date(), address = () => 'http://localhost' } = setup;
+  const { queueMail = () => Promise.resolve() } = setup;
   const passwordThreads = createWorkerPool('password', 1);
   const reruns = createWorkerPool('rerun', 2);
   const reports = createWorkerPool('analysis-report', 1);
   const debriefs = createWorkerPool('debrief', 1);
   const sheets = createWorkerPool('sheet', 1);
   const passwords = createPasswords(passwordThreads);
+  const notices = createNotices({ queueMail, address });
+  const tellAuthor = createTellAuthor(notices);
+  const reads = createReadAssignments({ database, address, now });
   return {
     database,
     passwords,
@@ -55,6 +67,7 @@ export function createServices({ database, tokenSecret, now = () => new Date() }
       files: createAirframeFiles({ database, sheets }),
       skins: createAirframeSkins({ database, now }),
     },
+    assignments: { ...reads, ...createAssignmentsService({ database, notices, reads, now }) },
     playlists: createPlaylistsService({ database, now }),
     studies: createStudiesService({ database, now }),
     printAnalysis: createAnalysisReports({ database, threads: reports, now }),
@@ -66,7 +79,7 @@ export function createServices({ database, tokenSecret, now = () => new Date() }
     attempts: {
       start: createStartAttempt({ database, now }),
       storeChunk: createStoreChunk({ database, now }),
-      complete: createCompleteAttempt({ database, reruns, now }),
+      complete: createCompleteAttempt({ database, reruns, now, onCompleted: (...done) => tellAuthor(...done) }),
       ...createReadAttempts({ database, now }),
     },
     debrief: { ...createDebriefService({ database, now }), print: createPrintDebrief({ database, debriefs, now }) },

@@ -1,7 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import type { AttemptResult, CompleteAttemptBody } from '#shared/contracts/attempts.ts';
-import type { Database } from '../../data/database.ts';
-import type { ResultRecord } from '../../data/repositories/attempts.repository.ts';
+import type { Database, Repositories } from '../../data/database.ts';
+import type { AttemptDetailRecord, ResultRecord } from '../../data/repositories/attempts.repository.ts';
 import { requireDeed, type Actor } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
@@ -19,8 +19,14 @@ export function attemptResult({
 }
 
 /** Closes an attempt: integrates its recording again in a worker and stores that as the result. Repeating it is no error. */
-export function createCompleteAttempt(setup: { database: Database; reruns: WorkerPool; now: () => Date }) {
-  const { database, reruns, now } = setup;
+export function createCompleteAttempt(setup: {
+  database: Database;
+  reruns: WorkerPool;
+  now: () => Date;
+  /** What follows from a completion, within its transaction. */
+  onCompleted: (on: Repositories, detail: AttemptDetailRecord, result: ResultRecord, at: Date) => Promise<void>;
+}) {
+  const { database, reruns, now, onCompleted } = setup;
   return async (actor: Actor, id: string, body: CompleteAttemptBody, caller: Caller): Promise<AttemptResult> => {
     requireDeed(actor, 'attempt.fly');
     const detail = await database.attempts.findDetail(actor.organisationId, id);
@@ -77,6 +83,7 @@ export function createCompleteAttempt(setup: { database: Database; reruns: Worke
         },
         address: caller.address,
       });
+      await onCompleted(on, detail, result, at);
       return attemptResult(result);
     });
   };
