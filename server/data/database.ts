@@ -18,6 +18,11 @@ import {
 } from './repositories/organisations.repository.ts';
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
 import { type PlaylistsRepository, createPlaylistsRepository } from './repositories/playlists.repository.ts';
+import { type BudgetsRepository, createBudgetsRepository } from './repositories/budgets.repository.ts';
+import { type RecordsRepository, createRecordsRepository } from './repositories/records.repository.ts';
+import { type StatementsRepository, createStatementsRepository } from './repositories/statements.repository.ts';
+import { type RetentionRepository, createRetentionRepository } from './repositories/retention.repository.ts';
+import { type PersonalRepository, createPersonalRepository } from './repositories/personal.repository.ts';
 import { type ReportCountsRepository, createReportCountsRepository } from './repositories/report-counts.repository.ts';
 import {
   type ScenarioEditingRepository,
@@ -44,6 +49,11 @@ export interface Repositories {
   readonly chunks: ChunksRepository;
   readonly debrief: DebriefRepository;
   readonly assignments: AssignmentsRepository;
+  readonly budgets: BudgetsRepository;
+  readonly records: RecordsRepository;
+  readonly statements: StatementsRepository;
+  readonly retention: RetentionRepository;
+  readonly personal: PersonalRepository;
   readonly playlists: PlaylistsRepository;
   readonly audit: AuditRepository;
 }
@@ -72,6 +82,11 @@ function repositories(manager: EntityManager): Repositories {
     chunks: createChunksRepository(manager),
     debrief: createDebriefRepository(manager),
     assignments: createAssignmentsRepository(manager),
+    budgets: createBudgetsRepository(manager),
+    records: createRecordsRepository(manager),
+    statements: createStatementsRepository(manager),
+    retention: createRetentionRepository(manager),
+    personal: createPersonalRepository(manager),
     playlists: createPlaylistsRepository(manager),
     audit: createAuditRepository(manager),
   };

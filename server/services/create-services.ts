@@ -19,6 +19,15 @@ import { createScenariosService } from './library/scenarios.service.ts';
 import { createScenarioDrafts } from './scenarios/scenario-drafts.ts';
 import { createScenarioPublishing } from './scenarios/scenario-publishing.ts';
 import { createPlaylistsService } from './playlists/playlists.service.ts';
+import { createCells } from './records/cell.ts';
+import { createDeliverStatements } from './records/deliver-statements.ts';
+import { createDistributions } from './records/distribution.ts';
+import { createExports } from './records/exports.ts';
+import { createMatrix } from './records/matrix.ts';
+import { createPersonal } from './records/personal.ts';
+import { createRetention } from './records/retention.ts';
+import { createSecrets } from './records/secrets.ts';
+import { createStatements } from './records/statements.ts';
 import { createAccessTokens } from './sessions/access-tokens.ts';
 import { createPasswords } from './sessions/passwords.ts';
 import { createSessionNotices } from './sessions/session-notices.ts';
@@ -46,6 +55,9 @@ export function createServices(setup: ServicesSetup) {
   const debriefs = createWorkerPool('debrief', 1);
   const sheets = createWorkerPool('sheet', 1);
   const passwords = createPasswords(passwordThreads);
+  const budgets = createWorkerPool('budget', 1);
+  const secrets = createSecrets(tokenSecret);
+  const statements = createStatements({ database, secrets, address, now });
   const notices = createNotices({ queueMail, address });
   const tellAuthor = createTellAuthor(notices);
   const reads = createReadAssignments({ database, address, now });
@@ -68,6 +80,18 @@ export function createServices(setup: ServicesSetup) {
       skins: createAirframeSkins({ database, now }),
     },
     assignments: { ...reads, ...createAssignmentsService({ database, notices, reads, now }) },
+    records: {
+      ...createMatrix({ database }),
+      ...createCells({ database, now, onCorrected: statements.onCorrected }),
+      ...createDistributions({ database, budgets, now }),
+      ...createExports({ database, statements, now }),
+      ...createPersonal({ database, now }),
+      ...createRetention({ database, now }),
+      endpoint: statements.endpoint,
+      saveEndpoint: statements.saveEndpoint,
+      pushAll: statements.pushAll,
+      deliver: createDeliverStatements({ database, secrets, now }),
+    },
     playlists: createPlaylistsService({ database, now }),
     studies: createStudiesService({ database, now }),
     printAnalysis: createAnalysisReports({ database, threads: reports, now }),
@@ -79,12 +103,30 @@ export function createServices(setup: ServicesSetup) {
     attempts: {
       start: createStartAttempt({ database, now }),
       storeChunk: createStoreChunk({ database, now }),
-      complete: createCompleteAttempt({ database, reruns, now, onCompleted: (...done) => tellAuthor(...done) }),
+      complete: createCompleteAttempt({
+        database,
+        reruns,
+        now,
+        onCompleted: async (on, detail, result, at) => {
+          await tellAuthor(on, detail, result, at);
+          await statements.onCompleted(on, detail.organisationId, detail.id, at);
+        },
+      }),
       ...createReadAttempts({ database, now }),
     },
-    debrief: { ...createDebriefService({ database, now }), print: createPrintDebrief({ database, debriefs, now }) },
+    debrief: {
+      ...createDebriefService({ database, now, onSigned: statements.onSigned }),
+      print: createPrintDebrief({ database, debriefs, now }),
+    },
     close: async (): Promise<void> => {
-      await Promise.all([passwordThreads.close(), reruns.close(), debriefs.close(), sheets.close(), reports.close()]);
+      await Promise.all([
+        passwordThreads.close(),
+        reruns.close(),
+        debriefs.close(),
+        sheets.close(),
+        reports.close(),
+        budgets.close(),
+      ]);
     },
   };
 }
