@@ -10,7 +10,7 @@ import type { Caller } from '../sessions/sessions.service.ts';
 import { setAsideNow, standingSignatures } from './entries.ts';
 import type { Statements } from './statements.ts';
 
-const PEOPLE_AT_ONCE = 25;
+const PEOPLE_AT_ONCE = 10;
 const STATEMENTS_AT_ONCE = 100;
 const WORDS: Record<string, string> = { met: 'Met', near: 'Close', 'not-met': 'Not met', 'not-reached': 'Not reached' };
 
