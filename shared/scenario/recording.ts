@@ -175,7 +175,10 @@ export class RecordingPlayer {
       }
     }
     const agrees = content.tickCount > 0 ? this.run.stateHash() === content.stateHash : null;
-    for (const mark of content.marks) if (mark.kind === 'rewind') this.rewind(mark.value ?? 0, content.index);
+    for (const mark of content.marks) {
+      if (mark.kind === 'rewind') this.rewind(mark.value ?? 0, content.index);
+      else if (mark.kind === 'branch') this.branchOff(mark.value ?? 0, content.index);
+    }
     return agrees;
   }
 
@@ -185,6 +188,12 @@ export class RecordingPlayer {
     this.run.step(this.sample);
     if (keep && this.run.tick % SNAPSHOT_TICKS === 0 && this.run.ended === null) this.snapshots.push(this.run.save());
     this.onTick?.(this.run);
+  }
+
+  private branchOff(branch: number, index: number): void {
+    const injected = this.run.spec.branches?.[branch];
+    if (!injected) throw new RecordingError('gap', index, `chunk ${index} goes on with the unknown branch ${branch}`);
+    this.run.reschedule(injected);
   }
 
   private rewind(tick: number, index: number): void {
