@@ -90,8 +90,8 @@ export const classControlSchema = z.discriminatedUnion('deed', [
   z.strictObject({ ...control, deed: z.literal('rate'), rate: z.number().min(0.05).max(1) }),
   /** Everybody stands, frozen, at an earlier tick of this branch (or later again, up to its head). */
   z.strictObject({ ...control, deed: z.literal('rewind'), tick }),
-  /** A new branch from a tick of any earlier branch, frozen there. */
-  z.strictObject({ ...control, deed: z.literal('branch'), from: z.number().int().min(0), tick }),
+  /** A new branch from a tick of the present one, frozen there; what comes after that tick is left behind at once. */
+  z.strictObject({ ...control, deed: z.literal('branch'), tick }),
   /** `event` as in a scenario, without an id: `at: {time_s: 0}` fires at once, a later time or a condition arms it. */
   z.strictObject({ ...control, deed: z.literal('inject'), event: z.record(z.string(), z.unknown()) }),
   z.strictObject({ ...control, deed: z.literal('disarm'), id: z.string().max(64) }),

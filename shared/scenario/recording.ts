@@ -38,15 +38,20 @@ export interface Recorder {
   finish(stateHashHex: string): RecordedChunk | null;
 }
 
-export function createRecorder(spec: { attemptKeyHex: string; engineCount: number }): Recorder {
+export function createRecorder(spec: {
+  attemptKeyHex: string;
+  engineCount: number;
+  /** Goes on with a recording of which chunks are stored: number, predecessor's hash and tick of the next. */
+  from?: { index: number; hash: string; tick: number };
+}): Recorder {
   const { engineCount } = spec;
   const channels = Array.from({ length: channelCount(engineCount) }, () => new Int16Array(LARGEST_CHUNK_TICKS));
   let marks: ClockMark[] = [];
   let count = 0;
   let startTick = 0;
-  let nextTick = 0;
-  let index = 0;
-  let previous = spec.attemptKeyHex;
+  let nextTick = spec.from?.tick ?? 0;
+  let index = spec.from?.index ?? 0;
+  let previous = spec.from?.hash ?? spec.attemptKeyHex;
 
   function cut(stateHash: string): RecordedChunk | null {
     if (count === 0 && marks.length === 0) return null;
