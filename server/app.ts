@@ -14,6 +14,7 @@ import { csrfProtection } from './http/csrf.middleware.ts';
 import { debriefRouter, remarksRouter } from './http/debrief.router.ts';
 import { errorMapper, unknownRoute } from './http/error-mapper.ts';
 import { healthRouter } from './http/health.router.ts';
+import { scenarioEditingRouter } from './http/scenario-editing.router.ts';
 import { scenariosRouter } from './http/scenarios.router.ts';
 import { securityHeaders } from './http/security-headers.ts';
 import { requireSession } from './http/session.middleware.ts';
@@ -62,6 +63,7 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use('/studies', signedIn, studiesRouter(services.studies));
   api.use('/reports', signedIn, analysisReportsRouter(services));
   api.use('/scenarios', signedIn, scenariosRouter(services.scenarios));
+  api.use('/scenarios', signedIn, scenarioEditingRouter(services));
   api.use('/attempts', signedIn, attemptsRouter(services.attempts));
   api.use('/attempts', signedIn, debriefRouter(services.debrief));
   api.use('/remarks', signedIn, remarksRouter(services.debrief));

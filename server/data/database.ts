@@ -1,4 +1,5 @@
 import type { DataSource, EntityManager } from 'typeorm';
+import { untilNoDeadlock } from './deadlock.ts';
 import { type DataSourceSetup, createDataSource } from './data-source.ts';
 import { migrate } from './migrate.ts';
 import {
@@ -16,6 +17,10 @@ import {
 } from './repositories/organisations.repository.ts';
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
 import { type ReportCountsRepository, createReportCountsRepository } from './repositories/report-counts.repository.ts';
+import {
+  type ScenarioEditingRepository,
+  createScenarioEditingRepository,
+} from './repositories/scenario-editing.repository.ts';
 import { type ScenariosRepository, createScenariosRepository } from './repositories/scenarios.repository.ts';
 import { type SessionsRepository, createSessionsRepository } from './repositories/sessions.repository.ts';
 import { type SkinsRepository, createSkinsRepository } from './repositories/skins.repository.ts';
@@ -32,6 +37,7 @@ export interface Repositories {
   readonly studies: StudiesRepository;
   readonly reportCounts: ReportCountsRepository;
   readonly scenarios: ScenariosRepository;
+  readonly scenarioEditing: ScenarioEditingRepository;
   readonly attempts: AttemptsRepository;
   readonly chunks: ChunksRepository;
   readonly debrief: DebriefRepository;
@@ -39,6 +45,7 @@ export interface Repositories {
 }
 
 export interface Database extends Repositories {
+  /** Runs `work` on one connection, all of it or nothing; again from the start when the database chose it to end a deadlock. */
   transaction<T>(work: (repositories: Repositories) => Promise<T>): Promise<T>;
   /** Resolves when the database answers. */
   ping(): Promise<void>;
@@ -56,6 +63,7 @@ function repositories(manager: EntityManager): Repositories {
     studies: createStudiesRepository(manager),
     reportCounts: createReportCountsRepository(manager),
     scenarios: createScenariosRepository(manager),
+    scenarioEditing: createScenarioEditingRepository(manager),
     attempts: createAttemptsRepository(manager),
     chunks: createChunksRepository(manager),
     debrief: createDebriefRepository(manager),
@@ -67,7 +75,7 @@ function repositories(manager: EntityManager): Repositories {
 export function databaseOf(source: DataSource): Database {
   return {
     ...repositories(source.manager),
-    transaction: (work) => source.transaction((manager) => work(repositories(manager))),
+    transaction: (work) => untilNoDeadlock(() => source.transaction((manager) => work(repositories(manager)))),
     ping: async () => {
       await source.query('SELECT 1');
     },

@@ -12,6 +12,8 @@ import { createPrintDebrief } from './debrief/print-debrief.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
 import { createAirframesService } from './library/airframes.service.ts';
 import { createScenariosService } from './library/scenarios.service.ts';
+import { createScenarioDrafts } from './scenarios/scenario-drafts.ts';
+import { createScenarioPublishing } from './scenarios/scenario-publishing.ts';
 import { createAccessTokens } from './sessions/access-tokens.ts';
 import { createPasswords } from './sessions/passwords.ts';
 import { createSessionNotices } from './sessions/session-notices.ts';
@@ -55,6 +57,10 @@ export function createServices({ database, tokenSecret, now = () => new Date() }
     studies: createStudiesService({ database, now }),
     printAnalysis: createAnalysisReports({ database, threads: reports, now }),
     scenarios: createScenariosService({ database }),
+    scenarioEditing: {
+      drafts: createScenarioDrafts({ database, now }),
+      publishing: createScenarioPublishing({ database, now }),
+    },
     attempts: {
       start: createStartAttempt({ database, now }),
       storeChunk: createStoreChunk({ database, now }),

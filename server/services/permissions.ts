@@ -17,6 +17,7 @@ const ALLOWED = {
   'study.edit': ['engineer'],
   'scenario.read-published': ['trainee', 'instructor', 'engineer', 'administrator'],
   'scenario.read-draft': ['instructor'],
+  'scenario.edit': ['instructor'],
   'attempt.fly': ['trainee', 'instructor'],
   'attempt.read-own': ['trainee', 'instructor', 'engineer', 'administrator'],
   'attempt.read-others': ['instructor', 'administrator'],

@@ -93,6 +93,8 @@ export const attemptResultSchema = z.object({
   statesAgree: z.boolean(),
   /** Last tick of the first chunk whose state hash differed; null when all agreed. */
   firstDifferenceTick: z.number().int().min(0).nullable(),
+  /** How often the flight went back and on from there; the last branch counts. */
+  rewinds: z.number().int().min(0),
   modelVersion: z.string(),
   computedAt: z.iso.datetime(),
 });

@@ -15,6 +15,8 @@ export const scenarioListQuerySchema = z.strictObject({
   ...pageQueryShape,
   ...searchShape,
   airframe: slugSchema.optional(),
+  /** Of each scenario the newest revision of this status; archived: only where nothing is published. Drafts for authors. */
+  status: scenarioStatusSchema.default('published'),
   sort: z.enum(bothWays(['title', 'updatedAt', 'duration'])).default('title'),
 });
 export type ScenarioListQuery = z.infer<typeof scenarioListQuerySchema>;

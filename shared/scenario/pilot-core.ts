@@ -8,6 +8,7 @@ import { asin, cos, exp, sin } from '../numerics/elementary.ts';
 import { wrapPi } from '../units/angles.ts';
 import { DEG, FT } from '../units/constants.ts';
 import { pilotGains } from './pilot-gains.ts';
+import { turnTrim } from './turn-trim.ts';
 
 /** What the reference pilot does beyond keeping the aeroplane straight. Angles in rad, heights in m. */
 export type PilotTask =
@@ -50,6 +51,9 @@ export interface PilotCore {
  * hold-track (laws ours): the bank wanted is −0.1°/ft of offset − 1·track error within ±10°, the heading wanted is the crab
  * heading; below the de-crab height the heading wanted is the runway's, with bank and surfaces of the steady sideslip.
  *
+ * turn (ours): p*, r* and the surfaces of a steady turn without sideslip; without them the yaw-rate term would hold the
+ * turn back and leave it slipping.
+ *
  * @param plant      The plant; read at every step.
  * @param task       What to hold.
  * @param technique  Which trim is wanted.
@@ -66,6 +70,7 @@ export function createPilotCore(
   start: { tasMps: number; heightM: number; thetaRad: number },
 ): PilotCore {
   const gains = pilotGains(plant.aircraft, start);
+  const turn = task.kind === 'turn' ? turnTrim(plant.aircraft, start, task.bankRad) : null;
   const wanted = createWanted();
   const solver = createTrimSolver();
   const slip = createTrimSolution();
@@ -93,8 +98,12 @@ export function createPilotCore(
       let rudderStar = wanted.found ? wanted.rudderRad : plant.startTrim.rudderRad;
       let headingError = x[X.X_PSI] - startPsi;
       let integrate = true;
-      if (task.kind === 'turn') {
+      if (turn !== null && task.kind === 'turn') {
         phiStar = task.bankRad;
+        aileronStar += turn.aileronRad;
+        rudderStar += turn.rudderRad;
+        stickStar += turn.aileronRad / controls.aileronMaxRad;
+        pedalStar -= turn.rudderRad / (scale * controls.rudderMaxRad);
         headingError = 0;
         integrate = false;
       } else if (task.kind === 'hold-track') {
@@ -131,19 +140,21 @@ export function createPilotCore(
       }
       const clamped = clamp(headingError, HEADING_CLAMP_RAD);
       const z0 = x[X.X_BETA] - betaStar;
+      const z1 = x[X.X_P] - (turn === null ? 0 : turn.rollRateRadS);
+      const z2 = x[X.X_R] - (turn === null ? 0 : turn.yawRateRadS);
       const z3 = x[X.X_PHI] - phiStar;
       const aileron = -(
         gains[0] * z0 +
-        gains[1] * x[X.X_P] +
-        gains[2] * x[X.X_R] +
+        gains[1] * z1 +
+        gains[2] * z2 +
         gains[3] * z3 +
         gains[4] * clamped +
         gains[5] * memory.integral
       );
       const rudder = -(
         gains[6] * z0 +
-        gains[7] * x[X.X_P] +
-        gains[8] * x[X.X_R] +
+        gains[7] * z1 +
+        gains[8] * z2 +
         gains[9] * z3 +
         gains[10] * clamped +
         gains[11] * memory.integral

@@ -86,6 +86,12 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Checks', area: 'analysis', roles: ['engineer', 'instructor'], purpose: 'see the checks' },
   },
   {
+    path: '/controls',
+    name: 'controls',
+    component: () => import('../views/controls/ControlsView.vue'),
+    meta: { title: 'Controls', area: 'my-flights', roles: ['trainee', 'instructor'], purpose: 'fly scenarios' },
+  },
+  {
     path: '/account',
     name: 'account',
     component: () => import('../views/account/AccountView.vue'),

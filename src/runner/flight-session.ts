@@ -188,6 +188,7 @@ export function createFlightSession(setup: FlightSetup): FlightSession {
       setPhase('running', null);
     },
     frame(nowMs) {
+      if (phase === 'running' || phase === 'frozen') for (const source of sources) source.poll?.();
       if (phase === 'running') {
         const { ticks, heldMs, stopped } = clock.advance(nowMs);
         if (stopped) freeze(stopped);

@@ -37,12 +37,20 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
   const sessionEnded = new Set<() => void>();
   const reachability = new Set<(reachable: boolean) => void>();
   let refreshing: Promise<boolean> | null = null;
+  /** Ends the reads in flight when the person signs out: their answers would come too late to be allowed. */
+  let reads = new AbortController();
+  let leaving = false;
 
   function csrf(): Record<string, string> {
     const found = cookies()
       .split(/;\s*/)
       .find((pair) => pair.startsWith(`${CSRF_COOKIE}=`));
     return found ? { [CSRF_HEADER]: decodeURIComponent(found.slice(CSRF_COOKIE.length + 1)) } : {};
+  }
+
+  function signalOf({ method, signal }: Call): AbortSignal | null {
+    if (method !== 'GET') return signal ?? null;
+    return signal ? AbortSignal.any([signal, reads.signal]) : reads.signal;
   }
 
   async function send(call: Call): Promise<Response> {
@@ -54,7 +62,7 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
         method: call.method,
         headers,
         body: call.body ?? null,
-        signal: call.signal ?? null,
+        signal: signalOf(call),
         credentials: 'same-origin',
         cache: 'no-store',
       });
@@ -62,6 +70,7 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
       return response;
     } catch (cause) {
       if (call.signal?.aborted) throw cause;
+      if (cause instanceof DOMException && cause.name === 'AbortError') throw signedOutMeanwhile(cause);
       reachability.forEach((tell) => tell(false));
       throw new ApiError('unreachable', 0, 'The server cannot be reached. Check the network and try again.', [], null, {
         cause,
@@ -79,7 +88,20 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
     return refreshing;
   }
 
+  /** Ends the session; nothing is read meanwhile. */
+  async function leave(options: CallOptions): Promise<undefined> {
+    reads.abort();
+    reads = new AbortController();
+    leaving = true;
+    try {
+      return await request({ ...options, method: 'DELETE', path: SESSION_PATH }, NOTHING);
+    } finally {
+      leaving = false;
+    }
+  }
+
   async function request<S extends z.ZodType>(call: Call, schema: S): Promise<z.output<S>> {
+    if (leaving && call.method === 'GET') throw signedOutMeanwhile();
     let response = await send(call);
     const signingIn = call.method === 'POST' && call.path === SESSION_PATH;
     if (response.status === 401 && !signingIn) {
@@ -116,7 +138,8 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
       schema: S,
       options: CallOptions = {},
     ) => request({ ...options, method: 'PUT', path, body: bytes, contentType: 'application/octet-stream' }, schema),
-    delete: (path: string, options: CallOptions = {}) => request({ ...options, method: 'DELETE', path }, NOTHING),
+    delete: (path: string, options: CallOptions = {}) =>
+      path === SESSION_PATH ? leave(options) : request({ ...options, method: 'DELETE', path }, NOTHING),
     /** Called when the server no longer knows this session. Returns the way to stop listening. */
     onSessionEnded: (tell: () => void) => listen(sessionEnded, tell),
     /** Called after every request with whether the server answered. */
@@ -130,6 +153,10 @@ export const api: HttpClient = createHttpClient({
   fetch: (input, init) => globalThis.fetch(input, init),
   cookies: () => document.cookie,
 });
+
+function signedOutMeanwhile(cause?: unknown): ApiError {
+  return new ApiError('session-expired', 401, 'You are signed out. Sign in to see this.', [], null, { cause });
+}
 
 function listen<T>(set: Set<T>, item: T): () => void {
   set.add(item);

@@ -22,10 +22,11 @@ const cockpitSchema = z.object({
   camera: z.enum(CAMERAS).catch('chase'),
   ribbon: z.boolean().catch(true),
   ghost: z.boolean().catch(false),
+  spoken: z.boolean().catch(false),
 });
 type Cockpit = z.infer<typeof cockpitSchema>;
 
-const STANDARD: Cockpit = { ...DEFAULT_KEY_RATES, camera: 'chase', ribbon: true, ghost: false };
+const STANDARD: Cockpit = { ...DEFAULT_KEY_RATES, camera: 'chase', ribbon: true, ghost: false, spoken: false };
 const keyFor = (personId: string): string => `sidewash.cockpit.${personId}`;
 
 /** How this person likes the cockpit on this device: key rates, camera, ribbon, ghost. Kept in the browser. */
@@ -61,7 +62,8 @@ export const useCockpitStore = defineStore('cockpit', () => {
   });
   const ribbon = computed<boolean>({ get: () => cockpit.value.ribbon, set: (on) => change({ ribbon: on }) });
   const ghost = computed<boolean>({ get: () => cockpit.value.ghost, set: (on) => change({ ghost: on }) });
+  const spoken = computed<boolean>({ get: () => cockpit.value.spoken, set: (on) => change({ spoken: on }) });
   const standardRates = (): void => change(DEFAULT_KEY_RATES);
 
-  return { keyRates, camera, ribbon, ghost, standardRates };
+  return { keyRates, camera, ribbon, ghost, spoken, standardRates };
 });

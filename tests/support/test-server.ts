@@ -32,7 +32,7 @@ export interface TestServer {
   url: string;
   database: Database;
   services: Services;
-  /** A browser of its own, signed in as one of the demonstration people, or as nobody. */
+  /** A browser of its own, signed in as one of the demonstration people (or a whole address), or as nobody. */
   client(mailbox?: string): Promise<Client>;
   /** Rows of a plain SQL statement. */
   sql(statement: string, values?: unknown[]): Promise<Record<string, unknown>[]>;
@@ -122,7 +122,10 @@ async function openClient(address: string, mailbox: string | undefined): Promise
   };
   await call('GET', '/api/session');
   if (mailbox !== undefined) {
-    const json = { email: `${mailbox}@${DEMONSTRATION.domain}`, password: DEMONSTRATION.password };
+    const json = {
+      email: mailbox.includes('@') ? mailbox : `${mailbox}@${DEMONSTRATION.domain}`,
+      password: DEMONSTRATION.password,
+    };
     const answer = await call('POST', '/api/session', { json });
     if (answer.status !== 200) throw new Error(`Signing in as ${mailbox} answered ${answer.status}.`);
   }

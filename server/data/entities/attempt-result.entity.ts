@@ -53,6 +53,9 @@ export class AttemptResultEntity {
   @Column({ name: 'first_difference_tick', type: 'int', unsigned: true, nullable: true })
   firstDifferenceTick!: number | null;
 
+  @Column({ type: 'int', unsigned: true, default: 0 })
+  rewinds!: number;
+
   @Column({ name: 'computed_at', type: 'datetime', precision: 3 })
   computedAt!: Date;
 }

@@ -83,6 +83,17 @@ export class ScenarioRevisionEntity {
   @Column({ name: 'published_at', type: 'datetime', precision: 3, nullable: true })
   publishedAt!: Date | null;
 
+  @Column({ name: 'changed_by', type: 'uuid', nullable: true })
+  changedById?: string | null;
+
+  @ManyToOne(() => PersonEntity)
+  @JoinColumn({ name: 'changed_by', foreignKeyConstraintName: 'fk_scenario_revision_changer' })
+  changedBy?: Relation<PersonEntity> | null;
+
+  /** Counts the saves of a draft. */
+  @Column({ type: 'int', unsigned: true, default: 1 })
+  version!: number;
+
   @Column({ name: 'archived_at', type: 'datetime', precision: 3, nullable: true })
   archivedAt!: Date | null;
 

@@ -2,6 +2,8 @@ import { Foundation1764547200000 } from './1764547200000-foundation.ts';
 import { Guards1764547200001 } from './1764547200001-guards.ts';
 import { Debrief1764547250000 } from './1764547250000-debrief.ts';
 import { EngineersBench1764547300000 } from './1764547300000-engineers-bench.ts';
+import { Rewinds1764547350000 } from './1764547350000-rewinds.ts';
+import { ScenarioDrafts1764547400000 } from './1764547400000-scenario-drafts.ts';
 
 /** Migrations in the order in which they run. */
 export const MIGRATIONS = [
@@ -9,4 +11,6 @@ export const MIGRATIONS = [
   Guards1764547200001,
   Debrief1764547250000,
   EngineersBench1764547300000,
+  Rewinds1764547350000,
+  ScenarioDrafts1764547400000,
 ];

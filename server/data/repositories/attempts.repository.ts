@@ -97,6 +97,7 @@ function resultRecord(row: AttemptResultEntity): ResultRecord {
     stateHash: row.stateHash,
     statesAgree: row.statesAgree,
     firstDifferenceTick: row.firstDifferenceTick,
+    rewinds: row.rewinds,
     modelVersion: row.modelVersion,
     computedAt: row.computedAt.toISOString(),
   };

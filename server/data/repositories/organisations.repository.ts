@@ -19,6 +19,15 @@ export function createOrganisationsRepository(manager: EntityManager) {
       return (await manager.count(OrganisationEntity)) === 0;
     },
 
+    /** Holds the organisation to the end of the transaction, so that short names within it are given out one after another. */
+    async takeTurn(organisationId: string): Promise<void> {
+      await manager.findOneOrFail(OrganisationEntity, {
+        select: { id: true },
+        where: { id: organisationId },
+        lock: { mode: 'pessimistic_write' },
+      });
+    },
+
     async insert({ at, ...organisation }: NewOrganisation): Promise<void> {
       await manager.insert(OrganisationEntity, {
         ...organisation,

@@ -67,12 +67,8 @@ export function createScenariosRepository(manager: EntityManager) {
   };
 
   return {
-    /** One row a scenario: its latest published revision. */
-    async listPublished(
-      organisationId: string,
-      readerId: string,
-      query: ScenarioListQuery,
-    ): Promise<Rows<ScenarioSummary>> {
+    /** One row a scenario: its newest revision of the status asked for. */
+    async list(organisationId: string, readerId: string, query: ScenarioListQuery): Promise<Rows<ScenarioSummary>> {
       const builder = manager
         .createQueryBuilder(ScenarioRevisionEntity, 'r')
         .innerJoin('r.scenario', 's')
@@ -82,9 +78,15 @@ export function createScenariosRepository(manager: EntityManager) {
         .addSelect(['r.criterionCount', 'r.lanes', 'r.changedAt', 's.id', 's.slug', 'f.id', 'f.number', 'f.name'])
         .addSelect(['a.id', 'a.slug'])
         .where('r.organisationId = :organisationId', { organisationId })
+        .andWhere('r.status = :status', { status: query.status })
         .andWhere(
           `r.number = (SELECT MAX(newer.number) FROM scenario_revision newer
-            WHERE newer.scenario_id = r.scenario_id AND newer.status = 'published')`,
+            WHERE newer.scenario_id = r.scenario_id AND newer.status = :status)`,
+        );
+      if (query.status === 'archived')
+        builder.andWhere(
+          `NOT EXISTS (SELECT 1 FROM scenario_revision open
+            WHERE open.scenario_id = r.scenario_id AND open.status = 'published')`,
         );
       if (query.airframe !== undefined) builder.andWhere('a.slug = :airframe', { airframe: query.airframe });
       if (query.search !== '') {

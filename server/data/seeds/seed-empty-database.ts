@@ -1,6 +1,5 @@
 import { randomUUID } from 'node:crypto';
-import type { ScenarioSummary } from '#shared/contracts/scenarios.ts';
-import type { Scenario } from '#shared/scenario/scenario-schema.ts';
+import { lanesOf } from '#shared/scenario/time-line.ts';
 import type { Database, Repositories } from '../database.ts';
 import { DEMONSTRATION, DEMONSTRATION_PEOPLE } from './demonstration-people.ts';
 import { readLibrary, type Library } from './read-library.ts';
@@ -22,10 +21,6 @@ export interface SeedSetup {
 }
 
 /** Marks of a scenario's small time line. */
-export function lanesOf(scenario: Scenario): ScenarioSummary['lanes'] {
-  return scenario.events.map(({ lane, kind, at }) => ({ lane, kind, atS: 'time_s' in at ? at.time_s : null }));
-}
-
 const tagsOf = (library: Library['airframes'][number]): string[] => {
   const { engines, controls } = library.airframe;
   const kinds = new Set(engines.map((engine) => engine.kind));

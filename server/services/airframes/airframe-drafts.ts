@@ -117,6 +117,7 @@ export function createAirframeDrafts({ database, now }: { database: Database; no
       checkFormat(body.document);
       const doing = { actor, caller, at: now() };
       return database.transaction(async (on) => {
+        await on.organisations.takeTurn(actor.organisationId);
         const made = await insertAirframe(on, doing, { ...body, slug: body.slug ?? null });
         await on.audit.append(airframeEntry(doing, 'created', made.slug, { revision: 1, tags: body.tags }));
         return made;
@@ -132,6 +133,7 @@ export function createAirframeDrafts({ database, now }: { database: Database; no
       requireDeed(actor, 'airframe.edit');
       const doing = { actor, caller, at: now() };
       return database.transaction(async (on) => {
+        await on.organisations.takeTurn(actor.organisationId);
         const airframe = await foundAirframe(on, actor, slug);
         const revision = await foundRevision(on, airframe, body.revision);
         const document = { ...documentOf(revision), name: body.name };

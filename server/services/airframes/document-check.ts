@@ -44,7 +44,7 @@ export function checkDocument(document: Document, at = '/document'): void {
   const bytes = Buffer.byteLength(JSON.stringify(document));
   const values = documentToTable(document).length;
   const tooLarge = (size: string, most: string): ProblemError =>
-    new ProblemError('too-large', `The airframe has ${size}; at most ${most} are kept.`);
+    new ProblemError('too-large', `The document has ${size}; at most ${most} are kept.`);
   if (bytes > MAX_DOCUMENT_BYTES) throw tooLarge(`${Math.ceil(bytes / 1024)} KiB`, `${MAX_DOCUMENT_BYTES / 1024} KiB`);
   if (values >= LARGEST_TABLE_ROWS) throw tooLarge(`${values} values`, `${LARGEST_TABLE_ROWS - 1} values`);
 }

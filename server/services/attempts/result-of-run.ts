@@ -56,7 +56,9 @@ export function resultOfRun(job: RerunJob): RerunResult {
   });
   let firstDifferenceTick: number | null = null;
   const chunks = job.chunks.map((chunk) => ({ hash: chunk.hash, bytes: new Uint8Array(chunk.bytes) }));
+  let rewinds = 0;
   for (const content of openRecording(chunks, job.chunkKey, run.plant.engineCount)) {
+    rewinds += content.marks.filter(({ kind }) => kind === 'rewind').length;
     if (player.play(content) === false) firstDifferenceTick ??= content.startTick + content.tickCount;
   }
   if (run.ended === null) run.leave();
@@ -69,6 +71,7 @@ export function resultOfRun(job: RerunJob): RerunResult {
     stateHash: run.stateHash(),
     statesAgree: firstDifferenceTick === null,
     firstDifferenceTick,
+    rewinds,
     modelVersion: MODEL_VERSION,
     verdict: worstVerdict(criteria),
     worst: leastMargin(criteria),

@@ -59,8 +59,11 @@ export function createStartAttempt({ database, now }: { database: Database; now:
     const seed = randomInt(SEED_LIMIT);
     const id = randomUUID();
     const at = now();
-    await database.transaction(async (on) => {
+    const given = await database.transaction(async (on) => {
       await on.people.lock(organisationId, personId);
+      // Another request with the same key may have been first.
+      const before = body.startKey === undefined ? null : await on.attempts.findByStartKey(personId, body.startKey);
+      if (before !== null) return before;
       await on.attempts.insert({
         id,
         organisationId,
@@ -75,7 +78,8 @@ export function createStartAttempt({ database, now }: { database: Database; now:
         modelVersion: MODEL_VERSION,
         startedAt: at,
       });
+      return id;
     });
-    return detailOf(id);
+    return detailOf(given);
   };
 }

@@ -9,7 +9,8 @@ export function createScenariosService({ database }: { database: Database }) {
   return {
     async list(actor: Actor, query: ScenarioListQuery): Promise<Page<ScenarioSummary>> {
       requireDeed(actor, 'scenario.read-published');
-      const rows = await database.scenarios.listPublished(actor.organisationId, actor.personId, query);
+      if (query.status === 'draft') requireDeed(actor, 'scenario.read-draft');
+      const rows = await database.scenarios.list(actor.organisationId, actor.personId, query);
       return { ...rows, page: query.page, pageSize: query.pageSize };
     },
 

@@ -5,6 +5,7 @@ import { createRun } from '#shared/scenario/run.ts';
 import type { Run } from '#shared/scenario/run-types.ts';
 import { type FlightEvents, type FlightSession, createFlightSession } from '../../runner/flight-session.ts';
 import { type KeyRates, type KeyboardSource, createKeyboardSource } from '../../runner/input/keyboard-source.ts';
+import { type DeviceSource, type DeviceSourceSetup, createDeviceSource } from '../../runner/input/device-source.ts';
 import { type PadsSource, createPadsSource } from '../../runner/input/pads-source.ts';
 import type { FlightRecordKeeper } from '../../stores/delivery.store.ts';
 
@@ -14,6 +15,15 @@ export interface Flight {
   session: FlightSession;
   keyboard: KeyboardSource;
   pads: PadsSource;
+  device: DeviceSource;
+}
+
+/** How the person moves the controls. */
+export interface FlightHands {
+  rates: () => KeyRates;
+  devices: DeviceSourceSetup['devices'];
+  profile: DeviceSourceSetup['profile'];
+  pressed: DeviceSourceSetup['pressed'];
 }
 
 export function runOf(started: StartedAttempt): Run {
@@ -28,7 +38,7 @@ export function runOf(started: StartedAttempt): Run {
 export function startFlight(
   started: StartedAttempt,
   keeper: FlightRecordKeeper,
-  rates: () => KeyRates,
+  { rates, ...hands }: FlightHands,
   events: FlightEvents,
 ): Flight {
   const run = runOf(started);
@@ -38,10 +48,11 @@ export function startFlight(
     returnPerS: () => rates().returnPerS,
     pedalsSpring: () => rates().pedalsSpring,
   });
+  const device = createDeviceSource({ ...hands, engineCount });
   const session = createFlightSession({
     run,
     recorder: createRecorder({ attemptKeyHex: started.chunkKey, engineCount }),
-    sources: [keyboard, pads],
+    sources: [keyboard, pads, device],
     events: {
       ...events,
       chunk: (chunk) => {
@@ -54,5 +65,5 @@ export function startFlight(
       },
     },
   });
-  return { started, run, session, keyboard, pads };
+  return { started, run, session, keyboard, pads, device };
 }

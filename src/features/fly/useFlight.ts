@@ -3,14 +3,17 @@ import type { AttemptResult, StartedAttempt } from '#shared/contracts/attempts.t
 import type { ScenarioRevision } from '#shared/contracts/scenarios.ts';
 import type { CriterionResult, EndReason } from '#shared/scenario/run-types.ts';
 import { type FlightPhase, type FreezeReason } from '../../runner/flight-session.ts';
+import type { ButtonControl } from '../../runner/input/device-profile.ts';
+import { devicesOf } from '../../runner/input/device-reading.ts';
 import { causeOf } from '../../services/api-error.ts';
 import { startAttempt } from '../../services/attempts-api.ts';
 import { getScenario } from '../../services/scenarios-api.ts';
 import { useCockpitStore } from '../../stores/cockpit.store.ts';
+import { useControlsStore } from '../../stores/controls.store.ts';
 import { useDeliveryStore } from '../../stores/delivery.store.ts';
 import { useSessionStore } from '../../stores/session.store.ts';
 import { zeroS } from './flight-log.ts';
-import { type Flight, startFlight } from './start-flight.ts';
+import { type Flight, type FlightHands, startFlight } from './start-flight.ts';
 
 export interface LocalResult {
   ended: EndReason;
@@ -28,12 +31,17 @@ export interface FlightHooks {
   held: (heldMs: number) => void;
   /** The flight goes on from an earlier tick: what came after it is set aside. */
   branched: (flight: Flight, fromTick: number) => void;
+  /** A button of a device was pressed. */
+  pressed: (control: ButtonControl) => void;
+  /** A device went away while the controls of the flight hang on it. */
+  deviceGone: (name: string) => void;
 }
 
 /** The life of a flight on one scenario: load, brief, start, fly, end, and the server's result. */
 export function useFlight(slug: () => string, revision: () => number | undefined, hooks: FlightHooks) {
   const session = useSessionStore();
   const cockpit = useCockpitStore();
+  const controls = useControlsStore();
   const deliveries = useDeliveryStore();
 
   const brief = shallowRef<ScenarioRevision | null>(null);
@@ -68,7 +76,13 @@ export function useFlight(slug: () => string, revision: () => number | undefined
   function take(started: StartedAttempt, keeper: Awaited<ReturnType<typeof deliveries.begin>>): void {
     local.value = null;
     rate.value = 1;
-    const next = startFlight(started, keeper, () => cockpit.keyRates, {
+    const hands: FlightHands = {
+      rates: () => cockpit.keyRates,
+      devices: () => devicesOf(navigator),
+      profile: () => controls.profile,
+      pressed: hooks.pressed,
+    };
+    const next = startFlight(started, keeper, hands, {
       tick: () => hooks.tick(next),
       phase: (now, reason) => {
         phase.value = now;
@@ -87,6 +101,10 @@ export function useFlight(slug: () => string, revision: () => number | undefined
           passed: next.run.passed(),
         };
       },
+    });
+    next.device.onGone((name) => {
+      if (controls.profile.whenGone === 'freeze') next.session.freeze('device');
+      hooks.deviceGone(name);
     });
     flight.value = next;
     phase.value = 'ready';

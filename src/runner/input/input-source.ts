@@ -10,6 +10,6 @@ export interface InputSource {
   stepInto(axes: PilotAxes, tickS: number): void;
   /** Lets go of everything: on freeze, blur and at the start. */
   release(): void;
-  /** Called when the source goes away in flight (a device unplugged); the flight then freezes and says so. */
-  onGone?(callback: () => void): () => void;
+  /** Called once a frame, running or frozen, before the ticks of the frame. */
+  poll?(): void;
 }

@@ -10,6 +10,8 @@ export const FLIGHT_ACTIONS = [
   'lever-up',
   'lever-down',
   'feather',
+  'trim-left',
+  'trim-right',
 ] as const;
 export type FlightAction = (typeof FLIGHT_ACTIONS)[number];
 
@@ -27,6 +29,8 @@ export const KEY_MAP: Readonly<Record<string, FlightAction>> = {
   PageUp: 'lever-up',
   PageDown: 'lever-down',
   KeyF: 'feather',
+  BracketLeft: 'trim-left',
+  BracketRight: 'trim-right',
 };
 
 /** Digit keys choose an engine for the lever keys: 1 … 8, and 0 for all. Null for any other key. */
@@ -47,6 +51,7 @@ export interface KeyHelp {
 export const KEY_HELP: readonly KeyHelp[] = [
   { keys: ['Z', 'X'], what: 'left and right pedal; also , and .' },
   { keys: ['C'], what: 'pedals to the centre; also /' },
+  { keys: ['[', ']'], what: 'rudder trim left and right; stays' },
   { keys: ['←', '→'], what: 'stick left and right; springs back' },
   { keys: ['↑', '↓'], what: 'stick forward and back', pitchOnly: true },
   { keys: ['Page Up', 'Page Down'], what: 'power levers', leversOnly: true },

@@ -4,7 +4,7 @@
  */
 import type { InputSource } from './input-source.ts';
 import { type FlightAction, KEY_MAP, engineOfKey } from './key-map.ts';
-import { type PilotAxes, bound } from './pilot-axes.ts';
+import { type PilotAxes, TRIM_PER_S, bound } from './pilot-axes.ts';
 
 export interface KeyRates {
   /** Full deflections per second once a key has been held for RAMP_S. */
@@ -137,6 +137,8 @@ export function createKeyboardSource(engineCount: number, rates: KeyRates = DEFA
         const left = rateOf('pedal-left', current.pedalPerS, tickS);
         axes.pedal = bound(axes.pedal + (right - left) * tickS, -1, 1);
       }
+      const trim = (isDown('trim-right') ? 1 : 0) - (isDown('trim-left') ? 1 : 0);
+      if (trim !== 0) axes.rudderTrim = bound(axes.rudderTrim + trim * TRIM_PER_S * tickS, -1, 1);
       const lever = (isDown('lever-up') ? 1 : 0) - (isDown('lever-down') ? 1 : 0);
       for (let i = 0; i < axes.levers.length; i += 1) {
         if (lever !== 0 && (engine === null || engine === i)) {

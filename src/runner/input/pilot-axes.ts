@@ -13,6 +13,9 @@ export interface PilotAxes {
   feather: Uint8Array;
 }
 
+/** Rudder trim moves this share of full travel per second while its key or button is held. */
+export const TRIM_PER_S = 0.12;
+
 const FULL = 32767;
 
 export function createPilotAxes(levers: ArrayLike<number>): PilotAxes {

@@ -105,6 +105,7 @@ export function flownLibrary() {
       stateHash: run.stateHash(),
       statesAgree: true,
       firstDifferenceTick: null,
+      rewinds: 0,
       modelVersion: '1.0.0',
       computedAt: WHEN,
     },

@@ -47,6 +47,29 @@ describe('http client', () => {
     expect(calls[0]?.path).toBe('/api/things?page=2');
   });
 
+  it('ends the reads in flight when the person signs out, and reads nothing until that is answered', async () => {
+    let answerSignOut = (): void => undefined;
+    const { client, calls } = clientOf((path, { method, signal }) => {
+      if (method === 'DELETE') return new Promise((resolve) => (answerSignOut = () => resolve(answer(204))));
+      if (path === '/api/fast') return answer(200, { n: 1 });
+      return new Promise((_resolve, reject) =>
+        signal?.addEventListener('abort', () => reject(new DOMException('gone', 'AbortError'))),
+      );
+    });
+    const slow = failureOf(client.get('/api/slow', thing));
+    const leaving = client.delete('/api/session');
+    expect((await slow).code).toBe('session-expired');
+    expect((await failureOf(client.get('/api/fast', thing))).code).toBe('session-expired');
+    answerSignOut();
+    await leaving;
+    expect(await client.get('/api/fast', thing)).toEqual({ n: 1 });
+    expect(calls.map((call) => `${call.method} ${call.path}`)).toEqual([
+      'GET /api/slow',
+      'DELETE /api/session',
+      'GET /api/fast',
+    ]);
+  });
+
   it('sends the csrf token with changes only', async () => {
     const { client, calls } = clientOf(() => answer(200, { n: 1 }), `a=b; ${CSRF_COOKIE}=to%2Fken; c=d`);
     await client.get('/api/things', thing);

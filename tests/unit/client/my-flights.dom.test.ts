@@ -32,6 +32,18 @@ const FLOWN = {
   '/api/scenarios': page([library.summary], 8),
   [`/api/scenarios/${library.summary.slug}`]: library.revision,
   '/api/attempts': page([library.attempt]),
+  '/api/remarks': page([
+    {
+      id: '5f3c1d1e-2b9a-4f6e-9d0c-0a1b2c3d4e5f',
+      attemptId: library.attempt.id,
+      scenarioSlug: library.summary.slug,
+      scenarioTitle: library.summary.title,
+      tick: 564,
+      text: 'Hold, then trim.',
+      author: 'M. Okafor',
+      at: '2026-11-30T10:00:00.000Z',
+    },
+  ]),
   [`/api/attempts/${library.attempt.id}`]: library.detail,
   [`/api/attempts/${library.attempt.id}/chunks`]: library.chunks,
 };
@@ -79,6 +91,13 @@ describe('My flights', () => {
     expect(words).toContain('First correct pedal, one attempt');
     expect(shown.host.querySelectorAll('svg text.never')).toHaveLength(1);
     expect(words).toMatch(/First correct pedal\s*never/);
+  });
+
+  it('shows the remarks of instructors, each leading to its moment of the replay', async () => {
+    serve(FLOWN);
+    expect(await open()).toContain('Hold, then trim.');
+    // Tick 564 at 120 a second.
+    expect(shown.query('a[href$="?t=4.7"]').getAttribute('href')).toBe(`/attempts/${library.attempt.id}?t=4.7`);
   });
 
   it('asks the server for pages and keeps the page in the address', async () => {

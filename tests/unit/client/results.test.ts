@@ -40,6 +40,7 @@ function attempt(startedAt: string, criteria: Criterion[], title = 'Cut'): Attem
       stateHash: '0'.repeat(16),
       statesAgree: true,
       firstDifferenceTick: null,
+      rewinds: 0,
       modelVersion: '1',
       computedAt: startedAt,
     },
