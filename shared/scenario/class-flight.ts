@@ -44,7 +44,7 @@ export class ClassFlight {
   broadcast = false;
   chunkCount: number;
   branch = 0;
-  /** The last chunk has been handed on. */
+  /** The run is over, or another has the controls: the last chunk has been handed on. */
   finished = false;
   private classRun: ClassRun;
   private readonly member: string;
@@ -57,7 +57,7 @@ export class ClassFlight {
   private pending = 0;
   private framedHead = 0;
   private waitsAt: number | null = null;
-  private saidFrozen = false;
+  private flushed = false;
 
   constructor({ run, classRun, member, hold, recorded, flown, events }: ClassFlightSetup) {
     this.classRun = classRun;
@@ -124,11 +124,13 @@ export class ClassFlight {
     this.sendFrames(stands);
     this.record(stands || line.run.ended !== null ? line.head : line.head - HOLD_TICKS);
     const last = classRun.overAt !== null || head === handOver;
-    if (line.run.ended !== null || (last && line.head >= head)) this.finish();
+    // An aeroplane that has met its end waits: the class may go back to before it.
+    if (last && (line.head >= head || line.run.ended !== null)) this.finish();
     else if (stands) {
       this.sayFrozen();
       line.standAt(tickAt(classRun, serverMs));
-    } else this.saidFrozen = false;
+    } else if (line.run.ended !== null) this.flush();
+    else this.flushed = false;
     return line.run.ended === null ? Math.max(0, target - line.head) : 0;
   }
 
@@ -211,6 +213,7 @@ export class ClassFlight {
       this.framedHead = Math.min(this.framedHead, this.line.head);
     }
     this.waitsAt = null;
+    this.flushed = false;
   }
 
   private toBranch(branch: number): void {
@@ -221,9 +224,14 @@ export class ClassFlight {
 
   private sayFrozen(): void {
     this.waitsAt = null;
-    if (this.saidFrozen) return;
-    this.saidFrozen = true;
-    this.recorder.mark({ kind: 'freeze', tick: this.line.head });
+    if (!this.flushed) this.recorder.mark({ kind: 'freeze', tick: this.line.head });
+    this.flush();
+  }
+
+  /** Hands on what is recorded, however short the chunk. */
+  private flush(): void {
+    if (this.flushed) return;
+    this.flushed = true;
     this.handOn(this.recorder.cut(this.hashAt(this.line.head)));
   }
 

@@ -76,7 +76,8 @@ export class Follower {
     if (this.branch !== classRun.branch) this.takeFrames();
     if (standing && this.branch === classRun.branch) this.settle(serverMs);
     const wanted = Math.min(tick, this.line.head);
-    return Math.max(0, wanted - this.line.standAt(wanted, mostTicks));
+    const reached = this.line.standAt(wanted, mostTicks);
+    return this.line.run.ended === null ? Math.max(0, wanted - reached) : 0;
   }
 
   /** Forgets everything, to begin again with the first chunk. Frames that have arrived are kept. */

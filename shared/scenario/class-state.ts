@@ -105,6 +105,17 @@ export function foldLog(entries: readonly ClassEntry[], from: ClassState = EMPTY
   return entries.reduce(foldEntry, from);
 }
 
+/** The latest state of every run in a log, in the order in which they were started. */
+export function runsOf(entries: readonly ClassEntry[]): ClassRun[] {
+  const runs: ClassRun[] = [];
+  let state = EMPTY_CLASS;
+  for (const entry of entries) {
+    state = foldEntry(state, entry);
+    if (state.run !== null) runs[state.run.run - 1] = state.run;
+  }
+  return runs;
+}
+
 function changes(state: ClassState, entry: ClassEntry): Partial<ClassState> {
   switch (entry.kind) {
     case 'opened':
@@ -281,6 +292,11 @@ export function controlsAt(run: ClassRun, tick: number): string | null {
   let holder: string | null = null;
   for (const { member, tick: from } of run.controls) if (from <= tick) holder = member;
   return holder;
+}
+
+/** Events in force on every branch, in a form to store and send. */
+export function branchesOf(run: ClassRun): InjectedEvent[][] {
+  return run.branches.map(({ injected }) => [...injected]);
 }
 
 export function memberOf(state: ClassState, id: string): ClassMember | null {

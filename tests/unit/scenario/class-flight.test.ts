@@ -292,12 +292,15 @@ describe('a demonstration', () => {
 });
 
 describe('an own flight', () => {
-  it('goes on by hands off after an absence, and ends with the run', () => {
+  it('goes on by hands off after an absence, and is complete once the run of the class is over', () => {
     const table = new Table();
     table.pilot.broadcast = false;
     table.runTo(3000);
     table.now = 12_000;
     table.runTo(30_000);
+    expect(table.pilot.finished).toBe(false);
+    table.append({ kind: 'over', run: 1, tick: 2400 });
+    table.runTo(30_100);
     expect(table.pilot.finished).toBe(true);
     const { run, stateHashesAgree } = table.again();
     expect(stateHashesAgree).toBe(true);
