@@ -169,11 +169,10 @@ export function createClassPages({ database, log, attempts, scenarios, now }: Pa
       };
     },
 
-    /** The log; a member without the right to read others' gets it without messages to others. */
+    /** The log; a member without the right to read others' gets it without the text of messages to others. */
     async entries(reader: ClassReader, id: string): Promise<ClassLog> {
       const { known, member, all } = await open(reader, id);
-      const entries = all ? known.entries : known.entries.filter((entry) => concerns(entry, member));
-      return { entries: [...entries] };
+      return { entries: known.entries.map((entry) => redacted(entry, all ? 'all' : member)) };
     },
 
     async scenario(reader: ClassReader, id: string, index: number): Promise<ClassScenario> {
@@ -210,7 +209,9 @@ export function createClassPages({ database, log, attempts, scenarios, now }: Pa
 }
 export type ClassPages = ReturnType<typeof createClassPages>;
 
-/** Messages to another are not shown; everything else of a class is everybody's. */
-export function concerns(entry: ClassEntry, member: string | null): boolean {
-  return entry.kind !== 'message' || entry.to === null || entry.to === member || entry.by === member;
+/** An entry as a reader may see it: a message to another has no text. `all` sees everything. */
+export function redacted(entry: ClassEntry, reader: string | null): ClassEntry {
+  const open =
+    entry.kind !== 'message' || entry.to === null || reader === 'all' || entry.to === reader || entry.by === reader;
+  return open ? entry : { ...entry, text: '' };
 }

@@ -1,13 +1,6 @@
 import { randomInt, randomUUID } from 'node:crypto';
-import type {
-  joinClassBodySchema,
-  openClassBodySchema} from '#shared/contracts/classes.ts';
-import {
-  JOIN_CODE_ALPHABET,
-  JOIN_CODE_LENGTH,
-  type ClassPass,
-  type Door,
-} from '#shared/contracts/classes.ts';
+import type { joinClassBodySchema, openClassBodySchema } from '#shared/contracts/classes.ts';
+import { JOIN_CODE_ALPHABET, JOIN_CODE_LENGTH, type ClassPass, type Door } from '#shared/contracts/classes.ts';
 import type { z } from 'zod';
 import type { ClassDeed, MemberRole } from '#shared/scenario/class-log.ts';
 import { EMPTY_CLASS, freeSeat, memberOf, phaseAt, type ClassState } from '#shared/scenario/class-state.ts';
