@@ -46,13 +46,13 @@ export class ClassClient {
   /** Times from the sending of a chunk to its acknowledgement, ms. */
   readonly chunkMs: number[] = [];
   steer: (sample: ControlSample) => void = (sample) => void (sample.pedal = 6000);
-  /** Called when a connection stands, also again: where this browser connects next. */
   private followed: string | null = null;
   private readonly specs = new Map<number, ClassScenario>();
   private unsent: RecordedChunk[] = [];
   private sending = false;
   private early: { attemptId: string; frame: string }[] = [];
   private catching = false;
+  private inside = false;
   private entering: Promise<void> | null = null;
 
   constructor(
@@ -75,6 +75,9 @@ export class ClassClient {
     });
     this.socket.on('class:closed', ({ reason }) => void this.closed.push(reason));
     this.socket.on('run:inputs', (news) => this.frame(news));
+    this.socket.on('disconnect', () => {
+      this.inside = false;
+    });
     this.socket.on('connect', () => void this.comeIn().catch(() => undefined));
   }
 
@@ -126,6 +129,7 @@ export class ClassClient {
     }
     this.offsetMs = clockOffset(answers).offsetMs;
     this.entered = await this.request<Entered>('class:enter', { classId: this.classId, since: this.state.seq });
+    this.inside = this.entered.pass.admitted;
     this.take(this.entered.entries);
     if (this.followed !== null) await this.catchUp(this.followed);
     if (this.unsent.length > 0) void this.send();
@@ -226,7 +230,8 @@ export class ClassClient {
           void this.send();
         },
         frame: (frame) => {
-          this.socket.emit('run:inputs', { classId: this.classId, attemptId: hold.attemptId, frame });
+          // What is lost while the connection is away comes with the chunks.
+          if (this.inside) this.socket.emit('run:inputs', { classId: this.classId, attemptId: hold.attemptId, frame });
         },
         stands: (tick) => {
           this.request('run:stands', { classId: this.classId, run: this.run.run, tick }).catch(() => undefined);
@@ -385,3 +390,26 @@ export async function until(what: () => boolean, withinMs = 5000): Promise<void>
     await delay(10);
   }
 }
+
+/** Made-up telemetry of a tick. */
+export const telemetryAt = (tick: number): Telemetry => ({
+  tick,
+  ended: null,
+  betaDeg: 1.5,
+  wantedBetaDeg: 0,
+  ballWidths: 0.1,
+  wantedBallWidths: 0,
+  pedal: 0.2,
+  wantedPedal: 0.3,
+  rudderShare: 0.2,
+  phiDeg: 1,
+  wantedPhiDeg: 2,
+  headingDeviationDeg: 0.5,
+  iasKt: 88,
+  heightFt: 300,
+  deadSide: 1,
+  peakBetaDeg: 3,
+  firstPedalS: 0.8,
+  stillS: 0,
+  verdict: 'balanced',
+});

@@ -103,7 +103,7 @@ export async function startTestServer(setup: { now?: () => Date; seed?: boolean 
   };
 }
 
-async function openClient(address: string, mailbox: string | undefined): Promise<Client> {
+export async function openClient(address: string, mailbox: string | undefined): Promise<Client> {
   const cookies = new Map<string, string>();
   const cookie = (): string => [...cookies].map(([name, value]) => `${name}=${value}`).join('; ');
   const ask = async (method: string, where: string, setup: CallSetup = {}): Promise<Answer> => {

@@ -2,9 +2,9 @@ import { randomUUID } from 'node:crypto';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { attemptDetailSchema, attemptPageSchema } from '#shared/contracts/attempts.ts';
 import { classDetailSchema, classPassSchema, doorSchema, type ClassPass } from '#shared/contracts/classes.ts';
-import type { BoardRow, Telemetry } from '#shared/contracts/class-socket.ts';
+import type { BoardRow } from '#shared/contracts/class-socket.ts';
 import { problemSchema } from '#shared/contracts/problem.ts';
-import { ClassClient, play, SocketRefusal, until } from '../../support/class-client.ts';
+import { ClassClient, play, SocketRefusal, telemetryAt, until } from '../../support/class-client.ts';
 import { addOrganisation } from '../../support/more-organisations.ts';
 import { startTestServer, type Client, type TestServer } from '../../support/test-server.ts';
 
@@ -36,28 +36,6 @@ const codeOf = async (work: Promise<unknown>): Promise<string> => {
     throw error;
   }
 };
-const telemetry = (tick: number): Telemetry => ({
-  tick,
-  ended: null,
-  betaDeg: 1.5,
-  wantedBetaDeg: 0,
-  ballWidths: 0.1,
-  wantedBallWidths: 0,
-  pedal: 0.2,
-  wantedPedal: 0.3,
-  rudderShare: 0.2,
-  phiDeg: 1,
-  wantedPhiDeg: 2,
-  headingDeviationDeg: 0.5,
-  iasKt: 88,
-  heightFt: 300,
-  deadSide: 1,
-  peakBetaDeg: 3,
-  firstPedalS: 0.8,
-  stillS: 0,
-  verdict: 'balanced',
-});
-
 beforeAll(async () => {
   server = await startTestServer();
   await server.sql(`UPDATE organisation SET settings = JSON_SET(settings, '$.guests', true)`);
@@ -143,7 +121,7 @@ describe('everyone flies', () => {
     const gust = { lane: 'air', kind: 'gust', axis: 'lateral', shape: 'step', from: 'right', peak_kt: 12, over_s: 0.5 };
     await instructor.control({ deed: 'inject', event: { ...gust, at: { time_s: 0 } } });
     await play([first, second, guest], 800);
-    for (const one of [first, second, guest]) one.telemetry(telemetry(100));
+    for (const one of [first, second, guest]) one.telemetry(telemetryAt(100));
     await until(() => new Set(rows.map(({ member }) => member)).size === 3);
     const fired = [first, second, guest].map(
       (one) => one.flight?.line.run.fired.find(({ id }) => id === 'live-1')?.tick,
