@@ -11,6 +11,7 @@ import { type AttemptsRepository, createAttemptsRepository } from './repositorie
 import { type AuditRepository, createAuditRepository } from './repositories/audit.repository.ts';
 import { type ChunksRepository, createChunksRepository } from './repositories/chunks.repository.ts';
 import { type DebriefRepository, createDebriefRepository } from './repositories/debrief.repository.ts';
+import { type ClassesRepository, createClassesRepository } from './repositories/classes.repository.ts';
 import {
   type OrganisationsRepository,
   createOrganisationsRepository,
@@ -25,6 +26,7 @@ import { type ScenariosRepository, createScenariosRepository } from './repositor
 import { type SessionsRepository, createSessionsRepository } from './repositories/sessions.repository.ts';
 import { type SkinsRepository, createSkinsRepository } from './repositories/skins.repository.ts';
 import { type StudiesRepository, createStudiesRepository } from './repositories/studies.repository.ts';
+import { type ThrottlesRepository, createThrottlesRepository } from './repositories/throttles.repository.ts';
 
 /** All that services may ask of the database; inside {@link Database.transaction} the same on one connection. */
 export interface Repositories {
@@ -41,6 +43,8 @@ export interface Repositories {
   readonly attempts: AttemptsRepository;
   readonly chunks: ChunksRepository;
   readonly debrief: DebriefRepository;
+  readonly classes: ClassesRepository;
+  readonly throttles: ThrottlesRepository;
   readonly audit: AuditRepository;
 }
 
@@ -67,6 +71,8 @@ function repositories(manager: EntityManager): Repositories {
     attempts: createAttemptsRepository(manager),
     chunks: createChunksRepository(manager),
     debrief: createDebriefRepository(manager),
+    classes: createClassesRepository(manager),
+    throttles: createThrottlesRepository(manager),
     audit: createAuditRepository(manager),
   };
 }

@@ -4,10 +4,11 @@ import { createAirframeDrafts } from './airframes/airframe-drafts.ts';
 import { createAirframeFiles } from './airframes/airframe-files.ts';
 import { createAirframeRelease } from './airframes/airframe-release.ts';
 import { createAirframeSkins } from './airframes/airframe-skins.ts';
-import { createCompleteAttempt } from './attempts/complete-attempt.ts';
+import { createCloseAttempt, createCompleteAttempt } from './attempts/complete-attempt.ts';
 import { createReadAttempts } from './attempts/read-attempts.ts';
 import { createStartAttempt } from './attempts/start-attempt.ts';
 import { createStoreChunk } from './attempts/store-chunk.ts';
+import { createClassServices } from './classes/create-class-services.ts';
 import { createPrintDebrief } from './debrief/print-debrief.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
 import { createAirframesService } from './library/airframes.service.ts';
@@ -36,6 +37,8 @@ export function createServices({ database, tokenSecret, now = () => new Date() }
   const debriefs = createWorkerPool('debrief', 1);
   const sheets = createWorkerPool('sheet', 1);
   const passwords = createPasswords(passwordThreads);
+  const closeAttempt = createCloseAttempt({ database, reruns, now });
+  const classes = createClassServices({ database, tokenSecret, close: closeAttempt, now });
   return {
     database,
     passwords,
@@ -64,11 +67,13 @@ export function createServices({ database, tokenSecret, now = () => new Date() }
     attempts: {
       start: createStartAttempt({ database, now }),
       storeChunk: createStoreChunk({ database, now }),
-      complete: createCompleteAttempt({ database, reruns, now }),
+      complete: createCompleteAttempt({ database, close: closeAttempt }),
       ...createReadAttempts({ database, now }),
     },
+    classes,
     debrief: { ...createDebriefService({ database, now }), print: createPrintDebrief({ database, debriefs, now }) },
     close: async (): Promise<void> => {
+      await classes.chunks.settle();
       await Promise.all([passwordThreads.close(), reruns.close(), debriefs.close(), sheets.close(), reports.close()]);
     },
   };

@@ -1,5 +1,6 @@
 import type { AttemptChunks, AttemptDetail, AttemptListQuery, AttemptSummary } from '#shared/contracts/attempts.ts';
 import type { Page } from '#shared/contracts/paging.ts';
+import { branchesOf, runsOf } from '#shared/scenario/class-state.ts';
 import type { Database } from '../../data/database.ts';
 import { shownStatus, type AttemptDetailRecord } from '../../data/repositories/attempts.repository.ts';
 import { may, requireDeed, type Actor } from '../permissions.ts';
@@ -9,6 +10,15 @@ import { storedAirframe, storedScenario } from './attempt-data.ts';
 
 /** A flight that has been silent for this long is shown as abandoned; it may still be delivered. */
 const QUIET_AFTER_MS = 2 * 3600 * 1000;
+
+/** The class in which an attempt was flown, with its events; undefined for one flown alone. */
+async function flownIn(database: Database, id: string): Promise<AttemptDetail['liveClass']> {
+  const record = await database.classes.findAttempt(id);
+  const liveClass = record === null ? null : await database.classes.find(record.classId);
+  if (record === null || liveClass === null) return undefined;
+  const run = runsOf(await database.classes.entries(record.classId))[record.run - 1];
+  return { id: liveClass.id, title: liveClass.title, run: record.run, branches: branchesOf(run) };
+}
 
 export function createReadAttempts({ database, now }: { database: Database; now: () => Date }) {
   const quietSince = (): Date => new Date(now().getTime() - QUIET_AFTER_MS);
@@ -66,6 +76,7 @@ export function createReadAttempts({ database, now }: { database: Database; now:
           airframe: storedAirframe(detail.scenario.airframe.document),
         },
         result: result === null ? null : attemptResult(result),
+        liveClass: await flownIn(database, id),
       };
     },
 
