@@ -20,6 +20,7 @@ export async function openAttempt(id: string, signal: AbortSignal): Promise<Open
       seed: detail.seed,
       drawn: detail.drawn,
       attemptKeyHex: detail.chunkKey,
+      ...(detail.liveClass && { branches: detail.liveClass.branches }),
     },
     chunks.map((chunk) => ({ hash: chunk.hash, bytes: bytesFromBase64(chunk.bytesBase64) })),
   );
