@@ -20,6 +20,8 @@ export interface LoadProduct {
   server: ServerProcess;
   databaseUrl: string;
   sql(statement: string, values?: unknown[]): Promise<Record<string, unknown>[]>;
+  /** Kills MariaDB and starts it again on the same port. */
+  restartDatabase(): Promise<void>;
 }
 
 /** A server process over a database of its own whose organisation lets guests in. */
@@ -27,12 +29,13 @@ export async function startLoadProduct(cleanUp: CleanUp, redisUrl?: string): Pro
   const dataFolder = freshDataFolder();
   cleanUp(() => fs.rmSync(dataFolder, { recursive: true, force: true }));
   prepareDataFolder(dataFolder);
-  const mariadb = await startMariadb({ dataFolder, say: () => undefined });
+  let mariadb = await startMariadb({ dataFolder, say: () => undefined });
   cleanUp(() => mariadb.stop());
-  const server = await startServerProcess({ databaseUrl: mariadb.url, redisUrl, watched: true });
+  const databaseUrl = mariadb.url;
+  const server = await startServerProcess({ databaseUrl, redisUrl, watched: true });
   cleanUp(() => server.stop());
   const sql = async (statement: string, values: unknown[] = []): Promise<Record<string, unknown>[]> => {
-    const connection = await createConnection(mariadb.url);
+    const connection = await createConnection(databaseUrl);
     try {
       const [rows] = await connection.query(statement, values);
       return rows as Record<string, unknown>[]; // selects give rows
@@ -41,7 +44,13 @@ export async function startLoadProduct(cleanUp: CleanUp, redisUrl?: string): Pro
     }
   };
   await sql(`UPDATE organisation SET settings = JSON_SET(settings, '$.guests', true)`);
-  return { server, databaseUrl: mariadb.url, sql };
+  const restartDatabase = async (): Promise<void> => {
+    process.kill(mariadb.identity.pid, 'SIGKILL');
+    await mariadb.exited;
+    mariadb = await startMariadb({ dataFolder, say: () => undefined });
+    if (mariadb.url !== databaseUrl) throw new Error('MariaDB came back at another address.');
+  };
+  return { server, databaseUrl, sql, restartDatabase };
 }
 
 export interface LoadClass {
