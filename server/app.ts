@@ -8,6 +8,7 @@ import type { Logger } from './config/log.ts';
 import { airframeEditingRouter } from './http/airframe-editing.router.ts';
 import { airframesRouter } from './http/airframes.router.ts';
 import { analysisReportsRouter } from './http/analysis-reports.router.ts';
+import { assignmentsRouter } from './http/assignments.router.ts';
 import { attemptsRouter } from './http/attempts.router.ts';
 import { classesRouter } from './http/classes.router.ts';
 import { createCookies } from './http/cookies.ts';
@@ -15,6 +16,7 @@ import { csrfProtection } from './http/csrf.middleware.ts';
 import { debriefRouter, remarksRouter } from './http/debrief.router.ts';
 import { errorMapper, unknownRoute } from './http/error-mapper.ts';
 import { healthRouter } from './http/health.router.ts';
+import { playlistsRouter } from './http/playlists.router.ts';
 import { scenarioEditingRouter } from './http/scenario-editing.router.ts';
 import { scenariosRouter } from './http/scenarios.router.ts';
 import { securityHeaders } from './http/security-headers.ts';
@@ -69,6 +71,8 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use('/attempts', signedIn, attemptsRouter(services.attempts));
   api.use('/attempts', signedIn, debriefRouter(services.debrief));
   api.use('/remarks', signedIn, remarksRouter(services.debrief));
+  api.use('/assignments', signedIn, assignmentsRouter(services.assignments));
+  api.use('/playlists', signedIn, playlistsRouter(services.playlists));
   api.use(unknownRoute);
   app.use('/api', api);
 

@@ -7,6 +7,7 @@ import {
   createAirframeEditingRepository,
 } from './repositories/airframe-editing.repository.ts';
 import { type AirframesRepository, createAirframesRepository } from './repositories/airframes.repository.ts';
+import { type AssignmentsRepository, createAssignmentsRepository } from './repositories/assignments.repository.ts';
 import { type AttemptsRepository, createAttemptsRepository } from './repositories/attempts.repository.ts';
 import { type AuditRepository, createAuditRepository } from './repositories/audit.repository.ts';
 import { type ChunksRepository, createChunksRepository } from './repositories/chunks.repository.ts';
@@ -17,6 +18,7 @@ import {
   createOrganisationsRepository,
 } from './repositories/organisations.repository.ts';
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
+import { type PlaylistsRepository, createPlaylistsRepository } from './repositories/playlists.repository.ts';
 import { type ReportCountsRepository, createReportCountsRepository } from './repositories/report-counts.repository.ts';
 import {
   type ScenarioEditingRepository,
@@ -45,6 +47,8 @@ export interface Repositories {
   readonly debrief: DebriefRepository;
   readonly classes: ClassesRepository;
   readonly throttles: ThrottlesRepository;
+  readonly assignments: AssignmentsRepository;
+  readonly playlists: PlaylistsRepository;
   readonly audit: AuditRepository;
 }
 
@@ -73,6 +77,8 @@ function repositories(manager: EntityManager): Repositories {
     debrief: createDebriefRepository(manager),
     classes: createClassesRepository(manager),
     throttles: createThrottlesRepository(manager),
+    assignments: createAssignmentsRepository(manager),
+    playlists: createPlaylistsRepository(manager),
     audit: createAuditRepository(manager),
   };
 }

@@ -11,10 +11,15 @@ import { createStoreChunk } from './attempts/store-chunk.ts';
 import { createClassServices } from './classes/create-class-services.ts';
 import { createPrintDebrief } from './debrief/print-debrief.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
+import { createAssignmentsService } from './assignments/assignments.service.ts';
+import { createNotices, type QueueMail } from './assignments/notices.ts';
+import { createTellAuthor } from './assignments/tell-author.ts';
+import { createReadAssignments } from './assignments/read-assignments.ts';
 import { createAirframesService } from './library/airframes.service.ts';
 import { createScenariosService } from './library/scenarios.service.ts';
 import { createScenarioDrafts } from './scenarios/scenario-drafts.ts';
 import { createScenarioPublishing } from './scenarios/scenario-publishing.ts';
+import { createPlaylistsService } from './playlists/playlists.service.ts';
 import { createAccessTokens } from './sessions/access-tokens.ts';
 import { createPasswords } from './sessions/passwords.ts';
 import { createSessionNotices } from './sessions/session-notices.ts';
@@ -27,17 +32,30 @@ export interface ServicesSetup {
   database: Database;
   tokenSecret: string;
   now?: () => Date;
+  /** Address under which people reach the product, for links in mail. */
+  address?: () => string;
+  queueMail?: QueueMail;
 }
 
 /** All use cases over one database, with the threads they need. `close` ends the threads. */
-export function createServices({ database, tokenSecret, now = () => new Date() }: ServicesSetup) {
+export function createServices(setup: ServicesSetup) {
+  const { database, tokenSecret, now = () => new Date(), address = () => 'http://localhost' } = setup;
+  const { queueMail = () => Promise.resolve() } = setup;
   const passwordThreads = createWorkerPool('password', 1);
   const reruns = createWorkerPool('rerun', 2);
   const reports = createWorkerPool('analysis-report', 1);
   const debriefs = createWorkerPool('debrief', 1);
   const sheets = createWorkerPool('sheet', 1);
   const passwords = createPasswords(passwordThreads);
-  const closeAttempt = createCloseAttempt({ database, reruns, now });
+  const notices = createNotices({ queueMail, address });
+  const tellAuthor = createTellAuthor(notices);
+  const reads = createReadAssignments({ database, address, now });
+  const closeAttempt = createCloseAttempt({
+    database,
+    reruns,
+    now,
+    onCompleted: (...done) => tellAuthor(...done),
+  });
   const classes = createClassServices({ database, tokenSecret, close: closeAttempt, now });
   return {
     database,
@@ -57,6 +75,8 @@ export function createServices({ database, tokenSecret, now = () => new Date() }
       files: createAirframeFiles({ database, sheets }),
       skins: createAirframeSkins({ database, now }),
     },
+    assignments: { ...reads, ...createAssignmentsService({ database, notices, reads, now }) },
+    playlists: createPlaylistsService({ database, now }),
     studies: createStudiesService({ database, now }),
     printAnalysis: createAnalysisReports({ database, threads: reports, now }),
     scenarios: createScenariosService({ database }),

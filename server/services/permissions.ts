@@ -28,6 +28,15 @@ const ALLOWED = {
   'class.run': ['instructor'],
   'class.join': ['trainee', 'instructor', 'engineer', 'administrator'],
   'class.read': ['instructor', 'administrator'],
+  'playlist.read': ['instructor'],
+  'playlist.edit': ['instructor'],
+  'assignment.read-own': ['trainee', 'instructor', 'engineer', 'administrator'],
+  'assignment.read': ['instructor', 'administrator'],
+  'assignment.edit': ['instructor'],
+  'record.read-own': ['trainee', 'instructor', 'engineer', 'administrator'],
+  'record.read': ['instructor', 'administrator'],
+  'record.correct': ['instructor'],
+  'record.rule': ['administrator'],
 } as const satisfies Record<string, readonly Role[]>;
 
 export type Deed = keyof typeof ALLOWED;

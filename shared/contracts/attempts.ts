@@ -28,6 +28,8 @@ export const startAttemptBodySchema = z.strictObject({
   revision: z.number().int().min(1).optional(),
   /** Made by the client, once per press of "Fly": a repeated request with the same key answers with the same attempt. */
   startKey: z.uuid().optional(),
+  /** Counts it as a try of this assignment, on the revision that the assignment sets. */
+  assignmentId: z.uuid().optional(),
 });
 export type StartAttemptBody = z.infer<typeof startAttemptBodySchema>;
 

@@ -54,6 +54,20 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Brief', area: 'scenarios' },
   },
   {
+    path: '/scenarios/:slug/revisions',
+    name: 'scenario-revisions',
+    component: () => import('../views/scenarios/ScenarioRevisionsView.vue'),
+    props: true,
+    meta: { title: 'Revisions', area: 'scenarios' },
+  },
+  {
+    path: '/scenarios/:slug/drafts/:revision(\\d+)',
+    name: 'scenario-editor',
+    component: () => import('../views/scenarios/ScenarioEditorView.vue'),
+    props: true,
+    meta: { title: 'Editor', area: 'scenarios', roles: ['instructor'], purpose: 'write scenarios' },
+  },
+  {
     path: '/airframes',
     name: 'airframes',
     component: () => import('../views/airframes/AirframeListView.vue'),

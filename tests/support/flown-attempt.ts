@@ -22,8 +22,9 @@ export async function flyAttempt(
   client: Client,
   scenarioSlug: string,
   pilot: 'hands-off' | { delayS: number } = 'hands-off',
+  body: Record<string, unknown> = {},
 ): Promise<FlownAttempt> {
-  const answer = await client('POST', '/api/attempts', { json: { scenarioSlug } });
+  const answer = await client('POST', '/api/attempts', { json: { scenarioSlug, ...body } });
   const started = startedAttemptSchema.parse(answer.body);
   const run = createRun({
     scenario: started.scenario,

@@ -3,6 +3,7 @@ import { AttemptEntity } from './attempt.entity.ts';
 
 /** What the server's own re-run gave. One a model version; a later one never replaces the one that counts. */
 @Entity('attempt_result')
+@Index('ix_attempt_result_record', ['attemptId', 'counts', 'passed', 'verdict', 'firstPedalS'])
 @Index('ux_attempt_result_version', ['attemptId', 'modelVersion'], { unique: true })
 export class AttemptResultEntity {
   @PrimaryColumn({ type: 'uuid' })
@@ -55,6 +56,10 @@ export class AttemptResultEntity {
 
   @Column({ type: 'int', unsigned: true, default: 0 })
   rewinds!: number;
+
+  /** From the first event to the first correct pedal; null when there was none or it was not computed yet. */
+  @Column({ name: 'first_pedal_s', type: 'double', nullable: true })
+  firstPedalS!: number | null;
 
   @Column({ name: 'computed_at', type: 'datetime', precision: 3 })
   computedAt!: Date;

@@ -34,6 +34,7 @@ export interface ResultRecord extends AttemptResult {
   verdict: AttemptSummary['verdict'];
   worst: AttemptSummary['worst'];
   strip: AttemptSummary['strip'];
+  firstPedalS: number | null;
 }
 
 export interface AttemptDetailRecord extends AttemptRecord {
@@ -98,6 +99,7 @@ function resultRecord(row: AttemptResultEntity): ResultRecord {
     verdict: verdictColumn(row.verdict),
     worst: worstColumn(row.worst),
     strip: stripColumn(row.strip),
+    firstPedalS: row.firstPedalS,
     stateHash: row.stateHash,
     statesAgree: row.statesAgree,
     firstDifferenceTick: row.firstDifferenceTick,

@@ -1,7 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import type { AttemptResult, CompleteAttemptBody } from '#shared/contracts/attempts.ts';
-import type { Database } from '../../data/database.ts';
-import type { ResultRecord } from '../../data/repositories/attempts.repository.ts';
+import type { Database, Repositories } from '../../data/database.ts';
+import type { AttemptDetailRecord, ResultRecord } from '../../data/repositories/attempts.repository.ts';
 import { requireDeed, type Actor } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
@@ -13,6 +13,7 @@ export function attemptResult({
   verdict: _verdict,
   worst: _worst,
   strip: _strip,
+  firstPedalS: _firstPedalS,
   ...result
 }: ResultRecord): AttemptResult {
   return result;
@@ -34,10 +35,12 @@ interface CloseSetup {
   database: Database;
   reruns: WorkerPool;
   now: () => Date;
+  /** What follows from a completion, within its transaction. */
+  onCompleted: (on: Repositories, detail: AttemptDetailRecord, result: ResultRecord, at: Date) => Promise<void>;
 }
 
 /** Integrates a recording again in a worker and stores that as the result. Repeating it is no error. */
-export function createCloseAttempt({ database, reruns, now }: CloseSetup) {
+export function createCloseAttempt({ database, reruns, now, onCompleted }: CloseSetup) {
   return async (request: CloseRequest): Promise<AttemptResult> => {
     const { organisationId, id, chunkCount, branches, actorId, address } = request;
     const detail = await database.attempts.findDetail(organisationId, id);
@@ -96,6 +99,7 @@ export function createCloseAttempt({ database, reruns, now }: CloseSetup) {
         },
         address,
       });
+      await onCompleted(on, detail, result, at);
       return attemptResult(result);
     });
   };

@@ -14,6 +14,7 @@ import { openRecording, RecordingPlayer } from '#shared/scenario/recording.ts';
 import { createRun } from '#shared/scenario/run.ts';
 import { MODEL_VERSION, type CriterionResult, type Verdict } from '#shared/scenario/run-types.ts';
 import { DEG } from '#shared/units/constants.ts';
+import { createReaction, zeroTick } from './reaction.ts';
 import { storedAirframe, storedScenario } from './attempt-data.ts';
 
 /** What a worker is handed to integrate a recording again: documents and bytes, nothing parsed. */
@@ -32,6 +33,8 @@ export const rerunResultSchema = attemptResultSchema.omit({ computedAt: true }).
   verdict: verdictSchema.nullable(),
   worst: z.object({ title: z.string(), margin: z.number(), unit: z.string() }).nullable(),
   strip: stripSchema,
+  /** From the first event to the first correct pedal; null when there was none. */
+  firstPedalS: z.number().nullable(),
   criteria: z.array(criterionResultSchema),
 });
 export type RerunResult = z.infer<typeof rerunResultSchema>;
@@ -51,7 +54,9 @@ export function resultOfRun(job: RerunJob): RerunResult {
     branches: job.branches,
   });
   const betaDeg: number[] = [run.now.betaRad / DEG];
+  const reaction = createReaction();
   const player = new RecordingPlayer(run, (now) => {
+    reaction.see(now, zeroTick(now));
     if (now.tick % STRIP_TICKS !== 0) return;
     const place = now.tick / STRIP_TICKS;
     betaDeg.length = place;
@@ -66,6 +71,8 @@ export function resultOfRun(job: RerunJob): RerunResult {
   }
   if (run.ended === null) run.leave();
   const criteria = run.results();
+  const zero = zeroTick(run);
+  const { firstPedalS } = reaction.result();
   return {
     ended: run.ended ?? 'left',
     durationS: run.tick / TICK_RATE_HZ,
@@ -79,6 +86,7 @@ export function resultOfRun(job: RerunJob): RerunResult {
     verdict: worstVerdict(criteria),
     worst: leastMargin(criteria),
     strip: thinned(betaDeg),
+    firstPedalS: firstPedalS === null || zero === null ? null : firstPedalS - zero / TICK_RATE_HZ,
   };
 }
 

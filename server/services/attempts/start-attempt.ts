@@ -4,6 +4,7 @@ import { MODEL_VERSION } from '#shared/scenario/run-types.ts';
 import { drawValues } from '#shared/scenario/variation.ts';
 import type { Database } from '../../data/database.ts';
 import type { AttemptDetailRecord } from '../../data/repositories/attempts.repository.ts';
+import { assignedRevision, countTry, requirePractice } from '../assignments/count-try.ts';
 import { requireDeed, type Actor } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
 import { storedAirframe, storedScenario } from './attempt-data.ts';
@@ -48,11 +49,16 @@ export function createStartAttempt({ database, now }: { database: Database; now:
       const before = await database.attempts.findByStartKey(personId, body.startKey);
       if (before !== null) return detailOf(before);
     }
-    const number = body.revision ?? (await database.scenarios.latestPublishedNumber(organisationId, body.scenarioSlug));
+    const set =
+      body.assignmentId === undefined
+        ? null
+        : await assignedRevision(database, actor, body.assignmentId, body.scenarioSlug);
+    const number =
+      set ?? body.revision ?? (await database.scenarios.latestPublishedNumber(organisationId, body.scenarioSlug));
     const revision =
       number === null ? null : await database.scenarios.findRevision(organisationId, body.scenarioSlug, number);
     if (revision === null || revision.status === 'draft') throw notFound('scenario');
-    if (revision.status === 'archived') {
+    if (revision.status === 'archived' && set === null) {
       throw new ProblemError('conflict', 'This scenario is archived; choose a published one.');
     }
     const scenario = storedScenario(revision.document);
@@ -64,6 +70,7 @@ export function createStartAttempt({ database, now }: { database: Database; now:
       // Another request with the same key may have been first.
       const before = body.startKey === undefined ? null : await on.attempts.findByStartKey(personId, body.startKey);
       if (before !== null) return before;
+      if (body.assignmentId === undefined) await requirePractice(on, actor, revision.scenarioId);
       await on.attempts.insert({
         id,
         organisationId,
@@ -78,6 +85,9 @@ export function createStartAttempt({ database, now }: { database: Database; now:
         modelVersion: MODEL_VERSION,
         startedAt: at,
       });
+      if (body.assignmentId !== undefined) {
+        await countTry(on, actor, body.assignmentId, { id, scenarioId: revision.scenarioId }, at);
+      }
       return id;
     });
     return detailOf(given);

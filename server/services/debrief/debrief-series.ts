@@ -7,6 +7,7 @@ import { createRun } from '#shared/scenario/run.ts';
 import type { Run, RunSpec } from '#shared/scenario/run-types.ts';
 import { DEG } from '#shared/units/constants.ts';
 import { storedAirframe, storedScenario } from '../attempts/attempt-data.ts';
+import { createReaction, zeroTick } from '../attempts/reaction.ts';
 import { rerunJobSchema, type RerunJob } from '../attempts/result-of-run.ts';
 
 export { rerunJobSchema as debriefJobSchema };
@@ -50,10 +51,6 @@ export type DebriefSeries = z.infer<typeof debriefSeriesSchema>;
 
 const EVERY_TICKS = 12;
 const LETTERS = { engines: 'E', air: 'G', controls: 'C', systems: 'S', notes: 'N' } as const;
-const PEDAL_SHARE = 0.1;
-const PEDAL_TICKS = 24;
-const CALM_RAD_S = DEG;
-const SWUNG_RAD_S = 2 * DEG;
 /** Gates of the balance convention: sideslip and pedal that count as one unit out of balance. */
 const GATE_BETA_DEG = 1.4;
 const GATE_PEDAL_PCT = 14;
@@ -122,39 +119,6 @@ export function debriefSeries(job: RerunJob): DebriefSeries {
     ...reaction.result(),
     strip: [...strip.values()].sort((a, b) => a.timeS - b.timeS).slice(0, STRIP_FRAMES),
     deadWords: run.deadSide === 0 ? 'no engine failed' : run.deadSide > 0 ? 'left side dead' : 'right side dead',
-  };
-}
-
-function zeroTick(run: Run): number | null {
-  return run.fired.find((event) => event.lane !== 'notes')?.tick ?? null;
-}
-
-/** First pedal toward the live side (against the yaw without one) and the first calm second, from the first event on. */
-function createReaction() {
-  let pedalAtZero = 0;
-  let started = false;
-  let held = 0;
-  let calm = 0;
-  let swung = false;
-  let firstPedalS: number | null = null;
-  let arrestedS: number | null = null;
-  return {
-    see(run: Run, zero: number | null): void {
-      if (zero === null || run.tick < zero) return;
-      const { now } = run;
-      if (!started) {
-        started = true;
-        pedalAtZero = now.pedal;
-      }
-      const toward = run.deadSide === 0 ? -Math.sign(now.rRadS) : run.deadSide;
-      held = (now.pedal - pedalAtZero) * toward >= PEDAL_SHARE ? held + 1 : 0;
-      if (firstPedalS === null && held >= PEDAL_TICKS) firstPedalS = (run.tick - PEDAL_TICKS + 1) / TICK_RATE_HZ;
-      const rate = Math.abs(now.rRadS);
-      swung ||= rate > SWUNG_RAD_S;
-      calm = rate < CALM_RAD_S ? calm + 1 : 0;
-      if (swung && arrestedS === null && calm >= TICK_RATE_HZ) arrestedS = (run.tick - TICK_RATE_HZ + 1) / TICK_RATE_HZ;
-    },
-    result: () => ({ firstPedalS, arrestedS }),
   };
 }
 
