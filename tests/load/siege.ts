@@ -152,6 +152,7 @@ export class Siege {
 
   /** How far the aeroplanes are from where the class clock is, ticks. */
   lateness(): number {
+    for (const one of this.trainees) one.step();
     const head = headTickAt(this.instructor.run, this.instructor.serverNow());
     return Math.max(...this.trainees.map(({ flight }) => Math.abs((flight?.line.head ?? 0) - head)));
   }
