@@ -4,7 +4,7 @@
  */
 import { TICK_RATE_HZ } from '../model/plant-types.ts';
 import { channelCount } from './chunk-codec.ts';
-import { encodeFrame, FRAME_TICKS } from './class-frames.ts';
+import { encodeFrame, FRAME_TICKS, LARGEST_FRAME_TICKS } from './class-frames.ts';
 import { headTickAt, injectedOn, phaseAt, tickAt, type ClassRun } from './class-state.ts';
 import { InputLine } from './input-line.ts';
 import { createRecorder, type ChunkContent, type RecordedChunk, type Recorder } from './recording.ts';
@@ -14,6 +14,8 @@ import type { ControlSample, Run } from './run-types.ts';
 const HOLD_TICKS = 60;
 /** A longer absence is flown with centred controls. */
 const ABSENCE_TICKS = TICK_RATE_HZ;
+/** Ticks that are sent in frames however late; older ones come with the chunks. */
+const LATE_FRAME_TICKS = 2 * TICK_RATE_HZ;
 
 export interface ClassFlightEvents {
   chunk: (chunk: RecordedChunk) => void;
@@ -241,10 +243,13 @@ export class ClassFlight {
       this.framedHead = line.head;
       return;
     }
+    // After an absence only the last of it is sent; who looks on gets the rest from the chunks.
+    this.framedHead = Math.max(this.framedHead, line.head - LATE_FRAME_TICKS);
     while (line.head - this.framedHead >= FRAME_TICKS || (all && line.head > this.framedHead)) {
       const startTick = this.framedHead;
       const second = (Math.floor(startTick / TICK_RATE_HZ) + 1) * TICK_RATE_HZ;
-      const end = Math.min(line.head, startTick + FRAME_TICKS, second);
+      const most = line.head - startTick > LARGEST_FRAME_TICKS ? LARGEST_FRAME_TICKS : FRAME_TICKS;
+      const end = Math.min(line.head, startTick + most, second);
       const engineCount = this.sample.levers.length;
       const channels = Array.from({ length: channelCount(engineCount) }, () => new Int16Array(end - startTick));
       for (let tick = startTick; tick < end; tick += 1) {

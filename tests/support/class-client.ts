@@ -52,6 +52,7 @@ export class ClassClient {
   private sending = false;
   private early: { attemptId: string; frame: string }[] = [];
   private catching = false;
+  private refusal: SocketRefusal | null = null;
   private inside = false;
   private entering: Promise<void> | null = null;
 
@@ -262,7 +263,10 @@ export class ClassClient {
         this.acknowledged.push({ attemptId, index: chunk.index });
       }
     } catch (error) {
-      if (error instanceof SocketRefusal && error.code !== 'internal' && error.code !== 'not-a-member') throw error;
+      if (error instanceof SocketRefusal && !['internal', 'not-a-member', 'throttled'].includes(error.code)) {
+        this.refusal = error;
+        throw error;
+      }
       await delay(100);
       if (this.socket.connected) setImmediate(() => void this.send().catch(() => undefined));
     } finally {
@@ -274,7 +278,8 @@ export class ClassClient {
   async delivered(withinMs = 10_000): Promise<void> {
     const until = performance.now() + withinMs;
     while (this.unsent.length > 0) {
-      if (performance.now() > until) throw new Error(`${this.unsent.length} chunks were not acknowledged.`);
+      if (performance.now() > until || this.refusal !== null)
+        throw this.refusal ?? new Error(`${this.unsent.length} chunks were not acknowledged.`);
       void this.send().catch(() => undefined);
       await delay(20);
     }

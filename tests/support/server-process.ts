@@ -1,12 +1,15 @@
 import { type ChildProcess, spawn } from 'node:child_process';
 import { once } from 'node:events';
-import { mkdtempSync, rmSync } from 'node:fs';
+import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
 import os from 'node:os';
 import path from 'node:path';
 import { setTimeout as delay } from 'node:timers/promises';
+import { z } from 'zod';
 import { anyFreePort } from '../../server/bootstrap/ports.mjs';
 import { findProgram } from '../../server/bootstrap/programs.mjs';
 import { projectFolder } from '../../server/bootstrap/paths.mjs';
+
+const delaySchema = z.object({ p99Ms: z.number(), maxMs: z.number() });
 
 export const PROCESS_SECRET = 'several processes share this secret';
 
@@ -16,6 +19,10 @@ export interface ServerProcess {
   readonly pid: number;
   /** SIGKILL, and waits until it is gone. */
   kill(): Promise<void>;
+  /** Processor time used so far, s. */
+  cpuS(): number;
+  /** How late its event loop was since this was last asked; only of a watched one. */
+  loopDelay(): Promise<{ p99Ms: number; maxMs: number }>;
   start(): Promise<void>;
   stop(): Promise<void>;
 }
@@ -24,13 +31,17 @@ export async function startServerProcess(setup: {
   databaseUrl: string;
   redisUrl?: string;
   env?: Record<string, string>;
+  /** Can be asked for its event loop's delay. */
+  watched?: boolean;
 }): Promise<ServerProcess> {
   const port = await anyFreePort('127.0.0.1');
   const address = `http://127.0.0.1:${port}`;
   let child: ChildProcess | null = null;
+  let tellDelay: (delay: z.infer<typeof delaySchema>) => void = () => undefined;
 
   async function start(): Promise<void> {
-    const started = spawn(process.execPath, ['--import', 'tsx', path.join('server', 'main.ts')], {
+    const watch = setup.watched === true ? ['--import', './tests/load/loop-delay.mjs'] : [];
+    const started = spawn(process.execPath, ['--import', 'tsx', ...watch, path.join('server', 'main.ts')], {
       cwd: projectFolder,
       env: {
         PATH: process.env['PATH'],
@@ -52,6 +63,8 @@ export async function startServerProcess(setup: {
       const take = (data: Buffer): void => {
         output += data.toString();
         if (output.includes('SIDEWASH_READY')) resolve();
+        for (const [, json] of data.toString().matchAll(/^LOOP_DELAY (.*)$/gmu))
+          tellDelay(delaySchema.parse(JSON.parse(json)));
       };
       started.stdout.on('data', take);
       started.stderr.on('data', (data: Buffer) => {
@@ -78,6 +91,18 @@ export async function startServerProcess(setup: {
       return child?.pid ?? -1;
     },
     kill: () => end('SIGKILL'),
+    cpuS: () => {
+      // Fields 14 and 15 behind the program's name in brackets: user and system time in hundredths.
+      const fields = readFileSync(`/proc/${child?.pid ?? 0}/stat`, 'utf8')
+        .split(') ')[1]
+        .split(' ');
+      return (Number(fields[11]) + Number(fields[12])) / 100;
+    },
+    loopDelay: () =>
+      new Promise((resolve) => {
+        tellDelay = resolve;
+        child?.kill('SIGUSR2');
+      }),
     start,
     stop: () => end('SIGTERM'),
   };

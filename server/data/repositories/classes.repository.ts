@@ -126,6 +126,18 @@ export function createClassesRepository(manager: EntityManager) {
       return new Map(rows.map(({ id, lastSeq }) => [id, lastSeq]));
     },
 
+    /** Open classes in which nothing was appended since a time. */
+    async quietSince(time: Date): Promise<string[]> {
+      const rows = await manager
+        .createQueryBuilder(LiveClassEntity, 'c')
+        .select(['c.id'])
+        .where('c.endedAt IS NULL AND c.openedAt < :time', { time })
+        .andWhere('NOT EXISTS (SELECT 1 FROM class_entry e WHERE e.class_id = c.id AND e.at >= :time)')
+        .limit(20)
+        .getMany();
+      return rows.map(({ id }) => id);
+    },
+
     async entries(classId: string, since = 0): Promise<ClassEntry[]> {
       const rows = await manager.find(ClassEntryEntity, {
         select: { seq: true, body: true },

@@ -1,24 +1,15 @@
 import type { AttemptChunks, AttemptDetail, AttemptListQuery, AttemptSummary } from '#shared/contracts/attempts.ts';
 import type { Page } from '#shared/contracts/paging.ts';
-import { branchesOf, runsOf } from '#shared/scenario/class-state.ts';
 import type { Database } from '../../data/database.ts';
 import { shownStatus, type AttemptDetailRecord } from '../../data/repositories/attempts.repository.ts';
 import { may, requireDeed, type Actor } from '../permissions.ts';
 import { notFound } from '../problem-error.ts';
 import { attemptResult } from './complete-attempt.ts';
 import { storedAirframe, storedScenario } from './attempt-data.ts';
+import { flownIn } from './flown-in-class.ts';
 
 /** A flight that has been silent for this long is shown as abandoned; it may still be delivered. */
 const QUIET_AFTER_MS = 2 * 3600 * 1000;
-
-/** The class in which an attempt was flown, with its events; undefined for one flown alone. */
-async function flownIn(database: Database, id: string): Promise<AttemptDetail['liveClass']> {
-  const record = await database.classes.findAttempt(id);
-  const liveClass = record === null ? null : await database.classes.find(record.classId);
-  if (record === null || liveClass === null) return undefined;
-  const run = runsOf(await database.classes.entries(record.classId))[record.run - 1];
-  return { id: liveClass.id, title: liveClass.title, run: record.run, branches: branchesOf(run) };
-}
 
 export function createReadAttempts({ database, now }: { database: Database; now: () => Date }) {
   const quietSince = (): Date => new Date(now().getTime() - QUIET_AFTER_MS);

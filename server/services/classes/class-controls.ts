@@ -283,10 +283,36 @@ export function createClassControls({ log, attempts, scenarios }: ControlsSetup)
     }
   }
 
+  async function audit({ known, on, atMs }: Appending, by: string, control: Control): Promise<void> {
+    const member = await on.classes.findMember(known.record.id, by);
+    await on.audit.append({
+      organisationId: known.record.organisationId,
+      at: new Date(atMs),
+      actorId: member?.personId ?? null,
+      deed: control.deed === 'end' ? 'class.ended' : 'class.member-removed',
+      subjectKind: 'class',
+      subjectId: known.record.id,
+      detail: control.deed === 'remove' ? { member: control.member } : {},
+      address: null,
+    });
+  }
+
   return {
+    /** Ends a class that everybody has forgotten: its code must not stay good for ever. */
+    async endForgotten(classId: string, quietSinceMs: number): Promise<void> {
+      await log.append(classId, null, null, ({ known: { state, entries }, atMs }) => {
+        const last = entries.at(-1)?.atMs ?? 0;
+        return state.ended || last > quietSinceMs ? [] : [...ending(state, atMs), { kind: 'ended' }];
+      });
+    },
+
     /** Appends what a control of the instructor does. */
     control(classId: string, by: string, control: Control): Promise<ClassEntry[]> {
-      return log.append(classId, by, control.key, (appending) => decide(control, by, appending));
+      return log.append(classId, by, control.key, async (appending) => {
+        const deeds = await decide(control, by, appending);
+        if (control.deed === 'end' || control.deed === 'remove') await audit(appending, by, control);
+        return deeds;
+      });
     },
 
     /** The aeroplane with the controls met a freeze of the scenario. */

@@ -17,6 +17,9 @@ export interface ClassServicesSetup {
   now: () => Date;
 }
 
+/** A class in which nothing has happened for so long is ended. */
+const FORGOTTEN_AFTER_MS = 12 * 3600 * 1000;
+
 /** All use cases of live classes. */
 export function createClassServices({ database, tokenSecret, close, now }: ClassServicesSetup) {
   const log = createClassLogStore({ database, now });
@@ -24,6 +27,7 @@ export function createClassServices({ database, tokenSecret, close, now }: Class
   const guestPasses = createGuestPasses(tokenSecret, now);
   const throttle = createJoinThrottle({ database, now });
   const attempts = createClassAttempts({ database, log, scenarios, close, now });
+  const controls = createClassControls({ log, attempts, scenarios });
   return {
     log,
     scenarios,
@@ -31,11 +35,16 @@ export function createClassServices({ database, tokenSecret, close, now }: Class
     attempts,
     chunks: createClassChunks({ database, log, attempts, now }),
     membership: createMembership({ database, log, guestPasses, throttle, now }),
-    controls: createClassControls({ log, attempts, scenarios }),
+    controls,
     pages: createClassPages({ database, log, attempts, scenarios, now }),
     addRefused: (classId: string, count: number): Promise<void> => database.classes.addRefused(classId, count),
     nowMs: (): number => now().getTime(),
-    tidy: (): Promise<void> => throttle.tidy(),
+    async tidy(): Promise<void> {
+      await throttle.tidy();
+      const quietSinceMs = now().getTime() - FORGOTTEN_AFTER_MS;
+      for (const id of await database.classes.quietSince(new Date(quietSinceMs)))
+        await controls.endForgotten(id, quietSinceMs);
+    },
   };
 }
 export type ClassServices = ReturnType<typeof createClassServices>;

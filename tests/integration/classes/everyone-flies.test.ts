@@ -310,13 +310,30 @@ describe('what does not belong', () => {
     expect(problemSchema.parse((await guestHttp('GET', '/api/classes/door/333333')).body).code).toBe('throttled');
   });
 
+  it('a class that everybody has forgotten is ended, its code with it', async () => {
+    const json = { title: 'Forgotten', playlist: [{ scenarioSlug: 'left-engine-cut-after-lift-off' }] };
+    const forgotten = classPassSchema.parse((await instructorHttp('POST', '/api/classes', { json })).body);
+    await server.services.classes.controls.endForgotten(forgotten.classId, Date.now() - 60_000);
+    expect((await instructorHttp('GET', `/api/classes/${forgotten.classId}/qr.svg`)).status).toBe(200);
+    await server.services.classes.controls.endForgotten(forgotten.classId, Date.now());
+    expect((await instructorHttp('GET', `/api/classes/${forgotten.classId}`)).body).toMatchObject({
+      status: 'ended',
+      joinCode: null,
+    });
+    const [entry] = await server.sql(`SELECT COUNT(*) AS n FROM audit_entry WHERE deed = 'class.opened'`);
+    expect(Number(entry['n'])).toBe(2);
+  });
+
   it('ends: the code opens nothing any more', async () => {
     await server.sql('DELETE FROM throttle_count');
     await instructor.control({ deed: 'end' });
     expect((await join(secondHttp)).status).toBe(404);
     expect(await codeOf(instructor.control({ deed: 'start', countdownS: 0 }))).toBe('class-ended');
     const list = await instructorHttp('GET', '/api/classes?status=ended');
-    expect(list.body).toMatchObject({ total: 1, items: [{ title: 'Thursday', status: 'ended', people: 3, runs: 3 }] });
+    expect(list.body).toMatchObject({
+      total: 2,
+      items: [{ title: 'Forgotten' }, { title: 'Thursday', status: 'ended', people: 3, runs: 3 }],
+    });
     expect((await guestHttp('GET', '/api/classes')).status).toBe(401);
     const qr = await instructorHttp('GET', `/api/classes/${pass.classId}/qr.svg`);
     expect(qr.status).toBe(404);
