@@ -10,6 +10,7 @@ import { airframesRouter } from './http/airframes.router.ts';
 import { analysisReportsRouter } from './http/analysis-reports.router.ts';
 import { assignmentsRouter } from './http/assignments.router.ts';
 import { attemptsRouter } from './http/attempts.router.ts';
+import { classesRouter } from './http/classes.router.ts';
 import { createCookies } from './http/cookies.ts';
 import { csrfProtection } from './http/csrf.middleware.ts';
 import { debriefRouter, remarksRouter } from './http/debrief.router.ts';
@@ -60,6 +61,7 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use(csrfProtection(cookies, env.publicOrigins));
   api.use(express.json({ limit: LARGEST_JSON }));
   api.use('/session', sessionRouter(services.sessions, cookies));
+  api.use('/classes', classesRouter({ services, cookies, publicOrigins: env.publicOrigins }));
   const signedIn = requireSession(services.sessions);
   api.use('/airframes', signedIn, airframesRouter(services.airframes));
   api.use('/airframes', signedIn, airframeEditingRouter(services));

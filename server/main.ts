@@ -10,6 +10,7 @@ import { tokenSecret } from './config/token-secret.ts';
 import { openDatabase } from './data/database.ts';
 import { seedEmptyDatabase } from './data/seeds/seed-empty-database.ts';
 import { staticFiles } from './http/static-files.ts';
+import { connectRedis } from './realtime/redis.ts';
 import { attachSockets } from './realtime/sockets.ts';
 import { createServices } from './services/create-services.ts';
 
@@ -55,7 +56,9 @@ async function main(): Promise<void> {
 
   const app = createApp({ services, log, env, client });
   http.on('request', (request, response) => void app(request, response));
-  const sockets = attachSockets({ http, sessions: services.sessions, log, publicOrigins: env.publicOrigins });
+  const redis = env.redisUrl === null ? null : await connectRedis(env.redisUrl, log);
+  const { sessions, classes } = services;
+  const sockets = attachSockets({ http, sessions, classes, log, publicOrigins: env.publicOrigins, redis });
   await new Promise<void>((resolve, reject) => {
     http.once('error', reject);
     http.listen(env.port, env.host, resolve);

@@ -12,6 +12,7 @@ import { type AttemptsRepository, createAttemptsRepository } from './repositorie
 import { type AuditRepository, createAuditRepository } from './repositories/audit.repository.ts';
 import { type ChunksRepository, createChunksRepository } from './repositories/chunks.repository.ts';
 import { type DebriefRepository, createDebriefRepository } from './repositories/debrief.repository.ts';
+import { type ClassesRepository, createClassesRepository } from './repositories/classes.repository.ts';
 import {
   type OrganisationsRepository,
   createOrganisationsRepository,
@@ -32,6 +33,7 @@ import { type ScenariosRepository, createScenariosRepository } from './repositor
 import { type SessionsRepository, createSessionsRepository } from './repositories/sessions.repository.ts';
 import { type SkinsRepository, createSkinsRepository } from './repositories/skins.repository.ts';
 import { type StudiesRepository, createStudiesRepository } from './repositories/studies.repository.ts';
+import { type ThrottlesRepository, createThrottlesRepository } from './repositories/throttles.repository.ts';
 
 /** All that services may ask of the database; inside {@link Database.transaction} the same on one connection. */
 export interface Repositories {
@@ -48,6 +50,8 @@ export interface Repositories {
   readonly attempts: AttemptsRepository;
   readonly chunks: ChunksRepository;
   readonly debrief: DebriefRepository;
+  readonly classes: ClassesRepository;
+  readonly throttles: ThrottlesRepository;
   readonly assignments: AssignmentsRepository;
   readonly budgets: BudgetsRepository;
   readonly records: RecordsRepository;
@@ -81,6 +85,8 @@ function repositories(manager: EntityManager): Repositories {
     attempts: createAttemptsRepository(manager),
     chunks: createChunksRepository(manager),
     debrief: createDebriefRepository(manager),
+    classes: createClassesRepository(manager),
+    throttles: createThrottlesRepository(manager),
     assignments: createAssignmentsRepository(manager),
     budgets: createBudgetsRepository(manager),
     records: createRecordsRepository(manager),

@@ -1,6 +1,7 @@
 import type { CookieOptions, Request, Response } from 'express';
-import { ACCESS_COOKIE, CSRF_COOKIE, REFRESH_COOKIE } from '#shared/contracts/wire-names.ts';
+import { ACCESS_COOKIE, CSRF_COOKIE, GUEST_COOKIE, REFRESH_COOKIE } from '#shared/contracts/wire-names.ts';
 import { ACCESS_TOKEN_S } from '../services/sessions/access-tokens.ts';
+import { GUEST_PASS_S } from '../services/classes/guest-passes.ts';
 import { SESSION_IDLE_S } from '../services/sessions/sessions.service.ts';
 
 const REFRESH_PATH = '/api/session';
@@ -25,6 +26,9 @@ export function createCookies(secure: boolean) {
     clear(response: Response): void {
       response.clearCookie(ACCESS_COOKIE, access);
       response.clearCookie(REFRESH_COOKIE, refresh);
+    },
+    setGuest(response: Response, token: string): void {
+      response.cookie(GUEST_COOKIE, token, { ...access, maxAge: GUEST_PASS_S * 1000 });
     },
     setCsrf(response: Response, token: string): void {
       response.cookie(CSRF_COOKIE, token, csrf);

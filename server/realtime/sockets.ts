@@ -1,43 +1,65 @@
 import type { Server as HttpServer } from 'node:http';
 import { parse as parseCookies } from 'cookie';
 import { Server } from 'socket.io';
-import type { ClientEvents, ServerEvents } from '#shared/contracts/socket-events.ts';
-import { ACCESS_COOKIE } from '#shared/contracts/wire-names.ts';
+import { ACCESS_COOKIE, GUEST_COOKIE } from '#shared/contracts/wire-names.ts';
 import type { Logger } from '../config/log.ts';
 import { originAllowed } from '../config/origins.ts';
-import type { Actor } from '../services/permissions.ts';
+import type { ClassServices } from '../services/classes/create-class-services.ts';
 import { ProblemError } from '../services/problem-error.ts';
 import type { SessionsService } from '../services/sessions/sessions.service.ts';
+import { createClassHub } from './class-hub.ts';
+import { attachClassTopics } from './class-topics.ts';
+import { Bucket, createRateLimits, MOST_REFUSED } from './rate-limits.ts';
+import type { RedisLink } from './redis.ts';
 import { personRoom, sessionRoom } from './rooms.ts';
-
-interface SocketData {
-  actor: Actor;
-}
-type Sockets = Server<ClientEvents, ServerEvents, Record<string, never>, SocketData>;
+import type { ClassSocket, SocketData, Sockets } from './socket-types.ts';
 
 const LARGEST_MESSAGE_BYTES = 100_000;
+/** A browser that is gone is noticed within these two together. */
+const PING_EVERY_MS = 5000;
+const PING_ANSWER_MS = 6000;
 
 export interface SocketsSetup {
   http: HttpServer;
   sessions: SessionsService;
+  classes: ClassServices;
   log: Logger;
   publicOrigins: readonly string[];
+  /** Shared with other processes; null: this process is alone. */
+  redis?: RedisLink | null;
 }
 
-/** The socket server on the product's own port. Only signed-in people of a page of this server get in. */
-export function attachSockets({ http, sessions, log, publicOrigins }: SocketsSetup): { close: () => Promise<void> } {
+/** The socket server on the product's own port. Only people and guests on a page of this server get in. */
+export function attachSockets(setup: SocketsSetup): { close: () => Promise<void> } {
+  const { http, sessions, classes, log, publicOrigins, redis = null } = setup;
   const io: Sockets = new Server(http, {
     path: '/socket.io',
     serveClient: false,
     maxHttpBufferSize: LARGEST_MESSAGE_BYTES,
+    pingInterval: PING_EVERY_MS,
+    pingTimeout: PING_ANSWER_MS,
+    // Chunks and frames are compressed already, or small.
+    perMessageDeflate: false,
     allowRequest: (request, decide) => decide(null, originAllowed(request.headers, publicOrigins)),
+    ...(redis === null ? {} : { adapter: redis.adapter }),
   });
 
+  async function authenticate(cookieHeader: string | undefined): Promise<SocketData> {
+    const cookies = parseCookies(cookieHeader ?? '');
+    const guest = classes.guestPasses.check(cookies[GUEST_COOKIE]);
+    const data: SocketData = { actor: null, guest, seats: new Map(), refused: 0 };
+    try {
+      data.actor = await sessions.authenticate(cookies[ACCESS_COOKIE]);
+    } catch (error) {
+      if (guest === null) throw error;
+    }
+    return data;
+  }
+
   io.use((socket, next) => {
-    const cookies = parseCookies(socket.handshake.headers.cookie ?? '');
-    sessions.authenticate(cookies[ACCESS_COOKIE]).then(
-      (actor) => {
-        socket.data.actor = actor;
+    authenticate(socket.handshake.headers.cookie).then(
+      (data) => {
+        socket.data = data;
         next();
       },
       (error: unknown) => {
@@ -47,12 +69,38 @@ export function attachSockets({ http, sessions, log, publicOrigins }: SocketsSet
     );
   });
 
-  io.on('connection', (socket) => {
+  const hub = createClassHub({ io, classes, log, several: redis !== null });
+
+  io.on('connection', (socket: ClassSocket) => {
     const { actor } = socket.data;
-    void socket.join([personRoom(actor.personId), sessionRoom(actor.sessionId)]);
-    socket.on('clock:ask', (acknowledge) => {
-      if (typeof acknowledge === 'function') acknowledge({ ok: true, data: { serverTimeMs: Date.now() } });
+    if (actor !== null) void socket.join([personRoom(actor.personId), sessionRoom(actor.sessionId)]);
+    const limits = createRateLimits(Date.now);
+    const patience = new Bucket(MOST_REFUSED, Date.now());
+    const refuse = (from: ClassSocket, classId: string | null, why: string): void => {
+      from.data.refused += 1;
+      hub.refused(classId ?? from.data.seats.keys().next().value ?? null);
+      if (patience.take(Date.now())) return;
+      log.warn({ person: from.data.actor?.personId, guest: from.data.guest?.memberId, why }, 'socket cut off');
+      from.disconnect(true);
+    };
+    socket.use(([event, ...args], next) => {
+      const verdict = limits(event);
+      if (verdict === 'ok') {
+        next();
+        return;
+      }
+      refuse(socket, null, verdict);
+      const acknowledge: unknown = args.at(-1);
+      if (typeof acknowledge === 'function') {
+        const detail = verdict === 'unknown' ? 'There is no such event.' : 'Too many requests; wait a moment.';
+        acknowledge({ ok: false, code: verdict === 'unknown' ? 'bad-request' : 'throttled', detail });
+      }
     });
+    socket.on('clock:ask', (acknowledge) => {
+      if (typeof acknowledge === 'function') acknowledge({ ok: true, data: { serverTimeMs: classes.nowMs() } });
+    });
+    attachClassTopics(socket, { classes, hub, log, refuse });
+    socket.on('disconnect', () => hub.gone(socket));
   });
 
   const stopListening = sessions.onRevoked(({ personId, sessionId, reason }) => {
@@ -64,7 +112,9 @@ export function attachSockets({ http, sessions, log, publicOrigins }: SocketsSet
   return {
     close: async () => {
       stopListening();
+      hub.close();
       await io.close();
+      redis?.close();
     },
   };
 }

@@ -4,10 +4,11 @@ import { createAirframeDrafts } from './airframes/airframe-drafts.ts';
 import { createAirframeFiles } from './airframes/airframe-files.ts';
 import { createAirframeRelease } from './airframes/airframe-release.ts';
 import { createAirframeSkins } from './airframes/airframe-skins.ts';
-import { createCompleteAttempt } from './attempts/complete-attempt.ts';
+import { createCloseAttempt, createCompleteAttempt } from './attempts/complete-attempt.ts';
 import { createReadAttempts } from './attempts/read-attempts.ts';
 import { createStartAttempt } from './attempts/start-attempt.ts';
 import { createStoreChunk } from './attempts/store-chunk.ts';
+import { createClassServices } from './classes/create-class-services.ts';
 import { createPrintDebrief } from './debrief/print-debrief.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
 import { createAssignmentsService } from './assignments/assignments.service.ts';
@@ -61,6 +62,16 @@ export function createServices(setup: ServicesSetup) {
   const notices = createNotices({ queueMail, address });
   const tellAuthor = createTellAuthor(notices);
   const reads = createReadAssignments({ database, address, now });
+  const closeAttempt = createCloseAttempt({
+    database,
+    reruns,
+    now,
+    onCompleted: async (on, detail, result, at) => {
+      await tellAuthor(on, detail, result, at);
+      await statements.onCompleted(on, detail.organisationId, detail.id, at);
+    },
+  });
+  const classes = createClassServices({ database, tokenSecret, close: closeAttempt, now });
   return {
     database,
     passwords,
@@ -103,22 +114,16 @@ export function createServices(setup: ServicesSetup) {
     attempts: {
       start: createStartAttempt({ database, now }),
       storeChunk: createStoreChunk({ database, now }),
-      complete: createCompleteAttempt({
-        database,
-        reruns,
-        now,
-        onCompleted: async (on, detail, result, at) => {
-          await tellAuthor(on, detail, result, at);
-          await statements.onCompleted(on, detail.organisationId, detail.id, at);
-        },
-      }),
+      complete: createCompleteAttempt({ database, close: closeAttempt }),
       ...createReadAttempts({ database, now }),
     },
+    classes,
     debrief: {
       ...createDebriefService({ database, now, onSigned: statements.onSigned }),
       print: createPrintDebrief({ database, debriefs, now }),
     },
     close: async (): Promise<void> => {
+      await classes.chunks.settle();
       await Promise.all([
         passwordThreads.close(),
         reruns.close(),

@@ -1,6 +1,6 @@
 /** Attempts: start, chunks, completion, lists and what a replay needs. */
 import { z } from 'zod';
-import { scenarioSchema } from '../scenario/scenario-schema.ts';
+import { eventSchema, scenarioSchema } from '../scenario/scenario-schema.ts';
 import { bothWays, pageOf, pageQueryShape, slugSchema } from './paging.ts';
 import { pinnedAirframeSchema, verdictSchema } from './scenarios.ts';
 
@@ -12,6 +12,15 @@ export const MAX_CHUNK_TICKS = 120;
 export const hash16Schema = z.string().regex(/^[0-9a-f]{16}$/);
 export const endReasonSchema = z.enum(['completed', 'touchdown', 'ground', 'non-finite', 'left']);
 export const drawnValuesSchema = z.record(z.string(), z.record(z.string(), z.number()));
+
+/** An event that a class added to a run. */
+export const injectedEventSchema = z.object({
+  tick: z.number().int().min(0),
+  event: eventSchema,
+  until: z.number().int().min(0).nullable(),
+});
+/** One list for each branch of a class's run. */
+export const injectedBranchesSchema = z.array(z.array(injectedEventSchema));
 
 export const startAttemptBodySchema = z.strictObject({
   scenarioSlug: slugSchema,
@@ -142,6 +151,15 @@ export const attemptDetailSchema = attemptSummarySchema.extend({
   scenario: scenarioSchema,
   airframe: pinnedAirframeSchema,
   result: attemptResultSchema.nullable(),
+  /** Flown in a class: events it added, for each branch; a replay hands them to the run as `branches`. */
+  liveClass: z
+    .object({
+      id: z.uuid(),
+      title: z.string(),
+      run: z.number().int().min(1),
+      branches: injectedBranchesSchema,
+    })
+    .optional(),
 });
 export type AttemptDetail = z.infer<typeof attemptDetailSchema>;
 

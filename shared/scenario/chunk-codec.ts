@@ -10,19 +10,21 @@ export const CHUNK_VERSION = 1;
 export const LARGEST_CHUNK_TICKS = 120;
 export const LARGEST_CHUNK_MARKS = 500;
 export const LARGEST_ENGINE_COUNT = 8;
+export const LARGEST_BRANCH = 10_000;
 /** More than any chunk can need: four axes and eight engines that change every tick, and the marks. */
 export const LARGEST_CHUNK_BYTES = 32_768;
 
 const HEADER_BYTES = 26;
 const MARK_BYTES = 13;
-export const MARK_KINDS = ['freeze', 'resume', 'rate', 'rewind'] as const;
+/** A `branch` mark before a `rewind` names the branch of a class that begins there. */
+export const MARK_KINDS = ['freeze', 'resume', 'rate', 'rewind', 'branch'] as const;
 export type MarkKind = (typeof MARK_KINDS)[number];
 
 export interface ClockMark {
   kind: MarkKind;
   /** Tick at which it happened. */
   tick: number;
-  /** The rate, or the tick rewound to. */
+  /** The rate, the tick rewound to, or the number of the branch. */
   value?: number;
 }
 
@@ -218,7 +220,9 @@ export function decodeBytes(bytes: Uint8Array, engineCount: number): DecodedChun
     if (kind === 'rate' && (value <= 0 || value > 1)) return refuse(`a clock rate of ${value} is not between 0 and 1`);
     if (kind === 'rewind' && (!Number.isInteger(value) || value < 0 || value > tick))
       return refuse('a rewind does not lead back');
-    marks.push(kind === 'rate' || kind === 'rewind' ? { kind, tick, value } : { kind, tick });
+    if (kind === 'branch' && (!Number.isInteger(value) || value < 0 || value > LARGEST_BRANCH))
+      return refuse('a branch has no such number');
+    marks.push(kind === 'freeze' || kind === 'resume' ? { kind, tick } : { kind, tick, value });
   }
   if (at !== bytes.length) return refuse(`${bytes.length - at} bytes are left over`);
   return {

@@ -69,6 +69,15 @@ export class EventQueue {
     this.add(this.withReads(recordOf(event, before ?? null, true), this.get));
   }
 
+  /** Takes an event out again; one that has fired only when `fired` says so. What waits on it never fires. */
+  withdraw(id: string, fired: boolean): void {
+    const record = this.byId.get(id);
+    if (!record || (record.firedTick >= 0 && !fired)) return;
+    this.byId.delete(id);
+    this.records.splice(this.records.indexOf(record), 1);
+    this.pending = this.pending.filter((one) => one !== record);
+  }
+
   /** Resolves the events that a condition reads. */
   private withReads(record: EventRecord, find: (id: string) => EventRecord | undefined): EventRecord {
     for (const id of record.condition?.sinceIds ?? []) {

@@ -38,15 +38,20 @@ export interface Recorder {
   finish(stateHashHex: string): RecordedChunk | null;
 }
 
-export function createRecorder(spec: { attemptKeyHex: string; engineCount: number }): Recorder {
+export function createRecorder(spec: {
+  attemptKeyHex: string;
+  engineCount: number;
+  /** Goes on with a recording of which chunks are stored: number, predecessor's hash and tick of the next. */
+  from?: { index: number; hash: string; tick: number };
+}): Recorder {
   const { engineCount } = spec;
   const channels = Array.from({ length: channelCount(engineCount) }, () => new Int16Array(LARGEST_CHUNK_TICKS));
   let marks: ClockMark[] = [];
   let count = 0;
   let startTick = 0;
-  let nextTick = 0;
-  let index = 0;
-  let previous = spec.attemptKeyHex;
+  let nextTick = spec.from?.tick ?? 0;
+  let index = spec.from?.index ?? 0;
+  let previous = spec.from?.hash ?? spec.attemptKeyHex;
 
   function cut(stateHash: string): RecordedChunk | null {
     if (count === 0 && marks.length === 0) return null;
@@ -175,7 +180,10 @@ export class RecordingPlayer {
       }
     }
     const agrees = content.tickCount > 0 ? this.run.stateHash() === content.stateHash : null;
-    for (const mark of content.marks) if (mark.kind === 'rewind') this.rewind(mark.value ?? 0, content.index);
+    for (const mark of content.marks) {
+      if (mark.kind === 'rewind') this.rewind(mark.value ?? 0, content.index);
+      else if (mark.kind === 'branch') this.branchOff(mark.value ?? 0, content.index);
+    }
     return agrees;
   }
 
@@ -185,6 +193,12 @@ export class RecordingPlayer {
     this.run.step(this.sample);
     if (keep && this.run.tick % SNAPSHOT_TICKS === 0 && this.run.ended === null) this.snapshots.push(this.run.save());
     this.onTick?.(this.run);
+  }
+
+  private branchOff(branch: number, index: number): void {
+    const injected = this.run.spec.branches?.[branch];
+    if (!injected) throw new RecordingError('gap', index, `chunk ${index} goes on with the unknown branch ${branch}`);
+    this.run.reschedule(injected);
   }
 
   private rewind(tick: number, index: number): void {

@@ -27,14 +27,25 @@ export interface ControlSample {
 /** Values drawn from the seed for events with `vary`: event id → member → value in the member's own unit. */
 export type DrawnValues = Record<string, Record<string, number>>;
 
+/** An event that a class added at run time. */
+export interface InjectedEvent {
+  /** Tick before whose input it was added. */
+  tick: number;
+  event: ScenarioEvent;
+  /** Tick before whose input it was taken back unless it had fired; null when it was not. */
+  until: number | null;
+}
+
 export interface RunSpec {
   scenario: Scenario;
   airframe: Airframe;
   seed: number;
   /** Given by the server for an attempt; drawn from the seed otherwise. */
   drawn?: DrawnValues;
-  /** Events a class added at run time, with the tick before whose input they were added; ascending. */
-  injected?: readonly { tick: number; event: ScenarioEvent }[];
+  /** Events a class added at run time; ascending by tick. */
+  injected?: readonly InjectedEvent[];
+  /** The same for every branch of a class's run; the recording says where each begins. Branch 0 takes the place of `injected`. */
+  branches?: readonly (readonly InjectedEvent[])[];
 }
 
 export interface RunOptions {
@@ -118,6 +129,11 @@ export interface Run {
   step(sample: ControlSample): void;
   /** Adds an event at run time (live class); it fires at its own trigger, or now. */
   inject(event: ScenarioEvent): void;
+  /**
+   * Replaces the list of events that a class adds. What differs from the list before must lie at the present tick or after:
+   * who learns of an event late goes back to before it first.
+   */
+  reschedule(injected: readonly InjectedEvent[]): void;
   wantedInto(out: WantedValues): void;
   /** Ends the run as left; results are final. */
   leave(): void;

@@ -18,6 +18,7 @@ import type { EventRecord } from './event-queue.ts';
 import { signalsNeeded } from './measures/create-measure.ts';
 import { ticksOf } from './measures/measure.ts';
 import { compassRad, FULL, plantSetup } from './plant-setup.ts';
+import { InjectionSchedule } from './injection-schedule.ts';
 import type { ControlSample, CreateRun, EndReason, FiredEvent, Run, RunSnapshot } from './run-types.ts';
 import { ScenarioError } from './scenario-errors.ts';
 import { checkAgainstAirframe } from './scenario-schema.ts';
@@ -40,7 +41,6 @@ interface Kept {
   ended: EndReason | null;
   endDetail: string | null;
   freezeRequested: boolean;
-  nextInjection: number;
 }
 
 class Snapshot implements RunSnapshot {
@@ -90,7 +90,6 @@ export const createRun: CreateRun = (spec, options = {}) => {
   const hash = createStateHash();
   const watch = new ValidityWatch(signals);
   const durationTicks = Math.max(1, ticksOf(scenario.duration_s));
-  const injections = spec.injected ?? [];
   const gearHeightM = scenario.runway?.gearHeight_m ?? 0;
   const endsBy: EndReason = scenario.runway ? 'touchdown' : 'ground';
 
@@ -101,7 +100,6 @@ export const createRun: CreateRun = (spec, options = {}) => {
   let ended: EndReason | null = null;
   let endDetail: string | null = null;
   let freezeRequested = false;
-  let nextInjection = 0;
   let now: Observation | null = null;
   const targets: EffectTargets = {
     plant,
@@ -116,6 +114,7 @@ export const createRun: CreateRun = (spec, options = {}) => {
       freezeRequested = true;
     },
   };
+  const schedule = new InjectionSchedule(queue, inject, spec.branches?.[0] ?? spec.injected ?? []);
   const numbersLength = STATE_HASH_LENGTH + ValidityWatch.MEMORY + board.memoryLength;
   if (!lean) plant.hashInto(hash);
 
@@ -173,9 +172,7 @@ export const createRun: CreateRun = (spec, options = {}) => {
 
   function step(sample: ControlSample): void {
     if (ended !== null) return;
-    while (nextInjection < injections.length && injections[nextInjection].tick <= plant.tick) {
-      inject(injections[nextInjection++].event);
-    }
+    schedule.keepTo(plant.tick);
     freezeRequested = false;
     readInputs(sample);
     signals.take();
@@ -248,6 +245,7 @@ export const createRun: CreateRun = (spec, options = {}) => {
     },
     step,
     inject,
+    reschedule: (list) => schedule.replace(list),
     wantedInto(out) {
       plant.wantedInto(out, scenario.technique);
     },
@@ -287,7 +285,6 @@ export const createRun: CreateRun = (spec, options = {}) => {
         ended,
         endDetail,
         freezeRequested,
-        nextInjection,
       });
     },
     restore(snapshot) {
@@ -306,7 +303,8 @@ export const createRun: CreateRun = (spec, options = {}) => {
       messages = [...kept.messages];
       for (const name of Object.keys(display)) delete display[name];
       Object.assign(display, kept.display);
-      ({ ended, endDetail, freezeRequested, nextInjection } = kept);
+      ({ ended, endDetail, freezeRequested } = kept);
+      schedule.moved();
       signals.ended = ended;
       signals.take();
     },

@@ -6,7 +6,7 @@ import type { Scenario, ScenarioDocument } from './scenario-format.ts';
 import { checkScenario } from './scenario-rules.ts';
 
 export { checkAgainstAirframe } from './airframe-rules.ts';
-export { eventSchema, MAX_EVENTS, SCENARIO_FORMAT, scenarioSchema } from './scenario-format.ts';
+export { eventSchema, LANES, MAX_EVENTS, SCENARIO_FORMAT, scenarioSchema } from './scenario-format.ts';
 export type {
   Lane,
   MeasureName,

@@ -54,6 +54,20 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Brief', area: 'scenarios' },
   },
   {
+    path: '/scenarios/:slug/revisions',
+    name: 'scenario-revisions',
+    component: () => import('../views/scenarios/ScenarioRevisionsView.vue'),
+    props: true,
+    meta: { title: 'Revisions', area: 'scenarios' },
+  },
+  {
+    path: '/scenarios/:slug/drafts/:revision(\\d+)',
+    name: 'scenario-editor',
+    component: () => import('../views/scenarios/ScenarioEditorView.vue'),
+    props: true,
+    meta: { title: 'Editor', area: 'scenarios', roles: ['instructor'], purpose: 'write scenarios' },
+  },
+  {
     path: '/assignments',
     name: 'assignments',
     component: () => import('../views/assignments/AssignmentsView.vue'),
@@ -130,6 +144,27 @@ export const routes: RouteRecordRaw[] = [
     name: 'checks',
     component: () => import('../views/checks/ChecksView.vue'),
     meta: { title: 'Checks', area: 'analysis', roles: ['engineer', 'instructor'], purpose: 'see the checks' },
+  },
+  {
+    path: '/classes',
+    name: 'classes',
+    component: () => import('../views/class/ClassListView.vue'),
+    meta: { title: 'Live class', area: 'classes' },
+  },
+  {
+    path: '/classes/:id',
+    name: 'class',
+    component: () => import('../views/class/ClassRoomView.vue'),
+    props: true,
+    // A guest has a pass of the class instead of a session; the server decides.
+    meta: { title: 'Class', area: 'classes', open: true },
+  },
+  {
+    path: '/join/:code?',
+    name: 'join',
+    component: () => import('../views/class/JoinView.vue'),
+    props: (to) => ({ code: typeof to.params['code'] === 'string' ? to.params['code'] : '' }),
+    meta: { title: 'Join a class', open: true, bare: true },
   },
   {
     path: '/controls',

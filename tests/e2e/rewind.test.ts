@@ -25,7 +25,10 @@ describe('rewinding a flight', () => {
     await page.keyboard.press('End');
     for (let i = 0; i < 20; i += 1) await page.keyboard.press('ArrowLeft');
     expect(Number(await slider.inputValue())).toBeLessThan(head);
-    await page.getByRole('button', { name: /^Go on/ }).last().click();
+    await page
+      .getByRole('button', { name: /^Go on/ })
+      .last()
+      .click();
     await page.getByText('Rewound from').first().waitFor();
     await flyHandsOff(page);
     expect(await serverResult(page)).toContain('state for state');

@@ -10,6 +10,7 @@ import { projectFolder } from '../../server/config/project-folder.ts';
 import { type Database, openDatabase } from '../../server/data/database.ts';
 import { DEMONSTRATION } from '../../server/data/seeds/demonstration-people.ts';
 import { seedEmptyDatabase } from '../../server/data/seeds/seed-empty-database.ts';
+import { attachSockets } from '../../server/realtime/sockets.ts';
 import { createServices, type Services } from '../../server/services/create-services.ts';
 
 /** An answer with its body read: JSON where it is, text otherwise. */
@@ -25,7 +26,11 @@ export interface CallSetup {
   type?: string;
   headers?: Record<string, string>;
 }
-export type Client = (method: string, address: string, setup?: CallSetup) => Promise<Answer>;
+export interface Client {
+  (method: string, address: string, setup?: CallSetup): Promise<Answer>;
+  /** The cookie header of this browser. */
+  cookie(): string;
+}
 
 export interface TestServer {
   address: string;
@@ -69,6 +74,8 @@ export async function startTestServer(setup: { now?: () => Date; seed?: boolean 
   const env = { publicOrigins: [], secureCookies: false, proxies: 0, dev: false };
   const http = createServer((request, response) => void app(request, response));
   const app = createApp({ services, log, env });
+  const { sessions, classes } = services;
+  const sockets = attachSockets({ http, sessions, classes, log, publicOrigins: [] });
   await new Promise<void>((resolve) => http.listen(0, '127.0.0.1', resolve));
   const address = `http://127.0.0.1:${(http.address() as AddressInfo).port}`; // listens on a port, not on a pipe
   return {
@@ -88,7 +95,7 @@ export async function startTestServer(setup: { now?: () => Date; seed?: boolean 
     },
     close: async () => {
       http.closeAllConnections();
-      await new Promise((resolve) => http.close(resolve));
+      await sockets.close();
       await services.close();
       await database.close();
       await fresh.drop();
@@ -96,11 +103,13 @@ export async function startTestServer(setup: { now?: () => Date; seed?: boolean 
   };
 }
 
-async function openClient(address: string, mailbox: string | undefined): Promise<Client> {
+export async function openClient(address: string, mailbox: string | undefined): Promise<Client> {
   const cookies = new Map<string, string>();
-  const call: Client = async (method, where, { json, bytes, type, headers = {} } = {}) => {
+  const cookie = (): string => [...cookies].map(([name, value]) => `${name}=${value}`).join('; ');
+  const ask = async (method: string, where: string, setup: CallSetup = {}): Promise<Answer> => {
+    const { json, bytes, type, headers = {} } = setup;
     const sent: Record<string, string> = {
-      cookie: [...cookies].map(([name, value]) => `${name}=${value}`).join('; '),
+      cookie: cookie(),
       [CSRF_HEADER]: decodeURIComponent(cookies.get(CSRF_COOKIE) ?? ''),
       origin: address,
       ...headers,
@@ -120,6 +129,7 @@ async function openClient(address: string, mailbox: string | undefined): Promise
     const read: unknown = isJson && text !== '' ? JSON.parse(text) : text;
     return { status: response.status, headers: response.headers, body: read, bytes: received };
   };
+  const call: Client = Object.assign(ask, { cookie });
   await call('GET', '/api/session');
   if (mailbox !== undefined) {
     const json = {

@@ -1,5 +1,6 @@
 import { Column, Entity, Index, JoinColumn, ManyToOne, PrimaryColumn, type Relation } from 'typeorm';
 import type { AttemptResultEntity } from './attempt-result.entity.ts';
+import { ClassMemberEntity } from './class-member.entity.ts';
 import { PersonEntity } from './person.entity.ts';
 import { ScenarioRevisionEntity } from './scenario-revision.entity.ts';
 import { ScenarioEntity } from './scenario.entity.ts';
@@ -17,12 +18,20 @@ export class AttemptEntity {
   @Column({ name: 'organisation_id', type: 'uuid' })
   organisationId!: string;
 
-  @Column({ name: 'person_id', type: 'uuid' })
-  personId!: string;
+  /** Null when a guest of a class flew it. */
+  @Column({ name: 'person_id', type: 'uuid', nullable: true })
+  personId!: string | null;
 
   @ManyToOne(() => PersonEntity)
   @JoinColumn({ name: 'person_id', foreignKeyConstraintName: 'fk_attempt_person' })
   person?: Relation<PersonEntity>;
+
+  @Column({ name: 'guest_id', type: 'uuid', nullable: true })
+  guestId!: string | null;
+
+  @ManyToOne(() => ClassMemberEntity)
+  @JoinColumn({ name: 'guest_id', foreignKeyConstraintName: 'fk_attempt_guest' })
+  guest?: Relation<ClassMemberEntity>;
 
   @Column({ name: 'scenario_id', type: 'uuid' })
   scenarioId!: string;

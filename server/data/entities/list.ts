@@ -22,6 +22,11 @@ import { SessionEntity } from './session.entity.ts';
 import { SignOffEntity } from './sign-off.entity.ts';
 import { StudyAirframeEntity } from './study-airframe.entity.ts';
 import { StudyEntity } from './study.entity.ts';
+import { ThrottleCountEntity } from './throttle-count.entity.ts';
+import { LiveClassEntity } from './live-class.entity.ts';
+import { ClassMemberEntity } from './class-member.entity.ts';
+import { ClassEntryEntity } from './class-entry.entity.ts';
+import { ClassAttemptEntity } from './class-attempt.entity.ts';
 
 /** Every entity of the data source. */
 export const ENTITIES = [
@@ -49,4 +54,9 @@ export const ENTITIES = [
   StudyEntity,
   StudyAirframeEntity,
   ReportCountEntity,
+  ClassAttemptEntity,
+  ClassEntryEntity,
+  ClassMemberEntity,
+  LiveClassEntity,
+  ThrottleCountEntity,
 ];

@@ -4,6 +4,7 @@ import { Debrief1764547250000 } from './1764547250000-debrief.ts';
 import { EngineersBench1764547300000 } from './1764547300000-engineers-bench.ts';
 import { Rewinds1764547350000 } from './1764547350000-rewinds.ts';
 import { ScenarioDrafts1764547400000 } from './1764547400000-scenario-drafts.ts';
+import { Classes1764547500000 } from './1764547500000-classes.ts';
 import { Assignments1764547700000 } from './1764547700000-assignments.ts';
 
 /** Migrations in the order in which they run. */
@@ -14,5 +15,6 @@ export const MIGRATIONS = [
   EngineersBench1764547300000,
   Rewinds1764547350000,
   ScenarioDrafts1764547400000,
+  Classes1764547500000,
   Assignments1764547700000,
 ];

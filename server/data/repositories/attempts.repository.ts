@@ -1,5 +1,5 @@
 import type { AttemptListQuery, AttemptResult, AttemptStatus, AttemptSummary } from '#shared/contracts/attempts.ts';
-import { Brackets, type EntityManager, IsNull, Not } from 'typeorm';
+import { Brackets, type EntityManager, In, IsNull, Not } from 'typeorm';
 import { AttemptResultEntity } from '../entities/attempt-result.entity.ts';
 import { AttemptEntity } from '../entities/attempt.entity.ts';
 import { criteriaColumn, drawnColumn, endedColumn, stripColumn, verdictColumn, worstColumn } from './json-columns.ts';
@@ -9,7 +9,10 @@ import { type ScenarioRevisionRecord, scenarioRevisionRecord } from './scenarios
 export interface NewAttempt {
   id: string;
   organisationId: string;
+  /** Of a guest of a class: the membership, which is no person's id. */
   personId: string;
+  /** True when `personId` is a guest's. */
+  guest?: boolean;
   scenarioId: string;
   scenarioRevisionId: string;
   number: number;
@@ -70,7 +73,8 @@ function attemptRecord(row: AttemptEntity): AttemptRecord {
   return {
     id: row.id,
     organisationId: row.organisationId,
-    personId: row.personId,
+    personId: row.personId ?? row.guestId ?? '',
+    guest: row.personId === null,
     scenarioId: row.scenarioId,
     scenarioRevisionId: row.scenarioRevisionId,
     number: row.number,
@@ -176,8 +180,10 @@ export function createAttemptsRepository(manager: EntityManager) {
     async findDetail(organisationId: string, id: string): Promise<AttemptDetailRecord | null> {
       const row = await manager
         .createQueryBuilder(AttemptEntity, 't')
-        .innerJoin('t.person', 'p')
+        .leftJoin('t.person', 'p')
         .addSelect(['p.id', 'p.displayName'])
+        .leftJoin('t.guest', 'g')
+        .addSelect(['g.id', 'g.name'])
         .innerJoinAndSelect('t.scenarioRevision', 'r')
         .innerJoinAndSelect('r.scenario', 's')
         .innerJoinAndSelect('r.airframeRevision', 'f')
@@ -186,7 +192,8 @@ export function createAttemptsRepository(manager: EntityManager) {
         .where('t.id = :id AND t.organisationId = :organisationId', { id, organisationId })
         .getOne();
       if (row === null) return null;
-      const { person, scenarioRevision } = row;
+      const { guest, scenarioRevision } = row;
+      const person = row.person ?? (guest ? { id: guest.id, displayName: `${guest.name} (guest)` } : undefined);
       if (person === undefined || scenarioRevision?.airframeRevision === undefined) {
         throw new Error(`Attempt ${id} was read without its person or scenario.`);
       }
@@ -212,7 +219,30 @@ export function createAttemptsRepository(manager: EntityManager) {
     },
 
     async insert(attempt: NewAttempt): Promise<void> {
-      await manager.insert(AttemptEntity, { ...attempt, status: 'flying', lastChunkAt: null, completedAt: null });
+      const { guest = false, personId, ...columns } = attempt;
+      const who = guest ? { personId: null, guestId: personId } : { personId, guestId: null };
+      await manager.insert(AttemptEntity, {
+        ...columns,
+        ...who,
+        status: 'flying',
+        lastChunkAt: null,
+        completedAt: null,
+      });
+    },
+
+    /** Locks some attempts; returns those that are complete. */
+    async lockAll(ids: readonly string[]): Promise<string[]> {
+      const rows = await manager.find(AttemptEntity, {
+        select: { id: true, status: true },
+        where: { id: In([...ids]) },
+        order: { id: 'ASC' },
+        lock: { mode: 'pessimistic_write' },
+      });
+      return rows.filter(({ status }) => status === 'complete').map(({ id }) => id);
+    },
+
+    async markChunksReceived(ids: readonly string[], at: Date): Promise<void> {
+      await manager.update(AttemptEntity, { id: In([...ids]) }, { lastChunkAt: at });
     },
 
     async markChunkReceived(id: string, at: Date): Promise<void> {
@@ -233,6 +263,19 @@ export function createAttemptsRepository(manager: EntityManager) {
     async insertResult(id: string, attemptId: string, counts: boolean, result: ResultRecord): Promise<void> {
       const { computedAt, ...columns } = result;
       await manager.save(AttemptResultEntity, { id, attemptId, counts, ...columns, computedAt: new Date(computedAt) });
+    },
+
+    /** Results that count, of some attempts. */
+    async resultsOf(attemptIds: readonly string[]): Promise<Map<string, ResultRecord>> {
+      if (attemptIds.length === 0) return new Map();
+      const rows = await manager.find(AttemptResultEntity, { where: { attemptId: In([...attemptIds]), counts: true } });
+      return new Map(rows.map((row) => [row.attemptId, resultRecord(row)]));
+    },
+
+    async findAll(organisationId: string, ids: readonly string[]): Promise<AttemptRecord[]> {
+      if (ids.length === 0) return [];
+      const rows = await manager.find(AttemptEntity, { where: { organisationId, id: In([...ids]) } });
+      return rows.map(attemptRecord);
     },
 
     async findResult(attemptId: string): Promise<ResultRecord | null> {

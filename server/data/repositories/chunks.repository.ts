@@ -1,4 +1,4 @@
-import type { EntityManager } from 'typeorm';
+import { type EntityManager, MoreThanOrEqual } from 'typeorm';
 import { AttemptChunkEntity } from '../entities/attempt-chunk.entity.ts';
 
 export interface ChunkRecord {
@@ -37,6 +37,33 @@ export function createChunksRepository(manager: EntityManager) {
 
     async insert(chunk: ChunkRecord): Promise<void> {
       await manager.insert(AttemptChunkEntity, chunk);
+    },
+
+    async insertAll(chunks: readonly ChunkRecord[]): Promise<void> {
+      await manager.insert(AttemptChunkEntity, [...chunks]);
+    },
+
+    /** Some chunks in order, from a number on. */
+    async from(attemptId: string, index: number, most: number): Promise<ChunkRecord[]> {
+      const rows = await manager.find(AttemptChunkEntity, {
+        where: { attemptId, index: MoreThanOrEqual(index) },
+        order: { index: 'ASC' },
+        take: most,
+      });
+      return rows.map(chunkRecord);
+    },
+
+    /** How many chunks are stored of each of some attempts. */
+    async counts(attemptIds: readonly string[]): Promise<Map<string, number>> {
+      if (attemptIds.length === 0) return new Map();
+      const rows: { id: string; n: string }[] = await manager
+        .createQueryBuilder(AttemptChunkEntity, 'c')
+        .select('c.attemptId', 'id')
+        .addSelect('COUNT(*)', 'n')
+        .where('c.attemptId IN (:...attemptIds)', { attemptIds: [...attemptIds] })
+        .groupBy('c.attemptId')
+        .getRawMany();
+      return new Map(rows.map(({ id, n }) => [id, Number(n)]));
     },
 
     async all(attemptId: string): Promise<ChunkRecord[]> {

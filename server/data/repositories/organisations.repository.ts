@@ -1,4 +1,4 @@
-import type { OrganisationSettings } from '#shared/contracts/session.ts';
+import { organisationSettingsSchema, type OrganisationSettings } from '#shared/contracts/session.ts';
 import type { EntityManager } from 'typeorm';
 import { CohortMemberEntity } from '../entities/cohort-member.entity.ts';
 import { CohortEntity } from '../entities/cohort.entity.ts';
@@ -26,6 +26,14 @@ export function createOrganisationsRepository(manager: EntityManager) {
         where: { id: organisationId },
         lock: { mode: 'pessimistic_write' },
       });
+    },
+
+    async settings(id: string): Promise<OrganisationSettings> {
+      const row = await manager.findOneOrFail(OrganisationEntity, {
+        select: { id: true, settings: true },
+        where: { id },
+      });
+      return organisationSettingsSchema.parse(row.settings);
     },
 
     async insert({ at, ...organisation }: NewOrganisation): Promise<void> {

@@ -72,6 +72,27 @@ export function createPeopleRepository(manager: EntityManager) {
       };
     },
 
+    /** Active trainees of some cohorts, by name. */
+    async traineesOf(
+      organisationId: string,
+      cohortIds: readonly string[],
+    ): Promise<{ id: string; displayName: string }[]> {
+      if (cohortIds.length === 0) return [];
+      const rows = await manager
+        .createQueryBuilder(PersonEntity, 'p')
+        .select(['p.id', 'p.displayName'])
+        .where(`p.organisationId = :organisationId AND p.status = 'active'`, { organisationId })
+        .andWhere(
+          `EXISTS (SELECT 1 FROM cohort_member m INNER JOIN cohort c ON c.id = m.cohort_id
+            WHERE m.person_id = p.id AND m.cohort_id IN (:...cohortIds) AND c.organisation_id = :organisationId)`,
+          { cohortIds: [...cohortIds] },
+        )
+        .andWhere(`EXISTS (SELECT 1 FROM person_role r WHERE r.person_id = p.id AND r.role = 'trainee')`)
+        .orderBy('p.displayName', 'ASC')
+        .getMany();
+      return rows.map(({ id, displayName }) => ({ id, displayName }));
+    },
+
     async exists(organisationId: string, personId: string): Promise<boolean> {
       return manager.exists(PersonEntity, { where: { id: personId, organisationId } });
     },

@@ -7,6 +7,7 @@ import { notFound, ProblemError } from '../problem-error.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
 import type { WorkerPool } from '../workers/worker-pool.ts';
 import { rerunResultSchema, type RerunJob } from './result-of-run.ts';
+import { flownInClass } from './store-chunk.ts';
 
 export function attemptResult({
   verdict: _verdict,
@@ -18,33 +19,47 @@ export function attemptResult({
   return result;
 }
 
-/** Closes an attempt: integrates its recording again in a worker and stores that as the result. Repeating it is no error. */
-export function createCompleteAttempt(setup: {
+export interface CloseRequest {
+  organisationId: string;
+  id: string;
+  /** How many chunks there must be; null: those that are stored. */
+  chunkCount: number | null;
+  /** Events in force on each branch, when it was flown in a class. */
+  branches?: RerunJob['branches'];
+  /** Who asks; null for the server itself. */
+  actorId: string | null;
+  address: string | null;
+}
+
+interface CloseSetup {
   database: Database;
   reruns: WorkerPool;
   now: () => Date;
   /** What follows from a completion, within its transaction. */
   onCompleted: (on: Repositories, detail: AttemptDetailRecord, result: ResultRecord, at: Date) => Promise<void>;
-}) {
-  const { database, reruns, now, onCompleted } = setup;
-  return async (actor: Actor, id: string, body: CompleteAttemptBody, caller: Caller): Promise<AttemptResult> => {
-    requireDeed(actor, 'attempt.fly');
-    const detail = await database.attempts.findDetail(actor.organisationId, id);
-    if (detail === null || detail.personId !== actor.personId) throw notFound('attempt');
+}
+
+/** Integrates a recording again in a worker and stores that as the result. Repeating it is no error. */
+export function createCloseAttempt({ database, reruns, now, onCompleted }: CloseSetup) {
+  return async (request: CloseRequest): Promise<AttemptResult> => {
+    const { organisationId, id, chunkCount, branches, actorId, address } = request;
+    const detail = await database.attempts.findDetail(organisationId, id);
+    if (detail === null) throw notFound('attempt');
     if (detail.result !== null) return attemptResult(detail.result);
     const chunks = await database.chunks.all(id);
-    if (chunks.length < body.chunkCount) {
-      const missing = Array.from({ length: body.chunkCount - chunks.length }, (_, i) => chunks.length + i);
+    const wanted = chunkCount ?? chunks.length;
+    if (chunks.length < wanted) {
+      const missing = Array.from({ length: wanted - chunks.length }, (_, i) => chunks.length + i);
       throw new ProblemError(
         'chunks-missing',
         `${missing.length} chunks have not arrived yet; send them and complete again.`,
         { missing },
       );
     }
-    if (chunks.length > body.chunkCount) {
+    if (chunks.length > wanted) {
       throw new ProblemError(
         'conflict',
-        `${chunks.length} chunks are stored, not ${body.chunkCount}; complete with that number.`,
+        `${chunks.length} chunks are stored, not ${wanted}; complete with that number.`,
       );
     }
     const job: RerunJob = {
@@ -54,12 +69,13 @@ export function createCompleteAttempt(setup: {
       drawn: detail.drawn,
       chunkKey: detail.chunkKey,
       chunks: chunks.map(({ hash, bytes }) => ({ hash, bytes: new Uint8Array(bytes) })),
+      branches,
     };
     const computed = rerunResultSchema.parse(await reruns.run(job));
     const at = now();
     const result: ResultRecord = { ...computed, computedAt: at.toISOString() };
     return database.transaction(async (on) => {
-      const locked = await on.attempts.lock(actor.organisationId, id);
+      const locked = await on.attempts.lock(organisationId, id);
       if (locked === null) throw notFound('attempt');
       const before = await on.attempts.findResult(id);
       if (before !== null) return attemptResult(before);
@@ -69,9 +85,9 @@ export function createCompleteAttempt(setup: {
       await on.attempts.insertResult(randomUUID(), id, true, result);
       await on.attempts.markComplete(id, at);
       await on.audit.append({
-        organisationId: actor.organisationId,
+        organisationId,
         at,
-        actorId: actor.personId,
+        actorId,
         deed: 'attempt.completed',
         subjectKind: 'attempt',
         subjectId: id,
@@ -81,10 +97,25 @@ export function createCompleteAttempt(setup: {
           statesAgree: result.statesAgree,
           modelVersion: result.modelVersion,
         },
-        address: caller.address,
+        address,
       });
       await onCompleted(on, detail, result, at);
       return attemptResult(result);
     });
+  };
+}
+export type CloseAttempt = ReturnType<typeof createCloseAttempt>;
+
+/** Closes one's own attempt. */
+export function createCompleteAttempt(setup: { database: Database; close: CloseAttempt }) {
+  const { database, close } = setup;
+  return async (actor: Actor, id: string, body: CompleteAttemptBody, caller: Caller): Promise<AttemptResult> => {
+    requireDeed(actor, 'attempt.fly');
+    const { organisationId, personId } = actor;
+    const attempt = await database.attempts.find(organisationId, id);
+    if (attempt === null || attempt.personId !== personId) throw notFound('attempt');
+    if ((await database.classes.findAttempt(id)) !== null) throw flownInClass();
+    const { chunkCount } = body;
+    return close({ organisationId, id, chunkCount, actorId: personId, address: caller.address });
   };
 }

@@ -6,6 +6,7 @@ import { may, requireDeed, type Actor } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
 import { attemptResult } from './complete-attempt.ts';
 import { storedAirframe, storedScenario } from './attempt-data.ts';
+import { flownIn } from './flown-in-class.ts';
 
 /** A flight that has been silent for this long is shown as abandoned; it may still be delivered. */
 const QUIET_AFTER_MS = 2 * 3600 * 1000;
@@ -66,6 +67,7 @@ export function createReadAttempts({ database, now }: { database: Database; now:
           airframe: storedAirframe(detail.scenario.airframe.document),
         },
         result: result === null ? null : attemptResult(result),
+        liveClass: await flownIn(database, id),
       };
     },
 

@@ -4,6 +4,7 @@ import {
   criterionResultSchema,
   drawnValuesSchema,
   hash16Schema,
+  injectedBranchesSchema,
   stripSchema,
   type AttemptStrip,
 } from '#shared/contracts/attempts.ts';
@@ -24,6 +25,7 @@ export const rerunJobSchema = z.object({
   drawn: drawnValuesSchema,
   chunkKey: hash16Schema,
   chunks: z.array(z.object({ hash: hash16Schema, bytes: z.instanceof(Uint8Array) })),
+  branches: injectedBranchesSchema.optional(),
 });
 export type RerunJob = z.infer<typeof rerunJobSchema>;
 
@@ -49,6 +51,7 @@ export function resultOfRun(job: RerunJob): RerunResult {
     airframe: storedAirframe(job.airframe),
     seed: job.seed,
     drawn: job.drawn,
+    branches: job.branches,
   });
   const betaDeg: number[] = [run.now.betaRad / DEG];
   const reaction = createReaction();

@@ -74,6 +74,7 @@ export function debriefSeries(job: RerunJob): DebriefSeries {
     airframe: storedAirframe(job.airframe),
     seed: job.seed,
     drawn: job.drawn,
+    branches: job.branches,
   };
   const run = createRun(spec);
   const startPsi = run.now.psiRad;
@@ -124,7 +125,8 @@ export function debriefSeries(job: RerunJob): DebriefSeries {
 
 function referenceTrace(spec: RunSpec): DebriefTrace | null {
   try {
-    const run = createRun(spec);
+    // The events of the branch that counted: the last one.
+    const run = createRun({ ...spec, branches: undefined, injected: spec.branches?.at(-1) });
     const trace = emptyTrace();
     const startPsi = run.now.psiRad;
     noteInto(trace, run, startPsi);

@@ -8,6 +8,7 @@ import type { WorkerPool } from '../workers/worker-pool.ts';
 import { debriefSeriesSchema, type DebriefSeries, type DebriefTrace } from './debrief-series.ts';
 import { standingEntry } from './debrief.service.ts';
 import type { RerunJob } from '../attempts/result-of-run.ts';
+import { flownIn } from '../attempts/flown-in-class.ts';
 
 const WORDS = { met: 'Met', near: 'Close', 'not-met': 'Not met', 'not-reached': 'Not reached' } as const;
 const TICKS_PER_S = 120;
@@ -40,6 +41,7 @@ export function createPrintDebrief(setup: { database: Database; debriefs: Worker
       drawn: detail.drawn,
       chunkKey: detail.chunkKey,
       chunks: chunks.map(({ hash, bytes }) => ({ hash, bytes: new Uint8Array(bytes) })),
+      branches: (await flownIn(database, id))?.branches,
     };
     const series = debriefSeriesSchema.parse(await debriefs.run(job));
     const atWords = (tick: number): string => {

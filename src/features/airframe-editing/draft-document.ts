@@ -1,6 +1,10 @@
+import { z } from 'zod';
 /** An airframe file being edited: plain JSON, changed only through pointers, with undo to the start of the session. */
 
 export type Json = null | boolean | number | string | readonly Json[] | { readonly [name: string]: Json };
+
+/** A parsed answer or file as JSON, whatever its type said. @throws when it holds anything that JSON cannot. */
+export const jsonOf = (value: unknown): Json => z.json().parse(value);
 
 export interface DraftHistory {
   readonly present: Json;

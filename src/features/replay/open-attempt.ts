@@ -19,7 +19,9 @@ export async function openAttempt(id: string, signal: AbortSignal): Promise<Open
       airframe: detail.airframe.airframe,
       seed: detail.seed,
       drawn: detail.drawn,
+      branches: detail.liveClass?.branches,
       attemptKeyHex: detail.chunkKey,
+      ...(detail.liveClass && { branches: detail.liveClass.branches }),
     },
     chunks.map((chunk) => ({ hash: chunk.hash, bytes: bytesFromBase64(chunk.bytesBase64) })),
   );

@@ -21,6 +21,7 @@ export async function loadMoment(attemptId: string, signal: AbortSignal): Promis
       airframe: attempt.airframe.airframe,
       seed: attempt.seed,
       drawn: attempt.drawn,
+      branches: attempt.liveClass?.branches,
       attemptKeyHex: attempt.chunkKey,
     },
     chunks.map((chunk) => ({ hash: chunk.hash, bytes: bytesFromBase64(chunk.bytesBase64) })),

@@ -291,7 +291,7 @@ describe('injected events', () => {
     fly(live, 150);
     live.inject(event);
     fly(live);
-    const again = fly(createRun({ ...specOf({}), injected: [{ tick: 150, event }] }));
+    const again = fly(createRun({ ...specOf({}), injected: [{ tick: 150, event, until: null }] }));
     expect(again.stateHash()).toBe(live.stateHash());
     expect(firedAt(again)).toEqual(firedAt(live));
   });
