@@ -23,6 +23,7 @@ import { type BudgetsRepository, createBudgetsRepository } from './repositories/
 import { type RecordsRepository, createRecordsRepository } from './repositories/records.repository.ts';
 import { type StatementsRepository, createStatementsRepository } from './repositories/statements.repository.ts';
 import { type RetentionRepository, createRetentionRepository } from './repositories/retention.repository.ts';
+import { type NoticeMailRepository, createNoticeMailRepository } from './repositories/notice-mail.repository.ts';
 import { type PersonalRepository, createPersonalRepository } from './repositories/personal.repository.ts';
 import { type ReportCountsRepository, createReportCountsRepository } from './repositories/report-counts.repository.ts';
 import {
@@ -58,6 +59,7 @@ export interface Repositories {
   readonly statements: StatementsRepository;
   readonly retention: RetentionRepository;
   readonly personal: PersonalRepository;
+  readonly noticeMail: NoticeMailRepository;
   readonly playlists: PlaylistsRepository;
   readonly audit: AuditRepository;
 }
@@ -93,6 +95,7 @@ function repositories(manager: EntityManager): Repositories {
     statements: createStatementsRepository(manager),
     retention: createRetentionRepository(manager),
     personal: createPersonalRepository(manager),
+    noticeMail: createNoticeMailRepository(manager),
     playlists: createPlaylistsRepository(manager),
     audit: createAuditRepository(manager),
   };

@@ -12,6 +12,7 @@ import { createClassServices } from './classes/create-class-services.ts';
 import { createPrintDebrief } from './debrief/print-debrief.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
 import { createAssignmentsService } from './assignments/assignments.service.ts';
+import { createKeepMail } from './assignments/keep-mail.ts';
 import { createNotices, type QueueMail } from './assignments/notices.ts';
 import { createTellAuthor } from './assignments/tell-author.ts';
 import { createReadAssignments } from './assignments/read-assignments.ts';
@@ -43,13 +44,14 @@ export interface ServicesSetup {
   now?: () => Date;
   /** Address under which people reach the product, for links in mail. */
   address?: () => string;
+  /** Where messages of assignments go; they wait in a table of their own when absent. */
   queueMail?: QueueMail;
 }
 
 /** All use cases over one database, with the threads they need. `close` ends the threads. */
 export function createServices(setup: ServicesSetup) {
   const { database, tokenSecret, now = () => new Date(), address = () => 'http://localhost' } = setup;
-  const { queueMail = () => Promise.resolve() } = setup;
+  const { queueMail = createKeepMail(now) } = setup;
   const passwordThreads = createWorkerPool('password', 1);
   const reruns = createWorkerPool('rerun', 2);
   const reports = createWorkerPool('analysis-report', 1);
