@@ -7,7 +7,7 @@ export interface Area {
   roles: readonly Role[];
 }
 
-export type AreaName = 'my-flights' | 'airframes' | 'analysis' | 'scenarios';
+export type AreaName = 'my-flights' | 'airframes' | 'analysis' | 'scenarios' | 'classes';
 
 const EVERYONE: readonly Role[] = ['trainee', 'instructor', 'engineer', 'administrator'];
 
@@ -17,6 +17,7 @@ export const AREAS: readonly Area[] = [
   { name: 'airframes', label: 'Airframes', to: '/airframes', roles: ['engineer', 'instructor'] },
   { name: 'analysis', label: 'Analysis', to: '/analysis', roles: ['engineer', 'instructor'] },
   { name: 'scenarios', label: 'Scenarios', to: '/scenarios', roles: EVERYONE },
+  { name: 'classes', label: 'Live class', to: '/classes', roles: ['trainee', 'instructor', 'administrator'] },
 ];
 
 export function areasFor(roles: readonly Role[]): Area[] {

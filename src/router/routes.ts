@@ -100,6 +100,27 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Checks', area: 'analysis', roles: ['engineer', 'instructor'], purpose: 'see the checks' },
   },
   {
+    path: '/classes',
+    name: 'classes',
+    component: () => import('../views/class/ClassListView.vue'),
+    meta: { title: 'Live class', area: 'classes' },
+  },
+  {
+    path: '/classes/:id',
+    name: 'class',
+    component: () => import('../views/class/ClassRoomView.vue'),
+    props: true,
+    // A guest has a pass of the class instead of a session; the server decides.
+    meta: { title: 'Class', area: 'classes', open: true },
+  },
+  {
+    path: '/join/:code?',
+    name: 'join',
+    component: () => import('../views/class/JoinView.vue'),
+    props: (to) => ({ code: typeof to.params['code'] === 'string' ? to.params['code'] : '' }),
+    meta: { title: 'Join a class', open: true, bare: true },
+  },
+  {
     path: '/controls',
     name: 'controls',
     component: () => import('../views/controls/ControlsView.vue'),

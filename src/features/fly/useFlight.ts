@@ -7,6 +7,7 @@ import type { ButtonControl } from '../../runner/input/device-profile.ts';
 import { devicesOf } from '../../runner/input/device-reading.ts';
 import { causeOf } from '../../services/api-error.ts';
 import { startAttempt } from '../../services/attempts-api.ts';
+import { newKey } from '../../services/new-key.ts';
 import { getScenario } from '../../services/scenarios-api.ts';
 import { useCockpitStore } from '../../stores/cockpit.store.ts';
 import { useControlsStore } from '../../stores/controls.store.ts';
@@ -205,13 +206,4 @@ export function useFlight(slug: () => string, revision: () => number | undefined
     status,
     serverResult,
   };
-}
-
-/** A random identifier; `crypto.randomUUID` exists on secure pages only. */
-function newKey(): string {
-  const b = crypto.getRandomValues(new Uint8Array(16));
-  b[6] = (b[6] & 0x0f) | 0x40;
-  b[8] = (b[8] & 0x3f) | 0x80;
-  const hex = Array.from(b, (x) => x.toString(16).padStart(2, '0')).join('');
-  return `${hex.slice(0, 8)}-${hex.slice(8, 12)}-${hex.slice(12, 16)}-${hex.slice(16, 20)}-${hex.slice(20)}`;
 }

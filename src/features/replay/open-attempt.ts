@@ -21,6 +21,7 @@ export async function openAttempt(id: string, signal: AbortSignal): Promise<Open
       drawn: detail.drawn,
       branches: detail.liveClass?.branches,
       attemptKeyHex: detail.chunkKey,
+      ...(detail.liveClass && { branches: detail.liveClass.branches }),
     },
     chunks.map((chunk) => ({ hash: chunk.hash, bytes: bytesFromBase64(chunk.bytesBase64) })),
   );

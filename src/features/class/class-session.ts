@@ -1,0 +1,463 @@
+/**
+ * One browser in a class: enters, keeps the log, measures the server's clock, flies or looks on, and comes back by
+ * itself after a lost connection. Nothing here runs by itself: `step()` is called once a picture.
+ */
+import type { ClassPass, ClassScenario } from '#shared/contracts/classes.ts';
+import type { BoardRow, ClassControl, MemberStatus, PresentedView, Telemetry } from '#shared/contracts/class-socket.ts';
+import { type ClockAnswer, clockOffset } from '#shared/scenario/class-clock.ts';
+import { ClassFlight } from '#shared/scenario/class-flight.ts';
+import { Follower } from '#shared/scenario/class-follow.ts';
+import { decodeFrame, fromBase64, toBase64 } from '#shared/scenario/class-frames.ts';
+import type { ClassEntry } from '#shared/scenario/class-log.ts';
+import { type ClassRun, type ClassState, EMPTY_CLASS, branchesOf, foldEntry } from '#shared/scenario/class-state.ts';
+import { type RecordedChunk, decodeChunk } from '#shared/scenario/recording.ts';
+import { createRun } from '#shared/scenario/run.ts';
+import type { ControlSample, Run, RunSpec } from '#shared/scenario/run-types.ts';
+import { type ClassSocket, SocketRefusal, request } from '../../services/class-socket.ts';
+
+type Without<C> = C extends ClassControl ? Omit<C, 'classId' | 'key'> : never;
+/** A deed of the instructor without its class and key. */
+export type Deed = Without<ClassControl>;
+
+export interface ClassSessionEvents {
+  /** The log, the presence or the connection has changed. */
+  changed: () => void;
+  board: (run: number, rows: readonly BoardRow[]) => void;
+  view: (view: PresentedView) => void;
+  closed: (reason: 'removed' | 'ended' | 'replaced') => void;
+  /** Something to say in a line. */
+  said: (text: string) => void;
+  /** After every tick of one's own flight. */
+  tick: (run: Run) => void;
+}
+
+export interface ClassSessionSetup {
+  socket: ClassSocket;
+  classId: string;
+  scenario: (index: number) => Promise<ClassScenario>;
+  newKey: () => string;
+  events: ClassSessionEvents;
+}
+
+const CLOCK_ASKS = 5;
+
+export class ClassSession {
+  state: ClassState = EMPTY_CLASS;
+  entries: ClassEntry[] = [];
+  pass: ClassPass | null = null;
+  present = new Set<string>();
+  readonly statuses = new Map<string, MemberStatus>();
+  view: PresentedView | null = null;
+  offsetMs = 0;
+  roundTripMs = 0;
+  /** Entered, with a live connection. */
+  inside = false;
+  flight: ClassFlight | null = null;
+  attemptId: string | null = null;
+  follower: Follower | null = null;
+  /** Attempt looked on at. */
+  followed: string | null = null;
+  /** Attempt whose inputs arrive, known before anybody asked for it. */
+  heard: string | null = null;
+  unacknowledged = 0;
+  private readonly scenarios = new Map<number, Promise<ClassScenario>>();
+  private unsent: RecordedChunk[] = [];
+  private sending = false;
+  private catching = false;
+  private early: { attemptId: string; frame: string }[] = [];
+  private closed = false;
+  private flownRun = 0;
+  private taking = false;
+  private readonly setup: ClassSessionSetup;
+
+  constructor(setup: ClassSessionSetup) {
+    this.setup = setup;
+    const { socket, classId } = setup;
+    socket.on('connect', () => {
+      if (!this.closed) void this.enter();
+    });
+    socket.on('disconnect', () => {
+      this.inside = false;
+      setup.events.changed();
+    });
+    socket.on('connect_error', () => setup.events.changed());
+    socket.on('class:appended', (news) => {
+      if (news.classId === classId) this.take(news.entries);
+    });
+    socket.on('class:beat', ({ classId: id, seq }) => {
+      if (id === classId && seq > this.state.seq) void this.fill();
+    });
+    socket.on('class:presence', ({ classId: id, member, here }) => {
+      if (id !== classId) return;
+      if (here) this.present.add(member);
+      else this.present.delete(member);
+      setup.events.changed();
+    });
+    socket.on('class:statuses', ({ classId: id, statuses }) => {
+      if (id !== classId) return;
+      for (const { member, status } of statuses) this.statuses.set(member, status);
+      setup.events.changed();
+    });
+    socket.on('class:closed', ({ classId: id, reason }) => {
+      if (id !== classId) return;
+      this.closed = true;
+      setup.events.closed(reason);
+    });
+    socket.on('run:inputs', (news) => this.frame(news));
+    socket.on('board:rows', ({ classId: id, run, rows }) => {
+      if (id === classId) setup.events.board(run, rows);
+    });
+    socket.on('view:moved', ({ classId: id, view }) => {
+      if (id !== classId) return;
+      this.view = view;
+      setup.events.view(view);
+    });
+  }
+
+  open(): void {
+    this.setup.socket.connect();
+  }
+  close(): void {
+    this.closed = true;
+    this.setup.socket.disconnect();
+  }
+
+  get run(): ClassRun | null {
+    return this.state.run;
+  }
+  get member(): string {
+    return this.pass?.member ?? '';
+  }
+  serverNow(): number {
+    return Date.now() + this.offsetMs;
+  }
+  /** The aeroplane to draw: one's own, or the one looked on at. */
+  get shown(): Run | null {
+    return this.follower?.line.run ?? this.flight?.line.run ?? null;
+  }
+
+  private request<E extends Parameters<typeof request>[1]>(event: E, body: Parameters<typeof request<E>>[2]) {
+    return request(this.setup.socket, event, body);
+  }
+
+  async control(deed: Deed): Promise<void> {
+    // A deed with its class and key is a control: the union is taken apart and put together again.
+    const body = { classId: this.setup.classId, key: this.setup.newKey(), ...deed } as ClassControl;
+    const { entries } = await this.request('class:control', body);
+    this.take(entries);
+  }
+
+  async followBoard(follow: boolean): Promise<void> {
+    await this.request('board:follow', { classId: this.setup.classId, follow });
+  }
+  moveView(view: PresentedView): void {
+    if (this.inside) this.setup.socket.emit('view:move', { classId: this.setup.classId, view });
+  }
+  tell(status: MemberStatus): void {
+    if (this.inside) this.setup.socket.emit('member:tell', { classId: this.setup.classId, status });
+  }
+  telemetry(telemetry: Telemetry): void {
+    const { run } = this.state;
+    if (this.inside && run)
+      this.setup.socket.emit('run:telemetry', { classId: this.setup.classId, run: run.run, telemetry });
+  }
+  async leave(): Promise<void> {
+    await this.request('class:leave', { classId: this.setup.classId });
+    this.close();
+  }
+
+  private async measureClock(): Promise<void> {
+    const answers: ClockAnswer[] = [];
+    for (let i = 0; i < CLOCK_ASKS; i += 1) {
+      const askedMs = Date.now();
+      const serverMs = await new Promise<number | null>((resolve) => {
+        const timer = setTimeout(() => resolve(null), 3000);
+        this.setup.socket.emit('clock:ask', (answer) => {
+          clearTimeout(timer);
+          resolve(answer.ok ? answer.data.serverTimeMs : null);
+        });
+      });
+      if (serverMs !== null) answers.push({ askedMs, serverMs, answeredMs: Date.now() });
+    }
+    if (answers.length === 0) return;
+    const { offsetMs, roundTripMs } = clockOffset(answers);
+    this.offsetMs = offsetMs;
+    this.roundTripMs = roundTripMs;
+  }
+
+  private async enter(): Promise<void> {
+    try {
+      await this.measureClock();
+      const entered = await this.request('class:enter', { classId: this.setup.classId, since: this.state.seq });
+      this.pass = entered.pass;
+      this.inside = entered.pass.admitted;
+      this.present = new Set(entered.present);
+      for (const { member, status } of entered.statuses) this.statuses.set(member, status);
+      if (entered.view) {
+        this.view = entered.view;
+        this.setup.events.view(entered.view);
+      }
+      this.take(entered.entries);
+      if (this.followed !== null) await this.catchUp(this.followed);
+      if (this.unsent.length > 0) void this.send();
+    } catch (error) {
+      this.setup.events.said(error instanceof Error ? error.message : 'The class cannot be entered.');
+      if (error instanceof SocketRefusal && error.code === 'not-a-member') this.setup.events.closed('removed');
+    }
+    this.setup.events.changed();
+  }
+
+  private take(entries: readonly ClassEntry[]): void {
+    for (const entry of entries) {
+      if (entry.seq <= this.state.seq) continue;
+      if (entry.seq !== this.state.seq + 1) {
+        void this.fill();
+        return;
+      }
+      const before = this.state.run?.run ?? 0;
+      this.state = foldEntry(this.state, entry);
+      this.entries.push(entry);
+      if ((this.state.run?.run ?? 0) !== before) this.newRun();
+      if (entry.kind === 'shown' || entry.kind === 'controls') this.heard = null;
+      if (entry.kind === 'removed' && entry.member === this.member) this.inside = false;
+      if (entry.kind === 'joined' && entry.member === this.member && this.pass)
+        this.pass = { ...this.pass, admitted: true };
+    }
+    const { run } = this.state;
+    if (run) {
+      this.flight?.update(run);
+      this.follower?.update(run, this.serverNow());
+    }
+    this.setup.events.changed();
+  }
+
+  private newRun(): void {
+    this.flight = null;
+    this.follower = null;
+    this.followed = null;
+    this.heard = null;
+    this.attemptId = null;
+    this.early = [];
+  }
+
+  private async fill(): Promise<void> {
+    try {
+      const { entries } = await this.request('class:entries', { classId: this.setup.classId, since: this.state.seq });
+      this.take(entries);
+    } catch {
+      // The next beat asks again.
+    }
+  }
+
+  scenarioOf(index: number): Promise<ClassScenario> {
+    let known = this.scenarios.get(index);
+    if (!known) {
+      known = this.setup.scenario(index);
+      known.catch(() => this.scenarios.delete(index));
+      this.scenarios.set(index, known);
+    }
+    return known;
+  }
+
+  private async spec(run: ClassRun): Promise<RunSpec> {
+    const { scenario, airframe } = await this.scenarioOf(run.index);
+    return { scenario, airframe: airframe.airframe, seed: run.seed, drawn: run.drawn, branches: branchesOf(run) };
+  }
+
+  /** Takes the controls of the present run: one's own aeroplane, or the demonstration's while one has them. */
+  async takeControls(): Promise<ClassFlight | null> {
+    const { run } = this.state;
+    if (!run || this.taking || this.flight) return this.flight;
+    this.taking = true;
+    try {
+      const { classId } = this.setup;
+      const hold = await this.request('run:take', { classId, run: run.run });
+      const { chunks } = await this.chunksOf(hold.attemptId);
+      const spec = await this.spec(run);
+      const engines = spec.airframe.engines.length;
+      const recorded = chunks.slice(0, hold.nextIndex).flatMap(({ bytes }) => {
+        const raw = fromBase64(bytes);
+        const decoded = raw ? decodeChunk(raw, engines) : null;
+        return decoded?.ok ? [decoded.content] : [];
+      });
+      if (this.state.run?.run !== run.run) return null;
+      const before = this.followed === hold.attemptId ? this.follower : null;
+      const from = this.state.run.controls.at(-1)?.tick ?? 0;
+      this.attemptId = hold.attemptId;
+      this.unsent = [];
+      this.flownRun = run.run;
+      this.flight = new ClassFlight({
+        run: createRun(spec),
+        classRun: this.state.run,
+        member: this.member,
+        hold,
+        recorded,
+        flown: (line) => {
+          if (!before) return;
+          const sample = line.run.neutralSample();
+          for (let tick = line.head; tick < Math.min(from, before.line.head); tick += 1) {
+            before.line.sampleInto(sample, tick);
+            line.add(sample);
+          }
+        },
+        events: {
+          chunk: (chunk) => {
+            this.unsent.push(chunk);
+            this.unacknowledged = this.unsent.length;
+            void this.send();
+          },
+          frame: (frame) => {
+            // What is lost while the connection is away comes with the chunks.
+            if (this.inside) this.setup.socket.emit('run:inputs', { classId, attemptId: hold.attemptId, frame });
+          },
+          tick: (flown) => this.setup.events.tick(flown),
+          stands: (tick) => {
+            this.request('run:stands', { classId, run: run.run, tick }).catch(() => undefined);
+          },
+        },
+      });
+      this.follower = null;
+      this.followed = null;
+      this.setup.events.changed();
+      return this.flight;
+    } finally {
+      this.taking = false;
+    }
+  }
+
+  /** Lets go of the controls: another has them now. */
+  dropControls(): void {
+    this.flight = null;
+  }
+
+  private async send(): Promise<void> {
+    if (this.sending || this.attemptId === null) return;
+    this.sending = true;
+    const { attemptId } = this;
+    try {
+      while (this.unsent.length > 0 && this.setup.socket.connected && this.attemptId === attemptId) {
+        const [chunk] = this.unsent;
+        await this.request('run:chunk', {
+          classId: this.setup.classId,
+          attemptId,
+          index: chunk.index,
+          hash: chunk.hash,
+          bytes: toBase64(chunk.bytes),
+        });
+        this.unsent.shift();
+        this.unacknowledged = this.unsent.length;
+      }
+    } catch (error) {
+      const lasting =
+        error instanceof SocketRefusal && !['internal', 'unreachable', 'not-a-member'].includes(error.code);
+      if (lasting) this.setup.events.said(`A second of this flight was refused: ${error.message}`);
+      else setTimeout(() => void this.send(), 400);
+    } finally {
+      this.sending = false;
+    }
+  }
+
+  /** Tells the server that one's own recording of the present run is whole. */
+  async complete(): Promise<void> {
+    const { flight, attemptId } = this;
+    if (!flight || attemptId === null || this.flownRun !== this.state.run?.run) return;
+    if (this.unsent.length > 0) {
+      await new Promise((resolve) => setTimeout(resolve, 300));
+      if (this.setup.socket.connected) void this.send();
+      return this.complete();
+    }
+    await this.request('run:complete', {
+      classId: this.setup.classId,
+      attemptId,
+      chunkCount: flight.chunkCount,
+      ended: flight.line.run.ended ?? 'left',
+    });
+  }
+
+  private async chunksOf(attemptId: string) {
+    const chunks: { bytes: string }[] = [];
+    let frames: string[] = [];
+    for (let more = true; more;) {
+      const page = await this.request('run:catch-up', {
+        classId: this.setup.classId,
+        attemptId,
+        from: chunks.length,
+      });
+      chunks.push(...page.chunks);
+      ({ more, frames } = page);
+    }
+    return { chunks, frames };
+  }
+
+  /** Looks on at an attempt: everything stored first, then the frames. */
+  async follow(attemptId: string): Promise<void> {
+    const { run } = this.state;
+    if (!run || this.followed === attemptId) return;
+    this.followed = attemptId;
+    const spec = await this.spec(run);
+    if (this.followed !== attemptId || !this.state.run) return;
+    this.follower = new Follower(createRun(spec), this.state.run, (difference) => {
+      this.setup.events.said('This picture differed from the one flown and was built again.');
+      this.request('run:differs', {
+        classId: this.setup.classId,
+        attemptId,
+        tick: difference.tick,
+        expected: difference.expected,
+        found: difference.found,
+      }).catch(() => undefined);
+      void this.catchUp(attemptId);
+    });
+    await this.catchUp(attemptId);
+    this.setup.events.changed();
+  }
+  stopFollowing(): void {
+    this.follower = null;
+    this.followed = null;
+  }
+
+  private async catchUp(attemptId: string): Promise<void> {
+    const { follower } = this;
+    if (this.catching || !follower) return;
+    this.catching = true;
+    try {
+      const { chunks, frames } = await this.chunksOf(attemptId);
+      const engines = follower.line.run.plant.engineCount;
+      follower.clear();
+      for (const { bytes } of chunks) {
+        const raw = fromBase64(bytes);
+        const decoded = raw ? decodeChunk(raw, engines) : null;
+        if (decoded?.ok) follower.addChunk(decoded.content);
+      }
+      this.catching = false;
+      for (const frame of frames) this.frame({ attemptId, frame });
+      for (const news of this.early.splice(0)) this.frame(news);
+    } catch {
+      // Asked again with the next frame that leaves a gap, or at the next entering.
+    } finally {
+      this.catching = false;
+    }
+  }
+
+  private frame(news: { attemptId: string; frame: string }): void {
+    if (this.heard !== news.attemptId) {
+      this.heard = news.attemptId;
+      this.setup.events.changed();
+    }
+    if (this.catching) {
+      if (this.early.length < 400) this.early.push(news);
+      return;
+    }
+    const { follower } = this;
+    if (!follower || news.attemptId !== this.followed) return;
+    const frame = decodeFrame(news.frame, follower.line.run.plant.engineCount);
+    if (frame) follower.addFrame(frame);
+    if (follower.gap) void this.catchUp(news.attemptId);
+  }
+
+  /** One picture's worth of work; `steer` fills in what the pilot holds. */
+  step(steer: (sample: ControlSample) => void): void {
+    const serverMs = this.serverNow();
+    this.flight?.advance(serverMs, steer);
+    this.follower?.advance(serverMs);
+  }
+}
