@@ -39,7 +39,6 @@ export function useClass(classId: string) {
   const drawn = shallowRef<Run | null>(null);
   const flying = ref(false);
   let boardRun = 0;
-  let completed = 0;
 
   const session = new ClassSession({
     socket: openClassSocket(),
@@ -99,17 +98,11 @@ export function useClass(classId: string) {
   /** Takes the controls, looks on or lets go, as the log has it. */
   async function settle(): Promise<void> {
     const { run } = session.state;
+    void session.send();
     if (settling || !run || !session.inside || session.state.ended) return;
     settling = true;
     try {
-      const isOver = phaseAt(run, session.serverNow()) === 'over';
-      if (isOver) {
-        if (session.flight && completed !== run.run) {
-          completed = run.run;
-          await session.complete();
-        }
-        return;
-      }
+      if (run.overAt !== null) return;
       const me = session.member;
       if (run.mode === 'demonstration') {
         if (run.controls.at(-1)?.member === me) {
