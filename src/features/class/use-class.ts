@@ -18,8 +18,8 @@ export interface BoardLine {
   row: BoardRow;
   /** Server time of the last row, ms. */
   atMs: number;
-  times: number[];
-  beta: number[];
+  times: readonly number[];
+  beta: readonly number[];
 }
 
 /** A class as this browser lives it. Which aeroplane is flown or looked on at follows from the log alone. */
@@ -54,20 +54,18 @@ export function useClass(classId: string) {
         }
         const nowMs = session.serverNow();
         for (const row of rows) {
-          const line = board.value.get(row.member) ?? { row, atMs: nowMs, times: [], beta: [] };
+          const before = board.value.get(row.member);
           const seconds = row.telemetry.tick / TICK_RATE_HZ;
-          if (seconds < (line.times.at(-1) ?? 0)) {
-            line.times = [];
-            line.beta = [];
-          }
-          line.row = row;
-          line.atMs = nowMs;
-          line.times.push(seconds);
-          line.beta.push(row.telemetry.betaDeg);
-          while (line.times.length > 0 && seconds - line.times[0] > TRACE_S) {
-            line.times.shift();
-            line.beta.shift();
-          }
+          const rewound = before !== undefined && seconds < (before.times.at(-1) ?? 0);
+          const kept = before === undefined || rewound ? { times: [], beta: [] } : before;
+          const from = kept.times.findIndex((time) => seconds - time <= TRACE_S);
+          const skip = from < 0 ? kept.times.length : from;
+          const line: BoardLine = {
+            row,
+            atMs: nowMs,
+            times: [...kept.times.slice(skip), seconds],
+            beta: [...kept.beta.slice(skip), row.telemetry.betaDeg],
+          };
           board.value.set(row.member, line);
         }
         triggerRef(board);
