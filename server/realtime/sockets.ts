@@ -93,6 +93,7 @@ export function attachSockets(setup: SocketsSetup): { close: () => Promise<void>
     const patience = new Bucket(MOST_REFUSED, Date.now());
     const refuse = (from: ClassSocket, classId: string | null, why: string): void => {
       from.data.refused += 1;
+      log.info({ person: from.data.actor?.personId, guest: from.data.guest?.memberId, classId, why }, 'socket refused');
       hub.refused(classId ?? from.data.seats.keys().next().value ?? null);
       if (patience.take(Date.now())) return;
       log.warn({ person: from.data.actor?.personId, guest: from.data.guest?.memberId, why }, 'socket cut off');
