@@ -105,7 +105,7 @@ export function attachSockets(setup: SocketsSetup): { close: () => Promise<void>
         next();
         return;
       }
-      refuse(socket, null, verdict);
+      refuse(socket, null, `${verdict}: ${String(event).slice(0, 40)}`);
       const acknowledge: unknown = args.at(-1);
       if (typeof acknowledge === 'function') {
         const detail = verdict === 'unknown' ? 'There is no such event.' : 'Too many requests; wait a moment.';

@@ -41,6 +41,7 @@ export interface ClassSessionSetup {
 
 const CLOCK_ASKS = 5;
 const RETRY_MS = 400;
+const CATCH_UP_EVERY_MS = 500;
 /** Passes over the class clock that end a flight whose run is over; each flies a few seconds at the most. */
 const LAST_PASSES = 50;
 /** Refusals after which the same chunk may yet be taken. */
@@ -79,6 +80,7 @@ export class ClassSession {
   private sending = false;
   private steer: (sample: ControlSample) => void = () => undefined;
   private catching = false;
+  private caughtMs = 0;
   private early: { attemptId: string; frame: string }[] = [];
   private closed = false;
   private taking = false;
@@ -448,6 +450,7 @@ export class ClassSession {
     const { follower } = this;
     if (this.catching || !follower) return;
     this.catching = true;
+    this.caughtMs = performance.now();
     try {
       const { chunks, frames } = await this.chunksOf(attemptId);
       const engines = follower.line.run.plant.engineCount;
@@ -480,7 +483,8 @@ export class ClassSession {
     if (!follower || news.attemptId !== this.followed) return;
     const frame = decodeFrame(news.frame, follower.line.run.plant.engineCount);
     if (frame) follower.addFrame(frame);
-    if (follower.gap) void this.catchUp(news.attemptId);
+    // The chunks that fill a gap are stored within a second: asking at every frame would only be refused.
+    if (follower.gap && performance.now() - this.caughtMs > CATCH_UP_EVERY_MS) void this.catchUp(news.attemptId);
   }
 
   /** One picture's worth of work; `steer` fills in what the pilot holds. */

@@ -22,8 +22,12 @@ export interface BoardLine {
   beta: readonly number[];
 }
 
+/** A little less than the tenth of a second at which telemetry is made. */
+const TELL_EVERY_MS = 80;
+
 /** A class as this browser lives it. Which aeroplane is flown or looked on at follows from the log alone. */
 export function useClass(classId: string) {
+  let toldMs = 0;
   const notices = useNoticesStore();
   const state = shallowRef<ClassState>(EMPTY_CLASS);
   const connected = ref(false);
@@ -75,7 +79,11 @@ export function useClass(classId: string) {
       said: (text) => (told.value = text),
       tick(run) {
         const row = telemetry.tick(run);
-        if (row) session.telemetry(row);
+        const nowMs = performance.now();
+        // After an absence many ticks are flown at once: the board wants the latest, ten times a second.
+        if (!row || nowMs - toldMs < TELL_EVERY_MS) return;
+        toldMs = nowMs;
+        session.telemetry(row);
       },
     },
   });
