@@ -17,6 +17,7 @@ import { debriefRouter, remarksRouter } from './http/debrief.router.ts';
 import { errorMapper, unknownRoute } from './http/error-mapper.ts';
 import { healthRouter } from './http/health.router.ts';
 import { playlistsRouter } from './http/playlists.router.ts';
+import { recordsRouter } from './http/records.router.ts';
 import { scenarioEditingRouter } from './http/scenario-editing.router.ts';
 import { scenariosRouter } from './http/scenarios.router.ts';
 import { securityHeaders } from './http/security-headers.ts';
@@ -72,6 +73,7 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use('/attempts', signedIn, debriefRouter(services.debrief));
   api.use('/remarks', signedIn, remarksRouter(services.debrief));
   api.use('/assignments', signedIn, assignmentsRouter(services.assignments));
+  api.use('/records', signedIn, recordsRouter(services.records));
   api.use('/playlists', signedIn, playlistsRouter(services.playlists));
   api.use(unknownRoute);
   app.use('/api', api);

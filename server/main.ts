@@ -15,13 +15,20 @@ import { attachSockets } from './realtime/sockets.ts';
 import { createServices } from './services/create-services.ts';
 
 const TIDY_EVERY_MS = 3600 * 1000;
+const REMIND_EVERY_MS = 60 * 1000;
+const DELIVER_EVERY_MS = 5 * 1000;
 
 /** Starts the product's server: schema, seed, listen; prints one line for the launcher when it serves. */
 async function main(): Promise<void> {
   const env = readEnvironment(process.env);
   const log = createLog(env);
   const { database, migrations } = await openDatabase({ url: env.databaseUrl, connections: env.databaseConnections });
-  const services = createServices({ database, tokenSecret: tokenSecret(env.jwtSecret, env.dataFolder) });
+  let address = env.publicOrigins[0] ?? '';
+  const services = createServices({
+    database,
+    tokenSecret: tokenSecret(env.jwtSecret, env.dataFolder),
+    address: () => address,
+  });
   const seed = await seedEmptyDatabase({
     database,
     folder: path.join(projectFolder, 'scenarios'),
@@ -56,17 +63,30 @@ async function main(): Promise<void> {
     http.once('error', reject);
     http.listen(env.port, env.host, resolve);
   });
-  const tidy = setInterval(
-    () => void services.sessions.tidy().catch((error: unknown) => log.error({ err: error }, 'tidy failed')),
-    TIDY_EVERY_MS,
-  );
-  tidy.unref();
+  const clocks = [
+    everySoOften(TIDY_EVERY_MS, 'tidy', () => services.sessions.tidy()),
+    everySoOften(TIDY_EVERY_MS, 'retention', () => services.records.applyRetention()),
+    everySoOften(REMIND_EVERY_MS, 'reminders', () => services.assignments.giveDueReminders()),
+    everySoOften(DELIVER_EVERY_MS, 'statements', () => services.records.deliver()),
+  ];
+
+  function everySoOften(everyMs: number, what: string, work: () => Promise<unknown>): NodeJS.Timeout {
+    let running = false;
+    const timer = setInterval(() => {
+      if (running) return;
+      running = true;
+      work()
+        .catch((error: unknown) => log.error({ err: error }, `${what} failed`))
+        .finally(() => (running = false));
+    }, everyMs);
+    return timer.unref();
+  }
 
   let stopping = false;
   const stop = async (): Promise<void> => {
     if (stopping) return;
     stopping = true;
-    clearInterval(tidy);
+    for (const clock of clocks) clearInterval(clock);
     await sockets.close();
     http.closeAllConnections();
     await closeClient();
@@ -80,7 +100,7 @@ async function main(): Promise<void> {
 
   const { port } = http.address() as AddressInfo; // it listens on a port, not on a pipe
   const host = env.host === '0.0.0.0' || env.host === '::' ? 'localhost' : env.host;
-  const address = env.publicOrigins[0] ?? `http://${host.includes(':') ? `[${host}]` : host}:${port}`;
+  address = env.publicOrigins[0] ?? `http://${host.includes(':') ? `[${host}]` : host}:${port}`;
   log.info({ address, version: PROGRAM_VERSION, migrations, seeded: seed.seeded }, 'serving');
   console.log(
     `SIDEWASH_READY ${JSON.stringify({ address, version: PROGRAM_VERSION, migrations: migrations.length, seeded: seed.seeded, problems: seed.problems.length })}`,

@@ -19,6 +19,12 @@ import {
 } from './repositories/organisations.repository.ts';
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
 import { type PlaylistsRepository, createPlaylistsRepository } from './repositories/playlists.repository.ts';
+import { type BudgetsRepository, createBudgetsRepository } from './repositories/budgets.repository.ts';
+import { type RecordsRepository, createRecordsRepository } from './repositories/records.repository.ts';
+import { type StatementsRepository, createStatementsRepository } from './repositories/statements.repository.ts';
+import { type RetentionRepository, createRetentionRepository } from './repositories/retention.repository.ts';
+import { type NoticeMailRepository, createNoticeMailRepository } from './repositories/notice-mail.repository.ts';
+import { type PersonalRepository, createPersonalRepository } from './repositories/personal.repository.ts';
 import { type ReportCountsRepository, createReportCountsRepository } from './repositories/report-counts.repository.ts';
 import {
   type ScenarioEditingRepository,
@@ -48,6 +54,12 @@ export interface Repositories {
   readonly classes: ClassesRepository;
   readonly throttles: ThrottlesRepository;
   readonly assignments: AssignmentsRepository;
+  readonly budgets: BudgetsRepository;
+  readonly records: RecordsRepository;
+  readonly statements: StatementsRepository;
+  readonly retention: RetentionRepository;
+  readonly personal: PersonalRepository;
+  readonly noticeMail: NoticeMailRepository;
   readonly playlists: PlaylistsRepository;
   readonly audit: AuditRepository;
 }
@@ -78,6 +90,12 @@ function repositories(manager: EntityManager): Repositories {
     classes: createClassesRepository(manager),
     throttles: createThrottlesRepository(manager),
     assignments: createAssignmentsRepository(manager),
+    budgets: createBudgetsRepository(manager),
+    records: createRecordsRepository(manager),
+    statements: createStatementsRepository(manager),
+    retention: createRetentionRepository(manager),
+    personal: createPersonalRepository(manager),
+    noticeMail: createNoticeMailRepository(manager),
     playlists: createPlaylistsRepository(manager),
     audit: createAuditRepository(manager),
   };

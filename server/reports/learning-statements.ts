@@ -25,8 +25,6 @@ export interface StatementAttempt {
   ended: string;
   passed: boolean;
   criteria: readonly StatementCriterion[];
-  /** Instructor who signed off, when one did. */
-  signedOffBy?: { id: string; displayName: string } | null;
 }
 
 /** ISO 8601 duration with hundredths of a second, as the standard asks (e.g. PT30.25S). */
@@ -81,7 +79,6 @@ export function attemptStatement(attempt: StatementAttempt, homePage: string): R
       registration: attempt.id,
       platform: 'Sidewash',
       language: 'en',
-      ...(attempt.signedOffBy ? { instructor: account(attempt.signedOffBy, root) } : {}),
       extensions: {
         [`${root}/terms/scenario-revision`]: attempt.scenario.revision,
         [`${root}/terms/airframe-revision`]: `${attempt.airframe.slug} ${attempt.airframe.revision}`,
@@ -89,6 +86,47 @@ export function attemptStatement(attempt: StatementAttempt, homePage: string): R
       },
     },
     timestamp: attempt.completedAt,
+  };
+}
+
+export interface StatementSignature {
+  statementId: string;
+  signer: { id: string; displayName: string };
+  /** UUID of the statement that is signed. */
+  about: string;
+  kind: 'sign-off' | 'counter-signature';
+  met: boolean;
+  at: string;
+}
+
+/** An instructor's signature under a result, as a statement about that statement. */
+export function signOffStatement(signature: StatementSignature, homePage: string): Record<string, unknown> {
+  const root = homePage.replace(/\/+$/, '');
+  const word = signature.kind === 'sign-off' ? 'signed off' : 'counter-signed';
+  return {
+    id: signature.statementId,
+    actor: account(signature.signer, root),
+    verb: { id: `${root}/verbs/${signature.kind}`, display: { en: word } },
+    object: { objectType: 'StatementRef', id: signature.about },
+    result: { success: signature.met },
+    timestamp: signature.at,
+  };
+}
+
+/** Voids a statement, as the standard has it: nothing that was stated is taken back silently. */
+export function voidingStatement(
+  statementId: string,
+  about: string,
+  at: string,
+  homePage: string,
+): Record<string, unknown> {
+  const root = homePage.replace(/\/+$/, '');
+  return {
+    id: statementId,
+    actor: account({ id: 'sidewash', displayName: 'Sidewash' }, root),
+    verb: { id: 'http://adlnet.gov/expapi/verbs/voided', display: { en: 'voided' } },
+    object: { objectType: 'StatementRef', id: about },
+    timestamp: at,
   };
 }
 

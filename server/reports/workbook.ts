@@ -1,3 +1,4 @@
+import { once } from 'node:events';
 import type { Writable } from 'node:stream';
 import ExcelJS from 'exceljs';
 
@@ -37,7 +38,9 @@ export async function streamWorkbook(
       sheet.addRow(row).commit();
       count++;
       // The writer buffers while its consumer is slow: give way regularly so that pressure reaches it.
-      if (count % 500 === 0) await new Promise((resolve) => setImmediate(resolve));
+      if (count % 250 === 0) await new Promise((resolve) => setImmediate(resolve));
+      while (out.writableNeedDrain && !out.destroyed) await Promise.race([once(out, 'drain'), once(out, 'close')]);
+      if (out.destroyed) throw new Error('The reader went away.');
     }
     sheet.commit();
   }

@@ -12,6 +12,7 @@ import { createClassServices } from './classes/create-class-services.ts';
 import { createPrintDebrief } from './debrief/print-debrief.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
 import { createAssignmentsService } from './assignments/assignments.service.ts';
+import { createKeepMail } from './assignments/keep-mail.ts';
 import { createNotices, type QueueMail } from './assignments/notices.ts';
 import { createTellAuthor } from './assignments/tell-author.ts';
 import { createReadAssignments } from './assignments/read-assignments.ts';
@@ -20,6 +21,15 @@ import { createScenariosService } from './library/scenarios.service.ts';
 import { createScenarioDrafts } from './scenarios/scenario-drafts.ts';
 import { createScenarioPublishing } from './scenarios/scenario-publishing.ts';
 import { createPlaylistsService } from './playlists/playlists.service.ts';
+import { createCells } from './records/cell.ts';
+import { createDeliverStatements } from './records/deliver-statements.ts';
+import { createDistributions } from './records/distribution.ts';
+import { createExports } from './records/exports.ts';
+import { createMatrix } from './records/matrix.ts';
+import { createPersonal } from './records/personal.ts';
+import { createRetention } from './records/retention.ts';
+import { createSecrets } from './records/secrets.ts';
+import { createStatements } from './records/statements.ts';
 import { createAccessTokens } from './sessions/access-tokens.ts';
 import { createPasswords } from './sessions/passwords.ts';
 import { createSessionNotices } from './sessions/session-notices.ts';
@@ -34,19 +44,23 @@ export interface ServicesSetup {
   now?: () => Date;
   /** Address under which people reach the product, for links in mail. */
   address?: () => string;
+  /** Where messages of assignments go; they wait in a table of their own when absent. */
   queueMail?: QueueMail;
 }
 
 /** All use cases over one database, with the threads they need. `close` ends the threads. */
 export function createServices(setup: ServicesSetup) {
   const { database, tokenSecret, now = () => new Date(), address = () => 'http://localhost' } = setup;
-  const { queueMail = () => Promise.resolve() } = setup;
+  const { queueMail = createKeepMail(now) } = setup;
   const passwordThreads = createWorkerPool('password', 1);
   const reruns = createWorkerPool('rerun', 2);
   const reports = createWorkerPool('analysis-report', 1);
   const debriefs = createWorkerPool('debrief', 1);
   const sheets = createWorkerPool('sheet', 1);
   const passwords = createPasswords(passwordThreads);
+  const budgets = createWorkerPool('budget', 1);
+  const secrets = createSecrets(tokenSecret);
+  const statements = createStatements({ database, secrets, address, now });
   const notices = createNotices({ queueMail, address });
   const tellAuthor = createTellAuthor(notices);
   const reads = createReadAssignments({ database, address, now });
@@ -54,7 +68,10 @@ export function createServices(setup: ServicesSetup) {
     database,
     reruns,
     now,
-    onCompleted: (...done) => tellAuthor(...done),
+    onCompleted: async (on, detail, result, at) => {
+      await tellAuthor(on, detail, result, at);
+      await statements.onCompleted(on, detail.organisationId, detail.id, at);
+    },
   });
   const classes = createClassServices({ database, tokenSecret, close: closeAttempt, now });
   return {
@@ -76,6 +93,18 @@ export function createServices(setup: ServicesSetup) {
       skins: createAirframeSkins({ database, now }),
     },
     assignments: { ...reads, ...createAssignmentsService({ database, notices, reads, now }) },
+    records: {
+      ...createMatrix({ database }),
+      ...createCells({ database, now, onCorrected: statements.onCorrected }),
+      ...createDistributions({ database, budgets, now }),
+      ...createExports({ database, statements, now }),
+      ...createPersonal({ database, now }),
+      ...createRetention({ database, now }),
+      endpoint: statements.endpoint,
+      saveEndpoint: statements.saveEndpoint,
+      pushAll: statements.pushAll,
+      deliver: createDeliverStatements({ database, secrets, now }),
+    },
     playlists: createPlaylistsService({ database, now }),
     studies: createStudiesService({ database, now }),
     printAnalysis: createAnalysisReports({ database, threads: reports, now }),
@@ -91,10 +120,20 @@ export function createServices(setup: ServicesSetup) {
       ...createReadAttempts({ database, now }),
     },
     classes,
-    debrief: { ...createDebriefService({ database, now }), print: createPrintDebrief({ database, debriefs, now }) },
+    debrief: {
+      ...createDebriefService({ database, now, onSigned: statements.onSigned }),
+      print: createPrintDebrief({ database, debriefs, now }),
+    },
     close: async (): Promise<void> => {
       await classes.chunks.settle();
-      await Promise.all([passwordThreads.close(), reruns.close(), debriefs.close(), sheets.close(), reports.close()]);
+      await Promise.all([
+        passwordThreads.close(),
+        reruns.close(),
+        debriefs.close(),
+        sheets.close(),
+        reports.close(),
+        budgets.close(),
+      ]);
     },
   };
 }

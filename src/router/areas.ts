@@ -7,7 +7,7 @@ export interface Area {
   roles: readonly Role[];
 }
 
-export type AreaName = 'my-flights' | 'airframes' | 'analysis' | 'scenarios' | 'classes';
+export type AreaName = 'my-flights' | 'airframes' | 'analysis' | 'scenarios' | 'classes' | 'assignments' | 'records';
 
 const EVERYONE: readonly Role[] = ['trainee', 'instructor', 'engineer', 'administrator'];
 
@@ -18,6 +18,8 @@ export const AREAS: readonly Area[] = [
   { name: 'analysis', label: 'Analysis', to: '/analysis', roles: ['engineer', 'instructor'] },
   { name: 'scenarios', label: 'Scenarios', to: '/scenarios', roles: EVERYONE },
   { name: 'classes', label: 'Live class', to: '/classes', roles: ['trainee', 'instructor', 'administrator'] },
+  { name: 'assignments', label: 'Assignments', to: '/assignments', roles: ['instructor', 'administrator'] },
+  { name: 'records', label: 'Records', to: '/records', roles: ['trainee', 'instructor', 'administrator'] },
 ];
 
 export function areasFor(roles: readonly Role[]): Area[] {

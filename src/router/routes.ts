@@ -68,6 +68,52 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Editor', area: 'scenarios', roles: ['instructor'], purpose: 'write scenarios' },
   },
   {
+    path: '/assignments',
+    name: 'assignments',
+    component: () => import('../views/assignments/AssignmentsView.vue'),
+    meta: {
+      title: 'Assignments',
+      area: 'assignments',
+      roles: ['instructor', 'administrator'],
+      purpose: 'read assignments',
+    },
+  },
+  {
+    path: '/assignments/:id',
+    name: 'assignment',
+    component: () => import('../views/assignments/AssignmentView.vue'),
+    props: true,
+    meta: {
+      title: 'Assignment',
+      area: 'assignments',
+      roles: ['instructor', 'administrator'],
+      purpose: 'read assignments',
+    },
+  },
+  {
+    path: '/playlists',
+    name: 'playlists',
+    component: () => import('../views/playlists/PlaylistsView.vue'),
+    meta: { title: 'Playlists', area: 'assignments', roles: ['instructor'], purpose: 'make playlists' },
+  },
+  {
+    path: '/records',
+    name: 'records',
+    component: () => import('../views/records/RecordsView.vue'),
+    meta: {
+      title: 'Records',
+      area: 'records',
+      roles: ['trainee', 'instructor', 'administrator'],
+      purpose: 'read records',
+    },
+  },
+  {
+    path: '/records/rules',
+    name: 'record-rules',
+    component: () => import('../views/records/RecordRulesView.vue'),
+    meta: { title: 'Record rules', area: 'records', roles: ['administrator'], purpose: 'set the rules of records' },
+  },
+  {
     path: '/airframes',
     name: 'airframes',
     component: () => import('../views/airframes/AirframeListView.vue'),

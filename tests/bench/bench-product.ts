@@ -21,11 +21,12 @@ type CleanUp = BenchContext['cleanUp'];
 export interface BenchProduct {
   address: string;
   databaseUrl: string;
-  /** Headers of a signed-in engineer, also for requests that change something. */
+  /** Headers of somebody signed in, also for requests that change something. */
   headers: Record<string, string>;
 }
 
-export async function startBenchProduct(cleanUp: CleanUp): Promise<BenchProduct> {
+/** @param mailbox who is signed in; the engineer when absent */
+export async function startBenchProduct(cleanUp: CleanUp, mailbox = 'a.reyes'): Promise<BenchProduct> {
   const dataFolder = freshDataFolder();
   cleanUp(() => fs.rmSync(dataFolder, { recursive: true, force: true }));
   prepareDataFolder(dataFolder);
@@ -44,7 +45,7 @@ export async function startBenchProduct(cleanUp: CleanUp): Promise<BenchProduct>
   const env = { publicOrigins: [], secureCookies: false, proxies: 0, dev: false };
   const app = createApp({ services, log: createLog({ log: 'off', logLevel: 'error', dataFolder: '' }), env });
   const address = await listen((request, response) => void app(request, response), cleanUp);
-  return { address, databaseUrl: mariadb.url, headers: await signIn(address) };
+  return { address, databaseUrl: mariadb.url, headers: await signIn(address, mailbox) };
 }
 
 /** Serves a handler on a free port until the row is over. */
@@ -58,7 +59,7 @@ export async function listen(handler: RequestListener, cleanUp: CleanUp): Promis
   return `http://127.0.0.1:${(server.address() as AddressInfo).port}`; // listens on a port, not on a pipe
 }
 
-async function signIn(address: string): Promise<Record<string, string>> {
+async function signIn(address: string, mailbox: string): Promise<Record<string, string>> {
   const cookies = new Map<string, string>();
   const take = (response: Response): void => {
     for (const cookie of response.headers.getSetCookie()) {
@@ -73,7 +74,7 @@ async function signIn(address: string): Promise<Record<string, string>> {
     [CSRF_HEADER]: decodeURIComponent(cookies.get(CSRF_COOKIE) ?? ''),
   });
   take(await fetch(`${address}/api/session`));
-  const body = JSON.stringify({ email: `a.reyes@${DEMONSTRATION.domain}`, password: DEMONSTRATION.password });
+  const body = JSON.stringify({ email: `${mailbox}@${DEMONSTRATION.domain}`, password: DEMONSTRATION.password });
   const answer = await fetch(`${address}/api/session`, { method: 'POST', headers: headers(), body });
   if (!answer.ok) throw new Error(`Signing in answered ${answer.status}.`);
   take(answer);

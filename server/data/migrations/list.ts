@@ -6,6 +6,7 @@ import { Rewinds1764547350000 } from './1764547350000-rewinds.ts';
 import { ScenarioDrafts1764547400000 } from './1764547400000-scenario-drafts.ts';
 import { Classes1764547500000 } from './1764547500000-classes.ts';
 import { Assignments1764547700000 } from './1764547700000-assignments.ts';
+import { NoticeMail1764547710000 } from './1764547710000-notice-mail.ts';
 
 /** Migrations in the order in which they run. */
 export const MIGRATIONS = [
@@ -17,4 +18,5 @@ export const MIGRATIONS = [
   ScenarioDrafts1764547400000,
   Classes1764547500000,
   Assignments1764547700000,
+  NoticeMail1764547710000,
 ];

@@ -3,7 +3,7 @@ import type { Page } from '#shared/contracts/paging.ts';
 import type { Database } from '../../data/database.ts';
 import { shownStatus, type AttemptDetailRecord } from '../../data/repositories/attempts.repository.ts';
 import { may, requireDeed, type Actor } from '../permissions.ts';
-import { notFound } from '../problem-error.ts';
+import { notFound, ProblemError } from '../problem-error.ts';
 import { attemptResult } from './complete-attempt.ts';
 import { storedAirframe, storedScenario } from './attempt-data.ts';
 import { flownIn } from './flown-in-class.ts';
@@ -74,6 +74,13 @@ export function createReadAttempts({ database, now }: { database: Database; now:
     async chunks(actor: Actor, id: string): Promise<AttemptChunks> {
       await readable(actor, id);
       const chunks = await database.chunks.all(id);
+      if (chunks.length === 0) {
+        const removedAt = await database.retention.removedAt(id);
+        if (removedAt !== null) {
+          const day = removedAt.toISOString().slice(0, 10);
+          throw new ProblemError('conflict', `The retention rule removed this recording on ${day}; its result stays.`);
+        }
+      }
       return {
         chunks: chunks.map(({ index, startTick, tickCount, hash, bytes }) => ({
           index,

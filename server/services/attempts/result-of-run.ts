@@ -99,10 +99,11 @@ function worstVerdict(criteria: readonly CriterionResult[]): Verdict | null {
     );
 }
 
-/** The criterion with the smallest margin relative to the size of its limit. */
+/** The criterion with the smallest margin relative to the size of its limit, among the required ones where there are any. */
 function leastMargin(criteria: readonly CriterionResult[]): RerunResult['worst'] {
   let least: { share: number; worst: NonNullable<RerunResult['worst']> } | null = null;
-  for (const c of criteria) {
+  const required = criteria.filter((c) => c.required && c.margin !== null);
+  for (const c of required.length > 0 ? required : criteria) {
     if (c.margin === null) continue;
     const { max, min, within, unit } = c.limit;
     const size = Math.abs(max ?? min ?? (within ? within[1] - within[0] : 1)) || 1;

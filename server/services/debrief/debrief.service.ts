@@ -2,7 +2,7 @@ import { randomUUID } from 'node:crypto';
 import type { Debrief, newRemarkSchema, newSignOffSchema, ReceivedRemark } from '#shared/contracts/debrief.ts';
 import type { Page } from '#shared/contracts/paging.ts';
 import type { z } from 'zod';
-import type { Database } from '../../data/database.ts';
+import type { Database, Repositories } from '../../data/database.ts';
 import type { AttemptDetailRecord } from '../../data/repositories/attempts.repository.ts';
 import type { PageRequest } from '../../data/repositories/paging.ts';
 import type { SignOffRecord } from '../../data/repositories/debrief.repository.ts';
@@ -18,7 +18,19 @@ export function standingEntry(entries: readonly SignOffRecord[], kind: SignOffRe
   return entries.filter((entry) => entry.kind === kind).at(-1) ?? null;
 }
 
-export function createDebriefService({ database, now }: { database: Database; now: () => Date }) {
+export interface DebriefSetup {
+  database: Database;
+  now: () => Date;
+  /** What follows from a signature, within its transaction. */
+  onSigned: (
+    on: Repositories,
+    organisationId: string,
+    signed: Pick<SignOffRecord, 'kind' | 'verdict' | 'signer'> & { entryId: string; attemptId: string },
+    at: Date,
+  ) => Promise<void>;
+}
+
+export function createDebriefService({ database, now, onSigned }: DebriefSetup) {
   const readable = async (actor: Actor, id: string): Promise<AttemptDetailRecord> => {
     requireDeed(actor, 'attempt.read-own');
     const detail = await database.attempts.findDetail(actor.organisationId, id);
@@ -162,6 +174,10 @@ export function createDebriefService({ database, now }: { database: Database; no
           note: body.note,
           createdAt: at,
         });
+        const profile = await on.people.findProfile(actor.organisationId, actor.personId);
+        const signer = { id: actor.personId, displayName: profile?.person.displayName ?? '' };
+        const { kind, verdict } = body;
+        await onSigned(on, actor.organisationId, { entryId, attemptId: id, kind, verdict, signer }, at);
         await on.audit.append({
           organisationId: actor.organisationId,
           at,

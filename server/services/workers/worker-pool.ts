@@ -51,7 +51,7 @@ function startThread(name: string): Worker {
  * the next job gets a new one.
  */
 export function createWorkerPool(
-  name: 'password' | 'rerun' | 'debrief' | 'sheet' | 'analysis-report',
+  name: 'password' | 'rerun' | 'debrief' | 'sheet' | 'analysis-report' | 'budget',
   size: number,
 ): WorkerPool {
   const threads = new Set<Thread>();

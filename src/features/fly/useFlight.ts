@@ -39,7 +39,13 @@ export interface FlightHooks {
 }
 
 /** The life of a flight on one scenario: load, brief, start, fly, end, and the server's result. */
-export function useFlight(slug: () => string, revision: () => number | undefined, hooks: FlightHooks) {
+export function useFlight(
+  slug: () => string,
+  revision: () => number | undefined,
+  hooks: FlightHooks,
+  /** The assignment that a start counts for. */
+  assignment: () => string | undefined = () => undefined,
+) {
   const session = useSessionStore();
   const cockpit = useCockpitStore();
   const controls = useControlsStore();
@@ -121,7 +127,12 @@ export function useFlight(slug: () => string, revision: () => number | undefined
     startError.value = null;
     startKey ??= newKey();
     try {
-      const started = await startAttempt({ scenarioSlug: known.slug, revision: known.revision, startKey });
+      const started = await startAttempt({
+        scenarioSlug: known.slug,
+        revision: known.revision,
+        startKey,
+        assignmentId: assignment(),
+      });
       startKey = null;
       take(started, await deliveries.begin(started, me.person.id));
       flight.value?.session.start(performance.now());

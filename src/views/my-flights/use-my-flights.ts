@@ -1,9 +1,12 @@
 import { useQuery } from '@pinia/colada';
+import { useNow } from '@vueuse/core';
 import { computed } from 'vue';
 import { z } from 'zod';
 import type { AttemptDetail } from '#shared/contracts/attempts.ts';
 import { slugSchema } from '#shared/contracts/paging.ts';
 import { useAddressQuery } from '../../composables/useAddressQuery.ts';
+import { setRows, type SetRow } from '../../features/assignments/own-standing.ts';
+import { getOwnAssignments } from '../../services/assignments-api.ts';
 import { getAttempt, listAttempts } from '../../services/attempts-api.ts';
 import { getScenario, listScenarios } from '../../services/scenarios-api.ts';
 import { bestPedalS, pedalSeries } from './pedal-series.ts';
@@ -17,6 +20,8 @@ export const LAST_ATTEMPTS = 9;
 /** What stands in the address of the page: the scenario chosen, the page of the library, the page of the replays. */
 const addressSchema = z.object({
   scenario: slugSchema.optional(),
+  /** The assignment whose scenario is chosen. */
+  assignment: z.uuid().optional(),
   list: z.coerce.number().int().min(1).max(10_000).default(1),
   page: z.coerce.number().int().min(1).max(10_000).default(1),
 });
@@ -41,6 +46,20 @@ export function useMyFlights() {
     query: ({ signal }) =>
       listAttempts({ page: 1, pageSize: LAST_ATTEMPTS, sort: '-startedAt', status: 'complete' }, signal),
   });
+  const own = useQuery({
+    key: ['assignments', 'mine'],
+    query: ({ signal }) => getOwnAssignments(signal),
+  });
+  const now = useNow({ interval: 30_000 });
+  const setForMe = computed(() => setRows(own.data.value ?? [], now.value));
+  /** What is set and shown: the chosen one, else the first that is open. */
+  const nextSet = computed<SetRow | null>(() => {
+    const { scenario, assignment } = query.value;
+    if (assignment !== undefined) {
+      return setForMe.value.find((row) => row.assignment.id === assignment && row.scenario.slug === scenario) ?? null;
+    }
+    return scenario === undefined ? (setForMe.value.find((row) => row.open) ?? null) : null;
+  });
   const latestIds = computed(() => latest.data.value?.items.map((attempt) => attempt.id) ?? []);
   const details = useQuery<AttemptDetail[]>({
     key: () => ['attempts', 'details', ...latestIds.value],
@@ -54,12 +73,14 @@ export function useMyFlights() {
   const nextSlug = computed(() => {
     const items = scenarios.data.value?.items ?? [];
     if (query.value.scenario !== undefined) return query.value.scenario;
+    if (own.status.value === 'pending') return null;
+    if (nextSet.value !== null) return nextSet.value.scenario.slug;
     const open = items.find((item) => !['met', 'near'].includes(item.attempts?.lastVerdict ?? ''));
     return (open ?? items[0])?.slug ?? null;
   });
   const next = useQuery({
-    key: () => ['scenario', nextSlug.value],
-    query: ({ signal }) => getScenario(nextSlug.value ?? '', undefined, signal),
+    key: () => ['scenario', nextSlug.value, nextSet.value?.scenario.revision ?? 'latest'],
+    query: ({ signal }) => getScenario(nextSlug.value ?? '', nextSet.value?.scenario.revision, signal),
     enabled: () => nextSlug.value !== null,
     placeholderData: (before) => before,
   });
@@ -76,6 +97,10 @@ export function useMyFlights() {
   return {
     query,
     set,
+    own,
+    setForMe,
+    nextSet,
+    now,
     scenarios,
     replays,
     latest,

@@ -59,13 +59,25 @@ const close = (id: string) => instructor('POST', `/api/assignments/${id}/close`,
 const notices = (id: string) =>
   server.sql('SELECT kind, occasion FROM assignment_notice WHERE assignment_id = ? ORDER BY created_at, id', [id]);
 
+const mail = (since: Date) =>
+  server.sql(
+    'SELECT email, subject, text, calendar_method AS method, calendar FROM notice_mail WHERE created_at >= ? ORDER BY created_at, email',
+    [since],
+  );
+
 describe('setting', () => {
   it('to a cohort without some of it and to people, each once, with a notice each', async () => {
+    const since = new Date(Date.now() + shift);
     const [cohort] = targets.cohorts;
     expect(cohort.members).toHaveLength(12);
     const made = await set({ cohorts: [cohort.id], without: [idOf('A. Bauer')] });
     expect(made).toMatchObject({ people: 11, to: 'Cohort 26-A, 11 people', counts: { toFly: 11, late: 0 } });
     expect(await notices(made.id)).toHaveLength(11);
+    const sent = await mail(since);
+    expect(sent).toHaveLength(11);
+    expect(new Set(sent.map(({ email }) => email)).size).toBe(11);
+    expect(sent[0]).toMatchObject({ method: 'REQUEST', subject: expect.stringContaining('Set for you') as unknown });
+    expect(String(sent[0]['calendar'])).toContain('BEGIN:VEVENT');
     const page = assignmentPageSchema.parse((await instructor('GET', '/api/assignments')).body);
     expect(page.items.map(({ id }) => id)).toContain(made.id);
     expect((await close(made.id)).status).toBe(200);
@@ -206,7 +218,10 @@ describe('changing', () => {
     const again = await instructor('PUT', `/api/assignments/${made.id}`, { json: terms(), headers });
     expect(again.status).toBe(412);
     expect(unfold(await entry())).toContain('SEQUENCE:2');
+    const before = new Date(Date.now() + shift);
     await close(made.id);
+    const [cancelled] = await mail(before);
+    expect(cancelled).toMatchObject({ method: 'CANCEL', subject: expect.stringContaining('No longer set') as unknown });
     const last = unfold(await entry());
     expect(last).toContain('METHOD:CANCEL');
     expect(last).toContain('STATUS:CANCELLED');
@@ -244,6 +259,26 @@ describe('reminders and the overview', () => {
     await instructor('POST', `/api/assignments/${made.id}/extensions`, { json });
     await give();
     expect(await kinds()).toBe(2);
+    const reminders = (await server.sql('SELECT subject FROM notice_mail')).filter(({ subject }) =>
+      String(subject).startsWith('Due soon'),
+    );
+    expect(reminders).toHaveLength(2);
+    await close(made.id);
+  });
+
+  it('wait for the mail queue, which takes each once, however many take at the same time', async () => {
+    const waiting = await server.sql('SELECT COUNT(*) AS n FROM notice_mail WHERE handed_at IS NULL');
+    const take = () => server.database.transaction((on) => on.noticeMail.take(10, new Date()));
+    const ids: string[] = [];
+    for (;;) {
+      const taken = (await Promise.all([take(), take(), take()])).flat();
+      if (taken.length === 0) break;
+      ids.push(...taken.map(({ id }) => id));
+    }
+    expect(ids).toHaveLength(Number(waiting[0]['n']));
+    expect(new Set(ids).size).toBe(ids.length);
+    const made = await set({ byMail: false });
+    expect(await server.sql('SELECT COUNT(*) AS n FROM notice_mail WHERE handed_at IS NULL')).toEqual([{ n: 0 }]);
     await close(made.id);
   });
 

@@ -31,6 +31,7 @@ function serve(answers: Record<string, unknown>): string[] {
 const FLOWN = {
   '/api/scenarios': page([library.summary], 8),
   [`/api/scenarios/${library.summary.slug}`]: library.revision,
+  '/api/assignments/mine': [],
   '/api/attempts': page([library.attempt]),
   '/api/remarks': page([
     {
