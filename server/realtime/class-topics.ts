@@ -85,7 +85,7 @@ export function attachClassTopics(socket: ClassSocket, { classes, hub, log, refu
         .then(
           (data) => answer({ ok: true, data }),
           (error: unknown) => {
-            if (isRefusal(error)) refuse(socket, body.classId, 'refused');
+            if (isRefusal(error)) refuse(socket, body.classId, `${event}: ${String(error)}`);
             answer(problem(error));
           },
         );
@@ -108,7 +108,9 @@ export function attachClassTopics(socket: ClassSocket, { classes, hub, log, refu
         work(parsed.data, seatIn(parsed.data.classId, event));
       } catch (error) {
         if (!(error instanceof ProblemError || error instanceof ClassProblem)) log.error({ err: error }, event);
-        refuse(socket, parsed.data.classId, 'refused');
+        // A frame of a moment after one has left is honest.
+        if (isRefusal(error) || (error instanceof ClassProblem && error.reason === 'not-shown'))
+          refuse(socket, parsed.data.classId, `${event}: ${String(error)}`);
       }
     });
   }
@@ -269,8 +271,8 @@ function missing(): never {
   throw new ProblemError('unauthenticated', 'Sign in first.');
 }
 
-/** What an honest browser does not run into: counted against its socket. */
+/** What an honest browser does not run into: counted against its socket. Who comes a moment late is honest. */
 function isRefusal(error: unknown): boolean {
-  if (error instanceof ClassProblem) return ['not-a-member', 'not-your-controls', 'not-shown'].includes(error.reason);
+  if (error instanceof ClassProblem) return error.reason === 'not-your-controls';
   return error instanceof ProblemError && ['forbidden', 'not-found', 'chunk-refused'].includes(error.code);
 }

@@ -15,6 +15,8 @@ import { personRoom, sessionRoom } from './rooms.ts';
 import type { ClassSocket, SocketData, Sockets } from './socket-types.ts';
 
 const LARGEST_MESSAGE_BYTES = 100_000;
+/** Windows of one person or guest that may be open at once, in this process. */
+const MOST_SOCKETS = 20;
 /** A browser that is gone is noticed within these two together. */
 const PING_EVERY_MS = 5000;
 const PING_ANSWER_MS = 6000;
@@ -69,15 +71,29 @@ export function attachSockets(setup: SocketsSetup): { close: () => Promise<void>
     );
   });
 
+  const open = new Map<string, number>();
   const hub = createClassHub({ io, classes, log, several: redis !== null });
 
   io.on('connection', (socket: ClassSocket) => {
-    const { actor } = socket.data;
+    const { actor, guest } = socket.data;
+    const who = actor?.personId ?? guest?.memberId ?? socket.id;
+    const windows = (open.get(who) ?? 0) + 1;
+    open.set(who, windows);
+    socket.on('disconnect', () => {
+      const left = (open.get(who) ?? 1) - 1;
+      if (left > 0) open.set(who, left);
+      else open.delete(who);
+    });
+    if (windows > MOST_SOCKETS) {
+      socket.disconnect(true);
+      return;
+    }
     if (actor !== null) void socket.join([personRoom(actor.personId), sessionRoom(actor.sessionId)]);
     const limits = createRateLimits(Date.now);
     const patience = new Bucket(MOST_REFUSED, Date.now());
     const refuse = (from: ClassSocket, classId: string | null, why: string): void => {
       from.data.refused += 1;
+      log.info({ person: from.data.actor?.personId, guest: from.data.guest?.memberId, classId, why }, 'socket refused');
       hub.refused(classId ?? from.data.seats.keys().next().value ?? null);
       if (patience.take(Date.now())) return;
       log.warn({ person: from.data.actor?.personId, guest: from.data.guest?.memberId, why }, 'socket cut off');
@@ -89,7 +105,7 @@ export function attachSockets(setup: SocketsSetup): { close: () => Promise<void>
         next();
         return;
       }
-      refuse(socket, null, verdict);
+      refuse(socket, null, `${verdict}: ${String(event).slice(0, 40)}`);
       const acknowledge: unknown = args.at(-1);
       if (typeof acknowledge === 'function') {
         const detail = verdict === 'unknown' ? 'There is no such event.' : 'Too many requests; wait a moment.';

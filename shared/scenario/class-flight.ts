@@ -14,6 +14,8 @@ import type { ControlSample, Run } from './run-types.ts';
 const HOLD_TICKS = 60;
 /** A longer absence is flown with centred controls. */
 const ABSENCE_TICKS = TICK_RATE_HZ;
+/** A freeze of the scenario is waited for so long. */
+const WAIT_TICKS = 3 * TICK_RATE_HZ;
 /** Ticks that are sent in frames however late; older ones come with the chunks. */
 const LATE_FRAME_TICKS = 2 * TICK_RATE_HZ;
 
@@ -23,7 +25,7 @@ export interface ClassFlightEvents {
   frame?: (frame: string) => void;
   /** After every tick, also one flown again. */
   tick?: (run: Run) => void;
-  /** A freeze event of the scenario; the flight waits for the class clock to stop here. */
+  /** A freeze event of the scenario in a demonstration; the flight waits for the class clock to stop here (run:stands). */
   stands?: (tick: number) => void;
   ended?: () => void;
 }
@@ -107,6 +109,8 @@ export class ClassFlight {
     const handOver = handOverTick(classRun, this.member);
     const head = Math.min(headTickAt(classRun, serverMs), handOver);
     if (stands || head === handOver) this.stopAt(head);
+    // The class clock has not stopped for it: it will not any more.
+    if (this.waitsAt !== null && head - this.waitsAt > WAIT_TICKS) this.waitsAt = null;
     const target = stands || this.waitsAt === null ? head : Math.min(head, this.waitsAt);
     line.standAt(line.head);
     const behind = target - line.head;
@@ -117,7 +121,7 @@ export class ClassFlight {
       line.add(this.sample);
       line.standAt(line.head);
       flown += 1;
-      if (line.run.freezeRequested && this.events.stands && !stands) {
+      if (line.run.freezeRequested && this.events.stands && !stands && classRun.mode === 'demonstration') {
         this.waitsAt = line.head;
         this.events.stands(line.head);
         break;

@@ -52,6 +52,7 @@ export class ClassClient {
   private sending = false;
   private early: { attemptId: string; frame: string }[] = [];
   private catching = false;
+  private caughtMs = 0;
   private refusal: SocketRefusal | null = null;
   private inside = false;
   private entering: Promise<void> | null = null;
@@ -323,6 +324,7 @@ export class ClassClient {
     const { follower } = this;
     if (this.catching || follower === null) return;
     this.catching = true;
+    this.caughtMs = performance.now();
     try {
       const { chunks, frames } = await this.chunksOf(attemptId);
       const engines = follower.line.run.plant.engineCount;
@@ -348,7 +350,8 @@ export class ClassClient {
     if (follower === null || news.attemptId !== this.followed) return;
     const frame = decodeFrame(news.frame, follower.line.run.plant.engineCount);
     if (frame) follower.addFrame(frame);
-    if (follower.gap) void this.catchUp(news.attemptId).catch(() => undefined);
+    if (follower.gap && performance.now() - this.caughtMs > 500)
+      void this.catchUp(news.attemptId).catch(() => undefined);
   }
 
   /** One picture's worth of work. */

@@ -222,7 +222,7 @@ export function createClassesRepository(manager: EntityManager) {
         .innerJoin('a.attempt', 't')
         .where(`t.status = 'flying' AND COALESCE(t.lastChunkAt, t.startedAt) < :quietSince`, { quietSince })
         .orderBy('t.startedAt', 'ASC')
-        .limit(50)
+        .limit(1000)
         .getMany();
       return rows.map(attemptRecord);
     },

@@ -15,6 +15,8 @@ import type { ClassScenarios } from './class-scenarios.ts';
 const CHUNK_KEY_BYTES = 8;
 /** An attempt of a run that is over is completed with what is stored after so long a silence. */
 const LEFT_BEHIND_MS = 20_000;
+/** So many of them at a time: each is integrated again. */
+const MOST_LEFT_BEHIND = 50;
 
 export interface NewClassAttempt {
   id: string;
@@ -186,7 +188,7 @@ export function createClassAttempts({ database, log, scenarios, close, now }: Cl
       for (const record of await database.classes.silentAttempts(new Date(now().getTime() - LEFT_BEHIND_MS))) {
         const { state, record: liveClass } = await log.read(record.classId);
         const over = state.run === null || state.run.run !== record.run || state.run.overAt !== null;
-        if (!over) continue;
+        if (!over || done >= MOST_LEFT_BEHIND) continue;
         await finish(record, liveClass.organisationId, null, null);
         done += 1;
       }

@@ -40,6 +40,21 @@ export interface ClassSessionSetup {
 }
 
 const CLOCK_ASKS = 5;
+const RETRY_MS = 400;
+const CATCH_UP_EVERY_MS = 500;
+/** Passes over the class clock that end a flight whose run is over; each flies a few seconds at the most. */
+const LAST_PASSES = 50;
+/** Refusals after which the same chunk may yet be taken. */
+const PASSING = new Set(['internal', 'unreachable', 'not-a-member', 'throttled', 'unavailable']);
+
+/** A recording of one's own that is not delivered yet; a new run does not wait for it. */
+interface Recording {
+  attemptId: string;
+  flight: ClassFlight;
+  unsent: RecordedChunk[];
+  /** The server has taken it as whole, or never will. */
+  done: boolean;
+}
 
 export class ClassSession {
   state: ClassState = EMPTY_CLASS;
@@ -61,12 +76,13 @@ export class ClassSession {
   heard: string | null = null;
   unacknowledged = 0;
   private readonly scenarios = new Map<number, Promise<ClassScenario>>();
-  private unsent: RecordedChunk[] = [];
+  private recordings: Recording[] = [];
   private sending = false;
+  private steer: (sample: ControlSample) => void = () => undefined;
   private catching = false;
+  private caughtMs = 0;
   private early: { attemptId: string; frame: string }[] = [];
   private closed = false;
-  private flownRun = 0;
   private taking = false;
   private readonly setup: ClassSessionSetup;
 
@@ -82,7 +98,12 @@ export class ClassSession {
     });
     socket.on('connect_error', () => setup.events.changed());
     socket.on('class:appended', (news) => {
-      if (news.classId === classId) this.take(news.entries);
+      if (news.classId !== classId) return;
+      const letIn = news.entries.some((entry) => entry.kind === 'joined' && entry.member === this.pass?.member);
+      // A guest at the door has no log yet: it comes with entering.
+      if (this.pass?.admitted === false) {
+        if (letIn) void this.enter();
+      } else this.take(news.entries);
     });
     socket.on('class:beat', ({ classId: id, seq }) => {
       if (id === classId && seq > this.state.seq) void this.fill();
@@ -199,7 +220,7 @@ export class ClassSession {
       }
       this.take(entered.entries);
       if (this.followed !== null) await this.catchUp(this.followed);
-      if (this.unsent.length > 0) void this.send();
+      void this.send();
     } catch (error) {
       this.setup.events.said(error instanceof Error ? error.message : 'The class cannot be entered.');
       if (error instanceof SocketRefusal && error.code === 'not-a-member') this.setup.events.closed('removed');
@@ -217,6 +238,7 @@ export class ClassSession {
       const before = this.state.run?.run ?? 0;
       this.state = foldEntry(this.state, entry);
       this.entries.push(entry);
+      if (entry.kind === 'over' || entry.kind === 'ended') this.endFlight();
       if ((this.state.run?.run ?? 0) !== before) this.newRun();
       if (entry.kind === 'shown' || entry.kind === 'controls') this.heard = null;
       if (entry.kind === 'removed' && entry.member === this.member) this.inside = false;
@@ -229,6 +251,15 @@ export class ClassSession {
       this.follower?.update(run, this.serverNow());
     }
     this.setup.events.changed();
+  }
+
+  /** The run is over: what was flown up to there is recorded before anything else begins. */
+  private endFlight(): void {
+    const { run } = this.state;
+    if (!run || !this.flight) return;
+    this.flight.update(run);
+    for (let pass = 0; pass < LAST_PASSES && !this.flight.finished; pass += 1)
+      this.flight.advance(this.serverNow(), this.steer);
   }
 
   private newRun(): void {
@@ -284,9 +315,8 @@ export class ClassSession {
       const before = this.followed === hold.attemptId ? this.follower : null;
       const from = this.state.run.controls.at(-1)?.tick ?? 0;
       this.attemptId = hold.attemptId;
-      this.unsent = [];
-      this.flownRun = run.run;
-      this.flight = new ClassFlight({
+      const unsent: RecordedChunk[] = [];
+      const flight = new ClassFlight({
         run: createRun(spec),
         classRun: this.state.run,
         member: this.member,
@@ -302,8 +332,7 @@ export class ClassSession {
         },
         events: {
           chunk: (chunk) => {
-            this.unsent.push(chunk);
-            this.unacknowledged = this.unsent.length;
+            unsent.push(chunk);
             void this.send();
           },
           frame: (frame) => {
@@ -316,6 +345,8 @@ export class ClassSession {
           },
         },
       });
+      this.flight = flight;
+      this.recordings.push({ attemptId: hold.attemptId, flight, unsent, done: false });
       this.follower = null;
       this.followed = null;
       this.setup.events.changed();
@@ -330,48 +361,48 @@ export class ClassSession {
     this.flight = null;
   }
 
-  private async send(): Promise<void> {
-    if (this.sending || this.attemptId === null) return;
+  /** Sends what is recorded, chunk by chunk, and says so when a recording is whole. */
+  async send(): Promise<void> {
+    if (this.sending || !this.inside) return;
     this.sending = true;
-    const { attemptId } = this;
     try {
-      while (this.unsent.length > 0 && this.setup.socket.connected && this.attemptId === attemptId) {
-        const [chunk] = this.unsent;
-        await this.request('run:chunk', {
-          classId: this.setup.classId,
-          attemptId,
-          index: chunk.index,
-          hash: chunk.hash,
-          bytes: toBase64(chunk.bytes),
-        });
-        this.unsent.shift();
-        this.unacknowledged = this.unsent.length;
+      for (const recording of [...this.recordings]) {
+        await this.deliver(recording);
+        if (recording.done) this.recordings = this.recordings.filter((one) => one !== recording);
       }
-    } catch (error) {
-      const lasting =
-        error instanceof SocketRefusal && !['internal', 'unreachable', 'not-a-member'].includes(error.code);
-      if (lasting) this.setup.events.said(`A second of this flight was refused: ${error.message}`);
-      else setTimeout(() => void this.send(), 400);
+    } catch {
+      setTimeout(() => void this.send(), RETRY_MS);
     } finally {
       this.sending = false;
+      this.unacknowledged = this.recordings.reduce((sum, { unsent }) => sum + unsent.length, 0);
     }
   }
 
-  /** Tells the server that one's own recording of the present run is whole. */
-  async complete(): Promise<void> {
-    const { flight, attemptId } = this;
-    if (!flight || attemptId === null || this.flownRun !== this.state.run?.run) return;
-    if (this.unsent.length > 0) {
-      await new Promise((resolve) => setTimeout(resolve, 300));
-      if (this.setup.socket.connected) void this.send();
-      return this.complete();
+  private async deliver(recording: Recording): Promise<void> {
+    const { classId } = this.setup;
+    const { attemptId, flight, unsent } = recording;
+    try {
+      while (unsent.length > 0) {
+        const [{ index, hash, bytes }] = unsent;
+        await this.request('run:chunk', { classId, attemptId, index, hash, bytes: toBase64(bytes) });
+        unsent.shift();
+      }
+      if (!flight.finished || this.runIsOpen(attemptId)) return;
+      const ended = flight.line.run.ended ?? 'left';
+      await this.request('run:complete', { classId, attemptId, chunkCount: flight.chunkCount, ended });
+      recording.done = true;
+    } catch (error) {
+      if (!(error instanceof SocketRefusal) || PASSING.has(error.code)) throw error;
+      // Whoever takes the controls later records what this flight did not deliver; the server completes what is left behind.
+      recording.done = true;
+      if (error.code === 'chunk-refused')
+        this.setup.events.said(`A second of this flight was refused: ${error.message}`);
     }
-    await this.request('run:complete', {
-      classId: this.setup.classId,
-      attemptId,
-      chunkCount: flight.chunkCount,
-      ended: flight.line.run.ended ?? 'left',
-    });
+  }
+
+  /** Whether an attempt belongs to the run in progress, which may still be rewound. */
+  private runIsOpen(attemptId: string): boolean {
+    return this.attemptId === attemptId && this.state.run?.overAt === null;
   }
 
   private async chunksOf(attemptId: string) {
@@ -419,6 +450,7 @@ export class ClassSession {
     const { follower } = this;
     if (this.catching || !follower) return;
     this.catching = true;
+    this.caughtMs = performance.now();
     try {
       const { chunks, frames } = await this.chunksOf(attemptId);
       const engines = follower.line.run.plant.engineCount;
@@ -451,12 +483,14 @@ export class ClassSession {
     if (!follower || news.attemptId !== this.followed) return;
     const frame = decodeFrame(news.frame, follower.line.run.plant.engineCount);
     if (frame) follower.addFrame(frame);
-    if (follower.gap) void this.catchUp(news.attemptId);
+    // The chunks that fill a gap are stored within a second: asking at every frame would only be refused.
+    if (follower.gap && performance.now() - this.caughtMs > CATCH_UP_EVERY_MS) void this.catchUp(news.attemptId);
   }
 
   /** One picture's worth of work; `steer` fills in what the pilot holds. */
   step(steer: (sample: ControlSample) => void): void {
     const serverMs = this.serverNow();
+    this.steer = steer;
     this.flight?.advance(serverMs, steer);
     this.follower?.advance(serverMs);
   }

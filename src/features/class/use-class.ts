@@ -22,8 +22,12 @@ export interface BoardLine {
   beta: readonly number[];
 }
 
+/** A little less than the tenth of a second at which telemetry is made. */
+const TELL_EVERY_MS = 80;
+
 /** A class as this browser lives it. Which aeroplane is flown or looked on at follows from the log alone. */
 export function useClass(classId: string) {
+  let toldMs = 0;
   const notices = useNoticesStore();
   const state = shallowRef<ClassState>(EMPTY_CLASS);
   const connected = ref(false);
@@ -39,7 +43,6 @@ export function useClass(classId: string) {
   const drawn = shallowRef<Run | null>(null);
   const flying = ref(false);
   let boardRun = 0;
-  let completed = 0;
 
   const session = new ClassSession({
     socket: openClassSocket(),
@@ -76,7 +79,11 @@ export function useClass(classId: string) {
       said: (text) => (told.value = text),
       tick(run) {
         const row = telemetry.tick(run);
-        if (row) session.telemetry(row);
+        const nowMs = performance.now();
+        // After an absence many ticks are flown at once: the board wants the latest, ten times a second.
+        if (!row || nowMs - toldMs < TELL_EVERY_MS) return;
+        toldMs = nowMs;
+        session.telemetry(row);
       },
     },
   });
@@ -97,17 +104,11 @@ export function useClass(classId: string) {
   /** Takes the controls, looks on or lets go, as the log has it. */
   async function settle(): Promise<void> {
     const { run } = session.state;
+    void session.send();
     if (settling || !run || !session.inside || session.state.ended) return;
     settling = true;
     try {
-      const isOver = phaseAt(run, session.serverNow()) === 'over';
-      if (isOver) {
-        if (session.flight && completed !== run.run) {
-          completed = run.run;
-          await session.complete();
-        }
-        return;
-      }
+      if (run.overAt !== null) return;
       const me = session.member;
       if (run.mode === 'demonstration') {
         if (run.controls.at(-1)?.member === me) {

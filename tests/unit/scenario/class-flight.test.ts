@@ -3,7 +3,7 @@ import { createStream } from '#shared/numerics/random.ts';
 import { ClassFlight } from '#shared/scenario/class-flight.ts';
 import { Follower, VIEW_DELAY_MS, type Difference } from '#shared/scenario/class-follow.ts';
 import { decodeFrame } from '#shared/scenario/class-frames.ts';
-import type { ClassDeed, ClassEntry } from '#shared/scenario/class-log.ts';
+import type { ClassDeed, ClassEntry, ClassMode } from '#shared/scenario/class-log.ts';
 import { EMPTY_CLASS, foldEntry, tickAt, type ClassRun, type ClassState } from '#shared/scenario/class-state.ts';
 import { openRecording, rerun, type RecordedChunk } from '#shared/scenario/recording.ts';
 import { createRun } from '#shared/scenario/run.ts';
@@ -44,7 +44,7 @@ class Table {
   viewer!: Follower;
   steer = (sample: ControlSample): void => void (sample.pedal = Math.round(8000 * Math.sin(this.now / 300)));
 
-  constructor() {
+  constructor(mode: ClassMode = 'demonstration') {
     this.append({
       kind: 'opened',
       title: 'x',
@@ -59,7 +59,7 @@ class Table {
     this.append({
       kind: 'started',
       run: 1,
-      mode: 'demonstration',
+      mode,
       index: 0,
       seed: this.spec.seed,
       drawn: {},
@@ -309,6 +309,15 @@ describe('a demonstration', () => {
 });
 
 describe('an own flight', () => {
+  it('flies on past a freeze of the scenario, which stops a demonstration alone', () => {
+    const table = new Table('everyone-flies');
+    table.spec.scenario.events.push({ id: 'talk', lane: 'notes', kind: 'freeze', text: 'Look', at: { time_s: 2 } });
+    table.pilot = table.flight({ chunkKey: KEY, nextIndex: 0, lastHash: KEY });
+    table.runTo(5000);
+    expect(table.stands).toEqual([]);
+    expect(table.pilot.line.head).toBe(478);
+  });
+
   it('goes on by hands off after an absence, and is complete once the run of the class is over', () => {
     const table = new Table();
     table.pilot.broadcast = false;

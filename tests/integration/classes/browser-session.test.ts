@@ -1,0 +1,114 @@
+import { randomUUID } from 'node:crypto';
+import { io } from 'socket.io-client';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { attemptDetailSchema } from '#shared/contracts/attempts.ts';
+import { classDetailSchema, classPassSchema, classScenarioSchema, type ClassPass } from '#shared/contracts/classes.ts';
+import { ClassSession } from '../../../src/features/class/class-session.ts';
+import { until } from '../../support/class-client.ts';
+import { startTestServer, type Client, type TestServer } from '../../support/test-server.ts';
+
+let server: TestServer;
+let instructorHttp: Client;
+let pass: ClassPass;
+const sessions: ClassSession[] = [];
+
+function sessionOf(http: Client): ClassSession {
+  const socket = io(server.address, {
+    transports: ['websocket'],
+    extraHeaders: { cookie: http.cookie(), origin: server.address },
+    forceNew: true,
+    autoConnect: false,
+  });
+  const session = new ClassSession({
+    socket,
+    classId: pass.classId,
+    scenario: async (index) =>
+      classScenarioSchema.parse((await http('GET', `/api/classes/${pass.classId}/scenarios/${index}`)).body),
+    newKey: randomUUID,
+    events: {
+      changed: () => undefined,
+      board: () => undefined,
+      view: () => undefined,
+      closed: () => undefined,
+      said: () => undefined,
+      tick: () => undefined,
+    },
+  });
+  sessions.push(session);
+  session.open();
+  return session;
+}
+
+/** Sixty pictures a second for a time, as a page draws them. */
+async function play(session: ClassSession, ms: number): Promise<void> {
+  const end = performance.now() + ms;
+  while (performance.now() < end) {
+    session.step((sample) => void (sample.pedal = 5000));
+    void session.send();
+    await new Promise((resolve) => setTimeout(resolve, 16));
+  }
+}
+
+beforeAll(async () => {
+  server = await startTestServer();
+  await server.sql(`UPDATE organisation SET settings = JSON_SET(settings, '$.guests', true)`);
+  instructorHttp = await server.client('m.okafor');
+  const json = {
+    title: 'Browsers',
+    playlist: [{ scenarioSlug: 'left-engine-cut-after-lift-off' }],
+    mode: 'everyone-flies',
+    guests: true,
+  };
+  pass = classPassSchema.parse((await instructorHttp('POST', '/api/classes', { json })).body);
+});
+afterAll(async () => {
+  for (const session of sessions) session.close();
+  await server.close();
+});
+
+describe('the browser’s session of a class', () => {
+  it('of a guest at the door enters by itself once it is let in', async () => {
+    const instructor = sessionOf(instructorHttp);
+    await until(() => instructor.inside);
+    const guestHttp = await server.client();
+    await guestHttp('POST', '/api/classes/join', { json: { code: pass.joinCode, displayName: 'Visitor' } });
+    const guest = sessionOf(guestHttp);
+    await until(() => guest.pass !== null);
+    expect([guest.inside, guest.state.seq]).toEqual([false, 0]);
+    await instructor.control({ deed: 'admit', member: guest.member });
+    await until(() => guest.inside);
+    expect(guest.state.seq).toBe(instructor.state.seq);
+    expect(guest.state.members.find(({ id }) => id === guest.member)).toMatchObject({ standing: 'in', seat: 1 });
+  });
+
+  it('delivers a run to its last tick and completes it, although the next one begins at once', async () => {
+    const [instructor] = sessions;
+    const http = await server.client('j.lindqvist');
+    await http('POST', '/api/classes/join', { json: { code: pass.joinCode } });
+    const trainee = sessionOf(http);
+    await until(() => trainee.inside);
+    await instructor.control({ deed: 'start', countdownS: 0.3 });
+    await until(() => trainee.run !== null);
+    await trainee.takeControls();
+    await play(trainee, 1800);
+    const attempt = trainee.attemptId ?? '';
+    await instructor.control({ deed: 'restart', countdownS: 0.3 });
+    await until(() => trainee.run?.run === 2);
+    await trainee.takeControls();
+    await play(trainee, 1500);
+    expect(trainee.attemptId).not.toBe(attempt);
+    const read = async () => attemptDetailSchema.parse((await http('GET', `/api/attempts/${attempt}`)).body);
+    // The first recomputation of a server also starts its thread.
+    let detail = await read();
+    for (let i = 0; i < 50 && detail.status !== 'complete'; i += 1) {
+      await play(trainee, 200);
+      detail = await read();
+    }
+    expect(detail).toMatchObject({ status: 'complete', result: { statesAgree: true } });
+    const { runsFlown } = classDetailSchema.parse((await instructorHttp('GET', `/api/classes/${pass.classId}`)).body);
+    const overAt = runsFlown[0].overAtTick ?? 0;
+    expect(overAt).toBeGreaterThan(120);
+    expect(detail.result?.durationS).toBeCloseTo(overAt / 120, 3);
+    expect(runsFlown[1]).toMatchObject({ seed: runsFlown[0].seed, mode: 'everyone-flies' });
+  });
+});
