@@ -81,7 +81,7 @@ export function createPersonal({ database, now }: { database: Database; now: () 
           last: dayWords(last.startedAt),
           ...stateOf(last),
           margin: marginOf(last),
-          signed: signed ? `${signed.signer}, ${dayWords(signed.at)}` : '–',
+          signed: signed ? signed.signer : '–',
         })),
         attempts: attempts.map((attempt) => ({
           at: timeWords(attempt.startedAt),
