@@ -120,6 +120,19 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Airframes', area: 'airframes', roles: ['engineer', 'instructor'], purpose: 'read airframes' },
   },
   {
+    path: '/airframes/import',
+    name: 'airframe-import',
+    component: () => import('../views/airframes/AirframeImportView.vue'),
+    meta: { title: 'Import', area: 'airframes', roles: ['engineer'], purpose: 'import airframes' },
+  },
+  {
+    path: '/airframes/:slug/revisions/:revision/estimator',
+    name: 'airframe-estimator',
+    component: () => import('../views/airframes/GeometryEstimatorView.vue'),
+    props: true,
+    meta: { title: 'Estimator', area: 'airframes', roles: ['engineer', 'instructor'], purpose: 'read airframes' },
+  },
+  {
     path: '/airframes/:slug/revisions/:revision',
     name: 'airframe-data',
     component: () => import('../views/airframes/AirframeDataView.vue'),
