@@ -18,6 +18,12 @@ export interface HttpDependencies {
   cookies: () => string;
 }
 
+/** A file the server made, with the name it gave. */
+export interface NamedFile {
+  name: string;
+  content: Blob;
+}
+
 interface Call extends CallOptions {
   method: 'GET' | 'POST' | 'PUT' | 'DELETE';
   path: string;
@@ -100,7 +106,8 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
     }
   }
 
-  async function request<S extends z.ZodType>(call: Call, schema: S): Promise<z.output<S>> {
+  /** The server's answer, after a silent refresh where the access token had run out. */
+  async function answerOf(call: Call): Promise<Response> {
     if (leaving && call.method === 'GET') throw signedOutMeanwhile();
     let response = await send(call);
     const signingIn = call.method === 'POST' && call.path === SESSION_PATH;
@@ -108,6 +115,18 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
       if (await refresh()) response = await send(call);
       if (response.status === 401) sessionEnded.forEach((tell) => tell());
     }
+    return response;
+  }
+
+  async function requestFile(call: Call): Promise<NamedFile> {
+    const response = await answerOf(call);
+    if (!response.ok) throw toApiError(response, await readBody(response));
+    const name = /filename="([^"]+)"/.exec(response.headers.get('content-disposition') ?? '')?.[1];
+    return { name: name ?? 'sidewash.pdf', content: await response.blob() };
+  }
+
+  async function request<S extends z.ZodType>(call: Call, schema: S): Promise<z.output<S>> {
+    const response = await answerOf(call);
     const content: unknown = await readBody(response);
     if (!response.ok) throw toApiError(response, content);
     const parsed = schema.safeParse(content);
@@ -130,6 +149,8 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
       request({ ...options, method: 'GET', path }, schema),
     post: <S extends z.ZodType>(path: string, body: unknown, schema: S, options: CallOptions = {}) =>
       request({ ...options, method: 'POST', path, ...json(body) }, schema),
+    postForFile: (path: string, body: unknown, options: CallOptions = {}) =>
+      requestFile({ ...options, method: 'POST', path, ...json(body) }),
     put: <S extends z.ZodType>(path: string, body: unknown, schema: S, options: CallOptions = {}) =>
       request({ ...options, method: 'PUT', path, ...json(body) }, schema),
     putBytes: <S extends z.ZodType>(
