@@ -5,6 +5,14 @@ import express, { type Express, type RequestHandler } from 'express';
 import { REQUEST_ID_HEADER } from '#shared/contracts/wire-names.ts';
 import type { Environment } from './config/environment.ts';
 import type { Logger } from './config/log.ts';
+import {
+  accountRouter,
+  auditFileRouter,
+  auditRouter,
+  organisationRouter,
+  outboxRouter,
+  peopleRouter,
+} from './http/administration.routers.ts';
 import { airframeEditingRouter } from './http/airframe-editing.router.ts';
 import { airframesRouter } from './http/airframes.router.ts';
 import { analysisReportsRouter } from './http/analysis-reports.router.ts';
@@ -61,6 +69,7 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use(csrfProtection(cookies, env.publicOrigins));
   api.use(express.json({ limit: LARGEST_JSON }));
   api.use('/session', sessionRouter(services.sessions, cookies));
+  api.use('/session', accountRouter(services.accountLinks, services.sessions));
   api.use('/classes', classesRouter({ services, cookies, publicOrigins: env.publicOrigins }));
   const signedIn = requireSession(services.sessions);
   api.use('/airframes', signedIn, airframesRouter(services.airframes));
@@ -75,6 +84,11 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use('/assignments', signedIn, assignmentsRouter(services.assignments));
   api.use('/records', signedIn, recordsRouter(services.records));
   api.use('/playlists', signedIn, playlistsRouter(services.playlists));
+  api.use('/people', signedIn, peopleRouter(services.people));
+  api.use('/organisation', signedIn, organisationRouter(services.people));
+  api.use('/outbox', signedIn, outboxRouter(services.outbox));
+  api.use('/audit', signedIn, auditRouter(services.audit));
+  api.use('/audit.csv', signedIn, auditFileRouter(services.audit));
   api.use(unknownRoute);
   app.use('/api', api);
 

@@ -10,6 +10,8 @@ import { tokenSecret } from './config/token-secret.ts';
 import { openDatabase } from './data/database.ts';
 import { seedEmptyDatabase } from './data/seeds/seed-empty-database.ts';
 import { staticFiles } from './http/static-files.ts';
+import { createCourier } from './mail/courier.ts';
+import { startLocalSink } from './mail/local-sink.ts';
 import { connectRedis } from './realtime/redis.ts';
 import { attachSockets } from './realtime/sockets.ts';
 import { createServices } from './services/create-services.ts';
@@ -17,6 +19,8 @@ import { createServices } from './services/create-services.ts';
 const TIDY_EVERY_MS = 3600 * 1000;
 const REMIND_EVERY_MS = 60 * 1000;
 const DELIVER_EVERY_MS = 5 * 1000;
+const MAIL_EVERY_MS = 2 * 1000;
+const SEAL_EVERY_MS = 10 * 1000;
 
 /** Starts the product's server: schema, seed, listen; prints one line for the launcher when it serves. */
 async function main(): Promise<void> {
@@ -24,8 +28,14 @@ async function main(): Promise<void> {
   const log = createLog(env);
   const { database, migrations } = await openDatabase({ url: env.databaseUrl, connections: env.databaseConnections });
   let address = env.publicOrigins[0] ?? '';
+  const sink = env.smtpUrl === null ? await startLocalSink(path.join(env.dataFolder, 'mail')) : null;
+  const courier = createCourier(sink?.url ?? env.smtpUrl ?? '', env.mailFrom);
   const services = createServices({
     database,
+    mailRoute: () => ({
+      server: env.smtpUrl === null ? null : new URL(env.smtpUrl).host,
+      sinkFolder: sink?.folder ?? null,
+    }),
     tokenSecret: tokenSecret(env.jwtSecret, env.dataFolder),
     address: () => address,
   });
@@ -68,6 +78,8 @@ async function main(): Promise<void> {
     everySoOften(TIDY_EVERY_MS, 'retention', () => services.records.applyRetention()),
     everySoOften(REMIND_EVERY_MS, 'reminders', () => services.assignments.giveDueReminders()),
     everySoOften(DELIVER_EVERY_MS, 'statements', () => services.records.deliver()),
+    everySoOften(MAIL_EVERY_MS, 'mail', () => services.sendMail(courier)),
+    everySoOften(SEAL_EVERY_MS, 'audit seals', () => services.auditChain.seal()),
   ];
 
   function everySoOften(everyMs: number, what: string, work: () => Promise<unknown>): NodeJS.Timeout {
@@ -91,6 +103,8 @@ async function main(): Promise<void> {
     http.closeAllConnections();
     await closeClient();
     await services.close();
+    courier.close();
+    await sink?.close();
     await database.close();
     log.info('stopped');
     process.exit(0);

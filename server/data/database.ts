@@ -19,6 +19,8 @@ import {
 } from './repositories/organisations.repository.ts';
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
 import { type PlaylistsRepository, createPlaylistsRepository } from './repositories/playlists.repository.ts';
+import { type AccountLinksRepository, createAccountLinksRepository } from './repositories/account-links.repository.ts';
+import { type OutboxRepository, createOutboxRepository } from './repositories/outbox.repository.ts';
 import { type BudgetsRepository, createBudgetsRepository } from './repositories/budgets.repository.ts';
 import { type RecordsRepository, createRecordsRepository } from './repositories/records.repository.ts';
 import { type StatementsRepository, createStatementsRepository } from './repositories/statements.repository.ts';
@@ -61,6 +63,8 @@ export interface Repositories {
   readonly personal: PersonalRepository;
   readonly noticeMail: NoticeMailRepository;
   readonly playlists: PlaylistsRepository;
+  readonly accountLinks: AccountLinksRepository;
+  readonly outbox: OutboxRepository;
   readonly audit: AuditRepository;
 }
 
@@ -97,6 +101,8 @@ function repositories(manager: EntityManager): Repositories {
     personal: createPersonalRepository(manager),
     noticeMail: createNoticeMailRepository(manager),
     playlists: createPlaylistsRepository(manager),
+    accountLinks: createAccountLinksRepository(manager),
+    outbox: createOutboxRepository(manager),
     audit: createAuditRepository(manager),
   };
 }

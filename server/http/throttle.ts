@@ -7,13 +7,17 @@ const WINDOW_MS = 15 * 60 * 1000;
 /** Failed sign-ins allowed in a quarter of an hour: for one account from anywhere, and for one address over all accounts. */
 export const SIGN_IN_LIMITS = { account: 10, address: 60 } as const;
 
-function limiter(limit: number, keyGenerator: (request: Request) => string) {
+/** Requests in a quarter of an hour from one address: looks at links (failed ones count), and messages asked for. */
+const LINK_LIMIT = 30;
+const RESET_LIMIT = 10;
+
+function limiter(limit: number, keyGenerator: (request: Request) => string, what = 'failed sign-ins', all = false) {
   return rateLimit({
     windowMs: WINDOW_MS,
     limit,
     standardHeaders: 'draft-8',
     legacyHeaders: false,
-    skipSuccessfulRequests: true,
+    skipSuccessfulRequests: !all,
     keyGenerator,
     handler: (request, _response, next) => {
       const limited: unknown = Reflect.get(request, 'rateLimit');
@@ -22,7 +26,7 @@ function limiter(limit: number, keyGenerator: (request: Request) => string) {
       const seconds =
         resetAt instanceof Date ? Math.max(1, Math.ceil((resetAt.getTime() - Date.now()) / 1000)) : WINDOW_MS / 1000;
       next(
-        new ProblemError('throttled', `Too many failed sign-ins. Try again in ${Math.ceil(seconds / 60)} minutes.`, {
+        new ProblemError('throttled', `Too many ${what}. Try again in ${Math.ceil(seconds / 60)} minutes.`, {
           retryAfterS: seconds,
         }),
       );
@@ -45,3 +49,7 @@ export function signInThrottles() {
     limiter(SIGN_IN_LIMITS.account, accountOf),
   ];
 }
+
+const addressOf = (request: Request): string => `address:${ipKeyGenerator(request.ip ?? '')}`;
+export const linkThrottle = () => limiter(LINK_LIMIT, addressOf, 'links that do not work');
+export const resetThrottle = () => limiter(RESET_LIMIT, addressOf, 'messages asked for', true);

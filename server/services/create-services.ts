@@ -10,6 +10,12 @@ import { createStartAttempt } from './attempts/start-attempt.ts';
 import { createStoreChunk } from './attempts/store-chunk.ts';
 import { createClassServices } from './classes/create-class-services.ts';
 import { createPrintDebrief } from './debrief/print-debrief.ts';
+import { createAuditChain } from './audit/audit-chain.ts';
+import { createAuditService } from './audit/audit.service.ts';
+import { createOutboxService, type MailRoute } from './mail/outbox.service.ts';
+import { createSendMail } from './mail/send-mail.ts';
+import { createAccountLinks } from './people/account-links.ts';
+import { createPeopleService } from './people/people.service.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
 import { createAssignmentsService } from './assignments/assignments.service.ts';
 import { createKeepMail } from './assignments/keep-mail.ts';
@@ -44,6 +50,8 @@ export interface ServicesSetup {
   now?: () => Date;
   /** Address under which people reach the product, for links in mail. */
   address?: () => string;
+  /** Where the mail queue sends to, for the outbox page. */
+  mailRoute?: () => MailRoute;
   /** Where messages of assignments go; they wait in a table of their own when absent. */
   queueMail?: QueueMail;
 }
@@ -51,7 +59,9 @@ export interface ServicesSetup {
 /** All use cases over one database, with the threads they need. `close` ends the threads. */
 export function createServices(setup: ServicesSetup) {
   const { database, tokenSecret, now = () => new Date(), address = () => 'http://localhost' } = setup;
-  const { queueMail = createKeepMail(now) } = setup;
+  const { queueMail = createKeepMail(now), mailRoute = () => ({ server: null, sinkFolder: null }) } = setup;
+  const sessionNotices = createSessionNotices();
+  const auditChain = createAuditChain({ database, now });
   const passwordThreads = createWorkerPool('password', 1);
   const reruns = createWorkerPool('rerun', 2);
   const reports = createWorkerPool('analysis-report', 1);
@@ -81,9 +91,15 @@ export function createServices(setup: ServicesSetup) {
       database,
       passwords,
       accessTokens: createAccessTokens(tokenSecret, now),
-      notices: createSessionNotices(),
+      notices: sessionNotices,
       now,
     }),
+    accountLinks: createAccountLinks({ database, passwords, notices: sessionNotices, address, now }),
+    people: createPeopleService({ database, notices: sessionNotices, address, now }),
+    outbox: createOutboxService({ database, mailRoute, now }),
+    sendMail: createSendMail({ database, now }),
+    audit: createAuditService({ database, chain: auditChain }),
+    auditChain,
     airframes: createAirframesService({ database }),
     airframeEditing: {
       detail: createAirframeDetail({ database }),

@@ -37,6 +37,10 @@ const ALLOWED = {
   'record.read': ['instructor', 'administrator'],
   'record.correct': ['instructor'],
   'record.rule': ['administrator'],
+  'people.look-after': ['administrator'],
+  'outbox.read': ['administrator'],
+  'organisation.edit': ['administrator'],
+  'audit.read': ['administrator'],
 } as const satisfies Record<string, readonly Role[]>;
 
 export type Deed = keyof typeof ALLOWED;

@@ -81,14 +81,21 @@ export const linkSchema = z.object({
 });
 export type Link = z.infer<typeof linkSchema>;
 
+/** Bytes of `text` in UTF-8. */
+function utf8Length(text: string): number {
+  let bytes = 0;
+  for (const character of text) {
+    const code = character.codePointAt(0) ?? 0;
+    bytes += code < 0x80 ? 1 : code < 0x800 ? 2 : code < 0x10000 ? 3 : 4;
+  }
+  return bytes;
+}
+
 /** A new password: long rather than tangled. Bytes are counted because the hash reads no more. */
 export const newPasswordSchema = z
   .string()
   .min(MIN_PASSWORD_LENGTH, `has at least ${MIN_PASSWORD_LENGTH} characters`)
-  .refine(
-    (text) => new TextEncoder().encode(text).length <= MAX_PASSWORD_BYTES,
-    `has at most ${MAX_PASSWORD_BYTES} bytes`,
-  );
+  .refine((text) => utf8Length(text) <= MAX_PASSWORD_BYTES, `has at most ${MAX_PASSWORD_BYTES} bytes`);
 export const takeLinkSchema = z.strictObject({ token: linkTokenSchema, password: newPasswordSchema });
 export type TakeLink = z.infer<typeof takeLinkSchema>;
 export const askResetSchema = z.strictObject({ email: z.string().trim().min(1).max(254) });
@@ -100,7 +107,11 @@ export type ChangePassword = z.infer<typeof changePasswordSchema>;
 
 export const mailStateSchema = z.enum(['waiting', 'sent', 'refused']);
 export type MailState = z.infer<typeof mailStateSchema>;
-export const outboxQuerySchema = z.strictObject({ ...pageQueryShape, ...searchShape, state: mailStateSchema.optional() });
+export const outboxQuerySchema = z.strictObject({
+  ...pageQueryShape,
+  ...searchShape,
+  state: mailStateSchema.optional(),
+});
 export type OutboxQuery = z.infer<typeof outboxQuerySchema>;
 /** A message of the outbox. Secrets in links are not shown. */
 export const outboxMailSchema = z.object({

@@ -23,6 +23,13 @@ export const organisationSettingsSchema = z.object({
 });
 export type OrganisationSettings = z.infer<typeof organisationSettingsSchema>;
 
+/** What an administrator sets for the whole organisation. */
+export const organisationBodySchema = z.strictObject({
+  name: z.string().trim().min(1).max(120),
+  settings: organisationSettingsSchema,
+});
+export type OrganisationBody = z.infer<typeof organisationBodySchema>;
+
 export const meSchema = z.object({
   person: z.object({ id: z.uuid(), displayName: z.string(), email: z.string() }),
   organisation: z.object({ id: z.uuid(), name: z.string(), settings: organisationSettingsSchema }),

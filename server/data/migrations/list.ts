@@ -7,6 +7,7 @@ import { ScenarioDrafts1764547400000 } from './1764547400000-scenario-drafts.ts'
 import { Classes1764547500000 } from './1764547500000-classes.ts';
 import { Assignments1764547700000 } from './1764547700000-assignments.ts';
 import { NoticeMail1764547710000 } from './1764547710000-notice-mail.ts';
+import { PeopleMailAudit1764547800000 } from './1764547800000-people-mail-audit.ts';
 
 /** Migrations in the order in which they run. */
 export const MIGRATIONS = [
@@ -19,4 +20,5 @@ export const MIGRATIONS = [
   Classes1764547500000,
   Assignments1764547700000,
   NoticeMail1764547710000,
+  PeopleMailAudit1764547800000,
 ];

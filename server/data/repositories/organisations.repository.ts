@@ -44,6 +44,23 @@ export function createOrganisationsRepository(manager: EntityManager) {
       });
     },
 
+    async rename(id: string, name: string, settings: OrganisationSettings): Promise<void> {
+      await manager.update(OrganisationEntity, { id }, { name, settings: { ...settings } });
+    },
+
+    async cohortNamed(organisationId: string, name: string): Promise<string | null> {
+      const row = await manager.findOne(CohortEntity, { select: { id: true }, where: { organisationId, name } });
+      return row?.id ?? null;
+    },
+
+    async joinCohort(cohortId: string, personId: string, at: Date): Promise<void> {
+      await manager.query('INSERT IGNORE INTO cohort_member (cohort_id, person_id, joined_at) VALUES (?, ?, ?)', [
+        cohortId,
+        personId,
+        at,
+      ]);
+    },
+
     async insertCohort(cohort: {
       id: string;
       organisationId: string;
@@ -53,6 +70,7 @@ export function createOrganisationsRepository(manager: EntityManager) {
     }): Promise<void> {
       const { id, organisationId, name, memberIds, at } = cohort;
       await manager.insert(CohortEntity, { id, organisationId, name, createdAt: at });
+      if (memberIds.length === 0) return;
       await manager.insert(
         CohortMemberEntity,
         memberIds.map((personId) => ({ cohortId: id, personId, joinedAt: at })),

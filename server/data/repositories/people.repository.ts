@@ -4,10 +4,14 @@ import {
   organisationSettingsSchema,
   roleSchema,
 } from '#shared/contracts/session.ts';
+import { personStateSchema, type PeopleQuery } from '#shared/contracts/administration.ts';
 import type { EntityManager } from 'typeorm';
+import { z } from 'zod';
 import { OrganisationEntity } from '../entities/organisation.entity.ts';
 import { PersonRoleEntity } from '../entities/person-role.entity.ts';
 import { PersonEntity } from '../entities/person.entity.ts';
+import { anywhere } from './like-pattern.ts';
+import { offsetOf, type Rows } from './paging.ts';
 
 export type PersonStatus = 'invited' | 'active' | 'deactivated';
 
@@ -34,6 +38,32 @@ export interface NewPerson {
   status: PersonStatus;
   roles: Role[];
   at: Date;
+}
+
+const listedSchema = z.object({
+  id: z.string(),
+  email: z.string(),
+  displayName: z.string(),
+  fullName: z.string(),
+  state: personStateSchema,
+  roles: z.string().nullable(),
+  cohorts: z.string().nullable(),
+  invitationEndsAt: z.date().nullable(),
+  lastSeenAt: z.date().nullable(),
+});
+const SEPARATOR = '\u001f';
+const several = (joined: string | null): string[] => (joined === null ? [] : joined.split(SEPARATOR));
+
+export interface ListedPerson {
+  id: string;
+  email: string;
+  displayName: string;
+  fullName: string;
+  state: PersonStatus;
+  roles: Role[];
+  cohorts: string[];
+  invitationEndsAt: Date | null;
+  lastSeenAt: Date | null;
 }
 
 /** The form of an address that sign-in compares. */
@@ -124,6 +154,89 @@ export function createPeopleRepository(manager: EntityManager) {
     async setStatus(organisationId: string, personId: string, status: PersonStatus, at: Date): Promise<void> {
       const deactivatedAt = status === 'deactivated' ? at : null;
       await manager.update(PersonEntity, { id: personId, organisationId }, { status, deactivatedAt });
+    },
+
+    async list(organisationId: string, query: PeopleQuery): Promise<Rows<ListedPerson>> {
+      const where = ['p.organisation_id = ?'];
+      const values: unknown[] = [organisationId];
+      if (query.search !== '') {
+        const pattern = anywhere(query.search);
+        where.push('(p.display_name LIKE ? OR p.full_name LIKE ? OR p.email LIKE ?)');
+        values.push(pattern, pattern, pattern);
+      }
+      if (query.state !== undefined) {
+        where.push('p.status = ?');
+        values.push(query.state);
+      }
+      if (query.role !== undefined) {
+        where.push('EXISTS (SELECT 1 FROM person_role x WHERE x.person_id = p.id AND x.role = ?)');
+        values.push(query.role);
+      }
+      const condition = where.join(' AND ');
+      const rows: unknown = await manager.query(
+        `SELECT p.id, p.email, p.display_name AS displayName, p.full_name AS fullName, p.status AS state,
+           (SELECT GROUP_CONCAT(r.role ORDER BY r.role SEPARATOR '${SEPARATOR}') FROM person_role r WHERE r.person_id = p.id) AS roles,
+           (SELECT GROUP_CONCAT(c.name ORDER BY c.name SEPARATOR '${SEPARATOR}') FROM cohort_member m
+             INNER JOIN cohort c ON c.id = m.cohort_id WHERE m.person_id = p.id) AS cohorts,
+           (SELECT MAX(l.expires_at) FROM account_link l WHERE l.person_id = p.id AND l.kind = 'invitation' AND l.used_at IS NULL)
+             AS invitationEndsAt,
+           (SELECT MAX(s.last_used_at) FROM session s WHERE s.person_id = p.id) AS lastSeenAt
+         FROM person p WHERE ${condition} ORDER BY p.display_name, p.id LIMIT ? OFFSET ?`,
+        [...values, query.pageSize, offsetOf(query)],
+      );
+      const counted: unknown = await manager.query(`SELECT COUNT(*) AS total FROM person p WHERE ${condition}`, values);
+      const [{ total }] = z.tuple([z.object({ total: z.coerce.number() })]).parse(counted);
+      const items = z
+        .array(listedSchema)
+        .parse(rows)
+        .map(({ roles, cohorts, ...person }) => ({
+          ...person,
+          roles: several(roles).map((role) => roleSchema.parse(role)),
+          cohorts: several(cohorts),
+        }));
+      return { items, total };
+    },
+
+    /** Ids of active administrators, held to the end of the transaction, so that two do not remove each other. */
+    async holdAdministrators(organisationId: string): Promise<string[]> {
+      const rows: unknown = await manager.query(
+        `SELECT p.id FROM person p INNER JOIN person_role r ON r.person_id = p.id AND r.role = 'administrator'
+         WHERE p.organisation_id = ? AND p.status = 'active' ORDER BY p.id FOR UPDATE`,
+        [organisationId],
+      );
+      return z
+        .array(z.object({ id: z.string() }))
+        .parse(rows)
+        .map(({ id }) => id);
+    },
+
+    async setRoles(personId: string, roles: readonly Role[], at: Date): Promise<void> {
+      await manager.delete(PersonRoleEntity, { personId });
+      await manager.insert(
+        PersonRoleEntity,
+        roles.map((role) => ({ personId, role, grantedAt: at })),
+      );
+    },
+
+    async setPassword(personId: string, passwordHash: string, status: PersonStatus): Promise<void> {
+      await manager.update(PersonEntity, { id: personId }, { passwordHash, status });
+    },
+
+    async passwordHash(personId: string): Promise<string | null> {
+      const row = await manager.findOne(PersonEntity, {
+        select: { id: true, passwordHash: true },
+        where: { id: personId },
+      });
+      return row?.passwordHash ?? null;
+    },
+
+    async status(organisationId: string, personId: string): Promise<PersonStatus | null> {
+      const row = await manager.findOne(PersonEntity, {
+        select: { id: true, status: true },
+        where: { id: personId, organisationId },
+        lock: { mode: 'pessimistic_write' },
+      });
+      return row?.status ?? null;
     },
 
     /** People of the invented organisation, for the sign-in list printed at start; empty when there is none. */

@@ -1,5 +1,5 @@
 import type { Role } from '#shared/contracts/session.ts';
-import { type EntityManager, IsNull, LessThan } from 'typeorm';
+import { type EntityManager, IsNull, LessThan, Not } from 'typeorm';
 import { RefreshTokenEntity } from '../entities/refresh-token.entity.ts';
 import { SessionEntity } from '../entities/session.entity.ts';
 import { type PersonStatus, rolesOf } from './people.repository.ts';
@@ -108,6 +108,14 @@ export function createSessionsRepository(manager: EntityManager) {
 
     async revokeAllOf(personId: string, reason: string, at: Date): Promise<void> {
       await manager.update(SessionEntity, { personId, revokedAt: IsNull() }, { revokedAt: at, revokedFor: reason });
+    },
+
+    async revokeOthers(personId: string, keptId: string, reason: string, at: Date): Promise<void> {
+      await manager.update(
+        SessionEntity,
+        { personId, id: Not(keptId), revokedAt: IsNull() },
+        { revokedAt: at, revokedFor: reason },
+      );
     },
 
     /** Removes sessions, with their tokens, that ended before `before`. */
