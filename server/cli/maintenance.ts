@@ -1,4 +1,3 @@
-import 'reflect-metadata';
 import { existsSync } from 'node:fs';
 import path from 'node:path';
 import { dataFolderOf } from '../bootstrap/paths.mjs';

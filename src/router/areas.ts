@@ -7,7 +7,8 @@ export interface Area {
   roles: readonly Role[];
 }
 
-export type AreaName = 'my-flights' | 'airframes' | 'analysis' | 'scenarios' | 'classes' | 'assignments' | 'records';
+export type AreaName =
+  'my-flights' | 'airframes' | 'analysis' | 'scenarios' | 'classes' | 'assignments' | 'records' | 'administration';
 
 const EVERYONE: readonly Role[] = ['trainee', 'instructor', 'engineer', 'administrator'];
 
@@ -20,6 +21,7 @@ export const AREAS: readonly Area[] = [
   { name: 'classes', label: 'Live class', to: '/classes', roles: ['trainee', 'instructor', 'administrator'] },
   { name: 'assignments', label: 'Assignments', to: '/assignments', roles: ['instructor', 'administrator'] },
   { name: 'records', label: 'Records', to: '/records', roles: ['trainee', 'instructor', 'administrator'] },
+  { name: 'administration', label: 'Administration', to: '/administration', roles: ['administrator'] },
 ];
 
 export function areasFor(roles: readonly Role[]): Area[] {

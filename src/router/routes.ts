@@ -1,4 +1,10 @@
-import type { RouteRecordRaw } from 'vue-router';
+import type { RouteMeta, RouteRecordRaw } from 'vue-router';
+
+const ADMINISTRATION = {
+  area: 'administration',
+  roles: ['administrator'],
+  purpose: 'look after people',
+} satisfies Partial<RouteMeta>;
 
 export const routes: RouteRecordRaw[] = [
   { path: '/', name: 'start', component: () => import('../views/edges/NotFoundView.vue'), meta: { title: '' } },
@@ -7,6 +13,43 @@ export const routes: RouteRecordRaw[] = [
     name: 'sign-in',
     component: () => import('../views/account/SignInView.vue'),
     meta: { title: 'Sign in', open: true, bare: true },
+  },
+  {
+    path: '/welcome/:token',
+    name: 'link',
+    component: () => import('../views/account/LinkView.vue'),
+    props: true,
+    meta: { title: 'Choose a password', open: true, bare: true },
+  },
+  {
+    path: '/forgotten-password',
+    name: 'forgotten-password',
+    component: () => import('../views/account/ForgottenPasswordView.vue'),
+    meta: { title: 'Forgotten password', open: true, bare: true },
+  },
+  {
+    path: '/administration',
+    name: 'people',
+    component: () => import('../views/administration/PeopleView.vue'),
+    meta: { title: 'People', ...ADMINISTRATION },
+  },
+  {
+    path: '/administration/outbox',
+    name: 'outbox',
+    component: () => import('../views/administration/OutboxView.vue'),
+    meta: { title: 'Mail outbox', ...ADMINISTRATION },
+  },
+  {
+    path: '/administration/organisation',
+    name: 'organisation',
+    component: () => import('../views/administration/OrganisationView.vue'),
+    meta: { title: 'Organisation', ...ADMINISTRATION },
+  },
+  {
+    path: '/administration/audit',
+    name: 'audit',
+    component: () => import('../views/administration/AuditView.vue'),
+    meta: { title: 'Audit trail', ...ADMINISTRATION },
   },
   {
     path: '/unavailable',
