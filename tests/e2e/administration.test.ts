@@ -101,6 +101,7 @@ describe('an administrator', () => {
     const page = await newPage({ expectedErrors: [SIGNED_OUT, /403/] });
     await page.goto('/sign-in');
     await page.getByRole('link', { name: 'Forgotten password' }).click();
+    await page.getByRole('heading', { name: 'Forgotten password' }).waitFor();
     await page.getByLabel('Email').fill('nobody@elsewhere.example');
     await page.getByRole('button', { name: 'Send link' }).click();
     await page.getByText('If this address belongs to someone here').waitFor();
