@@ -72,8 +72,11 @@ export function createAuditRepository(manager: EntityManager) {
       await manager.insert(AuditEntryEntity, entry);
     },
 
-    async list(organisationId: string, query: AuditQuery): Promise<Rows<AuditRecord>> {
-      const { where, values } = conditions(organisationId, query);
+    /** Newest first; `upTo` leaves out entries written after that one, so that pages of a growing trail do not shift. */
+    async list(organisationId: string, query: AuditQuery, upTo: string | null = null): Promise<Rows<AuditRecord>> {
+      const found = conditions(organisationId, query);
+      const where = upTo === null ? found.where : `${found.where} AND e.id <= ?`;
+      const values = upTo === null ? found.values : [...found.values, upTo];
       const rows: unknown = await manager.query(
         `SELECT e.id, e.at, p.display_name AS actor, e.deed, e.subject_kind AS kind, e.subject_id AS subject, e.detail,
            e.address, s.digest AS seal ${FROM} WHERE ${where} ORDER BY e.id DESC LIMIT ? OFFSET ?`,

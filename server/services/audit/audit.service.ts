@@ -24,8 +24,11 @@ export function createAuditService({ database, chain }: { database: Database; ch
     async *csv(actor: Actor, query: AuditQuery): AsyncGenerator<string> {
       requireDeed(actor, 'audit.read');
       yield csvLine(HEADING);
+      let newest: string | null = null;
       for (let page = 1; page <= MOST_PAGES; page++) {
-        const { items } = await database.audit.list(actor.organisationId, { ...query, page, pageSize: MAX_PAGE_SIZE });
+        const asked = { ...query, page, pageSize: MAX_PAGE_SIZE };
+        const { items } = await database.audit.list(actor.organisationId, asked, newest);
+        newest ??= items[0]?.id ?? null;
         for (const item of items) {
           const { id, at, actor: who, kind, deed, subject, detail, address, seal } = entryOf(item);
           const cells = [id, at, who ?? 'Sidewash', kind, deed, subject ?? '', JSON.stringify(detail)];
