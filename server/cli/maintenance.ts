@@ -74,10 +74,10 @@ async function verify(): Promise<number> {
   const { database } = await openDatabase({ url: runningDatabase(), connections: 2 });
   try {
     const chain = createAuditChain({ database, now: () => new Date() });
-    const { sealed, waiting, firstBreak } = await chain.check((done) => progress('audit_seal', done));
+    const { sealed, waiting, lastSeal, firstBreak } = await chain.check((done) => progress('audit_seal', done));
     console.log(
       firstBreak === null
-        ? `The chain is whole: ${sealed} entries sealed, ${waiting} not yet.`
+        ? `The chain is whole: ${sealed} entries sealed, ${waiting} not yet. Last seal: ${lastSeal ?? 'none'}`
         : `The chain is broken at entry ${firstBreak.id}, after ${sealed} good ones. ${firstBreak.words}`,
     );
     return firstBreak === null ? 0 : 1;

@@ -167,6 +167,8 @@ export type AuditPage = z.infer<typeof auditPageSchema>;
 export const auditCheckSchema = z.object({
   sealed: z.number().int().min(0),
   waiting: z.number().int().min(0),
+  /** Digest of the newest seal, hexadecimal: kept elsewhere, it shows later that entries were cut off with their seals. */
+  lastSeal: z.string().nullable(),
   /** Id of the first entry whose seal does not fit, and what is wrong; null when the chain is whole. */
   firstBreak: z.object({ id: z.string(), words: z.string() }).nullable(),
 });

@@ -40,7 +40,12 @@ export function createAuditChain({ database, now }: { database: Database; now: (
       for (;;) {
         const rows = await database.audit.chain(after, AT_ONCE);
         for (const { position, id, content, digest } of rows) {
-          const broken = (words: string): AuditCheck => ({ sealed, waiting: 0, firstBreak: { id, words } });
+          const broken = (words: string): AuditCheck => ({
+            sealed,
+            waiting: 0,
+            lastSeal: before,
+            firstBreak: { id, words },
+          });
           if (content === null) return broken('The entry is gone.');
           if (sealOf(before, content) !== digest) {
             return broken('The entry, or the one sealed before it, is not what was sealed.');
@@ -50,7 +55,9 @@ export function createAuditChain({ database, now }: { database: Database; now: (
           sealed++;
         }
         progress(sealed);
-        if (rows.length < AT_ONCE) return { sealed, waiting: await database.audit.countUnsealed(), firstBreak: null };
+        if (rows.length < AT_ONCE) {
+          return { sealed, waiting: await database.audit.countUnsealed(), lastSeal: before, firstBreak: null };
+        }
       }
     },
   };

@@ -288,6 +288,7 @@ describe('the audit trail', () => {
     const whole = await check();
     expect(whole.firstBreak).toBeNull();
     expect(whole.sealed).toBeGreaterThan(10);
+    expect(whole.lastSeal).toMatch(/^[0-9a-f]{64}$/);
 
     const [entry] = await server.sql(`SELECT id FROM audit_entry ORDER BY id LIMIT 1 OFFSET 4`);
     await expect(server.sql(`UPDATE audit_entry SET deed = 'x' WHERE id = ?`, [entry.id])).rejects.toThrow();
