@@ -80,7 +80,7 @@ export function createOutboxRepository(manager: EntityManager) {
     async again(organisationId: string, id: string, at: Date): Promise<boolean> {
       const answer: unknown = await manager.query(
         `UPDATE outbox_mail SET state = 'waiting', tries = 0, next_try_at = ?
-         WHERE id = ? AND organisation_id = ? AND state <> 'sent'`,
+         WHERE id = ? AND organisation_id = ? AND state = 'refused'`,
         [at, id, organisationId],
       );
       return z.object({ affectedRows: z.number() }).parse(answer).affectedRows === 1;

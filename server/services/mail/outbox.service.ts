@@ -33,7 +33,7 @@ export function createOutboxService(setup: { database: Database; mailRoute: () =
     async again(actor: Actor, id: string, caller: Caller): Promise<void> {
       requireDeed(actor, 'outbox.read');
       await database.transaction(async (on) => {
-        if (!(await on.outbox.again(actor.organisationId, id, now()))) throw notFound('waiting or refused message');
+        if (!(await on.outbox.again(actor.organisationId, id, now()))) throw notFound('refused message');
         await on.audit.append({
           organisationId: actor.organisationId,
           at: now(),

@@ -3,6 +3,7 @@ import type { PeopleQuery, Person, Roster, RosterAnswer } from '#shared/contract
 import type { Page } from '#shared/contracts/paging.ts';
 import type { OrganisationSettings, Role } from '#shared/contracts/session.ts';
 import type { Database, Repositories } from '../../data/database.ts';
+import { isDuplicateKey } from '../../data/duplicate-key.ts';
 import { emailKey, type PersonStatus } from '../../data/repositories/people.repository.ts';
 import { type Actor, requireDeed } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
@@ -113,7 +114,7 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
     /** Judges a roster, and with `invite` adds the good rows as invited people and queues their messages, all or none. */
     async roster(actor: Actor, { rows, invite: doInvite }: Roster, caller: Caller): Promise<RosterAnswer> {
       requireDeed(actor, 'people.look-after');
-      return database.transaction(async (on) => {
+      const work = async (on: Repositories): Promise<RosterAnswer> => {
         await on.organisations.takeTurn(actor.organisationId);
         const known = new Map<string, 'here' | 'elsewhere'>();
         for (const row of rows) {
@@ -143,7 +144,14 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
           await on.audit.append(entry(actor, caller, 'person.invited', id, { email, roles, cohort }));
         }
         return { rows: verdicts, invited: good.length };
-      });
+      };
+      try {
+        return await database.transaction(work);
+      } catch (error) {
+        // Another organisation invited one of the addresses in between; judged again, that row is left out.
+        if (!isDuplicateKey(error)) throw error;
+        return await database.transaction(work);
+      }
     },
 
     async inviteAgain(actor: Actor, personId: string, caller: Caller): Promise<void> {
