@@ -65,5 +65,6 @@ export const exportAddress = (slug: string, revision: number, format: 'json' | '
 export const getValueHistory = (slug: string, field: string, signal?: AbortSignal): Promise<ValueHistory> =>
   api.get(at(slug, '/history'), valueHistorySchema, { query: { field }, signal });
 
-/** Address of an airframe's skin, a GLB file. */
-export const skinAddress = (slug: string): string => at(slug, '/skin');
+/** Content of an airframe's skin, a GLB file. */
+export const getSkin = async (slug: string, signal?: AbortSignal): Promise<ArrayBuffer> =>
+  (await api.getFile(at(slug, '/skin'), { signal })).content.arrayBuffer();
