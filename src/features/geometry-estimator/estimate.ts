@@ -79,7 +79,10 @@ const SUMS: Readonly<Record<string, { method: string; uncertaintyPct: number }>>
   CY_beta: { method: `${FIN_METHOD}; ${MUNK_METHOD}`, uncertaintyPct: 20 },
   Cl_beta: { method: `${STRIP_METHOD}; ${POSITION_METHOD}; ${FIN_METHOD}`, uncertaintyPct: 25 },
   Cn_beta: { method: `${FIN_METHOD}; ${MUNK_METHOD}`, uncertaintyPct: 25 },
-  Cl_p: { method: `Strip theory: roll damping of a tapered wing; ${FIN_METHOD}`, uncertaintyPct: 15 },
+  Cl_p: {
+    method: `Strip theory: roll damping of a tapered wing, reads high without its induced flow; ${FIN_METHOD}`,
+    uncertaintyPct: 40,
+  },
   Cn_p: { method: `${CROSS_METHOD}; ${FIN_METHOD}`, uncertaintyPct: 40 },
   Cl_r: { method: `${CROSS_METHOD}; ${FIN_METHOD}`, uncertaintyPct: 30 },
   Cn_r: { method: `${FIN_METHOD}; wing and body left out`, uncertaintyPct: 30 },
