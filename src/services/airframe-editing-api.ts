@@ -8,6 +8,8 @@ import {
   type CreateAirframe,
   type ReleaseRequest,
   type SheetCells,
+  type ValueHistory,
+  valueHistorySchema,
 } from '#shared/contracts/airframe-editing.ts';
 import { airframeRevisionSchema, type AirframeRevision } from '#shared/contracts/airframes.ts';
 import { api } from './http-client.ts';
@@ -58,3 +60,11 @@ export const removeSkin = (slug: string): Promise<void> => api.delete(at(slug, '
 /** Address of an export; the browser downloads it with the session's cookies. */
 export const exportAddress = (slug: string, revision: number, format: 'json' | 'csv' | 'xlsx'): string =>
   at(slug, `/revisions/${revision}/export.${format}`);
+
+/** One value over all revisions, newest first; `field` is a JSON Pointer. */
+export const getValueHistory = (slug: string, field: string, signal?: AbortSignal): Promise<ValueHistory> =>
+  api.get(at(slug, '/history'), valueHistorySchema, { query: { field }, signal });
+
+/** Content of an airframe's skin, a GLB file. */
+export const getSkin = async (slug: string, signal?: AbortSignal): Promise<ArrayBuffer> =>
+  (await api.getFile(at(slug, '/skin'), { signal })).content.arrayBuffer();

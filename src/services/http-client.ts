@@ -149,6 +149,7 @@ export function createHttpClient({ fetch, cookies }: HttpDependencies) {
       request({ ...options, method: 'GET', path }, schema),
     post: <S extends z.ZodType>(path: string, body: unknown, schema: S, options: CallOptions = {}) =>
       request({ ...options, method: 'POST', path, ...json(body) }, schema),
+    getFile: (path: string, options: CallOptions = {}) => requestFile({ ...options, method: 'GET', path }),
     postForFile: (path: string, body: unknown, options: CallOptions = {}) =>
       requestFile({ ...options, method: 'POST', path, ...json(body) }),
     put: <S extends z.ZodType>(path: string, body: unknown, schema: S, options: CallOptions = {}) =>

@@ -1,5 +1,5 @@
 /** The scene graph of the flying stage: one group, built per airframe and runway, posed per observation. */
-import { Group, Vector3 } from 'three';
+import { Group, type Object3D, Vector3 } from 'three';
 import type { Observation, RunwaySetup } from '#shared/model/plant-types.ts';
 import { GroundPlane } from './ground/ground-plane.ts';
 import { HeightCue } from './ground/height-cue.ts';
@@ -54,6 +54,11 @@ export class StageScene {
     this.palette = palette;
     for (const part of [this.ground, this.runway, this.ribbon, this.cue, this.aeroplane, this.ghost])
       part?.setColours(palette);
+  }
+
+  /** The aeroplane as an uploaded model, or drawn from its geometry. */
+  wear(skin: Object3D | null): void {
+    this.aeroplane.wear(skin);
   }
 
   /** Poses everything for one instant. */

@@ -3,110 +3,19 @@ import type { ForeignSet, ImportedSet } from '#shared/model/import-set.ts';
 import { importLateralSet } from '#shared/model/import-set.ts';
 import type { LateralDerivatives } from '#shared/model/conversions.ts';
 import { ModelError } from '#shared/model/errors.ts';
+import { DEG, FT } from '#shared/units/constants.ts';
 import type { Json } from '../airframe-editing/draft-document.ts';
+import {
+  DERIVATIVE_KEYS,
+  type Quantity,
+  QUANTITIES,
+  isOptional,
+  quantityWords,
+  plainLabel,
+  guessLabels,
+} from './sheet-labels.ts';
 
 export type Cell = string | number | boolean | null;
-
-export const DERIVATIVE_KEYS = [
-  'CY_beta',
-  'CY_p',
-  'CY_r',
-  'CY_da',
-  'CY_dr',
-  'Cl_beta',
-  'Cl_p',
-  'Cl_r',
-  'Cl_da',
-  'Cl_dr',
-  'Cn_beta',
-  'Cn_p',
-  'Cn_r',
-  'Cn_da',
-  'Cn_dr',
-] as const;
-export const SIZE_KEYS = [
-  'mass',
-  'wingArea',
-  'wingSpan',
-  'meanChord',
-  'speed',
-  'density',
-  'Ixx',
-  'Iyy',
-  'Izz',
-  'Ixz',
-  'alphaDeg',
-  'CL',
-] as const;
-export type Quantity = (typeof SIZE_KEYS)[number] | (typeof DERIVATIVE_KEYS)[number];
-export const QUANTITIES: readonly Quantity[] = [...SIZE_KEYS, ...DERIVATIVE_KEYS];
-const OPTIONAL = new Set<Quantity>(['Iyy', 'Ixz', 'alphaDeg', 'CL', 'meanChord', 'CY_p', 'CY_r', 'CY_da']);
-export const isOptional = (quantity: Quantity): boolean => OPTIONAL.has(quantity);
-
-export const QUANTITY_WORDS: Readonly<Record<(typeof SIZE_KEYS)[number], string>> = {
-  mass: 'Mass, or weight in lb',
-  wingArea: 'Wing area',
-  wingSpan: 'Wing span',
-  meanChord: 'Mean chord',
-  speed: 'True airspeed',
-  density: 'Air density',
-  Ixx: 'Ixx',
-  Iyy: 'Iyy',
-  Izz: 'Izz',
-  Ixz: 'Ixz',
-  alphaDeg: 'Angle of attack, deg',
-  CL: 'Lift coefficient',
-};
-export const quantityWords = (quantity: Quantity): string =>
-  SIZE_KEYS.some((key) => key === quantity)
-    ? QUANTITY_WORDS[quantity as keyof typeof QUANTITY_WORDS] // one of its keys: just checked
-    : quantity.replace('_', ' ');
-
-/** Letters and digits only, Greek in words: "C_l,β" and "Clbeta" are the same label. */
-export function plainLabel(text: string): string {
-  return text
-    .normalize('NFKD')
-    .replace(/\(.*?\)|\[.*?\]/g, '')
-    .replace(/β/g, 'beta')
-    .replace(/δ|Δ/g, 'd')
-    .replace(/ρ/g, 'rho')
-    .replace(/α/g, 'alpha')
-    .replace(/[^a-zA-Z0-9']/g, '');
-}
-
-const SYNONYMS: Partial<Record<Quantity, readonly string[]>> = {
-  mass: ['mass', 'weight', 'w', 'm'],
-  wingArea: ['wingarea', 's', 'area'],
-  wingSpan: ['wingspan', 'b', 'span'],
-  meanChord: ['meanchord', 'c', 'chord', 'cbar'],
-  speed: ['speed', 'v', 'tas', 'vt', 'u0', 'vto', 'trueairspeed'],
-  density: ['density', 'rho', 'airdensity'],
-  Ixx: ['ixx', 'ix'],
-  Iyy: ['iyy', 'iy'],
-  Izz: ['izz', 'iz'],
-  Ixz: ['ixz'],
-  alphaDeg: ['alpha', 'alphadeg', 'alpha0', 'angleofattack'],
-  CL: ['cl', 'liftcoefficient', 'clift'],
-};
-/** Labels under which each derivative is written: as a coefficient, or dimensional with Y, L and N, primed too. */
-function derivativeLabels(key: (typeof DERIVATIVE_KEYS)[number]): string[] {
-  const [family, input] = key.split('_');
-  const inputs: Record<string, string[]> = {
-    beta: ['beta', 'b', 'v'],
-    p: ['p'],
-    r: ['r'],
-    da: ['da', 'deltaa', 'ail'],
-    dr: ['dr', 'deltar', 'rud'],
-  };
-  const dimensional: Record<string, string> = { CY: 'y', Cl: 'l', Cn: 'n' };
-  const letter = dimensional[family] ?? '';
-  return (inputs[input] ?? []).flatMap((name) => [
-    `${family.toLowerCase()}${name}`,
-    `${letter}${name}`,
-    `${letter}'${name}`,
-    `${letter}${name}'`,
-  ]);
-}
 
 export interface Mapping {
   /** Column of the labels and of the values, from 0. */
@@ -114,7 +23,17 @@ export interface Mapping {
   valueColumn: number;
   /** Row of each quantity, from 0; absent where the sheet has none. */
   rows: Partial<Record<Quantity, number>>;
+  /** Values that the sheet has not, as typed. */
+  typed?: TypedValues;
+  adjust?: Adjustments;
 }
+export type TypedValues = Partial<Record<Quantity, string>>;
+/** Where one quantity is not written as the whole sheet is. */
+export interface Adjustment {
+  angles?: 'rad' | 'degree';
+  turned?: boolean;
+}
+export type Adjustments = Partial<Record<Quantity, Adjustment>>;
 
 const isNumber = (cell: Cell | undefined): boolean => cell !== null && cell !== undefined && parseNumber(cell).ok;
 
@@ -160,22 +79,11 @@ export function guessRows(
   labelColumn: number,
   valueColumn: number,
 ): Mapping['rows'] {
-  const found: Mapping['rows'] = {};
   const labels = rows.map((row) => {
     const cell = row[labelColumn];
     return typeof cell === 'string' && isNumber(row[valueColumn]) ? plainLabel(cell) : '';
   });
-  const take = (quantity: Quantity, wanted: readonly string[], exact: boolean): void => {
-    const index = labels.findIndex((label) =>
-      wanted.some((name) => (exact ? label === name : label.toLowerCase() === name)),
-    );
-    if (index >= 0 && found[quantity] === undefined && !Object.values(found).includes(index)) found[quantity] = index;
-  };
-  // "CL" is the lift, "Cl" begins a rolling moment: letters first with their case, then without.
-  take('CL', ['CL', 'CLift'], true);
-  for (const key of DERIVATIVE_KEYS) take(key, derivativeLabels(key), false);
-  for (const key of SIZE_KEYS) take(key, SYNONYMS[key] ?? [], false);
-  return found;
+  return guessLabels(labels);
 }
 
 export interface SheetMeaning {
@@ -203,66 +111,99 @@ export interface CellProblem {
 }
 export type Mapped = { ok: true; document: Json; set: ImportedSet } | { ok: false; problems: CellProblem[] };
 
+/** A quantity that may be missing: speed and density are needed for dimensional values or to find the lift coefficient. */
+export function mayBeMissing(quantity: Quantity, meaning: SheetMeaning, hasLift: boolean): boolean {
+  const needless = meaning.form === 'non-dimensional' && hasLift && (quantity === 'speed' || quantity === 'density');
+  return needless || isOptional(quantity);
+}
+
+/** The value as the whole sheet writes its values. */
+export function adjusted(value: number, one: Adjustment | undefined, meaning: SheetMeaning): number {
+  let now = one?.turned ? -value : value;
+  if (one?.angles === 'degree' && meaning.angles === 'rad') now /= DEG;
+  if (one?.angles === 'rad' && meaning.angles === 'degree') now *= DEG;
+  return now;
+}
+
+/** One condition with its values as read. @throws {ModelError} when they cannot be converted. */
+export function convertCondition(values: Partial<Record<Quantity, number>>, meaning: SheetMeaning): ImportedSet {
+  const v = (quantity: Quantity): number => values[quantity] ?? 0;
+  const derivatives = Object.fromEntries(DERIVATIVE_KEYS.map((key) => [key, v(key)])) as unknown as LateralDerivatives; // one value for each key
+  const { aileron, rudder, angles, rates } = meaning;
+  return importLateralSet({
+    units: meaning.units,
+    axes: meaning.axes,
+    inertiaAxes: meaning.inertiaAxes,
+    form: meaning.form,
+    conventions: { aileron, rudder, angles, rates },
+    mass: v('mass'),
+    wingArea: v('wingArea'),
+    wingSpan: v('wingSpan'),
+    // Not used where the lift coefficient is given and nothing is dimensional.
+    speed: values.speed ?? 1,
+    density: values.density ?? 1,
+    Ixx: v('Ixx'),
+    Izz: v('Izz'),
+    Ixz: v('Ixz'),
+    ...(values.Iyy !== undefined && { Iyy: values.Iyy }),
+    ...(values.alphaDeg !== undefined && { alphaDeg: values.alphaDeg }),
+    ...(values.CL !== undefined && { CL: values.CL }),
+    derivatives,
+  });
+}
+
+/** Mean chord in m: the sheet's own, or the geometric one. */
+export function chordOf(set: ImportedSet, given: number | undefined, meaning: SheetMeaning): number {
+  return given === undefined ? set.wingArea_m2 / set.wingSpan_m : given * (meaning.units === 'US' ? FT : 1);
+}
+
 /** The airframe document of a mapped sheet, or what stands in the way, beside the row. */
 export function mapSheet(rows: readonly (readonly Cell[])[], mapping: Mapping, meaning: SheetMeaning): Mapped {
   const problems: CellProblem[] = [];
   const values: Partial<Record<Quantity, number>> = {};
+  const hasLift = mapping.rows.CL !== undefined || (mapping.typed?.CL ?? '') !== '';
   for (const quantity of QUANTITIES) {
     const row = mapping.rows[quantity];
-    if (row === undefined) {
-      if (!isOptional(quantity))
+    const typed = mapping.typed?.[quantity] ?? '';
+    if (row === undefined && typed.trim() === '') {
+      if (!mayBeMissing(quantity, meaning, hasLift))
         problems.push({
           quantity,
           row: null,
-          message: `${quantityWords(quantity)} is not in the sheet yet: choose its row`,
+          message: `${quantityWords(quantity)} is not in the sheet yet: choose its row, or type it`,
         });
       continue;
     }
-    const parsed = parseNumber(rows[row]?.[mapping.valueColumn] ?? null);
-    if (parsed.ok) values[quantity] = parsed.value;
-    else problems.push({ quantity, row: row + 1, message: `row ${row + 1}: ${parsed.message}` });
+    const parsed = parseNumber(row === undefined ? typed : (rows[row]?.[mapping.valueColumn] ?? null));
+    if (parsed.ok) values[quantity] = adjusted(parsed.value, mapping.adjust?.[quantity], meaning);
+    else
+      problems.push({
+        quantity,
+        row: row === undefined ? null : row + 1,
+        message: row === undefined ? parsed.message : `row ${row + 1}: ${parsed.message}`,
+      });
   }
   if (problems.length > 0) return { ok: false, problems };
-  const v = (quantity: Quantity): number => values[quantity] ?? 0;
-  const derivatives = Object.fromEntries(DERIVATIVE_KEYS.map((key) => [key, v(key)])) as unknown as LateralDerivatives; // one value for each key
   try {
-    const { aileron, rudder, angles, rates } = meaning;
-    const set = importLateralSet({
-      units: meaning.units,
-      axes: meaning.axes,
-      inertiaAxes: meaning.inertiaAxes,
-      form: meaning.form,
-      conventions: { aileron, rudder, angles, rates },
-      mass: v('mass'),
-      wingArea: v('wingArea'),
-      wingSpan: v('wingSpan'),
-      speed: v('speed'),
-      density: v('density'),
-      Ixx: v('Ixx'),
-      Izz: v('Izz'),
-      Ixz: v('Ixz'),
-      ...(values.Iyy !== undefined && { Iyy: values.Iyy }),
-      ...(values.alphaDeg !== undefined && { alphaDeg: values.alphaDeg }),
-      ...(values.CL !== undefined && { CL: values.CL }),
-      derivatives,
-    });
-    const length = meaning.units === 'US' ? 0.3048 : 1;
-    const chord = values.meanChord === undefined ? set.wingArea_m2 / set.wingSpan_m : values.meanChord * length;
-    return { ok: true, set, document: documentOf(set, chord, meaning) };
+    const set = convertCondition(values, meaning);
+    return { ok: true, set, document: documentOf([set], chordOf(set, values.meanChord, meaning), meaning) };
   } catch (error) {
     const message = error instanceof ModelError ? error.message : 'the values cannot be converted';
     return { ok: false, problems: [{ quantity: null, row: null, message }] };
   }
 }
 
-function documentOf(set: ImportedSet, chord: number, meaning: SheetMeaning): Json {
+/** Sets of one aeroplane, each an entry by lift coefficient; geometry and mass are those of the first. */
+export function documentOf(sets: readonly [ImportedSet, ...ImportedSet[]], chord: number, meaning: SheetMeaning): Json {
+  const [first] = sets;
+  const entries = sets.map((set) => ({ ...set.row })).sort((a, b) => a.CL - b.CL);
   return {
     format: 'sidewash.airframe/1',
     name: meaning.name,
     class: meaning.airplaneClass,
-    geometry: { wingArea_m2: set.wingArea_m2, wingSpan_m: set.wingSpan_m, meanChord_m: chord },
-    mass: { ...set.mass },
-    configurations: [{ name: meaning.configuration, CLmax: meaning.CLmax, derivatives: [{ ...set.row }] }],
+    geometry: { wingArea_m2: first.wingArea_m2, wingSpan_m: first.wingSpan_m, meanChord_m: chord },
+    mass: { ...first.mass },
+    configurations: [{ name: meaning.configuration, CLmax: meaning.CLmax, derivatives: entries }],
     controls: {
       aileronMax_deg: meaning.aileronMaxDeg,
       rudderMax_deg: meaning.rudderMaxDeg,
@@ -275,4 +216,15 @@ function documentOf(set: ImportedSet, chord: number, meaning: SheetMeaning): Jso
       { field: '/controls', text: 'Assumed on import; the sheet gives none. Replace.' },
     ],
   };
+}
+
+/** The numbers of a mapped sheet as its cells say, before any conversion. */
+export function givenValues(rows: readonly (readonly Cell[])[], mapping: Mapping): Partial<Record<Quantity, number>> {
+  const values: Partial<Record<Quantity, number>> = {};
+  for (const quantity of QUANTITIES) {
+    const row = mapping.rows[quantity];
+    const parsed = row === undefined ? null : parseNumber(rows[row]?.[mapping.valueColumn] ?? null);
+    if (parsed?.ok) values[quantity] = parsed.value;
+  }
+  return values;
 }

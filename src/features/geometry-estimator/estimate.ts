@@ -1,6 +1,12 @@
-/** The contributions of fin, wing and the rest to each derivative, from geometry and from the draft's own totals. */
+/** The contributions of wing, body and fin to each derivative, from geometry, beside the draft's own totals. */
+import {
+  estimateBody,
+  estimateWingPosition,
+  estimateWingRollDamping,
+} from '#shared/analysis/body-and-wing-estimates.ts';
 import {
   dorsalFinStallDeg,
+  estimateCrossDerivatives,
   estimateDihedralEffect,
   estimateFin,
   estimateRudder,
@@ -16,6 +22,8 @@ export interface EstimatorInput {
   taper: number;
   wingLiftSlope: number;
   CL: number;
+  /** Angle of attack of the entry. */
+  alphaDeg: number;
   finAreaM2: number;
   finSpanM: number;
   finSweepDeg: number;
@@ -23,6 +31,9 @@ export interface EstimatorInput {
   heightM: number;
   fuselageRadiusM: number;
   fuselageDepthM: number;
+  fuselageWidthM: number;
+  fuselageLengthM: number;
+  fuselageFullness: number;
   wingBelowCentreM: number;
   rudderChordRatio: number;
   rudderSpanShare: number;
@@ -32,25 +43,55 @@ export interface EstimatorInput {
 
 export interface Contribution {
   key: string;
-  fin: number;
   wing: number;
+  body: number;
+  fin: number;
+  sum: number;
   /** What the draft holds; null when it holds nothing. */
   total: number | null;
 }
+export interface Offer {
+  /** Member of the row or of the fin. */
+  pointer: string;
+  label: string;
+  value: number;
+  /** Handbook methods by name. */
+  method: string;
+  uncertaintyPct: number;
+}
 export interface Estimate {
   contributions: Contribution[];
-  /** Values that may be adopted: member of the row or of the fin, value, method. */
-  offers: { pointer: string; label: string; value: number; method: string }[];
+  offers: Offer[];
   finLiftSlope: number;
 }
 
-const METHOD = {
-  fin: 'USAF DATCOM method: fin side force with sidewash factor, arms of the fin',
-  slope: 'Lift slope of a finite wing, Helmbold–Polhamus form',
-  dihedral: 'Strip theory: dihedral and sweep of a tapered wing',
-  rudder: 'Thin-aerofoil flap effectiveness, with span share',
-  dorsal: 'Rule of thumb: a dorsal fin raises the stall angle of the fin',
-} as const;
+const FIN_METHOD = 'USAF DATCOM method: fin side force with sidewash factor, arms of the fin';
+const SLOPE_METHOD = 'Lift slope of a finite wing, Polhamus’ form';
+const DORSAL_METHOD = 'Rule of thumb: a dorsal fin raises the stall angle of the fin';
+const RUDDER_METHOD = 'Thin-aerofoil flap effectiveness (Glauert, R&M 1095), with span share';
+const STRIP_METHOD = 'Strip theory: dihedral and sweep of a tapered wing';
+const POSITION_METHOD = 'DATCOM wing–body term for a low or high wing';
+const MUNK_METHOD = 'Slender body (Munk, NACA Report 184)';
+const CROSS_METHOD = 'Cross derivatives of the wing in proportion to the lift coefficient';
+
+/** How sure each sum is, ±2σ in percent, and by which methods it is made. Sizes of the uncertainty: common practice. */
+const SUMS: Readonly<Record<string, { method: string; uncertaintyPct: number }>> = {
+  CY_beta: { method: `${FIN_METHOD}; ${MUNK_METHOD}`, uncertaintyPct: 20 },
+  Cl_beta: { method: `${STRIP_METHOD}; ${POSITION_METHOD}; ${FIN_METHOD}`, uncertaintyPct: 25 },
+  Cn_beta: { method: `${FIN_METHOD}; ${MUNK_METHOD}`, uncertaintyPct: 25 },
+  Cl_p: {
+    method: `Strip theory: roll damping of a tapered wing, reads high without its induced flow; ${FIN_METHOD}`,
+    uncertaintyPct: 40,
+  },
+  Cn_p: { method: `${CROSS_METHOD}; ${FIN_METHOD}`, uncertaintyPct: 40 },
+  Cl_r: { method: `${CROSS_METHOD}; ${FIN_METHOD}`, uncertaintyPct: 30 },
+  Cn_r: { method: `${FIN_METHOD}; wing and body left out`, uncertaintyPct: 30 },
+  CY_dr: { method: RUDDER_METHOD, uncertaintyPct: 20 },
+  Cl_dr: { method: RUDDER_METHOD, uncertaintyPct: 35 },
+  Cn_dr: { method: RUDDER_METHOD, uncertaintyPct: 20 },
+};
+/** The body at the foot of the fin acts as an end plate: so much of the fin's own aspect ratio counts. */
+const END_PLATE = 1.55;
 
 /** @throws {NumericsError} bad-argument naming the size that is not possible */
 export function estimateAirframe(
@@ -58,13 +99,12 @@ export function estimateAirframe(
   row: Readonly<Record<string, number>>,
   rowPointer: string,
 ): Estimate {
-  const aspect = (input.finSpanM * input.finSpanM) / input.finAreaM2;
-  // The body at the foot of the fin acts as an end plate: one and a half times the fin's own aspect ratio.
-  const slope = finLiftSlope(1.55 * aspect, input.finSweepDeg * DEG);
+  const slope = finLiftSlope((END_PLATE * input.finSpanM * input.finSpanM) / input.finAreaM2, input.finSweepDeg * DEG);
+  const aspectRatio = (input.wingSpanM * input.wingSpanM) / input.wingAreaM2;
   const geometry = {
     wingAreaM2: input.wingAreaM2,
     wingSpanM: input.wingSpanM,
-    aspectRatio: (input.wingSpanM * input.wingSpanM) / input.wingAreaM2,
+    aspectRatio,
     wingSweepRad: input.wingSweepDeg * DEG,
     finAreaM2: input.finAreaM2,
     finSpanM: input.finSpanM,
@@ -74,45 +114,66 @@ export function estimateAirframe(
     armM: input.armM,
     heightM: input.heightM,
     liftSlopePerRad: slope,
-    alphaRad: 0,
+    alphaRad: input.alphaDeg * DEG,
   };
-  const fin = estimateFin(geometry);
-  const rudder = estimateRudder(geometry, input.rudderChordRatio, input.rudderSpanShare);
-  const wing = estimateDihedralEffect(
-    input.dihedralDeg * DEG,
-    input.wingSweepDeg * DEG,
-    input.taper,
-    input.wingLiftSlope,
-    input.CL,
-  );
-  const finParts: Record<string, number> = { ...fin, ...rudder };
-  const keys = ['CY_beta', 'Cl_beta', 'Cn_beta', 'Cn_r', 'Cl_r', 'Cl_p', 'Cn_p', 'CY_dr', 'Cl_dr', 'Cn_dr'];
-  const contributions = keys.map((key) => ({
-    key,
-    fin: finParts[key] ?? 0,
-    wing: key === 'Cl_beta' ? wing.total : 0,
-    total: row[key] ?? null,
+  const fin: Record<string, number> = {
+    ...estimateFin(geometry),
+    ...estimateRudder(geometry, input.rudderChordRatio, input.rudderSpanShare),
+  };
+  const body: Record<string, number> = {
+    ...estimateBody({
+      wingAreaM2: input.wingAreaM2,
+      wingSpanM: input.wingSpanM,
+      lengthM: input.fuselageLengthM,
+      depthM: input.fuselageDepthM,
+      widthM: input.fuselageWidthM,
+      fullness: input.fuselageFullness,
+    }),
+    Cl_beta: estimateWingPosition(
+      aspectRatio,
+      input.wingSpanM,
+      input.wingBelowCentreM,
+      input.fuselageDepthM,
+      input.fuselageWidthM,
+    ),
+  };
+  const wing: Record<string, number> = {
+    ...estimateCrossDerivatives(input.CL),
+    Cl_p: estimateWingRollDamping(input.wingLiftSlope, input.taper),
+    Cl_beta: estimateDihedralEffect(
+      input.dihedralDeg * DEG,
+      input.wingSweepDeg * DEG,
+      input.taper,
+      input.wingLiftSlope,
+      input.CL,
+    ).total,
+  };
+  const contributions = Object.keys(SUMS).map((key): Contribution => {
+    const parts = { wing: wing[key] ?? 0, body: body[key] ?? 0, fin: fin[key] ?? 0 };
+    return { key, ...parts, sum: parts.wing + parts.body + parts.fin, total: row[key] ?? null };
+  });
+  const offers: Offer[] = contributions.map(({ key, sum }) => ({
+    pointer: `${rowPointer}/${key}`,
+    label: key.replace('_', ' '),
+    value: sum,
+    method: SUMS[key]?.method ?? '',
+    uncertaintyPct: SUMS[key]?.uncertaintyPct ?? 50,
   }));
-  const offers = [
-    ...(['CY_dr', 'Cl_dr', 'Cn_dr'] as const).map((key) => ({
-      pointer: `${rowPointer}/${key}`,
-      label: key.replace('_', ' '),
-      value: rudder[key],
-      method: METHOD.rudder,
-    })),
+  offers.push(
     {
-      pointer: `${rowPointer}/Cl_beta`,
-      label: 'Cl beta, fin and wing',
-      value: fin.Cl_beta + wing.total,
-      method: `${METHOD.dihedral}; ${METHOD.fin}`,
+      pointer: '/fin/liftSlope_per_rad',
+      label: 'Fin lift slope',
+      value: slope,
+      method: SLOPE_METHOD,
+      uncertaintyPct: 15,
     },
-    { pointer: '/fin/liftSlope_per_rad', label: 'Fin lift slope', value: slope, method: METHOD.slope },
     {
       pointer: '/fin/stallAngleWithDorsal_deg',
       label: 'Fin stall angle with dorsal fin',
       value: dorsalFinStallDeg(input.plainStallDeg, input.dorsalShare),
-      method: METHOD.dorsal,
+      method: DORSAL_METHOD,
+      uncertaintyPct: 20,
     },
-  ];
+  );
   return { contributions, offers, finLiftSlope: slope };
 }

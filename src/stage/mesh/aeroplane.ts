@@ -1,5 +1,5 @@
 /** The aeroplane of one observation: fixed facets, ailerons and rudder about their hinges, engines' marks. */
-import { Group, MeshBasicMaterial, Quaternion, Vector3 } from 'three';
+import { Group, MeshBasicMaterial, type Object3D, Quaternion, Vector3 } from 'three';
 import { LineMaterial } from 'three/examples/jsm/lines/LineMaterial.js';
 import type { Observation } from '#shared/model/plant-types.ts';
 import type { AirframeShape } from '../shape/shape-types.ts';
@@ -29,6 +29,7 @@ export class Aeroplane {
   private readonly parts: readonly FacetedPart[];
   private readonly propulsors: readonly Propulsor[];
   private readonly turn = new Quaternion();
+  private skin: Object3D | null = null;
   private readonly mark: PropulsorState = { engineState: 0, share: 1, timeS: 0 };
 
   // every material counts as transparent: three.js then draws all objects in order of renderOrder, as the CPU renderer does
@@ -66,6 +67,14 @@ export class Aeroplane {
     this.object.traverse((child) => {
       child.raycast = () => undefined;
     });
+  }
+
+  /** Shows an uploaded model instead of the drawn facets, or the facets again; the engines' marks stay. */
+  wear(skin: Object3D | null): void {
+    if (this.skin !== null) this.object.remove(this.skin);
+    this.skin = skin;
+    if (skin !== null) this.object.add(skin);
+    for (const part of this.parts) part.object.visible = skin === null;
   }
 
   /** Places, turns and moves everything; call `shade` once the matrices are up to date. */

@@ -8,6 +8,12 @@ import {
   finLiftSlope,
   flapEffectiveness,
 } from '#shared/analysis/geometry-estimates.ts';
+import {
+  estimateBody,
+  estimateWingPosition,
+  estimateWingRollDamping,
+  spheroidApparentMass,
+} from '#shared/analysis/body-and-wing-estimates.ts';
 import { DEG, FT } from '#shared/units/constants.ts';
 
 const FIN = {
@@ -95,5 +101,64 @@ describe('paragraphs', () => {
   it('know gradient distances from 30 to 350 ft only', () => {
     expect(() => designGustMps(0, 20 * FT)).toThrow(/30 to 350 ft/u);
     expect(() => designGustMps(0, 400 * FT)).toThrow(/30 to 350 ft/u);
+  });
+});
+
+describe('body and wing estimates', () => {
+  // Lamb's table of apparent mass of prolate spheroids, as printed in NACA Report 184 (from memory); tolerance its last digit.
+  it.each([
+    [3.99, 0.082, 0.86],
+    [6.01, 0.045, 0.918],
+    [9.97, 0.021, 0.96],
+  ])('apparent mass of a spheroid of slenderness %s is the tabled one', (slenderness, k1, k2) => {
+    const found = spheroidApparentMass(slenderness);
+    expect(Math.abs(found.k1 - k1)).toBeLessThan(0.001);
+    expect(Math.abs(found.k2 - k2)).toBeLessThan(0.001);
+  });
+
+  it.each([1.2, 2, 5, 12])('the three coefficients of a spheroid of slenderness %s make two', (slenderness) => {
+    // Lamb: α₀ + β₀ + γ₀ = 2 for any ellipsoid; k = α₀/(2 − α₀), so α₀ = 2k/(1 + k). Exact.
+    const { k1, k2 } = spheroidApparentMass(slenderness);
+    expect((2 * k1) / (1 + k1) + (4 * k2) / (1 + k2)).toBeCloseTo(2, 10);
+  });
+
+  it('a spheroid that is nearly a sphere carries half its mass along', () => {
+    const { k1, k2 } = spheroidApparentMass(1.001);
+    expect(k1).toBeCloseTo(0.5, 2);
+    expect(k2).toBeCloseTo(0.5, 2);
+  });
+
+  it('a body destabilises in proportion to its volume and pushes against the sideslip', () => {
+    const body = { wingAreaM2: 17, wingSpanM: 11.3, lengthM: 8.5, depthM: 1.4, widthM: 1.2, fullness: 0.5 };
+    const found = estimateBody(body);
+    expect(found.Cn_beta).toBeLessThan(0);
+    expect(found.CY_beta).toBeLessThan(0);
+    expect(estimateBody({ ...body, fullness: 0.25 }).Cn_beta).toBeCloseTo(found.Cn_beta / 2, 12);
+    expect(() => estimateBody({ ...body, lengthM: 1 })).toThrow(/slenderness/u);
+    expect(() => estimateBody({ ...body, fullness: 1.2 })).toThrow(/fullness/u);
+  });
+
+  it('roll damping is the integral of the strips', () => {
+    // Numerically: −(4a/(S b²))·∫ c y² dy over the half span, b = 2, root chord 1; tolerance that of 2,000 midpoints.
+    const a = 5.2;
+    for (const taper of [0, 0.45, 1]) {
+      const steps = 2000;
+      let sum = 0;
+      let area = 0;
+      for (let i = 0; i < steps; i++) {
+        const y = (i + 0.5) / steps;
+        const chord = 1 - (1 - taper) * y;
+        sum += (chord * y * y) / steps;
+        area += (2 * chord) / steps;
+      }
+      expect(estimateWingRollDamping(a, taper)).toBeCloseTo((-4 * a * sum) / (area * 4), 4);
+    }
+    expect(() => estimateWingRollDamping(a, 1.1)).toThrow(/taper/u);
+  });
+
+  it('a low wing takes from the dihedral effect as much as a high one adds', () => {
+    const low = estimateWingPosition(7.5, 11.3, 0.4, 1.4, 1.2);
+    expect(low).toBeGreaterThan(0);
+    expect(estimateWingPosition(7.5, 11.3, -0.4, 1.4, 1.2)).toBe(-low);
   });
 });

@@ -4,13 +4,13 @@ import { lateralModes } from '#shared/analysis/modes.ts';
 import { parseAirframe } from '#shared/model/airframe-schema.ts';
 import { prepareAircraft } from '#shared/model/aircraft.ts';
 import { buildSmallDisturbance } from '#shared/model/small-disturbance.ts';
+import { plainLabel } from '../../../src/features/airframe-import/sheet-labels.ts';
 import {
   type Cell,
   type SheetMeaning,
   guessMapping,
   mapSheet,
   parseNumber,
-  plainLabel,
 } from '../../../src/features/airframe-import/sheet-mapping.ts';
 
 /**
