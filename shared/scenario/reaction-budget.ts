@@ -219,29 +219,47 @@ export interface CriterionBudget {
   latestS: number | null;
   /** True when it is met at every delay up to the longest. */
   capped: boolean;
+  /** All intervals of delays at which it is met; s. More than one, or one that does not begin at 0: not monotonic. */
+  intervalsS: [number, number][];
 }
 
-/** Latest delay per criterion on the grid, for the bars of the editor; all required criteria besides those of the reaction. */
+/** Budget per criterion, for the bars of the editor: on the grid, each change halved down to the resolution. */
 export function criterionBudgets(evaluator: BudgetEvaluator, ids: readonly string[]): CriterionBudget[] {
-  const outcomes = budgetGrid().map((delayS) => evaluator.evaluate(delayS, true));
+  const known = new Map<number, readonly string[]>();
+  const failedAt = (tick: number): readonly string[] => {
+    const found = known.get(tick);
+    if (found) return found;
+    const { failed } = evaluator.evaluate(tick / TICK_RATE_HZ, true);
+    known.set(tick, failed);
+    return failed;
+  };
+  const grid = budgetGrid().map(delayTicks);
   return ids.map((id) => {
-    let latestS: number | null = null;
-    let failsFrom: number | null = null;
-    for (const outcome of outcomes) {
-      if (outcome.failed.includes(id)) {
-        failsFrom = outcome.delayS;
-        break;
+    const isMet = (tick: number): boolean => !failedAt(tick).includes(id);
+    /** Last tick on the side of `from` of a change between two ticks, and the first on the other. */
+    const change = (from: number, to: number): [number, number] => {
+      let [low, high] = [from, to];
+      while (high - low > RESOLUTION_TICKS) {
+        const middle = Math.round((low + high) / 2);
+        if (isMet(middle) === isMet(from)) low = middle;
+        else high = middle;
       }
-      latestS = outcome.delayS;
+      return [low, high];
+    };
+    const intervalsS: [number, number][] = [];
+    let open: number | null = isMet(grid[0]) ? grid[0] : null;
+    for (let i = 1; i < grid.length; i++) {
+      if (isMet(grid[i - 1]) === isMet(grid[i])) continue;
+      const [before, after] = change(grid[i - 1], grid[i]);
+      if (open === null) open = after;
+      else {
+        intervalsS.push([open / TICK_RATE_HZ, before / TICK_RATE_HZ]);
+        open = null;
+      }
     }
-    if (latestS === null || failsFrom === null) return { id, latestS, capped: failsFrom === null && latestS !== null };
-    let low = delayTicks(latestS);
-    let high = delayTicks(failsFrom);
-    while (high - low > RESOLUTION_TICKS) {
-      const middle = Math.round((low + high) / 2);
-      if (evaluator.evaluate(middle / TICK_RATE_HZ, true).failed.includes(id)) high = middle;
-      else low = middle;
-    }
-    return { id, latestS: low / TICK_RATE_HZ, capped: false };
+    if (open !== null) intervalsS.push([open / TICK_RATE_HZ, grid[grid.length - 1] / TICK_RATE_HZ]);
+    const [first] = intervalsS;
+    const latestS = first !== undefined && first[0] === 0 ? first[1] : null;
+    return { id, latestS, capped: latestS === LONGEST_DELAY_S, intervalsS };
   });
 }
