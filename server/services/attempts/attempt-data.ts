@@ -1,11 +1,18 @@
 import { parseAirframe, type Airframe } from '#shared/model/airframe-schema.ts';
 import { parseScenario, type Scenario } from '#shared/scenario/scenario-schema.ts';
+import { may, type Actor } from '../permissions.ts';
 
 /** The scenario of a stored document. What the database holds was parsed when it was stored: a fault here is ours. */
 export function storedScenario(document: unknown): Scenario {
   const parsed = parseScenario(document);
   if (!parsed.ok) throw new Error(`A stored scenario does not parse: ${parsed.issues[0]?.message ?? 'no reason'}.`);
   return parsed.scenario;
+}
+
+/** The same as a reader may see it: the talking point stays with those who teach. */
+export function scenarioFor(actor: Actor, document: unknown): Scenario {
+  const scenario = storedScenario(document);
+  return may(actor, 'scenario.export') ? scenario : { ...scenario, talkingPoint: '' };
 }
 
 /** The airframe of a stored document. */

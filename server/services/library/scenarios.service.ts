@@ -1,7 +1,7 @@
 import type { Page } from '#shared/contracts/paging.ts';
 import type { ScenarioListQuery, ScenarioRevision, ScenarioSummary } from '#shared/contracts/scenarios.ts';
 import type { Database } from '../../data/database.ts';
-import { storedAirframe, storedScenario } from '../attempts/attempt-data.ts';
+import { scenarioFor, storedAirframe } from '../attempts/attempt-data.ts';
 import { may, requireDeed, type Actor } from '../permissions.ts';
 import { notFound } from '../problem-error.ts';
 
@@ -31,7 +31,7 @@ export function createScenariosService({ database }: { database: Database }) {
         createdBy: found.createdBy,
         createdAt: found.createdAt.toISOString(),
         publishedAt: found.publishedAt?.toISOString() ?? null,
-        scenario: storedScenario(found.document),
+        scenario: scenarioFor(actor, found.document),
         airframe: {
           slug: found.airframe.slug,
           revision: found.airframe.revision,
