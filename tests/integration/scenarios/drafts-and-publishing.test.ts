@@ -1,10 +1,11 @@
 import { readFileSync } from 'node:fs';
 import path from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { startedAttemptSchema } from '#shared/contracts/attempts.ts';
+import { attemptDetailSchema, startedAttemptSchema } from '#shared/contracts/attempts.ts';
 import { problemSchema } from '#shared/contracts/problem.ts';
 import {
   createdScenarioSchema,
+  scenarioFileSchema,
   scenarioDetailSchema,
   scenarioDraftSchema,
   scenarioLineSchema,
@@ -74,6 +75,56 @@ describe('a new scenario', () => {
     expect(published.scenario.title).toBe('Round trip');
   });
 
+  it('is exported as it was given, letter by letter, and comes in again identical', async () => {
+    const document = { ...shipped(), title: 'There and back' };
+    const file = async (at: { slug: string; revision: number }) =>
+      scenarioFileSchema.parse((await instructor('GET', `/api/scenarios/${at.slug}/revisions/${at.revision}/file`)).body)
+        .document;
+    const at = made(await create(document));
+    expect(JSON.stringify(await file(at))).toBe(JSON.stringify(document));
+    await publish(at);
+    const exported = await file(at);
+    expect(JSON.stringify(exported)).toBe(JSON.stringify(document));
+    const again = made(await create(exported, second));
+    await publish(again, second);
+    expect(JSON.stringify(await file(again))).toBe(JSON.stringify(document));
+    const path = `/api/scenarios/${at.slug}/revisions/1/file`;
+    expect((await engineer('GET', path)).status).toBe(200);
+    expect((await trainee('GET', path)).status).toBe(403);
+  });
+
+  it('keeps its talking point from trainees', async () => {
+    const at = made(await create({ ...shipped(), title: 'Secret', talkingPoint: 'Ask why it rolled.' }));
+    await publish(at);
+    const seen = async (client: Client) =>
+      scenarioRevisionSchema.parse((await client('GET', `/api/scenarios/${at.slug}`)).body).scenario.talkingPoint;
+    expect(await seen(instructor)).toBe('Ask why it rolled.');
+    expect(await seen(trainee)).toBe('');
+    const started = await trainee('POST', '/api/attempts', { json: { scenarioSlug: at.slug } });
+    expect(startedAttemptSchema.parse(started.body).scenario.talkingPoint).toBe('');
+  });
+
+  it('draws its times by the attempt’s seed, inside the range, and the attempt stores what was drawn', async () => {
+    const vary = { time_s: [2, 9] };
+    const events = [{ id: 'cut', lane: 'engines', at: { time_s: 3 }, kind: 'engine-failure', engine: 'left', vary }];
+    const at = made(await create({ ...shipped(), title: 'Drawn', events, criteria: [] }));
+    await publish(at);
+    const times: number[] = [];
+    for (let i = 0; i < 4; i += 1) {
+      const started = startedAttemptSchema.parse(
+        (await trainee('POST', '/api/attempts', { json: { scenarioSlug: at.slug } })).body,
+      );
+      const stored = attemptDetailSchema.parse((await trainee('GET', `/api/attempts/${started.id}`)).body);
+      expect(stored.drawn).toEqual(started.drawn);
+      times.push(started.drawn['cut']['time_s']);
+    }
+    for (const time of times) {
+      expect(time).toBeGreaterThanOrEqual(2);
+      expect(time).toBeLessThanOrEqual(9);
+    }
+    expect(new Set(times).size).toBe(4);
+  });
+
   it('is refused to those who do not write scenarios', async () => {
     for (const client of [trainee, engineer]) {
       expect((await create(shipped(), client)).status).toBe(403);
@@ -119,6 +170,14 @@ describe('a draft', () => {
     expect(problemSchema.parse(late.body).detail).toContain('H. Brandt');
     expect((await read(at)).document['title']).toBe('Theirs');
     expect((await instructor('PUT', draftAt(at), { json: { document: shipped() } })).status).toBe(428);
+  });
+
+  it('whose start no trim can hold is not published', async () => {
+    const start = { ias_kt: 1, height_ft: 3000, levers: [1, 0] };
+    const at = made(await create({ ...shipped(), title: 'Too slow', start }));
+    const refused = await publish(at);
+    expect(refused.status).toBe(422);
+    expect(errorsOf(refused)[0]).toMatchObject({ field: '/start', rule: 'trim-beyond-travel' });
   });
 
   it('of an engine that the airframe lacks is not published', async () => {
