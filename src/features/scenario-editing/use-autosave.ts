@@ -30,7 +30,12 @@ export function useAutosave(draft: ScenarioDraftState, at: () => { slug: string;
   }
 
   async function save(): Promise<void> {
-    if (version === null || state.value === 'conflict' || !draft.dirty.value) return;
+    if (version === null || state.value === 'conflict') return;
+    // Undone back to what is on the server: there is nothing to save.
+    if (!draft.dirty.value) {
+      state.value = 'saved';
+      return;
+    }
     const { slug, revision } = at();
     const document = draft.document.value;
     if (typeof document !== 'object' || document === null) return;
@@ -42,6 +47,11 @@ export function useAutosave(draft: ScenarioDraftState, at: () => { slug: string;
       draft.markSaved(document);
       problem.value = null;
       state.value = draft.dirty.value ? 'waiting' : 'saved';
+      // Changed while it was on its way, perhaps back to what was there before: that is saved next.
+      if (draft.dirty.value) {
+        clearTimeout(timer);
+        timer = setTimeout(() => void flush(), QUIET_MS);
+      }
     } catch (error) {
       problem.value = causeOf(error);
       if (isApiError(error, 'changed-meanwhile')) {
