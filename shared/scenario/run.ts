@@ -70,7 +70,7 @@ export const createRun: CreateRun = (spec, options = {}) => {
     throw new ScenarioError('does-not-fit-airframe', fit.issues[0].message, fit.issues);
   }
   const drawn = spec.drawn ?? drawValues(scenario, seed);
-  const plant = createPlant(plantSetup(scenario, airframe, seed));
+  const plant = createPlant(plantSetup(scenario, airframe, seed), { integrate: options.integrate });
   const engines = new EngineBook(plant.aircraft);
   const queue = new EventQueue(scenario.events.map((event) => withDrawnValues(event, drawn)));
   const line = {
