@@ -54,6 +54,8 @@ export interface RunOptions {
    * without them). Results are the same.
    */
   lean?: boolean;
+  /** For a run that is only looked at: no state hash, all else as ever. */
+  unhashed?: boolean;
   /** Another integrator of the tick, such as an adaptive one that the stepper is compared with. */
   integrate?: PlantOptions['integrate'];
 }
