@@ -43,7 +43,7 @@ const BOUNDS: Readonly<Record<string, (value: unknown) => string>> = {
   exclusiveMinimum: (v) => `> ${String(v)}`,
   maximum: (v) => `≤ ${String(v)}`,
   exclusiveMaximum: (v) => `< ${String(v)}`,
-  minLength: (v) => `at least ${String(v)} characters`,
+  minLength: (v) => `at least ${String(v)} ${v === 1 ? 'character' : 'characters'}`,
   maxLength: (v) => `at most ${String(v)} characters`,
   minItems: (v) => `at least ${String(v)}`,
   maxItems: (v) => `at most ${String(v)}`,
