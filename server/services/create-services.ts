@@ -42,6 +42,8 @@ import { createSessionNotices } from './sessions/session-notices.ts';
 import { createSessionsService } from './sessions/sessions.service.ts';
 import { createAnalysisReports } from './studies/analysis-reports.ts';
 import { createStudiesService } from './studies/studies.service.ts';
+import { createAccessTokensService } from './tokens/access-tokens.service.ts';
+import { createOnceService } from './tokens/once.service.ts';
 import { createWorkerPool } from './workers/worker-pool.ts';
 
 export interface ServicesSetup {
@@ -94,6 +96,8 @@ export function createServices(setup: ServicesSetup) {
       notices: sessionNotices,
       now,
     }),
+    tokens: createAccessTokensService({ database, now }),
+    once: createOnceService({ database, now }),
     accountLinks: createAccountLinks({ database, passwords, notices: sessionNotices, address, now }),
     people: createPeopleService({ database, notices: sessionNotices, address, now }),
     outbox: createOutboxService({ database, mailRoute, now }),

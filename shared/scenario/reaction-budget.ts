@@ -6,7 +6,7 @@ import { TICK_RATE_HZ } from '../model/plant-types.ts';
 import { createRun } from './run.ts';
 import { createReferencePilot, delayTicks, firstEventTick, flyRun, handsOff, pilotTask } from './reference-pilot.ts';
 import type { CriterionResult, Run, RunSnapshot, RunSpec, RunningCriterion } from './run-types.ts';
-import type { MeasureName } from './scenario-format.ts';
+import type { MeasureName, Scenario, ScenarioCriterion } from './scenario-format.ts';
 
 /** Longest delay looked at, grid of the search and resolution of each change; s. */
 export const LONGEST_DELAY_S = 5;
@@ -50,9 +50,7 @@ export interface BudgetEvaluator {
  */
 export function createBudgetEvaluator(spec: RunSpec): BudgetEvaluator {
   const run = createRun(spec, { lean: true });
-  const counted = new Set(
-    spec.scenario.criteria.filter((c) => c.required && !REACTION_MEASURES.includes(c.measure)).map((c) => c.id),
-  );
+  const counted = new Set(boundCriteria(spec.scenario).map(({ id }) => id));
   const start = run.save();
   const snapshots: RunSnapshot[] = [start];
   const byEvent = pilotTask(spec.scenario).kind === 'hold-heading';
@@ -221,27 +219,53 @@ export interface CriterionBudget {
   capped: boolean;
 }
 
+/** Criteria that the budget looks at: all required ones besides those of the reaction. */
+export function boundCriteria({ criteria }: Pick<Scenario, 'criteria'>): ScenarioCriterion[] {
+  return criteria.filter(({ required, measure }) => required && !REACTION_MEASURES.includes(measure));
+}
+
 /** Latest delay per criterion on the grid, for the bars of the editor; all required criteria besides those of the reaction. */
 export function criterionBudgets(evaluator: BudgetEvaluator, ids: readonly string[]): CriterionBudget[] {
-  const outcomes = budgetGrid().map((delayS) => evaluator.evaluate(delayS, true));
-  return ids.map((id) => {
-    let latestS: number | null = null;
-    let failsFrom: number | null = null;
-    for (const outcome of outcomes) {
-      if (outcome.failed.includes(id)) {
-        failsFrom = outcome.delayS;
-        break;
-      }
-      latestS = outcome.delayS;
-    }
-    if (latestS === null || failsFrom === null) return { id, latestS, capped: failsFrom === null && latestS !== null };
-    let low = delayTicks(latestS);
-    let high = delayTicks(failsFrom);
-    while (high - low > RESOLUTION_TICKS) {
-      const middle = Math.round((low + high) / 2);
-      if (evaluator.evaluate(middle / TICK_RATE_HZ, true).failed.includes(id)) high = middle;
-      else low = middle;
-    }
-    return { id, latestS: low / TICK_RATE_HZ, capped: false };
+  const search = searchCriterionBudgets(ids);
+  let step = search.next();
+  while (!step.done) step = search.next(step.value.map((delayS) => evaluator.evaluate(delayS, true)));
+  return step.value;
+}
+
+/** The search for `criterionBudgets` as a dialogue like `searchBudget`; every outcome names all that failed. */
+export function* searchCriterionBudgets(
+  ids: readonly string[],
+): Generator<number[], CriterionBudget[], DelayOutcome[]> {
+  const outcomes = yield budgetGrid();
+  const edges = ids.map((id) => {
+    const fails = outcomes.findIndex(({ failed }) => failed.includes(id));
+    const high = fails < 0 ? null : delayTicks(outcomes[fails].delayS);
+    return { id, low: fails === 0 ? null : delayTicks(outcomes.at(fails < 0 ? -1 : fails - 1)?.delayS ?? 0), high };
   });
+  const middle = (edge: Edge): number => Math.round(((edge.low ?? 0) + (edge.high ?? 0)) / 2);
+  const isOpen = ({ low, high }: Edge): boolean => low !== null && high !== null && high - low > RESOLUTION_TICKS;
+  for (;;) {
+    const wanted = [...new Set(edges.filter(isOpen).map(middle))];
+    if (wanted.length === 0) break;
+    const found = new Map<number, DelayOutcome>();
+    for (const outcome of yield wanted.map((ticks) => ticks / TICK_RATE_HZ))
+      found.set(delayTicks(outcome.delayS), outcome);
+    for (const edge of edges.filter(isOpen)) {
+      const at = middle(edge);
+      if (found.get(at)?.failed.includes(edge.id)) edge.high = at;
+      else edge.low = at;
+    }
+  }
+  return edges.map(({ id, low, high }) => ({
+    id,
+    latestS: low === null ? null : low / TICK_RATE_HZ,
+    capped: high === null,
+  }));
+}
+
+interface Edge {
+  id: string;
+  /** Last delay known to succeed, first known to fail; ticks. */
+  low: number | null;
+  high: number | null;
 }
