@@ -13,23 +13,38 @@ export interface BenchBrowser {
   openPage(who: keyof typeof PEOPLE, script?: string): Promise<Page>;
 }
 
-/** @param size of the window; `env` for the product */
+interface Size {
+  width: number;
+  height: number;
+}
+
+/** @param size of the window */
 export async function startBenchBrowser(
   cleanUp: BenchContext['cleanUp'],
-  size: { width: number; height: number },
+  size: Size,
   { webgl = false, env = {} }: { webgl?: boolean; env?: NodeJS.ProcessEnv } = {},
 ): Promise<BenchBrowser> {
   const dataFolder = freshDataFolder();
   cleanUp(() => fs.rmSync(dataFolder, { recursive: true, force: true }));
   const product = await launchProduct({ dataFolder, env });
   cleanUp(() => product.stop());
+  return openBenchBrowser(cleanUp, size, product.address, webgl);
+}
+
+/** The same on a product that runs already. */
+export async function openBenchBrowser(
+  cleanUp: BenchContext['cleanUp'],
+  size: Size,
+  address: string,
+  webgl = false,
+): Promise<BenchBrowser> {
   const browser = await openChromium({ webgl });
   cleanUp(() => browser.close());
   return {
-    address: product.address,
+    address,
     browser,
     async openPage(who, script) {
-      const context = await browser.newContext({ viewport: size, baseURL: product.address });
+      const context = await browser.newContext({ viewport: size, baseURL: address });
       if (script !== undefined) await context.addInitScript(script);
       const page = await context.newPage();
       await signIn(page, who);
