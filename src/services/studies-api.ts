@@ -2,7 +2,7 @@ import type { Page } from '#shared/contracts/paging.ts';
 import {
   studyPageSchema,
   studySchema,
-  type AnalysisReportRequest,
+  type AnalysisReportBody,
   type SaveStudy,
   type Study,
   type StudyListQuery,
@@ -26,5 +26,5 @@ export const saveStudy = (id: string, version: string, body: SaveStudy): Promise
 export const deleteStudy = (id: string): Promise<void> => api.delete(at(id));
 
 /** The printed report of a saved or an unsaved state. */
-export const printAnalysis = (body: AnalysisReportRequest, signal?: AbortSignal): Promise<NamedFile> =>
+export const printAnalysis = (body: AnalysisReportBody, signal?: AbortSignal): Promise<NamedFile> =>
   api.postForFile('/api/reports/analysis', body, { signal });

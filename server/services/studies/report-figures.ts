@@ -14,12 +14,13 @@ import { stallTasMps } from '#shared/model/aircraft.ts';
 import { densityAt } from '#shared/model/atmosphere.ts';
 import { casFromTas } from '#shared/model/airspeeds.ts';
 import { ModelError } from '#shared/model/errors.ts';
+import { letterOf, sourceLetters, type SourceLetter } from '#shared/model/source-letters.ts';
 import { valueSource } from '#shared/model/value-source.ts';
 import { DEG, KT } from '#shared/units/constants.ts';
 import type { AnalysisReport, ReportLimit } from '../../reports/pdf/analysis-report-data.ts';
 import { storedAirframe } from '../attempts/attempt-data.ts';
 import { analysisSubject, type AnalysisSubject } from './analysis-subject.ts';
-import { grouped, letterOf, reportInputs, sourceLetters, type SourceLetter } from './report-inputs.ts';
+import { grouped, reportInputs } from './report-inputs.ts';
 import type { ReportJob } from './report-job.ts';
 import { limitSpreads, SPREAD_DRAWS, type ControlCase } from './report-spreads.ts';
 
