@@ -28,6 +28,9 @@ export const saveStudySchema = z.strictObject({
   state: studyStateSchema,
 });
 export type SaveStudy = z.input<typeof saveStudySchema>;
+/** A new study. `id` puts one that was removed back at its address. */
+export const createStudySchema = saveStudySchema.extend({ id: z.uuid().optional() });
+export type CreateStudy = z.input<typeof createStudySchema>;
 
 export const studyListQuerySchema = z.strictObject({
   ...pageQueryShape,

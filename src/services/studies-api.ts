@@ -3,6 +3,7 @@ import {
   studyPageSchema,
   studySchema,
   type AnalysisReportBody,
+  type CreateStudy,
   type SaveStudy,
   type Study,
   type StudyListQuery,
@@ -17,7 +18,7 @@ export const listStudies = (query: Partial<StudyListQuery>, signal?: AbortSignal
 
 export const getStudy = (id: string, signal?: AbortSignal): Promise<Study> => api.get(at(id), studySchema, { signal });
 
-export const createStudy = (body: SaveStudy): Promise<Study> => api.post('/api/studies', body, studySchema);
+export const createStudy = (body: CreateStudy): Promise<Study> => api.post('/api/studies', body, studySchema);
 
 /** Refused when somebody else saved the study since `version` was read. */
 export const saveStudy = (id: string, version: string, body: SaveStudy): Promise<Study> =>

@@ -8,7 +8,7 @@ const ASKED: Readonly<Record<Mode['kind'], readonly { id: CriterionId; name: str
     { id: 'dutch-damping', name: 'ζ', unit: '' },
     { id: 'dutch-frequency', name: 'ω', unit: '' },
   ],
-  'real-pair': [{ id: 'dutch-damping', name: 'ζ', unit: '' }],
+  'real-pair': [],
   roll: [{ id: 'roll-mode', name: 'τ', unit: ' s' }],
   spiral: [{ id: 'spiral', name: 'T₂', unit: ' s' }],
   'roll-spiral': [{ id: 'coupled-roll-spiral', name: 'ζω', unit: '' }],
@@ -30,6 +30,7 @@ export function modeRows(modes: readonly Mode[], criteria: readonly CriterionRes
       const found = criteria.find((c) => c.id === of.id);
       return found ? [{ ...of, found }] : [];
     });
+    if (mode.kind === 'real-pair') return realPair(mode);
     const levels = judged.map(({ found }) => found.level).filter((level) => typeof level === 'number');
     const level = levels.length > 0 ? (Math.max(...levels) as 1 | 2 | 3 | 4) : null; // the largest of levels
     return {
@@ -47,4 +48,16 @@ export function modeRows(modes: readonly Mode[], criteria: readonly CriterionRes
       result: mode.kind === 'washout' ? 'of the damper' : levelWords(level),
     };
   });
+}
+
+/** One of two real roots in place of the Dutch roll: nothing to judge unless it diverges. */
+function realPair(mode: Mode): ModeRow {
+  const level = mode.re > 0 ? 4 : null;
+  return {
+    name: 'Real, for the Dutch roll',
+    value: modeWords(mode),
+    asked: 'no divergence',
+    state: levelState(level),
+    result: level === null ? 'converges' : levelWords(level),
+  };
 }

@@ -24,13 +24,28 @@ export interface StandalonePicture {
   height: number;
 }
 
-/** One SVG of several drawings, each where it stands on the page, with styles written out and the shared textures inside. */
-export function standaloneSvg(drawings: readonly SVGSVGElement[], background: string): StandalonePicture {
+/** Every picture that leaves the screen carries it, as the screen does. */
+const CAUTION = [
+  'Not an approved training device, not for operational use.',
+  'The approved flight manual and licensed instruction govern.',
+];
+const HEAD = 24;
+const FOOT = 34;
+
+/**
+ * One SVG of several drawings, each where it stands on the page, with styles written out and the shared textures inside;
+ * the title above, the caution beneath.
+ */
+export function standaloneSvg(
+  drawings: readonly SVGSVGElement[],
+  background: string,
+  title: string,
+): StandalonePicture {
   const boxes = drawings.map((svg) => svg.getBoundingClientRect());
   const left = Math.min(...boxes.map((box) => box.left));
   const top = Math.min(...boxes.map((box) => box.top));
   const width = Math.round(Math.max(...boxes.map((box) => box.right)) - left);
-  const height = Math.round(Math.max(...boxes.map((box) => box.bottom)) - top);
+  const height = Math.round(Math.max(...boxes.map((box) => box.bottom)) - top) + HEAD + FOOT;
   const whole = document.createElementNS(SVG, 'svg');
   whole.setAttribute('xmlns', SVG);
   setBox(whole, width, height);
@@ -52,14 +67,28 @@ export function standaloneSvg(drawings: readonly SVGSVGElement[], background: st
     if (!box) return;
     const copy = withStyles(svg);
     copy.setAttribute('x', String(Math.round(box.left - left)));
-    copy.setAttribute('y', String(Math.round(box.top - top)));
+    copy.setAttribute('y', String(Math.round(box.top - top) + HEAD));
     setBox(copy, Math.round(box.width), Math.round(box.height));
     whole.append(copy);
   });
+  const ink = getComputedStyle(document.documentElement).getPropertyValue('--ink').trim();
+  whole.append(textLine(title, 16, 13, ink));
+  CAUTION.forEach((line, i) => whole.append(textLine(line, height - 20 + i * 14, 11, ink)));
   return { markup: new XMLSerializer().serializeToString(whole), width, height };
 }
 
 const SVG = 'http://www.w3.org/2000/svg';
+function textLine(content: string, y: number, size: number, ink: string): SVGTextElement {
+  const text = document.createElementNS(SVG, 'text');
+  text.setAttribute('x', '6');
+  text.setAttribute('y', String(y));
+  text.setAttribute('font-family', 'sans-serif');
+  text.setAttribute('font-size', String(size));
+  text.setAttribute('font-weight', size > 12 ? '700' : '400');
+  text.setAttribute('fill', ink);
+  text.textContent = content;
+  return text;
+}
 function setBox(element: Element, width: number, height: number): void {
   element.setAttribute('width', String(width));
   element.setAttribute('height', String(height));
