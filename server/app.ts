@@ -13,6 +13,7 @@ import {
   outboxRouter,
   peopleRouter,
 } from './http/administration.routers.ts';
+import { accountSessionsRouter, personSessionsRouter } from './http/account.router.ts';
 import { airframeEditingRouter } from './http/airframe-editing.router.ts';
 import { airframesRouter } from './http/airframes.router.ts';
 import { analysisReportsRouter } from './http/analysis-reports.router.ts';
@@ -70,6 +71,7 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use(express.json({ limit: LARGEST_JSON }));
   api.use('/session', sessionRouter(services.sessions, cookies));
   api.use('/session', accountRouter(services.accountLinks, services.sessions));
+  api.use('/session', accountSessionsRouter(services));
   api.use('/classes', classesRouter({ services, cookies, publicOrigins: env.publicOrigins }));
   const signedIn = requireSession(services.sessions);
   api.use('/airframes', signedIn, airframesRouter(services.airframes));
@@ -85,6 +87,7 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use('/records', signedIn, recordsRouter(services.records));
   api.use('/playlists', signedIn, playlistsRouter(services.playlists));
   api.use('/people', signedIn, peopleRouter(services.people));
+  api.use('/people', signedIn, personSessionsRouter(services.profile));
   api.use('/organisation', signedIn, organisationRouter(services.people));
   api.use('/outbox', signedIn, outboxRouter(services.outbox));
   api.use('/audit', signedIn, auditRouter(services.audit));

@@ -1,5 +1,5 @@
 import type { Role } from '#shared/contracts/session.ts';
-import { type EntityManager, IsNull, LessThan, Not } from 'typeorm';
+import { type EntityManager, IsNull, LessThan, MoreThan, Not } from 'typeorm';
 import { RefreshTokenEntity } from '../entities/refresh-token.entity.ts';
 import { SessionEntity } from '../entities/session.entity.ts';
 import { type PersonStatus, rolesOf } from './people.repository.ts';
@@ -42,6 +42,15 @@ function sessionRecord(row: SessionEntity): SessionRecord {
     expiresAt: row.expiresAt,
     revokedAt: row.revokedAt,
   };
+}
+
+/** A session that could still be used, for its owner's list. */
+export interface OpenSessionRecord {
+  id: string;
+  agent: string | null;
+  address: string | null;
+  createdAt: Date;
+  lastUsedAt: Date;
 }
 
 export function createSessionsRepository(manager: EntityManager) {
@@ -90,6 +99,15 @@ export function createSessionsRepository(manager: EntityManager) {
 
     async touch(sessionId: string, at: Date): Promise<void> {
       await manager.update(SessionEntity, { id: sessionId }, { lastUsedAt: at });
+    },
+
+    /** Sessions neither ended nor run out, the latest used first. */
+    async openOf(personId: string, at: Date, usedAfter: Date): Promise<OpenSessionRecord[]> {
+      return manager.find(SessionEntity, {
+        select: { id: true, agent: true, address: true, createdAt: true, lastUsedAt: true },
+        where: { personId, revokedAt: IsNull(), expiresAt: MoreThan(at), lastUsedAt: MoreThan(usedAfter) },
+        order: { lastUsedAt: 'DESC', id: 'ASC' },
+      });
     },
 
     /** The session a refresh token belongs to, whatever its state; for signing out with an expired access token. */
