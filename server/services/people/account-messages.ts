@@ -1,5 +1,4 @@
-const CAUTION =
-  'Not an approved training device, not for operational use. The approved flight manual and licensed instruction govern.';
+import { cautionLines } from '../caution.ts';
 
 /** Subject and text of an invitation. */
 export function invitationText(to: {
@@ -8,6 +7,8 @@ export function invitationText(to: {
   inviter: string;
   link: string;
   days: number;
+  /** Words of the organisation below the fixed caution. */
+  caution: string;
 }) {
   return {
     subject: `Invitation from ${to.organisation}`,
@@ -20,7 +21,7 @@ export function invitationText(to: {
       '',
       `The link works once and for ${to.days} days. If you did not expect it, leave it.`,
       '',
-      CAUTION,
+      ...cautionLines(to.caution),
     ].join('\n'),
   };
 }
