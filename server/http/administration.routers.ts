@@ -20,7 +20,7 @@ import { notFound } from '../services/problem-error.ts';
 import type { SessionsService } from '../services/sessions/sessions.service.ts';
 import { parse } from './parse.ts';
 import { actorOf, callerOf, requireSession } from './session.middleware.ts';
-import { linkThrottle, resetThrottle, signInThrottles } from './throttle.ts';
+import { linkThrottle, ownPasswordThrottle, resetThrottle } from './throttle.ts';
 
 function idIn(request: Request, what: string): string {
   const parsed = z.uuid().safeParse(request.params['id']);
@@ -153,7 +153,7 @@ export function accountRouter(links: AccountLinks, sessions: SessionsService): R
     response.status(204).end();
   });
 
-  router.put('/password', requireSession(sessions), ...signInThrottles(), async (request, response) => {
+  router.put('/password', requireSession(sessions), ownPasswordThrottle(), async (request, response) => {
     await links.changePassword(actorOf(response), parse(changePasswordSchema, request.body), callerOf(request));
     response.status(204).end();
   });

@@ -9,6 +9,7 @@ import {
   outboxRouter,
   peopleRouter,
 } from './administration.routers.ts';
+import { accountSessionsRouter, personSessionsRouter } from './account.router.ts';
 import { airframeEditingRouter } from './airframe-editing.router.ts';
 import { airframesRouter } from './airframes.router.ts';
 import { analysisReportsRouter } from './analysis-reports.router.ts';
@@ -61,6 +62,7 @@ export function apiMounts({ services, cookies, publicOrigins }: ApiMountsSetup):
   return [
     browser('/session', sessionRouter(sessions, cookies)),
     browser('/session', accountRouter(services.accountLinks, sessions)),
+    browser('/session', accountSessionsRouter(services)),
     browser('/classes', classesRouter({ services, cookies, publicOrigins })),
     browser('/tokens', tokensRouter(tokens), [onlySession(sessions), onceOnly]),
     open('airframes', airframesRouter(services.airframes)),
@@ -76,6 +78,7 @@ export function apiMounts({ services, cookies, publicOrigins }: ApiMountsSetup):
     open('records', recordsRouter(services.records)),
     open('playlists', playlistsRouter(services.playlists)),
     open('people', peopleRouter(services.people)),
+    open('people', personSessionsRouter(services.profile)),
     open('organisation', organisationRouter(services.people)),
     open('outbox', outboxRouter(services.outbox)),
     open('audit', auditRouter(services.audit)),

@@ -1,3 +1,4 @@
+import * as account from '#shared/contracts/account.ts';
 import * as administration from '#shared/contracts/administration.ts';
 import { organisationBodySchema, organisationSettingsSchema } from '#shared/contracts/session.ts';
 import { z } from 'zod';
@@ -64,6 +65,20 @@ export const ADMINISTRATION_AREAS: readonly Area[] = [
         method: 'post',
         path: '/people/:id/sign-out',
         summary: 'End all sessions of a person',
+        answer: NO_CONTENT,
+      },
+      {
+        ...lookAfter,
+        method: 'get',
+        path: '/people/:id/sessions',
+        summary: 'List the open sessions of a person',
+        answer: ok(account.openSessionsSchema),
+      },
+      {
+        ...lookAfter,
+        method: 'delete',
+        path: '/people/:id/sessions/:session',
+        summary: 'End one session of a person',
         answer: NO_CONTENT,
       },
     ],

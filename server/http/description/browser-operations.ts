@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import * as account from '#shared/contracts/account.ts';
 import * as administration from '#shared/contracts/administration.ts';
 import { attemptChunksSchema } from '#shared/contracts/attempts.ts';
 import * as classes from '#shared/contracts/classes.ts';
@@ -68,6 +69,37 @@ export const BROWSER_AREAS: readonly Area[] = [
         body: administration.changePasswordSchema,
         answer: NO_CONTENT,
         refusals: ['wrong-credentials', 'throttled'],
+      },
+      {
+        method: 'get',
+        path: '/session/open',
+        summary: 'List the own open sessions',
+        answer: ok(account.openSessionsSchema),
+      },
+      { method: 'delete', path: '/session/open/:id', summary: 'End one of the own sessions', answer: NO_CONTENT },
+      {
+        method: 'put',
+        path: '/session/profile',
+        summary: 'Change the own profile',
+        body: account.profileBodySchema,
+        answer: ok(meSchema),
+      },
+      {
+        method: 'post',
+        path: '/session/address',
+        summary: 'Ask for a message that confirms another address',
+        body: account.newAddressSchema,
+        answer: NO_CONTENT,
+        refusals: ['wrong-credentials', 'conflict', 'throttled'],
+      },
+      {
+        ...anyone,
+        method: 'post',
+        path: '/session/link/confirm',
+        summary: 'Confirm another address by a link',
+        body: administration.linkBodySchema,
+        answer: NO_CONTENT,
+        refusals: ['not-found', 'conflict', 'throttled'],
       },
     ],
   },

@@ -65,6 +65,7 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
       inviter: profile?.person.displayName ?? 'An administrator',
       link: `${address()}/welcome/${token}`,
       days: INVITATION_DAYS,
+      caution: profile?.organisation.settings.caution ?? '',
     });
     await on.outbox.insert({
       id: randomUUID(),
