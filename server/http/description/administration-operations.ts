@@ -42,6 +42,7 @@ export const ADMINISTRATION_AREAS: readonly Area[] = [
         summary: 'Set the roles of a person',
         body: administration.rolesBodySchema,
         answer: NO_CONTENT,
+        version: 'possible',
         refusals: ['conflict'],
       },
       {
