@@ -18,7 +18,7 @@ const itemsSchema = z.object({ items: z.array(z.object({ id: z.string().optional
 
 interface Statement {
   sql: string;
-  values: unknown;
+  values: unknown[];
 }
 
 /** What the driver is asked while `action` runs; transactions are opened and closed by nobody here. */
