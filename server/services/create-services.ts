@@ -15,6 +15,7 @@ import { createAuditService } from './audit/audit.service.ts';
 import { createOutboxService, type MailRoute } from './mail/outbox.service.ts';
 import { createSendMail } from './mail/send-mail.ts';
 import { createAccountLinks } from './people/account-links.ts';
+import { createProfileService } from './people/profile.service.ts';
 import { createPeopleService } from './people/people.service.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
 import { createAssignmentsService } from './assignments/assignments.service.ts';
@@ -42,6 +43,8 @@ import { createSessionNotices } from './sessions/session-notices.ts';
 import { createSessionsService } from './sessions/sessions.service.ts';
 import { createAnalysisReports } from './studies/analysis-reports.ts';
 import { createStudiesService } from './studies/studies.service.ts';
+import { createAccessTokensService } from './tokens/access-tokens.service.ts';
+import { createOnceService } from './tokens/once.service.ts';
 import { createWorkerPool } from './workers/worker-pool.ts';
 
 export interface ServicesSetup {
@@ -94,7 +97,10 @@ export function createServices(setup: ServicesSetup) {
       notices: sessionNotices,
       now,
     }),
+    tokens: createAccessTokensService({ database, now }),
+    once: createOnceService({ database, now }),
     accountLinks: createAccountLinks({ database, passwords, notices: sessionNotices, address, now }),
+    profile: createProfileService({ database, passwords, notices: sessionNotices, address, now }),
     people: createPeopleService({ database, notices: sessionNotices, address, now }),
     outbox: createOutboxService({ database, mailRoute, now }),
     sendMail: createSendMail({ database, now }),

@@ -69,7 +69,7 @@ export function createOrganisationsRepository(manager: EntityManager) {
       at: Date;
     }): Promise<void> {
       const { id, organisationId, name, memberIds, at } = cohort;
-      await manager.insert(CohortEntity, { id, organisationId, name, createdAt: at });
+      await manager.insert(CohortEntity, { id, organisationId, name, createdAt: at, archivedAt: null });
       if (memberIds.length === 0) return;
       await manager.insert(
         CohortMemberEntity,

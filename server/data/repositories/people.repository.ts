@@ -23,7 +23,14 @@ export interface SignInRecord {
 }
 
 export interface ProfileRecord {
-  person: { id: string; displayName: string; fullName: string; email: string };
+  person: {
+    id: string;
+    displayName: string;
+    fullName: string;
+    email: string;
+    units: 'aviation' | 'si' | null;
+    timeZone: string | null;
+  };
   organisation: { id: string; name: string; settings: OrganisationSettings };
   roles: Role[];
 }
@@ -92,7 +99,14 @@ export function createPeopleRepository(manager: EntityManager) {
       if (row === null || row.organisation === undefined) return null;
       const { organisation } = row;
       return {
-        person: { id: row.id, displayName: row.displayName, fullName: row.fullName, email: row.email },
+        person: {
+          id: row.id,
+          displayName: row.displayName,
+          fullName: row.fullName,
+          email: row.email,
+          units: row.units,
+          timeZone: row.timeZone,
+        },
         organisation: {
           id: organisation.id,
           name: organisation.name,
@@ -143,12 +157,26 @@ export function createPeopleRepository(manager: EntityManager) {
         emailKey: emailKey(person.email),
         createdAt: at,
         deactivatedAt: null,
+        units: null,
+        timeZone: null,
       });
       if (roles.length === 0) return;
       await manager.insert(
         PersonRoleEntity,
         roles.map((role) => ({ personId: person.id, role, grantedAt: at })),
       );
+    },
+
+    async setProfile(
+      personId: string,
+      profile: { displayName: string; units: 'aviation' | 'si' | null; timeZone: string | null },
+    ): Promise<void> {
+      await manager.update(PersonEntity, { id: personId }, profile);
+    },
+
+    /** @throws a duplicate-key error when another person has the address */
+    async setEmail(personId: string, email: string): Promise<void> {
+      await manager.update(PersonEntity, { id: personId }, { email, emailKey: emailKey(email) });
     },
 
     async setStatus(organisationId: string, personId: string, status: PersonStatus, at: Date): Promise<void> {

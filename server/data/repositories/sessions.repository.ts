@@ -1,6 +1,6 @@
 import { personStateSchema } from '#shared/contracts/administration.ts';
 import type { Role } from '#shared/contracts/session.ts';
-import { type EntityManager, IsNull, LessThan, Not } from 'typeorm';
+import { type EntityManager, IsNull, LessThan, MoreThan, Not } from 'typeorm';
 import { z } from 'zod';
 import { RefreshTokenEntity } from '../entities/refresh-token.entity.ts';
 import { SessionEntity } from '../entities/session.entity.ts';
@@ -49,6 +49,15 @@ const FIND_SESSION = `
     s.expires_at AS expiresAt, s.revoked_at AS revokedAt
   FROM session s INNER JOIN person p ON p.id = s.person_id WHERE s.id = ?`;
 
+/** A session that could still be used, for its owner's list. */
+export interface OpenSessionRecord {
+  id: string;
+  agent: string | null;
+  address: string | null;
+  createdAt: Date;
+  lastUsedAt: Date;
+}
+
 export function createSessionsRepository(manager: EntityManager) {
   const findSession = async (id: string): Promise<SessionRecord | null> => {
     const rows = z.array(sessionRowSchema).parse(await manager.query(FIND_SESSION, [id]));
@@ -91,6 +100,15 @@ export function createSessionsRepository(manager: EntityManager) {
 
     async touch(sessionId: string, at: Date): Promise<void> {
       await manager.update(SessionEntity, { id: sessionId }, { lastUsedAt: at });
+    },
+
+    /** Sessions neither ended nor run out, the latest used first. */
+    async openOf(personId: string, at: Date, usedAfter: Date): Promise<OpenSessionRecord[]> {
+      return manager.find(SessionEntity, {
+        select: { id: true, agent: true, address: true, createdAt: true, lastUsedAt: true },
+        where: { personId, revokedAt: IsNull(), expiresAt: MoreThan(at), lastUsedAt: MoreThan(usedAfter) },
+        order: { lastUsedAt: 'DESC', id: 'ASC' },
+      });
     },
 
     /** The session a refresh token belongs to, whatever its state; for signing out with an expired access token. */

@@ -45,7 +45,7 @@ export async function seedEmptyDatabase({ database, folder, hashPassword, now }:
       id: organisationId,
       slug: DEMONSTRATION.slug,
       name: DEMONSTRATION.name,
-      settings: { units: 'aviation', recognitionTimeS: null, guests: false },
+      settings: { units: 'aviation', recognitionTimeS: null, guests: false, caution: '' },
       demonstration: true,
       at,
     });

@@ -18,7 +18,7 @@ const itemsSchema = z.object({ items: z.array(z.object({ id: z.string().optional
 
 interface Statement {
   sql: string;
-  values: unknown[];
+  values: string[];
 }
 
 /** What the driver is asked while `action` runs; transactions are opened and closed by nobody here. */
@@ -28,7 +28,7 @@ async function recordStatements(action: () => Promise<unknown>): Promise<Stateme
   Reflect.set(mysql.Connection.prototype, 'query', function (this: unknown, ...given: unknown[]) {
     const [asked, values] = given;
     const sql = typeof asked === 'string' ? asked : z.object({ sql: z.string() }).parse(asked).sql;
-    recorded.push({ sql, values: Array.isArray(values) ? values : [] });
+    recorded.push({ sql, values: Array.isArray(values) ? (values as string[]) : [] }); // what TypeORM sent goes back as it is
     return own.apply(this, given);
   });
   try {
