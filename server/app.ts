@@ -20,6 +20,7 @@ import { analysisReportsRouter } from './http/analysis-reports.router.ts';
 import { assignmentsRouter } from './http/assignments.router.ts';
 import { attemptsRouter } from './http/attempts.router.ts';
 import { classesRouter } from './http/classes.router.ts';
+import { cohortsRouter } from './http/cohorts.router.ts';
 import { createCookies } from './http/cookies.ts';
 import { csrfProtection } from './http/csrf.middleware.ts';
 import { debriefRouter, remarksRouter } from './http/debrief.router.ts';
@@ -32,7 +33,9 @@ import { scenariosRouter } from './http/scenarios.router.ts';
 import { securityHeaders } from './http/security-headers.ts';
 import { requireSession } from './http/session.middleware.ts';
 import { sessionRouter } from './http/session.router.ts';
+import { setUpRouter } from './http/set-up.router.ts';
 import { studiesRouter } from './http/studies.router.ts';
+import { systemRouter } from './http/system.router.ts';
 import type { Services } from './services/create-services.ts';
 
 const LARGEST_JSON = '1mb';
@@ -72,6 +75,7 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use('/session', sessionRouter(services.sessions, cookies));
   api.use('/session', accountRouter(services.accountLinks, services.sessions));
   api.use('/session', accountSessionsRouter(services));
+  api.use('/set-up', setUpRouter(services.setUp, env.proxies > 0 || env.publicOrigins.length > 0));
   api.use('/classes', classesRouter({ services, cookies, publicOrigins: env.publicOrigins }));
   const signedIn = requireSession(services.sessions);
   api.use('/airframes', signedIn, airframesRouter(services.airframes));
@@ -88,8 +92,10 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   api.use('/playlists', signedIn, playlistsRouter(services.playlists));
   api.use('/people', signedIn, peopleRouter(services.people));
   api.use('/people', signedIn, personSessionsRouter(services.profile));
+  api.use('/cohorts', signedIn, cohortsRouter(services.cohorts));
   api.use('/organisation', signedIn, organisationRouter(services.people));
   api.use('/outbox', signedIn, outboxRouter(services.outbox));
+  api.use('/system', signedIn, systemRouter(services.system));
   api.use('/audit', signedIn, auditRouter(services.audit));
   api.use('/audit.csv', signedIn, auditFileRouter(services.audit));
   api.use(unknownRoute);
