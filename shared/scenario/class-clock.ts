@@ -82,7 +82,7 @@ const LATE_MS = 250;
 const COARSE_MS = 20;
 
 /**
- * Which of two measurements to go on with: the sharper one while they agree, else the newer, for the clock was set.
+ * Which of two measurements to go on with: the sharper one while they agree, else the newer, for one of the clocks stood still or was set.
  *
  * @param before  What was known; an infinite round trip: nothing.
  * @param next    The new measurement.

@@ -18,8 +18,8 @@ export class ServerClock {
   private readonly socket: ClassSocket;
   private readonly own: () => number;
 
-  /** @param own  This browser's clock, ms. */
-  constructor(socket: ClassSocket, own: () => number = Date.now) {
+  /** @param own  This browser's clock, ms; by default the one that nobody sets. It may stop while the machine sleeps. */
+  constructor(socket: ClassSocket, own: () => number = () => performance.timeOrigin + performance.now()) {
     this.socket = socket;
     this.own = own;
   }
@@ -48,7 +48,7 @@ export class ServerClock {
     if (answers.length > 0) this.known = betterOffset(this.known, clockOffset(answers));
   }
 
-  /** A time that the server has just told: a clock that was set meanwhile, or measured badly, is measured again. */
+  /** A time that the server has just told: a clock that stood still meanwhile, or was measured badly, is measured again. */
   hear(serverMs: number): void {
     const passedMs = performance.now() - this.doubtedMs;
     if (passedMs < AGAIN_AFTER_MS || !contradicts(this.known, serverMs, this.own())) return;
