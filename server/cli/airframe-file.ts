@@ -63,7 +63,9 @@ const READ_ERRORS: Readonly<Record<string, string>> = {
 export function issueLine(file: string, issues: readonly FieldIssue[]): string {
   const [first] = issues;
   const more = issues.length > 1 ? ` (and ${issues.length - 1} more)` : '';
-  return `${file}: ${first.field === '' ? '/' : first.field}: ${first.rule}: ${first.message}${more}`;
+  const line = `${file}: ${first.field === '' ? '/' : first.field}: ${first.rule}: ${first.message}${more}. ${first.remedy}`;
+  // Names out of the file are quoted in messages: no control character of theirs may break the line or reach a terminal.
+  return line.replaceAll(/\p{Cc}+/gu, ' ');
 }
 
 /** The airframe of a file; warnings go to standard error, one line each, unless JSON is wanted. */

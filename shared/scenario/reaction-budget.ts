@@ -217,6 +217,8 @@ export interface CriterionBudget {
   latestS: number | null;
   /** True when it is met at every delay up to the longest. */
   capped: boolean;
+  /** All intervals of delays at which it is met; s. More than one, or one that does not begin at 0: not monotonic. */
+  intervalsS: [number, number][];
 }
 
 /** Criteria that the budget looks at: all required ones besides those of the reaction. */
@@ -224,7 +226,7 @@ export function boundCriteria({ criteria }: Pick<Scenario, 'criteria'>): Scenari
   return criteria.filter(({ required, measure }) => required && !REACTION_MEASURES.includes(measure));
 }
 
-/** Latest delay per criterion on the grid, for the bars of the editor; all required criteria besides those of the reaction. */
+/** Budget per criterion, for the bars of the editor: on the grid, each change halved down to the resolution. */
 export function criterionBudgets(evaluator: BudgetEvaluator, ids: readonly string[]): CriterionBudget[] {
   const search = searchCriterionBudgets(ids);
   let step = search.next();
@@ -236,36 +238,54 @@ export function criterionBudgets(evaluator: BudgetEvaluator, ids: readonly strin
 export function* searchCriterionBudgets(
   ids: readonly string[],
 ): Generator<number[], CriterionBudget[], DelayOutcome[]> {
-  const outcomes = yield budgetGrid();
-  const edges = ids.map((id) => {
-    const fails = outcomes.findIndex(({ failed }) => failed.includes(id));
-    const high = fails < 0 ? null : delayTicks(outcomes[fails].delayS);
-    return { id, low: fails === 0 ? null : delayTicks(outcomes.at(fails < 0 ? -1 : fails - 1)?.delayS ?? 0), high };
-  });
-  const middle = (edge: Edge): number => Math.round(((edge.low ?? 0) + (edge.high ?? 0)) / 2);
-  const isOpen = ({ low, high }: Edge): boolean => low !== null && high !== null && high - low > RESOLUTION_TICKS;
+  const grid = budgetGrid();
+  const outcomes = yield grid;
+  const isMet = (id: string, outcome: DelayOutcome): boolean => !outcome.failed.includes(id);
+  const changes = ids.flatMap((id) =>
+    outcomes.slice(1).flatMap((outcome, i): Change[] => {
+      const metBefore = isMet(id, outcomes[i]);
+      return metBefore === isMet(id, outcome)
+        ? []
+        : [{ id, metBefore, before: delayTicks(grid[i]), after: delayTicks(grid[i + 1]) }];
+    }),
+  );
+  const middle = ({ before, after }: Change): number => Math.round((before + after) / 2);
+  const isOpen = ({ before, after }: Change): boolean => after - before > RESOLUTION_TICKS;
   for (;;) {
-    const wanted = [...new Set(edges.filter(isOpen).map(middle))];
+    const wanted = [...new Set(changes.filter(isOpen).map(middle))];
     if (wanted.length === 0) break;
     const found = new Map<number, DelayOutcome>();
     for (const outcome of yield wanted.map((ticks) => ticks / TICK_RATE_HZ))
       found.set(delayTicks(outcome.delayS), outcome);
-    for (const edge of edges.filter(isOpen)) {
-      const at = middle(edge);
-      if (found.get(at)?.failed.includes(edge.id)) edge.high = at;
-      else edge.low = at;
+    for (const change of changes.filter(isOpen)) {
+      const at = middle(change);
+      const outcome = found.get(at);
+      if (outcome !== undefined && isMet(change.id, outcome) === change.metBefore) change.before = at;
+      else change.after = at;
     }
   }
-  return edges.map(({ id, low, high }) => ({
-    id,
-    latestS: low === null ? null : low / TICK_RATE_HZ,
-    capped: high === null,
-  }));
+  return ids.map((id) => {
+    const intervalsS: [number, number][] = [];
+    let open: number | null = isMet(id, outcomes[0]) ? delayTicks(grid[0]) : null;
+    for (const { before, after, id: of } of changes) {
+      if (of !== id) continue;
+      if (open === null) open = after;
+      else {
+        intervalsS.push([open / TICK_RATE_HZ, before / TICK_RATE_HZ]);
+        open = null;
+      }
+    }
+    if (open !== null) intervalsS.push([open / TICK_RATE_HZ, grid[grid.length - 1]]);
+    const [first] = intervalsS;
+    const latestS = first !== undefined && first[0] === 0 ? first[1] : null;
+    return { id, latestS, capped: latestS === LONGEST_DELAY_S, intervalsS };
+  });
 }
 
-interface Edge {
+/** Between two delays a criterion changes from met to failed, or back; ticks. */
+interface Change {
   id: string;
-  /** Last delay known to succeed, first known to fail; ticks. */
-  low: number | null;
-  high: number | null;
+  metBefore: boolean;
+  before: number;
+  after: number;
 }

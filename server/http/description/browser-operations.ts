@@ -1,8 +1,10 @@
 import { z } from 'zod';
+import * as account from '#shared/contracts/account.ts';
 import * as administration from '#shared/contracts/administration.ts';
 import { attemptChunksSchema } from '#shared/contracts/attempts.ts';
 import * as classes from '#shared/contracts/classes.ts';
 import { meSchema, signInBodySchema } from '#shared/contracts/session.ts';
+import { setUpBodySchema, setUpStateSchema } from '#shared/contracts/set-up.ts';
 import { madeTokenSchema, newTokenSchema, tokenListSchema } from '#shared/contracts/tokens.ts';
 import { type Area, fileOf, made, NO_CONTENT, ok } from './operation.ts';
 
@@ -68,6 +70,59 @@ export const BROWSER_AREAS: readonly Area[] = [
         body: administration.changePasswordSchema,
         answer: NO_CONTENT,
         refusals: ['wrong-credentials', 'throttled'],
+      },
+      {
+        method: 'get',
+        path: '/session/open',
+        summary: 'List the own open sessions',
+        answer: ok(account.openSessionsSchema),
+      },
+      { method: 'delete', path: '/session/open/:id', summary: 'End one of the own sessions', answer: NO_CONTENT },
+      {
+        method: 'put',
+        path: '/session/profile',
+        summary: 'Change the own profile',
+        body: account.profileBodySchema,
+        answer: ok(meSchema),
+      },
+      {
+        method: 'post',
+        path: '/session/address',
+        summary: 'Ask for a message that confirms another address',
+        body: account.newAddressSchema,
+        answer: NO_CONTENT,
+        refusals: ['wrong-credentials', 'conflict', 'throttled'],
+      },
+      {
+        ...anyone,
+        method: 'post',
+        path: '/session/link/confirm',
+        summary: 'Confirm another address by a link',
+        body: administration.linkBodySchema,
+        answer: NO_CONTENT,
+        refusals: ['not-found', 'conflict', 'throttled'],
+      },
+    ],
+  },
+  {
+    area: 'set-up',
+    title: 'First set-up',
+    operations: [
+      {
+        ...anyone,
+        method: 'get',
+        path: '/set-up',
+        summary: 'Read whether there is anything to set up',
+        answer: ok(setUpStateSchema),
+      },
+      {
+        ...anyone,
+        method: 'post',
+        path: '/set-up',
+        summary: 'Make the organisation and its first administrator, once',
+        body: setUpBodySchema,
+        answer: NO_CONTENT,
+        refusals: ['forbidden', 'conflict', 'throttled'],
       },
     ],
   },

@@ -19,6 +19,11 @@ export interface BudgetFound {
   criteria: CriterionBudget[];
 }
 
+export interface BudgetQuestion {
+  scenario: Scenario;
+  airframe: Airframe;
+}
+
 export class BudgetRefusal extends Error {
   override readonly name = 'BudgetRefusal';
 }
@@ -34,15 +39,13 @@ class GivenUp extends Error {
  */
 export async function searchOverDesks(
   desks: readonly BudgetDesk[],
-  { scenario, airframe }: { scenario: Scenario; airframe: Airframe },
+  question: BudgetQuestion,
   wanted: () => boolean,
 ): Promise<BudgetFound | null> {
   try {
-    const opened = await Promise.all(desks.map((desk) => open(desk, scenario, airframe)));
-    const [{ handsOff, binds }] = opened;
+    const budget = await budgetOverDesks(desks, question, wanted);
+    const ids = boundCriteria(question.scenario).map(({ id }) => id);
     const spread = spreadOver(desks, wanted);
-    const budget = await carryOut(searchBudget(handsOff, binds), (delays) => spread(delays, false));
-    const ids = boundCriteria(scenario).map(({ id }) => id);
     const criteria =
       ids.length === 0 ? [] : await carryOut(searchCriterionBudgets(ids), (delays) => spread(delays, true));
     return { budget, criteria };
@@ -50,6 +53,17 @@ export async function searchOverDesks(
     if (error instanceof GivenUp) return null;
     throw error;
   }
+}
+
+/** The first half: the budget alone, from desks that have opened nothing yet. */
+export async function budgetOverDesks(
+  desks: readonly BudgetDesk[],
+  { scenario, airframe }: BudgetQuestion,
+  wanted: () => boolean,
+): Promise<ReactionBudget> {
+  const [{ handsOff, binds }] = await Promise.all(desks.map((desk) => open(desk, scenario, airframe)));
+  const spread = spreadOver(desks, wanted);
+  return carryOut(searchBudget(handsOff, binds), (delays) => spread(delays, false));
 }
 
 async function open(desk: BudgetDesk, scenario: Scenario, airframe: Airframe) {

@@ -1,13 +1,12 @@
 /** The workers of a search for the reaction budget: one for each core, started when they are first needed. */
 import type { BudgetMessage, BudgetReply } from './budget-desk.ts';
-import { type BudgetDesk, type BudgetFound, searchOverDesks } from './budget-search.ts';
-import type { PreviewQuestion } from './scenario-preview.ts';
+import { type BudgetDesk, type BudgetFound, type BudgetQuestion, searchOverDesks } from './budget-search.ts';
 
 const MOST_WORKERS = 4;
 
 export interface BudgetWorkers {
   /** Searches; gives up the search before. Null when it was given up itself. */
-  search(question: Pick<PreviewQuestion, 'scenario' | 'airframe'>): Promise<BudgetFound | null>;
+  search(question: BudgetQuestion): Promise<BudgetFound | null>;
   /** Gives up what is being searched. */
   giveUp(): void;
   close(): void;

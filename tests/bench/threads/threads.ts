@@ -6,6 +6,8 @@ import { projectFolder } from '../../../server/bootstrap/paths.mjs';
 export interface Threads<Job, Answer> {
   /** Hands the jobs to the first `count` threads, each as soon as it is free; the answers in the order of the jobs. */
   run(jobs: readonly Job[], count: number): Promise<Answer[]>;
+  /** One function for each thread: hands it a job when it has none. */
+  readonly asks: readonly ((job: Job) => Promise<Answer>)[];
   close(): Promise<unknown>;
 }
 
@@ -28,6 +30,7 @@ export async function startThreads<Job, Answer>(name: string, count: number): Pr
     });
 
   return {
+    asks: workers.map((worker) => (job: Job) => ask(worker, job)),
     async run(jobs, used) {
       const answers: Answer[] = [];
       let next = 0;
