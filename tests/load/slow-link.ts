@@ -33,7 +33,8 @@ export async function startSlowLink(
       waiting.push({ dueMs, data });
       if (waiting.length === 1) setTimeout(pump, late);
     });
-    from.on('close', () => setTimeout(() => to.destroy(), delayMs));
+    const end = (): void => void (waiting.length > 0 ? setTimeout(end, 10) : to.destroy());
+    from.on('close', () => setTimeout(end, delayMs));
     from.on('error', () => to.destroy());
     sockets.add(from);
   };
