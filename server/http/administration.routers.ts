@@ -38,6 +38,10 @@ export function peopleRouter(people: PeopleService): Router {
     response.json(await people.list(actorOf(response), parse(peopleQuerySchema, request.query)));
   });
 
+  router.get('/:id', async (request, response) => {
+    response.json(await people.read(actorOf(response), idIn(request, 'person')));
+  });
+
   router.post('/roster', async (request, response) => {
     const roster = parse(rosterSchema, request.body);
     response.json(await people.roster(actorOf(response), roster, callerOf(request)));

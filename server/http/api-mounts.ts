@@ -17,6 +17,7 @@ import { assignmentsRouter } from './assignments.router.ts';
 import { attemptsRouter } from './attempts.router.ts';
 import { onlySession, sessionOrToken } from './bearer.ts';
 import { classesRouter } from './classes.router.ts';
+import { cohortsRouter } from './cohorts.router.ts';
 import type { Cookies } from './cookies.ts';
 import { debriefRouter, remarksRouter } from './debrief.router.ts';
 import { doneOnce } from './idempotency.middleware.ts';
@@ -25,7 +26,9 @@ import { recordsRouter } from './records.router.ts';
 import { scenarioEditingRouter } from './scenario-editing.router.ts';
 import { scenariosRouter } from './scenarios.router.ts';
 import { sessionRouter } from './session.router.ts';
+import { setUpRouter } from './set-up.router.ts';
 import { studiesRouter } from './studies.router.ts';
+import { systemRouter } from './system.router.ts';
 import { tokensRouter } from './tokens.router.ts';
 
 /** A router below /api and what comes before it. The description of the interface is checked against this list. */
@@ -41,10 +44,12 @@ export interface ApiMountsSetup {
   services: Services;
   cookies: Cookies;
   publicOrigins: readonly string[];
+  /** Requests may come through a proxy, so that none counts as one from this machine. */
+  behindProxy: boolean;
 }
 
 /** Every router of the interface, in the order in which they are asked. */
-export function apiMounts({ services, cookies, publicOrigins }: ApiMountsSetup): ApiMount[] {
+export function apiMounts({ services, cookies, publicOrigins, behindProxy }: ApiMountsSetup): ApiMount[] {
   const { sessions, tokens, once } = services;
   const onceOnly = doneOnce(once);
   const browser = (path: string, router: Router, before: readonly RequestHandler[] = []): ApiMount => ({
@@ -63,6 +68,7 @@ export function apiMounts({ services, cookies, publicOrigins }: ApiMountsSetup):
     browser('/session', sessionRouter(sessions, cookies)),
     browser('/session', accountRouter(services.accountLinks, sessions)),
     browser('/session', accountSessionsRouter(services)),
+    browser('/set-up', setUpRouter(services.setUp, behindProxy)),
     browser('/classes', classesRouter({ services, cookies, publicOrigins })),
     browser('/tokens', tokensRouter(tokens), [onlySession(sessions), onceOnly]),
     open('airframes', airframesRouter(services.airframes)),
@@ -79,8 +85,10 @@ export function apiMounts({ services, cookies, publicOrigins }: ApiMountsSetup):
     open('playlists', playlistsRouter(services.playlists)),
     open('people', peopleRouter(services.people)),
     open('people', personSessionsRouter(services.profile)),
+    open('cohorts', cohortsRouter(services.cohorts)),
     open('organisation', organisationRouter(services.people)),
     open('outbox', outboxRouter(services.outbox)),
+    open('system', systemRouter(services.system)),
     open('audit', auditRouter(services.audit)),
     open('audit', auditFileRouter(services.audit), '/audit.csv'),
   ];

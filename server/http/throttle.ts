@@ -63,3 +63,4 @@ export const ownPasswordThrottle = () =>
 const addressOf = (request: Request): string => `address:${ipKeyGenerator(request.ip ?? '')}`;
 export const linkThrottle = () => limiter(LINK_LIMIT, addressOf, 'links that do not work');
 export const resetThrottle = () => limiter(RESET_LIMIT, addressOf, 'messages asked for', true);
+export const setUpThrottle = () => limiter(LINK_LIMIT, addressOf, 'wrong codes');

@@ -28,6 +28,12 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Forgotten password', open: true, bare: true },
   },
   {
+    path: '/set-up',
+    name: 'set-up',
+    component: () => import('../views/account/SetUpView.vue'),
+    meta: { title: 'Set up', open: true, bare: true },
+  },
+  {
     path: '/administration',
     name: 'people',
     component: () => import('../views/administration/PeopleView.vue'),
@@ -44,6 +50,12 @@ export const routes: RouteRecordRaw[] = [
     name: 'organisation',
     component: () => import('../views/administration/OrganisationView.vue'),
     meta: { title: 'Organisation', ...ADMINISTRATION },
+  },
+  {
+    path: '/administration/system',
+    name: 'system',
+    component: () => import('../views/administration/SystemView.vue'),
+    meta: { title: 'System', ...ADMINISTRATION },
   },
   {
     path: '/administration/audit',
@@ -138,6 +150,17 @@ export const routes: RouteRecordRaw[] = [
     name: 'playlists',
     component: () => import('../views/playlists/PlaylistsView.vue'),
     meta: { title: 'Playlists', area: 'assignments', roles: ['instructor'], purpose: 'make playlists' },
+  },
+  {
+    path: '/cohorts',
+    name: 'cohorts',
+    component: () => import('../views/cohorts/CohortsView.vue'),
+    meta: {
+      title: 'Cohorts',
+      area: 'assignments',
+      roles: ['instructor', 'administrator'],
+      purpose: 'look after cohorts',
+    },
   },
   {
     path: '/records',

@@ -6,6 +6,7 @@ import {
   linkSchema,
   outboxPageSchema,
   peoplePageSchema,
+  personSchema,
   rosterAnswerSchema,
   type AuditQuery,
   type ChangePassword,
@@ -23,6 +24,8 @@ const person = (id: string, rest: string): string => `/api/people/${encodeURICom
 
 export const listPeople = (query: Partial<PeopleQuery>, signal?: AbortSignal) =>
   api.get('/api/people', peoplePageSchema, { query, signal });
+export const getPerson = (id: string, signal?: AbortSignal) =>
+  api.get(`/api/people/${encodeURIComponent(id)}`, personSchema, { signal });
 export const sendRoster = (roster: Roster) => api.post('/api/people/roster', roster, rosterAnswerSchema);
 export const inviteAgain = (id: string) => api.post(person(id, 'invitation'), undefined, NOTHING);
 export const saveRoles = (id: string, roles: Role[], read: readonly Role[]) =>

@@ -236,7 +236,7 @@ export function createAssignmentsRepository(manager: EntityManager) {
         `SELECT c.id, c.name, p.id AS personId FROM cohort c
          LEFT JOIN cohort_member m ON m.cohort_id = c.id
          LEFT JOIN person p ON p.id = m.person_id AND p.status = 'active'
-         WHERE c.organisation_id = ? ORDER BY c.name, p.display_name${lock ? ' LOCK IN SHARE MODE' : ''}`,
+         WHERE c.organisation_id = ? AND c.archived_at IS NULL ORDER BY c.name, p.display_name${lock ? ' LOCK IN SHARE MODE' : ''}`,
         [organisationId],
       );
     },

@@ -48,7 +48,12 @@ const documentSchema = z.object({
 
 describe('the description', () => {
   it('names every route there is, and no other', () => {
-    const mounts = apiMounts({ services: server.services, cookies: createCookies(false), publicOrigins: [] });
+    const mounts = apiMounts({
+      services: server.services,
+      cookies: createCookies(false),
+      publicOrigins: [],
+      behindProxy: false,
+    });
     const routes = mounts.flatMap(({ path, router }) => routesOf(path, router));
     expect(new Set(routes).size).toBe(routes.length);
     expect(described.map(({ method, path }) => `${method} ${path}`).sort()).toEqual([...routes].sort());
