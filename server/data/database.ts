@@ -21,6 +21,8 @@ import {
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
 import { type PlaylistsRepository, createPlaylistsRepository } from './repositories/playlists.repository.ts';
 import { type AccountLinksRepository, createAccountLinksRepository } from './repositories/account-links.repository.ts';
+import { type AccessTokensRepository, createAccessTokensRepository } from './repositories/access-tokens.repository.ts';
+import { type IdempotencyRepository, createIdempotencyRepository } from './repositories/idempotency.repository.ts';
 import { type OutboxRepository, createOutboxRepository } from './repositories/outbox.repository.ts';
 import { type BudgetsRepository, createBudgetsRepository } from './repositories/budgets.repository.ts';
 import { type RecordsRepository, createRecordsRepository } from './repositories/records.repository.ts';
@@ -67,6 +69,8 @@ export interface Repositories {
   readonly noticeMail: NoticeMailRepository;
   readonly playlists: PlaylistsRepository;
   readonly accountLinks: AccountLinksRepository;
+  readonly accessTokens: AccessTokensRepository;
+  readonly idempotency: IdempotencyRepository;
   readonly outbox: OutboxRepository;
   readonly audit: AuditRepository;
   readonly system: SystemRepository;
@@ -107,6 +111,8 @@ function repositories(manager: EntityManager): Repositories {
     noticeMail: createNoticeMailRepository(manager),
     playlists: createPlaylistsRepository(manager),
     accountLinks: createAccountLinksRepository(manager),
+    accessTokens: createAccessTokensRepository(manager),
+    idempotency: createIdempotencyRepository(manager),
     outbox: createOutboxRepository(manager),
     audit: createAuditRepository(manager),
     system: createSystemRepository(manager),

@@ -48,6 +48,8 @@ import { createSetUp } from './set-up/set-up.service.ts';
 import { createAnalysisReports } from './studies/analysis-reports.ts';
 import { createStudiesService } from './studies/studies.service.ts';
 import { createSystemService, type Surroundings } from './system/system.service.ts';
+import { createAccessTokensService } from './tokens/access-tokens.service.ts';
+import { createOnceService } from './tokens/once.service.ts';
 import { createWorkerPool } from './workers/worker-pool.ts';
 
 export interface ServicesSetup {
@@ -105,6 +107,8 @@ export function createServices(setup: ServicesSetup) {
       notices: sessionNotices,
       now,
     }),
+    tokens: createAccessTokensService({ database, now }),
+    once: createOnceService({ database, now }),
     accountLinks: createAccountLinks({ database, passwords, notices: sessionNotices, address, now }),
     profile: createProfileService({ database, passwords, notices: sessionNotices, address, now }),
     setUp: createSetUp({ database, passwords, libraryFolder: path.join(projectFolder, 'scenarios'), now }),

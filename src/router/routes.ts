@@ -258,6 +258,18 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Profile and preferences' },
   },
   {
+    path: '/account/tokens',
+    name: 'tokens',
+    component: () => import('../views/account/TokensView.vue'),
+    meta: { title: 'Tokens' },
+  },
+  {
+    path: '/account/interface',
+    name: 'interface',
+    component: () => import('../views/account/InterfaceView.vue'),
+    meta: { title: 'Interface for programs' },
+  },
+  {
     path: '/:address(.*)*',
     name: 'not-found',
     component: () => import('../views/edges/NotFoundView.vue'),

@@ -97,7 +97,7 @@ export function emailKey(email: string): string {
   return email.normalize('NFKC').trim().toLowerCase();
 }
 
-export function rolesOf(rows: readonly PersonRoleEntity[] | undefined): Role[] {
+export function rolesOf(rows: readonly Pick<PersonRoleEntity, 'role'>[] | undefined): Role[] {
   return (rows ?? []).map((row) => roleSchema.parse(row.role)).sort();
 }
 

@@ -1,6 +1,9 @@
 import type { z } from 'zod';
 import type { publishScenarioSchema, ScenarioDetail, ScenarioLine } from '#shared/contracts/scenario-editing.ts';
-import { checkAgainstAirframe, parseScenario } from '#shared/scenario/scenario-schema.ts';
+import type { Airframe } from '#shared/model/airframe-schema.ts';
+import { ModelError } from '#shared/model/errors.ts';
+import { createRun } from '#shared/scenario/run.ts';
+import { checkAgainstAirframe, parseScenario, type Scenario } from '#shared/scenario/scenario-schema.ts';
 import type { Database, Repositories } from '../../data/database.ts';
 import type { ScenarioLineRecord } from '../../data/repositories/scenario-editing.repository.ts';
 import { storedAirframe } from '../attempts/attempt-data.ts';
@@ -35,6 +38,20 @@ function lineOf(line: ScenarioLineRecord): ScenarioLine {
     changedBy: line.changedBy,
     changedAt: line.changedAt.toISOString(),
   };
+}
+
+/** @throws {ProblemError} validation when no run of the scenario can begin: its start cannot be trimmed */
+function requireStart(scenario: Scenario, airframe: Airframe): void {
+  try {
+    createRun({ scenario, airframe, seed: scenario.seed }, { lean: true });
+  } catch (error) {
+    if (!(error instanceof ModelError)) throw error;
+    const { code: rule, message } = error;
+    const remedy = 'Change speed, levers, wind or configuration of the start.';
+    throw new ProblemError('validation', 'The scenario cannot be started.', {
+      errors: [{ field: '/start', rule, message, remedy }],
+    });
+  }
 }
 
 /** Publishing and archiving, and what a scenario's own page shows. */
@@ -113,9 +130,11 @@ export function createScenarioPublishing({ database, now }: { database: Database
             `revision ${pin.revision} of "${pin.slug}" is retired`,
             'Pin a released revision, then publish.',
           );
-        const { issues } = checkAgainstAirframe(parsed.scenario, storedAirframe(pin.document));
+        const airframe = storedAirframe(pin.document);
+        const { issues } = checkAgainstAirframe(parsed.scenario, airframe);
         if (issues.length > 0)
           throw new ProblemError('validation', 'The scenario does not fit its airframe.', { errors: issues });
+        requireStart(parsed.scenario, airframe);
         await on.scenarioEditing.publish(draft.id, body.note, actor.personId, doing.at);
         await on.audit.append(
           scenarioEntry(doing, 'published', slug, {

@@ -73,6 +73,7 @@ export function createAnalysisReports(setup: { database: Database; threads: Work
         digest,
       },
       state,
+      units: request.units,
       subjects: pinned.map((p) => ({
         label: p.slug === slug ? `Revision ${p.revision.revision}` : `${p.revision.name}, ${p.revision.revision}`,
         document: p.revision.document,

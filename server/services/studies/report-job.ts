@@ -19,6 +19,7 @@ export const reportJobSchema = z.object({
     digest: z.string(),
   }),
   state: studyStateSchema,
+  units: z.enum(['aviation', 'si']),
   /** The revision looked at, then those compared with it. */
   subjects: z.array(z.object({ label: z.string(), document: z.unknown() })).min(1),
   answers: z.array(releaseAnswerSchema),
