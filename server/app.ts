@@ -46,7 +46,12 @@ export function createApp({ services, log, env, client }: AppSetup): Express {
   });
   api.use('/health', healthRouter(services.database));
   api.use(cookieParser());
-  const mounts = apiMounts({ services, cookies, publicOrigins: env.publicOrigins, proxies: env.proxies });
+  const mounts = apiMounts({
+    services,
+    cookies,
+    publicOrigins: env.publicOrigins,
+    behindProxy: env.proxies > 0 || env.publicOrigins.length > 0,
+  });
   const openToTokens = new Set(mounts.filter(({ area }) => area !== null).map(({ path }) => path));
   api.use(csrfProtection(cookies, env.publicOrigins, openToTokens));
   api.use(express.json({ limit: LARGEST_JSON }));

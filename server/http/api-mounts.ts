@@ -44,12 +44,12 @@ export interface ApiMountsSetup {
   services: Services;
   cookies: Cookies;
   publicOrigins: readonly string[];
-  /** Number of proxies in front. */
-  proxies: number;
+  /** Requests may come through a proxy, so that none counts as one from this machine. */
+  behindProxy: boolean;
 }
 
 /** Every router of the interface, in the order in which they are asked. */
-export function apiMounts({ services, cookies, publicOrigins, proxies }: ApiMountsSetup): ApiMount[] {
+export function apiMounts({ services, cookies, publicOrigins, behindProxy }: ApiMountsSetup): ApiMount[] {
   const { sessions, tokens, once } = services;
   const onceOnly = doneOnce(once);
   const browser = (path: string, router: Router, before: readonly RequestHandler[] = []): ApiMount => ({
@@ -68,9 +68,7 @@ export function apiMounts({ services, cookies, publicOrigins, proxies }: ApiMoun
     browser('/session', sessionRouter(sessions, cookies)),
     browser('/session', accountRouter(services.accountLinks, sessions)),
     browser('/session', accountSessionsRouter(services)),
-    browser('/set-up', setUpRouter(services.setUp, proxies > 0 || publicOrigins.length > 0)),
-    browser('/cohorts', cohortsRouter(services.cohorts), [onlySession(sessions)]),
-    browser('/system', systemRouter(services.system), [onlySession(sessions)]),
+    browser('/set-up', setUpRouter(services.setUp, behindProxy)),
     browser('/classes', classesRouter({ services, cookies, publicOrigins })),
     browser('/tokens', tokensRouter(tokens), [onlySession(sessions), onceOnly]),
     open('airframes', airframesRouter(services.airframes)),
@@ -87,8 +85,10 @@ export function apiMounts({ services, cookies, publicOrigins, proxies }: ApiMoun
     open('playlists', playlistsRouter(services.playlists)),
     open('people', peopleRouter(services.people)),
     open('people', personSessionsRouter(services.profile)),
+    open('cohorts', cohortsRouter(services.cohorts)),
     open('organisation', organisationRouter(services.people)),
     open('outbox', outboxRouter(services.outbox)),
+    open('system', systemRouter(services.system)),
     open('audit', auditRouter(services.audit)),
     open('audit', auditFileRouter(services.audit), '/audit.csv'),
   ];

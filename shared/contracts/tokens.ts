@@ -13,8 +13,10 @@ export const TOKEN_AREAS = [
   'assignments',
   'records',
   'people',
+  'cohorts',
   'organisation',
   'outbox',
+  'system',
   'audit',
 ] as const;
 export type TokenArea = (typeof TOKEN_AREAS)[number];

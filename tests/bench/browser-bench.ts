@@ -3,14 +3,14 @@ import fs from 'node:fs';
 import type { Browser, Page } from 'playwright-core';
 import { openChromium } from '../e2e/support/chromium.ts';
 import { freshDataFolder, launchProduct } from '../e2e/support/product.ts';
-import { type PEOPLE, signIn } from '../e2e/support/sign-in.ts';
+import { PEOPLE, submitSignIn } from '../e2e/support/sign-in.ts';
 import type { BenchContext } from './harness.ts';
 
 export interface BenchBrowser {
   readonly address: string;
   readonly browser: Browser;
-  /** A page with cookies of its own, signed in. `script` runs before the page's own, as text. */
-  openPage(who: keyof typeof PEOPLE, script?: string): Promise<Page>;
+  /** A page with cookies of its own, signed in as one of a role or by address. `script` runs before the page's own, as text. */
+  openPage(who: keyof typeof PEOPLE | `${string}@${string}`, script?: string): Promise<Page>;
 }
 
 interface Size {
@@ -47,11 +47,15 @@ export async function openBenchBrowser(
       const context = await browser.newContext({ viewport: size, baseURL: address });
       if (script !== undefined) await context.addInitScript(script);
       const page = await context.newPage();
-      await signIn(page, who);
+      await page.goto('/sign-in');
+      await submitSignIn(page, isRole(who) ? PEOPLE[who] : who);
+      await page.waitForURL((url) => !url.pathname.startsWith('/sign-in'));
       return page;
     },
   };
 }
+
+const isRole = (who: string): who is keyof typeof PEOPLE => Object.hasOwn(PEOPLE, who);
 
 /**
  * For `openPage`: adds up how long scripts block the page. `window.benchBlocks` holds the gaps of more than 8 ms between

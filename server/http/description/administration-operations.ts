@@ -1,10 +1,14 @@
 import * as account from '#shared/contracts/account.ts';
 import * as administration from '#shared/contracts/administration.ts';
+import * as cohorts from '#shared/contracts/cohorts.ts';
+import { searchShape } from '#shared/contracts/paging.ts';
+import { systemStateSchema } from '#shared/contracts/system.ts';
 import { organisationBodySchema, organisationSettingsSchema } from '#shared/contracts/session.ts';
 import { z } from 'zod';
-import { type Area, fileOf, NO_CONTENT, ok } from './operation.ts';
+import { type Area, fileOf, made, NO_CONTENT, ok } from './operation.ts';
 
 const lookAfter = { deed: 'people.look-after' } as const;
+const keepCohorts = { deed: 'cohort.edit' } as const;
 
 export const ADMINISTRATION_AREAS: readonly Area[] = [
   {
@@ -49,6 +53,7 @@ export const ADMINISTRATION_AREAS: readonly Area[] = [
         summary: 'Set the roles of a person',
         body: administration.rolesBodySchema,
         answer: NO_CONTENT,
+        version: 'possible',
         refusals: ['conflict'],
       },
       {
@@ -87,6 +92,84 @@ export const ADMINISTRATION_AREAS: readonly Area[] = [
         path: '/people/:id/sessions/:session',
         summary: 'End one session of a person',
         answer: NO_CONTENT,
+      },
+    ],
+  },
+  {
+    area: 'cohorts',
+    title: 'Cohorts',
+    operations: [
+      {
+        ...keepCohorts,
+        method: 'get',
+        path: '/cohorts',
+        summary: 'List cohorts',
+        query: cohorts.cohortQuerySchema,
+        answer: ok(cohorts.cohortPageSchema),
+      },
+      {
+        ...keepCohorts,
+        method: 'post',
+        path: '/cohorts',
+        summary: 'Make a cohort',
+        body: cohorts.cohortBodySchema,
+        answer: made(cohorts.cohortSchema),
+        refusals: ['conflict'],
+      },
+      {
+        ...keepCohorts,
+        method: 'get',
+        path: '/cohorts/:id',
+        summary: 'Read a cohort with its people',
+        answer: ok(cohorts.cohortSchema),
+      },
+      {
+        ...keepCohorts,
+        method: 'put',
+        path: '/cohorts/:id',
+        summary: 'Rename a cohort',
+        body: cohorts.cohortBodySchema,
+        answer: ok(cohorts.cohortSchema),
+        refusals: ['conflict'],
+      },
+      {
+        ...keepCohorts,
+        method: 'get',
+        path: '/cohorts/:id/candidates',
+        summary: 'Find people who could join a cohort',
+        query: z.strictObject(searchShape),
+        answer: ok(cohorts.cohortCandidatesSchema),
+      },
+      {
+        ...keepCohorts,
+        method: 'post',
+        path: '/cohorts/:id/members',
+        summary: 'Add people to a cohort',
+        body: cohorts.cohortMembersSchema,
+        answer: ok(cohorts.cohortSchema),
+        refusals: ['conflict'],
+      },
+      {
+        ...keepCohorts,
+        method: 'delete',
+        path: '/cohorts/:id/members/:person',
+        summary: 'Take a person out of a cohort',
+        answer: NO_CONTENT,
+      },
+      {
+        ...keepCohorts,
+        method: 'post',
+        path: '/cohorts/:id/archive',
+        summary: 'Archive a cohort',
+        answer: ok(cohorts.cohortSchema),
+      },
+      {
+        ...keepCohorts,
+        method: 'delete',
+        path: '/cohorts/:id/archive',
+        summary: 'Bring an archived cohort back',
+        answer: NO_CONTENT,
+        refusals: ['conflict'],
       },
     ],
   },
@@ -131,6 +214,19 @@ export const ADMINISTRATION_AREAS: readonly Area[] = [
         summary: 'Send a refused message again',
         answer: NO_CONTENT,
         refusals: ['conflict'],
+      },
+    ],
+  },
+  {
+    area: 'system',
+    title: 'System',
+    operations: [
+      {
+        deed: 'system.read',
+        method: 'get',
+        path: '/system',
+        summary: 'Read storage, mail, versions and health',
+        answer: ok(systemStateSchema),
       },
     ],
   },

@@ -4,6 +4,7 @@ import * as administration from '#shared/contracts/administration.ts';
 import { attemptChunksSchema } from '#shared/contracts/attempts.ts';
 import * as classes from '#shared/contracts/classes.ts';
 import { meSchema, signInBodySchema } from '#shared/contracts/session.ts';
+import { setUpBodySchema, setUpStateSchema } from '#shared/contracts/set-up.ts';
 import { madeTokenSchema, newTokenSchema, tokenListSchema } from '#shared/contracts/tokens.ts';
 import { type Area, fileOf, made, NO_CONTENT, ok } from './operation.ts';
 
@@ -100,6 +101,28 @@ export const BROWSER_AREAS: readonly Area[] = [
         body: administration.linkBodySchema,
         answer: NO_CONTENT,
         refusals: ['not-found', 'conflict', 'throttled'],
+      },
+    ],
+  },
+  {
+    area: 'set-up',
+    title: 'First set-up',
+    operations: [
+      {
+        ...anyone,
+        method: 'get',
+        path: '/set-up',
+        summary: 'Read whether there is anything to set up',
+        answer: ok(setUpStateSchema),
+      },
+      {
+        ...anyone,
+        method: 'post',
+        path: '/set-up',
+        summary: 'Make the organisation and its first administrator, once',
+        body: setUpBodySchema,
+        answer: NO_CONTENT,
+        refusals: ['forbidden', 'conflict', 'throttled'],
       },
     ],
   },

@@ -254,6 +254,13 @@ export const LIBRARY_AREAS: readonly Area[] = [
         answer: ok(scenarios.scenarioRevisionSchema),
       },
       {
+        deed: 'scenario.export',
+        method: 'get',
+        path: '/scenarios/:slug/revisions/:revision/file',
+        summary: 'Export a revision as it was given, talking point included',
+        answer: fileOf('application/json'),
+      },
+      {
         deed: 'scenario.read-draft',
         method: 'get',
         path: '/scenarios/:slug/detail',

@@ -345,7 +345,7 @@ export const TRAINING_AREAS: readonly Area[] = [
         method: 'get',
         path: '/records/endpoint',
         summary: 'Read where statements are pushed to',
-        answer: ok(records.endpointSchema),
+        answer: ok(records.endpointSchema, true),
       },
       {
         deed: 'record.rule',
@@ -353,7 +353,8 @@ export const TRAINING_AREAS: readonly Area[] = [
         path: '/records/endpoint',
         summary: 'Set where statements are pushed to',
         body: records.saveEndpointSchema,
-        answer: ok(records.endpointSchema),
+        version: 'possible',
+        answer: ok(records.endpointSchema, true),
       },
       {
         deed: 'record.rule',
@@ -368,7 +369,7 @@ export const TRAINING_AREAS: readonly Area[] = [
         method: 'get',
         path: '/records/retention',
         summary: 'Read the retention rules',
-        answer: ok(records.retentionSchema),
+        answer: ok(records.retentionSchema, true),
       },
       {
         deed: 'record.rule',
@@ -384,7 +385,8 @@ export const TRAINING_AREAS: readonly Area[] = [
         path: '/records/retention',
         summary: 'Set the retention rules',
         body: records.saveRetentionSchema,
-        answer: ok(records.retentionSchema),
+        version: 'possible',
+        answer: ok(records.retentionSchema, true),
       },
     ],
   },

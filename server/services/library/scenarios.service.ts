@@ -1,7 +1,7 @@
 import type { Page } from '#shared/contracts/paging.ts';
 import type { ScenarioListQuery, ScenarioRevision, ScenarioSummary } from '#shared/contracts/scenarios.ts';
 import type { Database } from '../../data/database.ts';
-import { storedScenario } from '../attempts/attempt-data.ts';
+import { readableBy, storedScenario } from '../attempts/attempt-data.ts';
 import { may, requireDeed, type Actor } from '../permissions.ts';
 import { notFound } from '../problem-error.ts';
 import { createKeptDocuments } from './kept-documents.ts';
@@ -33,8 +33,10 @@ export function createScenariosService({ database }: { database: Database }) {
         createdBy: found.createdBy,
         createdAt: found.createdAt.toISOString(),
         publishedAt: found.publishedAt?.toISOString() ?? null,
-        scenario:
+        scenario: readableBy(
+          actor,
           found.status === 'draft' ? storedScenario(found.document) : documents.scenario(found.id, found.document),
+        ),
         airframe: {
           slug: found.airframe.slug,
           revision: found.airframe.revision,

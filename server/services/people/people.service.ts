@@ -7,6 +7,7 @@ import { isDuplicateKey } from '../../data/duplicate-key.ts';
 import { emailKey, type ListedPerson, type PersonStatus } from '../../data/repositories/people.repository.ts';
 import { type Actor, requireDeed } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
+import { requireEdition } from '../versions.ts';
 import type { SessionNotices } from '../sessions/session-notices.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
 import { invitationText } from './account-messages.ts';
@@ -181,13 +182,20 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
       });
     },
 
-    async setRoles(actor: Actor, personId: string, roles: readonly Role[], caller: Caller): Promise<void> {
+    async setRoles(
+      actor: Actor,
+      personId: string,
+      roles: readonly Role[],
+      caller: Caller,
+      version: string | null = null,
+    ): Promise<void> {
       requireDeed(actor, 'people.look-after');
       await database.transaction(async (on) => {
         await on.organisations.takeTurn(actor.organisationId);
         await need(on, actor, personId);
         if (!roles.includes('administrator')) await keepOneAdministrator(on, actor, personId);
         const before = (await on.people.findProfile(actor.organisationId, personId))?.roles ?? [];
+        requireEdition(version, [...before].sort(), 'these roles');
         const after = [...new Set(roles)].sort();
         await on.people.setRoles(personId, after, now());
         await on.audit.append(entry(actor, caller, 'person.roles-changed', personId, { before, after }));
@@ -242,10 +250,15 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
       actor: Actor,
       body: { name: string; settings: OrganisationSettings },
       caller: Caller,
+      version: string | null = null,
     ): Promise<void> {
       requireDeed(actor, 'organisation.edit');
       await database.transaction(async (on) => {
         await on.organisations.takeTurn(actor.organisationId);
+        const held = await on.people.findProfile(actor.organisationId, actor.personId);
+        if (held === null) throw notFound('organisation');
+        const { name, settings } = held.organisation;
+        requireEdition(version, { name, settings }, 'the settings');
         const before = await on.organisations.settings(actor.organisationId);
         await on.organisations.rename(actor.organisationId, body.name, body.settings);
         await on.audit.append({

@@ -1,5 +1,5 @@
 import type { z } from 'zod';
-import type { publishScenarioSchema, ScenarioDetail, ScenarioLine } from '#shared/contracts/scenario-editing.ts';
+import type { publishScenarioSchema, ScenarioDetail, ScenarioFile, ScenarioLine } from '#shared/contracts/scenario-editing.ts';
 import type { Airframe } from '#shared/model/airframe-schema.ts';
 import { ModelError } from '#shared/model/errors.ts';
 import { createRun } from '#shared/scenario/run.ts';
@@ -8,7 +8,7 @@ import type { Database, Repositories } from '../../data/database.ts';
 import type { ScenarioLineRecord } from '../../data/repositories/scenario-editing.repository.ts';
 import { storedAirframe } from '../attempts/attempt-data.ts';
 import { may, requireDeed, type Actor } from '../permissions.ts';
-import { ProblemError } from '../problem-error.ts';
+import { notFound, ProblemError } from '../problem-error.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
 import {
   documentOf,
@@ -74,6 +74,7 @@ export function createScenarioPublishing({ database, now }: { database: Database
           ? { slug: newer.slug, revision: newer.revision }
           : null,
       mayEdit: may(actor, 'scenario.edit'),
+      mayExport: may(actor, 'scenario.export'),
     };
   };
   /** Archives or restores all published revisions at once. */
@@ -100,6 +101,14 @@ export function createScenarioPublishing({ database, now }: { database: Database
     detail: async (actor: Actor, slug: string): Promise<ScenarioDetail> => {
       requireDeed(actor, 'scenario.read-published');
       return detailOn(database, actor, slug);
+    },
+
+    /** The document of a revision exactly as it was given: what an export holds. */
+    file: async (actor: Actor, slug: string, number: number): Promise<ScenarioFile> => {
+      requireDeed(actor, 'scenario.export');
+      const line = await foundLine(database, await foundScenario(database, actor, slug), number);
+      if (line.status === 'draft' && !may(actor, 'scenario.read-draft')) throw notFound('scenario revision');
+      return { document: documentOf(line) };
     },
 
     /** Makes a draft a published revision, for good, pinned to the airframe revision it names. */

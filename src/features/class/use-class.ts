@@ -6,6 +6,7 @@ import { TICK_RATE_HZ } from '#shared/model/plant-types.ts';
 import type { Run } from '#shared/scenario/run-types.ts';
 import { getClass, getClassScenario } from '../../services/classes-api.ts';
 import { openClassSocket } from '../../services/class-socket.ts';
+import { fetchMe } from '../../services/session-api.ts';
 import { newKey } from '../../services/new-key.ts';
 import { useNoticesStore } from '../../stores/notices.store.ts';
 import { ClassSession, type Deed } from './class-session.ts';
@@ -49,6 +50,7 @@ export function useClass(classId: string) {
     classId,
     scenario: (index) => getClassScenario(classId, index),
     newKey,
+    renew: async () => (await fetchMe()) !== null,
     events: {
       changed,
       board(run, rows) {

@@ -1,14 +1,13 @@
 import type { Page } from 'playwright-core';
 import { z } from 'zod';
-import { createdScenarioSchema, scenarioDraftSchema } from '#shared/contracts/scenario-editing.ts';
 import { createReplay } from '#shared/scenario/replay.ts';
 import { startLoadProduct } from '../../load/crowd.ts';
 import { deliverAttempt, flyAttempt } from '../../support/flown-attempt.ts';
 import { openClient } from '../../support/test-server.ts';
-import { jsonOf } from '../../unit/scenario/support/build-scenario.ts';
 import { attemptDetailSchema } from '#shared/contracts/attempts.ts';
 import { openBenchBrowser } from '../browser-bench.ts';
 import { defineBench, median, quantile, timeOnce } from '../harness.ts';
+import { publishScenario } from '../publish-scenario.ts';
 
 const TEMPLATE = 'rudder-ratio-stuck';
 const SECONDS = 120;
@@ -49,17 +48,7 @@ export default defineBench({
   async run({ note, cleanUp }) {
     const product = await startLoadProduct(cleanUp);
     const { address } = product.server;
-    const instructor = await openClient(address, 'm.okafor');
-    const document = { ...z.record(z.string(), z.unknown()).parse(jsonOf(`scenarios/${TEMPLATE}.json`)) };
-    Object.assign(document, { title: 'Two minutes', duration_s: SECONDS });
-    const made = await instructor('POST', '/api/scenarios', { json: { document } });
-    const { slug } = createdScenarioSchema.parse(made.body);
-    const { version } = scenarioDraftSchema.parse((await instructor('GET', `/api/scenarios/${slug}/drafts/1`)).body);
-    const published = await instructor('POST', `/api/scenarios/${slug}/revisions/1/publish`, {
-      json: { note: 'For the bench.' },
-      headers: { 'if-match': `"${version}"` },
-    });
-    if (published.status >= 300) throw new Error(`Publishing answered ${published.status}.`);
+    const slug = await publishScenario(address, TEMPLATE, { title: 'Two minutes', duration_s: SECONDS });
     const trainee = await openClient(address, 'j.lindqvist');
     const flown = await flyAttempt(product, trainee, slug, { delayS: 1 });
     const delivered = await deliverAttempt(trainee, flown);

@@ -52,7 +52,7 @@ describe('the description', () => {
       services: server.services,
       cookies: createCookies(false),
       publicOrigins: [],
-      proxies: 0,
+      behindProxy: false,
     });
     const routes = mounts.flatMap(({ path, router }) => routesOf(path, router));
     expect(new Set(routes).size).toBe(routes.length);
