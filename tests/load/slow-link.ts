@@ -2,11 +2,16 @@ import net from 'node:net';
 
 /**
  * A link between a client and a server as TCP shows a bad network: every piece of data is late, and one in ten is late by
- * a retransmission more, with everything behind it. (Where the kernel has a network emulator, use that; this needs no rights.)
+ * a retransmission more (and, where asked for, by a varying delay), with everything behind it. (Where the kernel has a network emulator, use that; this needs no rights.)
  */
 export async function startSlowLink(
   target: string,
-  { delayMs, lossShare, random }: { delayMs: number; lossShare: number; random: () => number },
+  {
+    delayMs,
+    lossShare,
+    jitterMs = 0,
+    random,
+  }: { delayMs: number; lossShare: number; jitterMs?: number; random: () => number },
 ): Promise<{ address: string; stop: () => void }> {
   const { hostname, port } = new URL(target);
   const sockets = new Set<net.Socket>();
@@ -14,8 +19,9 @@ export async function startSlowLink(
     let dueMs = 0;
     from.on('data', (data) => {
       const retransmission = random() < lossShare ? 200 + 2 * delayMs : 0;
+      const late = delayMs + jitterMs * random() + retransmission;
       // What follows waits behind what is late.
-      dueMs = Math.max(dueMs, performance.now() + delayMs + retransmission);
+      dueMs = Math.max(dueMs, performance.now() + late);
       setTimeout(() => to.writable && to.write(data), dueMs - performance.now());
     });
     from.on('close', () => setTimeout(() => to.destroy(), delayMs));
