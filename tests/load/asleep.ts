@@ -118,9 +118,6 @@ async function session(): Promise<void> {
   for (const page of [first, second]) await page.getByText('You have the controls.').waitFor({ timeout: 20_000 });
   await delay(4000);
   await teacher.getByRole('button', { name: 'Inject now' }).click();
-  await second.keyboard.down('KeyX');
-  await delay(700);
-  await second.keyboard.up('KeyX');
   await shot(teacher, 'board', [LARGE, TABLET]);
   await teacher.keyboard.press('KeyW');
   await shot(teacher, 'wall', [LARGE, [1920, 1080]]);

@@ -127,11 +127,15 @@ describe('a trainee who forges', () => {
     const bad = await enter(badHttp);
     await instructor.control({ deed: 'controls', member: bad.member });
     await until(() => bad.state.run?.controls.at(-1)?.member === bad.member);
+    await play([instructor, viewer], 700);
+    await instructor.delivered();
+    await instructor.follow(instructor.run.attempt ?? '');
+    instructor.flight = null;
     await instructor.control({ deed: 'controls', member: instructor.member });
     await play([instructor, viewer], 600);
-    await instructor.delivered();
     await instructor.takeControls(true);
-    await play([instructor, viewer], 800);
+    instructor.follower = null;
+    await play([instructor, viewer], 1200);
     const heard: string[] = [];
     viewer.socket.on('run:inputs', ({ frame }) => void heard.push(frame));
     const line = instructor.flight?.line;

@@ -59,16 +59,16 @@ afterAll(async () => {
 describe('the deployment of the README', () => {
   it('serves one class through nginx by two processes; each browser keeps its process; one that is killed is passed over', async (context) => {
     if (nginx === undefined || redis === null) return context.skip('nginx or redis-server is not installed');
-    const env = { SIDEWASH_PROXIES: '1' };
+    const port = await anyFreePort('127.0.0.1');
+    const address = `http://127.0.0.1:${port}`;
+    const env = { SIDEWASH_PROXIES: '1', SIDEWASH_ORIGIN: address };
     for (let i = 0; i < 2; i += 1)
       servers.push(await startServerProcess({ databaseUrl: fresh.url, redisUrl: redis.url, env }));
-    const port = await anyFreePort('127.0.0.1');
     const file = path.join(folder, 'nginx.conf');
     const hosts = servers.map(({ address }) => new URL(address).host);
     fs.writeFileSync(file, configuration(port, hosts));
     execFileSync(nginx, ['-t', '-e', `${folder}/start.log`, '-c', file], { stdio: 'pipe' });
     proxy = spawn(nginx, ['-e', `${folder}/start.log`, '-c', file], { stdio: 'ignore' });
-    const address = `http://127.0.0.1:${port}`;
     await expect
       .poll(() =>
         fetch(`${address}/api/session`).then(
