@@ -1,6 +1,6 @@
 import { Router, type Request } from 'express';
 import { z } from 'zod';
-import { saveStudySchema, studyListQuerySchema, type Study } from '#shared/contracts/studies.ts';
+import { createStudySchema, saveStudySchema, studyListQuerySchema, type Study } from '#shared/contracts/studies.ts';
 import { notFound } from '../services/problem-error.ts';
 import type { StudiesService } from '../services/studies/studies.service.ts';
 import { wantedVersion } from '../services/versions.ts';
@@ -20,7 +20,7 @@ export function studiesRouter(studies: StudiesService): Router {
   const router = Router();
 
   router.post('/', async (request, response) => {
-    const study = await studies.create(actorOf(response), parse(saveStudySchema, request.body), callerOf(request));
+    const study = await studies.create(actorOf(response), parse(createStudySchema, request.body), callerOf(request));
     response.status(201).set('etag', tagOf(study)).json(study);
   });
 

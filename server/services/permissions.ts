@@ -40,6 +40,8 @@ const ALLOWED = {
   'record.correct': ['instructor'],
   'record.rule': ['administrator'],
   'people.look-after': ['administrator'],
+  'cohort.edit': ['instructor', 'administrator'],
+  'system.read': ['administrator'],
   'outbox.read': ['administrator'],
   'organisation.edit': ['administrator'],
   'audit.read': ['administrator'],

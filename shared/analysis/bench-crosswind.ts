@@ -68,7 +68,7 @@ function crosswindOf(ready: PreparedSubject, condition: BenchCondition): Crosswi
   const limit = crosswindLimit(aircraft, tasMps, heightM);
   const stallTas = stallTasMps(aircraft, densityAt(heightM));
   const stall = casFromTas(stallTas, heightM) / KT;
-  const speeds = Array.from({ length: 15 }, (_, i) => stallTas * (1.05 + i * 0.1));
+  const speeds = Array.from({ length: 29 }, (_, i) => stallTas * (1.05 + i * 0.05));
   const over = speeds.map((v) => {
     try {
       return crosswindLimit(aircraft, v, heightM);

@@ -1,9 +1,9 @@
-/** Minimum control speed figures: against bank, height, mass and lever, the factor table, climb, and rudder authority. */
+/** Minimum control speed figures: against bank, height, mass, centre of gravity and lever, the factor table, climb, and rudder authority. */
 import { stallTasMps, type Aircraft } from '../model/aircraft.ts';
 import { casFromTas } from '../model/airspeeds.ts';
 import { densityAt } from '../model/atmosphere.ts';
 import { climbRates } from './climb.ts';
-import { controlSpeedCurve, controlSpeedFactors } from './control-speed-factors.ts';
+import { controlSpeedCurve, controlSpeedFactors, controlSpeedOverCg, withKinks } from './control-speed-factors.ts';
 import { criticalEngine } from './critical-engine.ts';
 import { minimumControlSpeed, type ControlSpeed, type NoControlSpeed } from './minimum-control-speed.ts';
 import { rudderAuthority } from './rudder-authority.ts';
@@ -50,6 +50,8 @@ export interface EngineOutOfSubject {
   bank: SpeedCurve;
   height: SpeedCurve;
   mass: SpeedCurve;
+  /** At per cent of the mean chord aft of the present loading. */
+  cg: SpeedCurve;
   lever: SpeedCurve;
   authority: {
     kt: number[];
@@ -68,7 +70,7 @@ export interface EngineOutPicture {
 }
 
 /**
- * Minimum control speed of up to four revisions against bank, height, mass and lever; factors and climb of the first.
+ * Minimum control speed of up to four revisions against bank, height, mass, centre of gravity and lever; factors and climb of the first.
  *
  * @param request  Condition, revisions, failed engines by name (none: the critical one), lever 0 … 1, feathered or windmilling.
  * @returns        What the figures show, in kt and degrees; a revision that cannot be computed is named in `problems`.
@@ -96,7 +98,20 @@ export function engineOutPicture(request: EngineOutRequest): EngineOutPicture {
   return picture;
 }
 
-function failedOf(aircraft: Aircraft, request: EngineOutRequest): number[] {
+/**
+ * The failed engines of a request by index.
+ *
+ * @param aircraft  Prepared aircraft.
+ * @param request   Names of failed engines (none: the critical one), condition, lever and feathering.
+ * @returns         Indices.
+ * @throws {ModelError} bad-argument when the aircraft has no engines.
+ * @sign            none
+ * @source          `criticalEngine`.
+ */
+export function failedOf(
+  aircraft: Aircraft,
+  request: Pick<EngineOutRequest, 'failed' | 'condition' | 'lever' | 'feathered'>,
+): number[] {
   const named = request.failed.map((name) => aircraft.engines.findIndex((e) => e.name === name)).filter((i) => i >= 0);
   return named.length > 0
     ? named
@@ -108,6 +123,9 @@ function failedOf(aircraft: Aircraft, request: EngineOutRequest): number[] {
         }).index,
       ];
 }
+
+/** How far the centre of gravity is moved either way; share of the mean chord (ours). */
+const CG_REACH = 0.1;
 
 const speedKt = (result: ControlSpeed | NoControlSpeed): number | null => (result.found ? result.casMps / KT : null);
 const bindsOf = (result: ControlSpeed | NoControlSpeed): string => (result.found ? result.limitedBy : result.message);
@@ -128,6 +146,7 @@ function engineOutOf(ready: PreparedSubject, request: EngineOutRequest, failed: 
   const level = minimumControlSpeed(aircraft, { ...base, bank: { exactlyRad: 0 } });
   const span = (from: number, to: number, n: number): number[] =>
     Array.from({ length: n }, (_, i) => from + ((to - from) * i) / (n - 1));
+  const overBank = (banks: number[]) => controlSpeedCurve(aircraft, base, 'bank', banks);
   const stall = stallTasMps(aircraft, densityAt(heightM));
   const authority = rudderAuthority(aircraft, heightM, failed, span(0.8 * stall, 3.4 * stall, 41), request.lever);
   return {
@@ -146,9 +165,21 @@ function engineOutOf(ready: PreparedSubject, request: EngineOutRequest, failed: 
     stallKt: stallKt(aircraft, heightM),
     belowStall: best.found && best.belowStall,
     wingsLevelKt: speedKt(level),
-    bank: curve(controlSpeedCurve(aircraft, base, 'bank', span(-6 * DEG, 12 * DEG, 37)), DEG),
+    bank: curve(
+      withKinks(overBank(span(-6 * DEG, 12 * DEG, 37)), (at) => overBank([at])[0]),
+      DEG,
+    ),
     height: curve(controlSpeedCurve(aircraft, base, 'height', span(0, 15000 * FT, 11)), FT),
     mass: curve(controlSpeedCurve(aircraft, base, 'mass', span(0.75 * aircraft.massKg, 1.15 * aircraft.massKg, 9)), 1),
+    cg: curve(
+      controlSpeedOverCg(
+        ready.airframe,
+        { configuration: aircraft.configuration, loading: aircraft.loading },
+        base,
+        span(-CG_REACH, CG_REACH, 9),
+      ),
+      0.01,
+    ),
     lever: curve(controlSpeedCurve(aircraft, base, 'lever', span(0.3, 1, 8)), 0.01),
     authority: {
       kt: authority.map((p) => casFromTas(p.tasMps, heightM) / KT),

@@ -99,10 +99,10 @@ export function controlSpeedFactors(airframe: Airframe, request: FactorRequest):
 
 const AFT = 'centre of gravity aft';
 
-/** The airframe with one more loading: the present one with the centre of gravity further aft. */
-function withCgAft(airframe: Airframe, options: AircraftOptions): Airframe {
+/** The airframe with one loading: the present one with the centre of gravity further aft by a share of the mean chord. */
+function withCgAft(airframe: Airframe, options: AircraftOptions, share: number = FACTOR_SIZES.cgAftOfChord): Airframe {
   const present = airframe.loadings?.find((loading) => loading.name === options.loading);
-  const aft = FACTOR_SIZES.cgAftOfChord * airframe.geometry.meanChord_m;
+  const aft = share * airframe.geometry.meanChord_m;
   const loading = present
     ? { ...present, name: AFT, cgAft_m: present.cgAft_m + aft }
     : { name: AFT, mass_kg: airframe.mass.mass_kg, cgAft_m: aft };
@@ -145,5 +145,61 @@ export function controlSpeedCurve(
       case 'lever':
         return { at, result: minimumControlSpeed(aircraft, { ...request, lever: at }) };
     }
+  });
+}
+
+/**
+ * The static minimum control speed against the centre of gravity, moved from the present loading.
+ *
+ * @param airframe  Parsed airframe.
+ * @param options   Configuration and loading.
+ * @param request   Base request with the failed engines.
+ * @param shares    How far aft, as shares of the mean chord; negative is forward.
+ * @returns         A point per share.
+ * @throws {ModelError} unknown-engine, unknown-configuration, unknown-loading, bad-argument.
+ * @sign            Aft positive.
+ * @source          `minimumControlSpeed` with the model's own shift of the centre of gravity.
+ */
+export function controlSpeedOverCg(
+  airframe: Airframe,
+  options: AircraftOptions,
+  request: ControlSpeedRequest,
+  shares: ArrayLike<number>,
+): ControlSpeedCurvePoint[] {
+  return Array.from(shares, (at) => {
+    const aircraft = prepareAircraft(withCgAft(airframe, options, at), { ...options, loading: AFT });
+    return { at, result: minimumControlSpeed(aircraft, request) };
+  });
+}
+
+/** Halvings with which the place is looked for where another limit begins to bind. */
+const KINK_HALVINGS = 6;
+
+/**
+ * A curve with two more points at each place where the binding limit changes (or where the speed ends), so that its kinks
+ * are drawn as kinks.
+ *
+ * @param points  Points in order.
+ * @param solve   The same function that gave them.
+ * @returns       The points with the added ones, in order; a change is enclosed in 1/64 of its step.
+ * @throws        What `solve` throws.
+ * @sign          none
+ * @source        Derived here: halving.
+ */
+export function withKinks(
+  points: readonly ControlSpeedCurvePoint[],
+  solve: (at: number) => ControlSpeedCurvePoint,
+): ControlSpeedCurvePoint[] {
+  const kind = ({ result }: ControlSpeedCurvePoint): string => (result.found ? result.limitedBy : result.reason);
+  return points.flatMap((point, i) => {
+    const next = points[i + 1] as ControlSpeedCurvePoint | undefined; // past the end
+    if (next === undefined || kind(next) === kind(point)) return [point];
+    let [low, high] = [point, next];
+    for (let k = 0; k < KINK_HALVINGS; k++) {
+      const middle = solve(0.5 * (low.at + high.at));
+      if (kind(middle) === kind(low)) low = middle;
+      else high = middle;
+    }
+    return [point, ...(low === point ? [] : [low]), ...(high === next ? [] : [high])];
   });
 }

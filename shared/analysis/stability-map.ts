@@ -95,7 +95,7 @@ export function stabilityMap(
   const a = new Float64Array(16);
   const row = new Float64Array(16);
   const roots = new Float64Array(8);
-  const judge = createJudge(klass, category);
+  const judge = createCellJudge(klass, category);
   for (let j = 0; j < rows; j++) {
     for (let k = 0; k < 16; k++) row[k] = base[k] + ys[j] * alongY[k];
     for (let i = 0; i < columns; i++) {
@@ -108,11 +108,25 @@ export function stabilityMap(
   return map;
 }
 
-/** Names the roots of one cell and writes its fields; the limits are looked up once. */
-function createJudge(
-  klass: AircraftClass,
-  category: FlightCategory,
-): (map: StabilityMap, cell: number, a: Float64Array, roots: Float64Array) => void {
+/** Writes the fields of one cell from its matrix and roots. */
+export type CellJudge = (
+  map: Omit<StabilityMap, 'xs' | 'ys'>,
+  cell: number,
+  a: Float64Array,
+  roots: Float64Array,
+) => void;
+
+/**
+ * Names the roots of one cell and writes its fields; the limits are looked up once.
+ *
+ * @param klass     Class.
+ * @param category  Flight phase category.
+ * @returns         The function that judges a cell; its matrix 4×4 row-major, its roots as \`eigenvalues4Into\` gives them.
+ * @throws          Nothing.
+ * @sign            none
+ * @source          MIL-F-8785C, tables VI–VIII; \`lateralModes\`.
+ */
+export function createCellJudge(klass: AircraftClass, category: FlightCategory): CellJudge {
   const dutch = dutchRollMinima(klass, category);
   const rollLimits = rollModeMaxima(klass, category);
   const spiralLimits = spiralMinima(category);

@@ -28,6 +28,9 @@ export const saveStudySchema = z.strictObject({
   state: studyStateSchema,
 });
 export type SaveStudy = z.input<typeof saveStudySchema>;
+/** A new study. `id` puts one that was removed back at its address. */
+export const createStudySchema = saveStudySchema.extend({ id: z.uuid().optional() });
+export type CreateStudy = z.input<typeof createStudySchema>;
 
 export const studyListQuerySchema = z.strictObject({
   ...pageQueryShape,
@@ -68,9 +71,14 @@ export const studySchema = studySummarySchema.extend({
 });
 export type Study = z.infer<typeof studySchema>;
 
-/** A printed report of a saved study, or of a state that was not saved. The answer is a PDF file. */
+/**
+ * A printed report of a saved study, or of a state that was not saved, in the units of whoever prints it.
+ * The answer is a PDF file.
+ */
+const reportUnits = z.enum(['aviation', 'si']).default('aviation');
 export const analysisReportSchema = z.union([
-  z.strictObject({ study: z.uuid() }),
-  z.strictObject({ state: studyStateSchema }),
+  z.strictObject({ study: z.uuid(), units: reportUnits }),
+  z.strictObject({ state: studyStateSchema, units: reportUnits }),
 ]);
-export type AnalysisReportRequest = z.infer<typeof analysisReportSchema>;
+export type AnalysisReportRequest = z.output<typeof analysisReportSchema>;
+export type AnalysisReportBody = z.input<typeof analysisReportSchema>;

@@ -19,6 +19,7 @@ export type Dimension =
   | 'power'
   | 'pressure'
   | 'density'
+  | 'per-angle'
   | 'ratio';
 
 interface DimensionUnits {
@@ -61,6 +62,20 @@ export const DIMENSIONS: Readonly<Record<Dimension, DimensionUnits>> = {
     units: { 'kg/m³': 1, kgm3: 1, 'slug/ft³': SLUG / (FT * FT * FT) },
     aviation: 'kg/m³',
     si: 'kg/m³',
+    digits: 4,
+  },
+  'per-angle': {
+    units: {
+      '/rad': 1,
+      'per rad': 1,
+      '1/rad': 1,
+      '/deg': 1 / DEG,
+      'per deg': 1 / DEG,
+      '1/deg': 1 / DEG,
+      '/°': 1 / DEG,
+    },
+    aviation: '/rad',
+    si: '/rad',
     digits: 4,
   },
   ratio: { units: { '': 1, '%': 0.01 }, aviation: '', si: '', digits: 3 },

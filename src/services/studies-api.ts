@@ -2,7 +2,8 @@ import type { Page } from '#shared/contracts/paging.ts';
 import {
   studyPageSchema,
   studySchema,
-  type AnalysisReportRequest,
+  type AnalysisReportBody,
+  type CreateStudy,
   type SaveStudy,
   type Study,
   type StudyListQuery,
@@ -17,7 +18,7 @@ export const listStudies = (query: Partial<StudyListQuery>, signal?: AbortSignal
 
 export const getStudy = (id: string, signal?: AbortSignal): Promise<Study> => api.get(at(id), studySchema, { signal });
 
-export const createStudy = (body: SaveStudy): Promise<Study> => api.post('/api/studies', body, studySchema);
+export const createStudy = (body: CreateStudy): Promise<Study> => api.post('/api/studies', body, studySchema);
 
 /** Refused when somebody else saved the study since `version` was read. */
 export const saveStudy = (id: string, version: string, body: SaveStudy): Promise<Study> =>
@@ -26,5 +27,5 @@ export const saveStudy = (id: string, version: string, body: SaveStudy): Promise
 export const deleteStudy = (id: string): Promise<void> => api.delete(at(id));
 
 /** The printed report of a saved or an unsaved state. */
-export const printAnalysis = (body: AnalysisReportRequest, signal?: AbortSignal): Promise<NamedFile> =>
+export const printAnalysis = (body: AnalysisReportBody, signal?: AbortSignal): Promise<NamedFile> =>
   api.postForFile('/api/reports/analysis', body, { signal });

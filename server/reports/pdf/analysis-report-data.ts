@@ -6,6 +6,8 @@ import type { SPlaneBoundary } from '#shared/analysis/s-plane-regions.ts';
 export interface ReportHead {
   number: string;
   organisation: string;
+  /** Words of the organisation below the fixed caution. */
+  caution: string;
   /** Time of printing in words. */
   printed: string;
   programVersion: string;
@@ -32,13 +34,13 @@ export interface ReportDerivative {
 
 export interface ReportLimit {
   name: string;
-  kt: number | null;
+  speed: number | null;
   binds: string;
   sideslipDeg: number | null;
   aileronDeg: number | null;
   rudderDeg: number | null;
   /** Twice the standard deviation over seeded draws; null without stated uncertainties. */
-  twoSigmaKt: number | null;
+  twoSigma: number | null;
 }
 
 export interface ReportInput {
@@ -49,6 +51,8 @@ export interface ReportInput {
 }
 
 export interface AnalysisReport {
+  /** Of every speed in the report, calibrated unless it says otherwise: kt or m/s. */
+  speedUnit: string;
   head: ReportHead;
   facts: { label: string; value: string }[];
   /** Derivatives moved for the study, in words; empty when the revision's own data is shown. */
@@ -60,16 +64,16 @@ export interface AnalysisReport {
     boundaries: SPlaneBoundary[];
     top: number;
     roots: { re: number; im: number }[];
-    /** Oscillatory roots over speed; kt. */
-    locus: { kt: number; re: number; im: number }[];
+    /** Oscillatory roots over speed. */
+    locus: { speed: number; re: number; im: number }[];
   };
   controlSpeed: {
     /** Why there is none; null when drawn. */
     reason: string | null;
     failed: string;
     bankDeg: number[];
-    kt: (number | null)[];
-    stallKt: number;
+    speed: (number | null)[];
+    stall: number;
   };
   criteria: CriterionResult[];
   modes: Mode[];

@@ -26,11 +26,11 @@ export function drawRoots(
   }));
   const lines = ['solid', 'dashed', 'dotted'] as const;
   const outside = figure.roots.filter((root) => root.im === 0 && root.re < leftmost);
-  const marks: SheetPoint[] = everyFew(figure.locus).map(({ kt, re, im }) => ({
+  const marks: SheetPoint[] = everyFew(figure.locus).map(({ speed, re, im }) => ({
     x: re,
     y: im,
     radius: 1.9,
-    text: String(Math.round(kt)),
+    text: String(Math.round(speed)),
     side: 'left',
   }));
   drawPlot(
@@ -113,7 +113,7 @@ export function drawControlSpeed(
   width: number,
   height: number,
 ): void {
-  const known = figure.kt.filter((kt): kt is number => kt !== null && Number.isFinite(kt));
+  const known = figure.speed.filter((v): v is number => v !== null && Number.isFinite(v));
   if (figure.reason !== null || known.length === 0) {
     const words = figure.reason ?? 'There is none in the range of speeds looked at.';
     sheet.text.wrap(words, width - 20, { size: 8.5 }).forEach((line, i) => {
@@ -121,12 +121,12 @@ export function drawControlSpeed(
     });
     return;
   }
-  const low = Math.min(...known, figure.stallKt);
-  const high = Math.max(...known, figure.stallKt);
+  const low = Math.min(...known, figure.stall);
+  const high = Math.max(...known, figure.stall);
   const room = Math.max(4, (high - low) * 0.15);
   const yRange = [Math.floor((low - room) / 5) * 5, Math.ceil((high + room) / 5) * 5] as const;
-  const last = figure.kt.length - 1;
-  const speed = (i: number): number => figure.kt[i] ?? Number.NaN;
+  const last = figure.speed.length - 1;
+  const speed = (i: number): number => figure.speed[i] ?? Number.NaN;
   const ends: SheetPoint[] = [
     { x: figure.bankDeg[0], y: speed(0), shape: 'ring', text: `${speed(0).toFixed(1)} wings level` },
     {
@@ -148,8 +148,8 @@ export function drawControlSpeed(
       yTicks: roundTicks(yRange, 6),
       xText: (deg) => `${deg}°`,
       yText: tick,
-      series: [{ x: figure.bankDeg, y: figure.kt, forbid: 'below', weight: 1.8 }],
-      levels: [{ y: figure.stallKt, text: `stall ${figure.stallKt.toFixed(0)}, power off` }],
+      series: [{ x: figure.bankDeg, y: figure.speed, forbid: 'below', weight: 1.8 }],
+      levels: [{ y: figure.stall, text: `stall ${figure.stall.toFixed(0)}, power off` }],
       points: ends.filter(({ y }) => Number.isFinite(y)),
       xName: 'bank toward the live engine',
     },

@@ -46,6 +46,7 @@ export async function analysisReportPdf(report: AnalysisReport): Promise<Buffer>
     subtitle: head.provenance,
     trace: `${head.slug} r${head.revision} · digest ${short} · program ${head.programVersion}`,
     printed: head.printed,
+    caution: head.caution,
   });
   sheet.boxes(report.facts.map((fact) => ({ ...fact })));
   if (report.moved !== '') sheet.paragraph(report.moved, { face: 'bold', size: 8.5 });
@@ -93,8 +94,8 @@ function figures(sheet: Sheet, report: AnalysisReport): void {
   sheet.need(PLOT_HEIGHT + 44);
   sheet.rule(0.75);
   sheet.y += 5;
-  sheet.sectionHead(2, 'Roots in the s-plane', sheet.left, half, '1/s; dots: kt');
-  sheet.sectionHead(3, 'Minimum control speed, kt', sheet.left + half + 14, half, aside(report));
+  sheet.sectionHead(2, 'Roots in the s-plane', sheet.left, half, `1/s; dots: ${report.speedUnit}`);
+  sheet.sectionHead(3, `Minimum control speed, ${report.speedUnit}`, sheet.left + half + 14, half, aside(report));
   sheet.y += 19;
   drawRoots(sheet, report.sPlane, sheet.left, half, PLOT_HEIGHT);
   drawControlSpeed(sheet, report.controlSpeed, sheet.left + half + 14, half, PLOT_HEIGHT);
@@ -165,12 +166,12 @@ function limits(sheet: Sheet, report: AnalysisReport): void {
   sheet.section(5, 'Limits', note, 60);
   const row = (limit: ReportLimit): SheetCell[] => [
     limit.name,
-    limit.kt === null ? '-' : `${limit.kt.toFixed(1)} kt`,
+    limit.speed === null ? '-' : `${limit.speed.toFixed(1)} ${report.speedUnit}`,
     limit.binds,
     limit.sideslipDeg === null ? '-' : `${fixed(limit.sideslipDeg, 1)}°`,
     limit.aileronDeg === null ? '-' : `${fixed(limit.aileronDeg, 1)}°`,
     limit.rudderDeg === null ? '-' : `${fixed(limit.rudderDeg, 1)}°`,
-    limit.twoSigmaKt === null ? '-' : `±${limit.twoSigmaKt.toFixed(1)} kt`,
+    limit.twoSigma === null ? '-' : `±${limit.twoSigma.toFixed(1)} ${report.speedUnit}`,
   ];
   sheet.table(
     [
@@ -212,7 +213,7 @@ function modes(sheet: Sheet, report: AnalysisReport): void {
 }
 
 function compared(sheet: Sheet, report: AnalysisReport, number: number): void {
-  sheet.section(number, 'Compared revisions', 'each at the condition of the first; speeds in kt', 60);
+  sheet.section(number, 'Compared revisions', `each at the condition of the first; speeds in ${report.speedUnit}`, 60);
   const heads = ['Dutch ζ', 'ω, rad/s', 'Roll τ, s', 'Level', 'Vmca 0°', 'Vmca best', 'Crosswind'];
   sheet.table(
     [

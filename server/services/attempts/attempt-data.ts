@@ -9,11 +9,13 @@ export function storedScenario(document: unknown): Scenario {
   return parsed.scenario;
 }
 
-/** The same as a reader may see it: the talking point stays with those who teach. */
-export function scenarioFor(actor: Actor, document: unknown): Scenario {
-  const scenario = storedScenario(document);
+/** A scenario as this reader may see it: the talking point stays with those who teach. */
+export function readableBy(actor: Actor, scenario: Scenario): Scenario {
   return may(actor, 'scenario.export') ? scenario : { ...scenario, talkingPoint: '' };
 }
+
+/** The scenario of a stored document as this reader may see it. */
+export const scenarioFor = (actor: Actor, document: unknown): Scenario => readableBy(actor, storedScenario(document));
 
 /** The airframe of a stored document. */
 export function storedAirframe(document: unknown): Airframe {

@@ -61,6 +61,7 @@ export function createAnalysisReports(setup: { database: Database; threads: Work
       head: {
         number,
         organisation: profile?.organisation.name ?? '',
+        caution: profile?.organisation.settings.caution ?? '',
         printed: `${dateText.format(at)}, ${timeText.format(at)} UTC`,
         programVersion: PROGRAM_VERSION,
         study: study?.name ?? '',
@@ -72,6 +73,7 @@ export function createAnalysisReports(setup: { database: Database; threads: Work
         digest,
       },
       state,
+      units: request.units,
       subjects: pinned.map((p) => ({
         label: p.slug === slug ? `Revision ${p.revision.revision}` : `${p.revision.name}, ${p.revision.revision}`,
         document: p.revision.document,

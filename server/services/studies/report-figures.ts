@@ -14,12 +14,15 @@ import { stallTasMps } from '#shared/model/aircraft.ts';
 import { densityAt } from '#shared/model/atmosphere.ts';
 import { casFromTas } from '#shared/model/airspeeds.ts';
 import { ModelError } from '#shared/model/errors.ts';
+import { letterOf, sourceLetters, type SourceLetter } from '#shared/model/source-letters.ts';
 import { valueSource } from '#shared/model/value-source.ts';
-import { DEG, KT } from '#shared/units/constants.ts';
+import { DEG, FT, KT } from '#shared/units/constants.ts';
+import { formatQuantity, inUnit, unitOf, type UnitPreference } from '#shared/units/quantity.ts';
 import type { AnalysisReport, ReportLimit } from '../../reports/pdf/analysis-report-data.ts';
 import { storedAirframe } from '../attempts/attempt-data.ts';
 import { analysisSubject, type AnalysisSubject } from './analysis-subject.ts';
-import { grouped, letterOf, reportInputs, sourceLetters, type SourceLetter } from './report-inputs.ts';
+import { FULL_BANK, reportCautions, speedWords } from './report-cautions.ts';
+import { grouped, reportInputs } from './report-inputs.ts';
 import type { ReportJob } from './report-job.ts';
 import { limitSpreads, SPREAD_DRAWS, type ControlCase } from './report-spreads.ts';
 
@@ -29,15 +32,8 @@ export class ReportRefusal extends Error {
 }
 
 const BANKS = Array.from({ length: 21 }, (_, i) => i / 4);
-const FULL_BANK = 5;
-const SWEEP = 13;
-/** Further outside the rows of the data than this in CL deserves a word. */
-const ROW_REACH = 0.1;
 
-const CAUTIONS = [
-  'Linear derivatives, quasi-steady; spins and flight past the stall are not modelled. Minimum control speed here is static: straight flight that can just be held, with no allowance for the time to recognise a failure.',
-  'Criteria are a published military specification and two civil paragraphs, used for comparison and not as a certification basis. Values carry the uncertainty of their sources; ±2σ of limits follows from independent normal draws of every uncertain value.',
-];
+const SWEEP = 13;
 
 /** Everything an analysis report prints, computed from the documents. @throws {ReportRefusal} */
 export function reportFigures(job: ReportJob): AnalysisReport {
@@ -58,23 +54,28 @@ export function reportFigures(job: ReportJob): AnalysisReport {
   });
   const letters = sourceLetters(airframe);
   const control = controlCase(lead, subject);
-  const limits = reportLimits(lead, subject, control);
+  const { units } = job;
+  const limits = reportLimits(lead, subject, control, units);
   return {
     head: job.head,
-    facts: facts(lead, subject),
+    speedUnit: unitOf('speed', units),
+    facts: facts(lead, subject, units),
     moved: movedWords(condition.shifts),
     derivatives: reportDerivatives(lead, letters),
     sources: letters,
     inertias: inertiaWords(airframe),
-    sPlane: sPlane(picture, condition.heightM),
-    controlSpeed: controlSpeed(lead, subject, control),
+    sPlane: sPlane(picture, condition.heightM, units),
+    controlSpeed: controlSpeed(lead, subject, control, units),
     criteria: picture.subjects[0]?.criteria ?? [],
     modes: picture.subjects[0]?.found.modes ?? [],
     limits: limits.rows,
     draws: limits.draws,
-    compared: comparedRows(picture, subjects, subject),
+    compared: comparedRows(picture, subjects, subject, units),
     inputs: reportInputs(airframe, lead.aircraft.configuration, letters),
-    cautions: [...CAUTIONS, ...edgeWords(lead, subject), ...picture.problems.map((words) => `Left out: ${words}.`)],
+    cautions: [
+      ...reportCautions(lead, subject, control, units),
+      ...picture.problems.map((words) => `Left out: ${words}.`),
+    ],
     answers: job.answers.map(({ field, message, answer }) => ({ field, message, answer })),
   };
 }
@@ -101,33 +102,23 @@ function controlCase({ aircraft }: PreparedSubject, subject: AnalysisSubject): C
   return { heightM: condition.heightM, failed, lever, feathered };
 }
 
-function facts({ aircraft, system, klass, category }: PreparedSubject, subject: AnalysisSubject) {
+function facts(
+  { aircraft, system, klass, category }: PreparedSubject,
+  subject: AnalysisSubject,
+  units: UnitPreference,
+) {
   const loading = aircraft.loading ?? 'as data';
   return [
     { label: 'Configuration', value: aircraft.configuration },
-    { label: 'Speed, height', value: `${Math.round(subject.casKt)} kt, ${Math.round(subject.heightFt)} ft` },
+    {
+      label: 'Speed, height',
+      value: `${speedWords(subject.casKt, units)}, ${formatQuantity(subject.heightFt * FT, 'height', units)}`,
+    },
     { label: 'Mass', value: `${grouped(Math.round(aircraft.massKg))} kg` },
     { label: 'Loading', value: loading },
     { label: 'Lift coefficient', value: system.CL.toFixed(2) },
     { label: 'Class, category', value: `${klass}, ${category}${subject.condition.yawDamper ? ', damper on' : ''}` },
   ];
-}
-
-/** Where the condition leaves what the data covers. */
-function edgeWords({ airframe, aircraft, system }: PreparedSubject, { casKt, condition }: AnalysisSubject): string[] {
-  const out: string[] = [];
-  const stall = stallKt(aircraft, condition.heightM);
-  if (casKt < stall)
-    out.push(
-      `The speed of ${Math.round(casKt)} kt lies below the 1 g stall at ${Math.round(stall)} kt, where this data does not hold.`,
-    );
-  const rows = airframe.configurations.find(({ name }) => name === aircraft.configuration)?.derivatives ?? [];
-  const [low, high] = [Math.min(...rows.map(({ CL }) => CL)), Math.max(...rows.map(({ CL }) => CL))];
-  if (system.CL < low - ROW_REACH || system.CL > high + ROW_REACH)
-    out.push(
-      `The lift coefficient ${system.CL.toFixed(2)} lies outside the rows of the data (${low} to ${high}); the nearest row is held.`,
-    );
-  return out;
 }
 
 function movedWords(shifts: AnalysisSubject['condition']['shifts']): string {
@@ -157,13 +148,13 @@ function inertiaWords({ mass }: Airframe): string {
   return `Ixx ${grouped(mass.Ixx_kgm2)}, Izz ${grouped(mass.Izz_kgm2)}, Ixz ${grouped(mass.Ixz_kgm2)} kg·m², ${mass.axes} axes`;
 }
 
-function sPlane(picture: ModesPicture, heightM: number): AnalysisReport['sPlane'] {
-  const kt = (tasMps: number): number => casFromTas(tasMps, heightM) / KT;
+function sPlane(picture: ModesPicture, heightM: number, units: UnitPreference): AnalysisReport['sPlane'] {
+  const speed = (tasMps: number): number => inUnit(casFromTas(tasMps, heightM), 'speed', units);
   const locus = picture.locus.flatMap(({ value, roots }) =>
     roots
       .filter((root) => root.im > 0)
       .slice(0, 1)
-      .map((root) => ({ kt: kt(value), ...root })),
+      .map((root) => ({ speed: speed(value), ...root })),
   );
   const roots = picture.subjects[0]?.found.modes.map(({ re, im }) => ({ re, im })) ?? [];
   return { boundaries: picture.boundaries, top: picture.top, roots, locus };
@@ -173,10 +164,11 @@ function controlSpeed(
   lead: PreparedSubject,
   subject: AnalysisSubject,
   control: ControlCase | null,
+  units: UnitPreference,
 ): AnalysisReport['controlSpeed'] {
-  const stall = stallKt(lead.aircraft, subject.condition.heightM);
+  const stall = inUnit(stallKt(lead.aircraft, subject.condition.heightM) * KT, 'speed', units);
   if (control === null)
-    return { reason: 'The data has no engines, so none can fail.', failed: '', bankDeg: [], kt: [], stallKt: stall };
+    return { reason: 'The data has no engines, so none can fail.', failed: '', bankDeg: [], speed: [], stall };
   const failed = control.failed.map((i) => lead.aircraft.engines[i].name).join(', ');
   const speeds = BANKS.map((deg) =>
     minimumControlSpeed(lead.aircraft, { ...control, bank: { exactlyRad: deg * DEG } }),
@@ -187,13 +179,19 @@ function controlSpeed(
     reason: none && !first.found ? `None: ${first.message}.` : null,
     failed,
     bankDeg: BANKS,
-    kt: speeds.map((speed) => (speed.found ? speed.casMps / KT : null)),
-    stallKt: stall,
+    speed: speeds.map((speed) => (speed.found ? inUnit(speed.casMps, 'speed', units) : null)),
+    stall,
   };
 }
 
-function reportLimits(lead: PreparedSubject, subject: AnalysisSubject, control: ControlCase | null) {
+function reportLimits(
+  lead: PreparedSubject,
+  subject: AnalysisSubject,
+  control: ControlCase | null,
+  units: UnitPreference,
+) {
   const { condition } = subject;
+  const shown = (kt: number | null): number | null => (kt === null ? null : inUnit(kt * KT, 'speed', units));
   const spreads = limitSpreads(lead.airframe, condition, control);
   const rows: ReportLimit[] = [];
   if (control !== null) {
@@ -202,12 +200,12 @@ function reportLimits(lead: PreparedSubject, subject: AnalysisSubject, control: 
       const toward = deg === 0 ? 'wings level' : `bank ${deg}° live`;
       rows.push({
         name: `Vmca, ${toward}`,
-        kt: speed.found ? speed.casMps / KT : null,
+        speed: speed.found ? inUnit(speed.casMps, 'speed', units) : null,
         binds: speed.found ? speed.limitedBy : speed.message,
         sideslipDeg: speed.found ? speed.betaRad / DEG : null,
         aileronDeg: speed.found ? speed.aileronRad / DEG : null,
         rudderDeg: speed.found ? speed.rudderRad / DEG : null,
-        twoSigmaKt: deg === 0 ? spreads.level : spreads.banked,
+        twoSigma: shown(deg === 0 ? spreads.level : spreads.banked),
       });
     }
   }
@@ -215,24 +213,33 @@ function reportLimits(lead: PreparedSubject, subject: AnalysisSubject, control: 
     .subjects[0];
   if (wind !== undefined) {
     rows.push({
-      name: `Crosswind at ${Math.round(subject.casKt)} kt`,
-      kt: wind.withinDataKt,
+      name: `Crosswind at ${speedWords(subject.casKt, units)}`,
+      speed: shown(wind.withinDataKt),
       binds: wind.outside ? 'end of the data, 15°' : wind.binds,
       sideslipDeg: wind.at.betaDeg,
       aileronDeg: wind.at.aileronDeg,
       rudderDeg: wind.at.rudderDeg,
-      twoSigmaKt: wind.outside ? null : spreads.crosswind,
+      twoSigma: wind.outside ? null : shown(spreads.crosswind),
     });
   }
   return { rows, draws: spreads.fields > 0 ? SPREAD_DRAWS : 0 };
 }
 
-function comparedRows(picture: ModesPicture, subjects: readonly BenchSubject[], subject: AnalysisSubject) {
+function comparedRows(
+  picture: ModesPicture,
+  subjects: readonly BenchSubject[],
+  subject: AnalysisSubject,
+  units: UnitPreference,
+) {
   if (subjects.length < 2) return [];
   const { condition } = subject;
   const winds = crosswindPicture({ kind: 'crosswind', condition, subjects }).subjects;
   const text = (value: number | null | undefined, digits: number): string =>
     value === null || value === undefined || !Number.isFinite(value) ? '-' : value.toFixed(digits);
+  const windOf = (label: string): number | null => {
+    const kt = winds.find((one) => one.label === label)?.withinDataKt;
+    return kt === undefined ? null : inUnit(kt * KT, 'speed', units);
+  };
   return picture.subjects.map((of) => {
     const dutch = of.found.modes.find(({ kind }) => kind === 'dutch-roll');
     const roll = of.found.modes.find(({ kind }) => kind === 'roll');
@@ -241,7 +248,7 @@ function comparedRows(picture: ModesPicture, subjects: readonly BenchSubject[], 
     const control = controlCase(ready, subject);
     const at = (bank: { exactlyRad: number } | { upToRad: number }): number | null => {
       const speed = control === null ? null : minimumControlSpeed(ready.aircraft, { ...control, bank });
-      return speed?.found ? speed.casMps / KT : null;
+      return speed?.found ? inUnit(speed.casMps, 'speed', units) : null;
     };
     return {
       label: of.label,
@@ -252,7 +259,7 @@ function comparedRows(picture: ModesPicture, subjects: readonly BenchSubject[], 
         of.level === 4 ? 'below 3' : String(of.level),
         text(at({ exactlyRad: 0 }), 1),
         text(at({ upToRad: FULL_BANK * DEG }), 1),
-        text(winds.find(({ label }) => label === of.label)?.withinDataKt, 1),
+        text(windOf(of.label), 1),
       ],
     };
   });

@@ -1,23 +1,9 @@
 import { uncertainFields } from '#shared/analysis/airframe-sampling.ts';
 import type { Airframe } from '#shared/model/airframe-schema.ts';
 import { documentToTable, type TableCell } from '#shared/model/airframe-table.ts';
+import { letterOf, type SourceLetter } from '#shared/model/source-letters.ts';
 import { valueSource } from '#shared/model/value-source.ts';
 import type { ReportInput } from '../../reports/pdf/analysis-report-data.ts';
-
-export interface SourceLetter {
-  letter: string;
-  text: string;
-}
-
-/** A letter for each text of a source, in the order of the file. */
-export function sourceLetters(airframe: Airframe): SourceLetter[] {
-  const texts = [...new Set((airframe.sources ?? []).map(({ text }) => text))];
-  return texts.map((text, i) => ({ letter: letterAt(i), text }));
-}
-const letterAt = (i: number): string =>
-  (i < 26 ? '' : letterAt(Math.floor(i / 26) - 1)) + String.fromCharCode(65 + (i % 26));
-export const letterOf = (letters: readonly SourceLetter[], text: string | null): string =>
-  letters.find((source) => source.text === text)?.letter ?? '';
 
 /** Members shown as inputs: all but sources, texts, and the configurations that the report is not about. */
 export function reportInputs(

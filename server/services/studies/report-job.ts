@@ -7,6 +7,7 @@ export const reportJobSchema = z.object({
   head: z.object({
     number: z.string(),
     organisation: z.string(),
+    caution: z.string(),
     printed: z.string(),
     programVersion: z.string(),
     study: z.string(),
@@ -18,6 +19,7 @@ export const reportJobSchema = z.object({
     digest: z.string(),
   }),
   state: studyStateSchema,
+  units: z.enum(['aviation', 'si']),
   /** The revision looked at, then those compared with it. */
   subjects: z.array(z.object({ label: z.string(), document: z.unknown() })).min(1),
   answers: z.array(releaseAnswerSchema),

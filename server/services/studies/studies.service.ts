@@ -1,7 +1,14 @@
 import { randomUUID } from 'node:crypto';
 import type { z } from 'zod';
 import type { Page } from '#shared/contracts/paging.ts';
-import type { saveStudySchema, Study, StudyListQuery, StudySummary } from '#shared/contracts/studies.ts';
+import type {
+  createStudySchema,
+  saveStudySchema,
+  Study,
+  StudyListQuery,
+  StudySummary,
+} from '#shared/contracts/studies.ts';
+import { isDuplicateKey } from '../../data/duplicate-key.ts';
 import type { Database, Repositories } from '../../data/database.ts';
 import type { StudyRecord } from '../../data/repositories/studies.repository.ts';
 import { may, requireDeed, type Actor } from '../permissions.ts';
@@ -11,6 +18,7 @@ import { inWords, versionText } from '../versions.ts';
 import { pinnedRevisions } from './pinned-revisions.ts';
 
 type StudyBody = z.output<typeof saveStudySchema>;
+type NewStudyBody = z.output<typeof createStudySchema>;
 
 function summaryOf(record: StudyRecord): StudySummary {
   return {
@@ -70,17 +78,22 @@ export function createStudiesService({ database, now }: { database: Database; no
       return studyOf(actor, await found(database, actor, id));
     },
 
-    async create(actor: Actor, body: StudyBody, caller: Caller): Promise<Study> {
+    /** With the id of a removed study it stands at its old address again. */
+    async create(actor: Actor, { id: wanted, ...body }: NewStudyBody, caller: Caller): Promise<Study> {
       requireDeed(actor, 'study.edit');
       const at = now();
-      const id = randomUUID();
-      return database.transaction(async (on) => {
+      const id = wanted ?? randomUUID();
+      const work = database.transaction(async (on) => {
         const { pinned, state } = await pinnedRevisions(on, actor, body.state);
         const { organisationId, personId } = actor;
         const revisionIds = pinned.map(({ revision }) => revision.id);
         await on.studies.insert({ id, organisationId, ...body, state, revisionIds }, personId, at);
-        await on.audit.append(entry(actor, caller, at, 'created', id, { name: body.name }));
+        await on.audit.append(entry(actor, caller, at, wanted ? 'restored' : 'created', id, { name: body.name }));
         return studyOf(actor, await found(on, actor, id));
+      });
+      return work.catch((error: unknown) => {
+        if (isDuplicateKey(error)) throw new ProblemError('conflict', 'This study is there already.');
+        throw error;
       });
     },
 

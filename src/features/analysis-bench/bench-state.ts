@@ -58,7 +58,7 @@ export const benchStateSchema = z.object({
   shape: z.enum(['step', 'pulse', 'doublet', 'one-minus-cosine']).catch('doublet').default('doublet'),
   amplitude: number(-60, 60).catch(5).default(5),
   lasts: number(0.05, 30).catch(1).default(1),
-  bode: z.enum(['rudder', 'aileron']).catch('rudder').default('rudder'),
+  bode: z.enum(['rudder', 'aileron', 'side-gust', 'yaw-gust', 'roll-gust']).catch('rudder').default('rudder'),
   output: z.enum(['beta', 'p', 'r', 'phi']).catch('beta').default('beta'),
   failed: z.string().max(400).default(''),
   lever: number(0, 1).catch(1).default(1),

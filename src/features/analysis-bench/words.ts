@@ -2,6 +2,8 @@
 import type { Mode } from '#shared/analysis/modes.ts';
 import type { CriterionResult } from '#shared/analysis/criteria-8785c.ts';
 import type { DerivativeKey } from '../../runner/workers/analysis/bench-condition.ts';
+import { KT } from '#shared/units/constants.ts';
+import { inUnit, type UnitPreference } from '#shared/units/quantity.ts';
 
 export const MODE_NAMES: Readonly<Record<Mode['kind'], string>> = {
   'dutch-roll': 'Dutch roll',
@@ -60,3 +62,15 @@ export function sided(deg: number | null, digits = 1): string {
   if (Number(size) === 0) return '0°';
   return `${size}° ${deg > 0 ? 'right' : 'left'}`;
 }
+
+export type SourcesOfDerivatives = Partial<Record<DerivativeKey, { text: string; pct: number | null; letter: string }>>;
+
+/** A speed in kt as the number to show, in the unit that is preferred. */
+export function shownSpeed(kt: number, units: UnitPreference): number;
+export function shownSpeed(kt: number | null, units: UnitPreference): number | null;
+export function shownSpeed(kt: number | null, units: UnitPreference): number | null {
+  return kt === null ? null : inUnit(kt * KT, 'speed', units);
+}
+/** The same of a list. */
+export const shownSpeeds = (kt: readonly (number | null)[], units: UnitPreference): (number | null)[] =>
+  kt.map((one) => shownSpeed(one, units));

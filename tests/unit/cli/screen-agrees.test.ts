@@ -2,7 +2,13 @@
 import { readdirSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { parseScenario } from '#shared/scenario/scenario-schema.ts';
-import { previewBudget, previewRuns, type PreviewRun } from '../../../src/runner/workers/scenario-preview.ts';
+import {
+  boundCriteria,
+  createBudgetEvaluator,
+  criterionBudgets,
+  reactionBudget,
+} from '#shared/scenario/reaction-budget.ts';
+import { previewParts, type PreviewQuestion, type PreviewRun } from '../../../src/runner/workers/scenario-preview.ts';
 import { airframeOf, jsonOf } from '../scenario/support/build-scenario.ts';
 import { sidewashJson } from './run-command.ts';
 
@@ -17,6 +23,16 @@ function questionOf(file: string, delayS: number) {
   if (!parsed.ok) throw new Error(JSON.stringify(parsed.issues));
   const { scenario } = parsed;
   return { id: 1, scenario, airframe: airframeOf(scenario.airframe.slug), delayS };
+}
+function previewRuns(question: PreviewQuestion) {
+  for (const part of previewParts(question)) if (part?.part === 'runs') return part;
+  throw new Error('the preview gave no runs');
+}
+/** What the editor's workers find between them; that they find it together is tested beside them. */
+function previewBudget({ scenario, airframe }: PreviewQuestion) {
+  const spec = { scenario, airframe, seed: scenario.seed };
+  const ids = boundCriteria(scenario).map(({ id }) => id);
+  return { budget: reactionBudget(spec), criteria: criterionBudgets(createBudgetEvaluator(spec), ids) };
 }
 /** The members of a result that the command line prints. */
 const asPrinted = ({ run, results }: PreviewRun) => ({

@@ -39,7 +39,7 @@ function flown(
   return fly(run, toS * TICKS, input);
 }
 const engineOf = (slug: Slug): string => FLEET[slug].engines[0];
-const failureOn = (slug: Slug): Event => ({
+const failureOn = (slug: Slug): Extract<Event, { kind: 'engine-failure' }> => ({
   id: 'cut',
   lane: 'engines',
   at: AT,

@@ -17,24 +17,42 @@ const COPIED = [
   'paint-order',
 ] as const;
 
-/** A copy of the SVG with computed styles written out and the shared textures inside it. */
-export function standaloneSvg(svg: SVGSVGElement, background: string): string {
-  const copy = svg.cloneNode(true) as SVGSVGElement; // cloneNode keeps the element's class
-  const sources = svg.querySelectorAll('*');
-  const targets = copy.querySelectorAll('*');
-  sources.forEach((source, i) => {
-    const style = getComputedStyle(source);
-    const target = targets[i];
-    if (!target) return;
-    for (const name of COPIED) {
-      const value = style.getPropertyValue(name);
-      if (value) target.setAttribute(name, value);
-    }
-  });
-  const box = svg.getBoundingClientRect();
-  copy.setAttribute('xmlns', 'http://www.w3.org/2000/svg');
-  copy.setAttribute('width', String(Math.round(box.width)));
-  copy.setAttribute('height', String(Math.round(box.height)));
+export interface StandalonePicture {
+  markup: string;
+  /** CSS pixels. */
+  width: number;
+  height: number;
+}
+
+/** Every picture that leaves the screen carries it, as the screen does. */
+const CAUTION = [
+  'Not an approved training device, not for operational use.',
+  'The approved flight manual and licensed instruction govern.',
+];
+const HEAD = 24;
+const FOOT = 34;
+
+/**
+ * One SVG of several drawings, each where it stands on the page, with styles written out and the shared textures inside;
+ * the title above, the caution beneath.
+ */
+export function standaloneSvg(
+  drawings: readonly SVGSVGElement[],
+  background: string,
+  title: string,
+): StandalonePicture {
+  const boxes = drawings.map((svg) => svg.getBoundingClientRect());
+  const left = Math.min(...boxes.map((box) => box.left));
+  const top = Math.min(...boxes.map((box) => box.top));
+  const width = Math.round(Math.max(...boxes.map((box) => box.right)) - left);
+  const height = Math.round(Math.max(...boxes.map((box) => box.bottom)) - top) + HEAD + FOOT;
+  const whole = document.createElementNS(SVG, 'svg');
+  whole.setAttribute('xmlns', SVG);
+  setBox(whole, width, height);
+  const ground = document.createElementNS(SVG, 'rect');
+  setBox(ground, width, height);
+  ground.setAttribute('fill', background);
+  whole.append(ground);
   const patterns = document.querySelector('.ink-patterns defs')?.cloneNode(true);
   if (patterns instanceof Element) {
     const root = getComputedStyle(document.documentElement);
@@ -42,14 +60,55 @@ export function standaloneSvg(svg: SVGSVGElement, background: string): string {
       root.getPropertyValue(name).trim(),
     );
     patterns.innerHTML = text;
-    copy.prepend(patterns);
+    whole.append(patterns);
   }
-  const ground = document.createElementNS('http://www.w3.org/2000/svg', 'rect');
-  ground.setAttribute('width', '100%');
-  ground.setAttribute('height', '100%');
-  ground.setAttribute('fill', background);
-  copy.prepend(ground);
-  return new XMLSerializer().serializeToString(copy);
+  drawings.forEach((svg, i) => {
+    const box = boxes[i];
+    if (!box) return;
+    const copy = withStyles(svg);
+    copy.setAttribute('x', String(Math.round(box.left - left)));
+    copy.setAttribute('y', String(Math.round(box.top - top) + HEAD));
+    setBox(copy, Math.round(box.width), Math.round(box.height));
+    whole.append(copy);
+  });
+  const ink = getComputedStyle(document.documentElement).getPropertyValue('--ink').trim();
+  whole.append(textLine(title, 16, 13, ink));
+  CAUTION.forEach((line, i) => whole.append(textLine(line, height - 20 + i * 14, 11, ink)));
+  return { markup: new XMLSerializer().serializeToString(whole), width, height };
+}
+
+const SVG = 'http://www.w3.org/2000/svg';
+function textLine(content: string, y: number, size: number, ink: string): SVGTextElement {
+  const text = document.createElementNS(SVG, 'text');
+  text.setAttribute('x', '6');
+  text.setAttribute('y', String(y));
+  text.setAttribute('font-family', 'sans-serif');
+  text.setAttribute('font-size', String(size));
+  text.setAttribute('font-weight', size > 12 ? '700' : '400');
+  text.setAttribute('fill', ink);
+  text.textContent = content;
+  return text;
+}
+function setBox(element: Element, width: number, height: number): void {
+  element.setAttribute('width', String(width));
+  element.setAttribute('height', String(height));
+}
+
+/** A copy of one drawing with its computed styles as attributes. */
+function withStyles(svg: SVGSVGElement): SVGSVGElement {
+  const copy = svg.cloneNode(true) as SVGSVGElement; // cloneNode keeps the element's class
+  const targets = copy.querySelectorAll('*');
+  svg.querySelectorAll('*').forEach((source, i) => {
+    const style = getComputedStyle(source);
+    const target = targets[i];
+    if (!target) return;
+    for (const name of COPIED) {
+      const value = style.getPropertyValue(name);
+      if (value) target.setAttribute(name, value);
+    }
+    target.removeAttribute('class');
+  });
+  return copy;
 }
 
 /** PNG of a stand-alone SVG at twice its size. */

@@ -124,3 +124,48 @@ export function tickText(value: number): string {
   if (size >= 1e5 || size < 1e-3) return value.toExponential(0).replace('e+', 'e');
   return String(Number(value.toPrecision(4)));
 }
+
+/** Area between a curve and a horizontal edge of the plot; one closed part for each unbroken stretch of the curve. */
+export function forbiddenPath(
+  xs: readonly (number | null)[],
+  ys: readonly (number | null)[],
+  x: PlotScale,
+  y: PlotScale,
+  edge: number,
+): string {
+  let path = '';
+  let stretch: [number, number][] = [];
+  const close = (): void => {
+    const first = stretch[0];
+    const last = stretch.at(-1);
+    if (first && last && stretch.length > 1)
+      path += `M${first[0].toFixed(2)} ${edge}${stretch.map(([a, b]) => `L${a.toFixed(2)} ${b.toFixed(2)}`).join('')}L${last[0].toFixed(2)} ${edge}Z`;
+    stretch = [];
+  };
+  xs.forEach((a, i) => {
+    const b = ys[i];
+    if (typeof a === 'number' && typeof b === 'number' && Number.isFinite(a) && Number.isFinite(b))
+      stretch.push([x.at(a), y.at(b)]);
+    else close();
+  });
+  close();
+  return path;
+}
+
+/**
+ * Range and ticks on multiples of one of the given steps (smallest first), the first that needs at most `most` parts.
+ * A flat curve gets a step to either side.
+ */
+export function snappedTicks(
+  lists: readonly (readonly number[])[],
+  steps: readonly number[],
+  most: number,
+): { range: [number, number]; ticks: number[] } {
+  let [lo, hi] = paddedRange(lists, 0);
+  if (lo === hi) [lo, hi] = [lo - 1e-9, hi + 1e-9];
+  const parts = (step: number): number => Math.ceil(hi / step - 1e-9) - Math.floor(lo / step + 1e-9);
+  const step = steps.find((one) => parts(one) <= most) ?? roundStep(hi - lo, most - 1);
+  const first = Math.floor(lo / step + 1e-9);
+  const ticks = Array.from({ length: Math.max(1, parts(step)) + 1 }, (_, k) => (first + k) * step);
+  return { range: [ticks[0] ?? lo, ticks.at(-1) ?? hi], ticks };
+}

@@ -6,6 +6,10 @@ export interface PlotSeries {
   line?: 'solid' | 'dashed' | 'dotted' | 'chain';
   /** Side of the curve that is not available; hatched. */
   forbid?: 'above' | 'below';
+  /** Stroke width; by the kind of line without it. */
+  weight?: number;
+  /** Of second rank: grey ink. */
+  grey?: boolean;
 }
 export interface PlotBand {
   name: string;
@@ -23,6 +27,8 @@ export interface PlotPoint {
 export interface PlotPost {
   x: number;
   text: string;
+  /** Its name stands at the foot of the plot. */
+  low?: boolean;
 }
 /** A complex root of the characteristic equation, 1/s; only the upper half-plane is drawn. */
 export interface PlotRoot {
@@ -40,3 +46,12 @@ export interface LevelBoundary {
   level: 1 | 2 | 3;
   dutchRoll: readonly { re: number; im: number }[];
 }
+/** Lines of compared revisions, the one looked at first. */
+export const REVISION_LINES = ['solid', 'dashed', 'dotted', 'chain'] as const;
+export type PlotLine = (typeof REVISION_LINES)[number];
+export const LINE_DASHES: Readonly<Record<PlotLine, string | undefined>> = {
+  solid: undefined,
+  dashed: '7 4',
+  dotted: '2 3',
+  chain: '9 3 2 3',
+};

@@ -1,11 +1,13 @@
 /** Runs the bench computations beside the page. One message in, one out; the page decides what is still wanted. */
+import { bandPicture, type BandRequest } from './bench-control-speed-band.ts';
 import { crosswindPicture, type CrosswindRequest } from './bench-crosswind.ts';
 import { dispersionPortion, type DispersionRequest } from './bench-dispersion.ts';
 import { engineOutPicture, type EngineOutRequest } from './bench-engine-out.ts';
 import { mapPicture, type MapRequest } from './bench-map.ts';
 import { modesPicture, type ModesRequest } from './bench-modes.ts';
 
-export type BenchRequest = ModesRequest | MapRequest | EngineOutRequest | CrosswindRequest | DispersionRequest;
+export type BenchRequest =
+  ModesRequest | MapRequest | EngineOutRequest | BandRequest | CrosswindRequest | DispersionRequest;
 export interface BenchMessage {
   id: number;
   request: BenchRequest;
@@ -21,6 +23,8 @@ function compute(request: BenchRequest): unknown {
       return mapPicture(request);
     case 'engine-out':
       return engineOutPicture(request);
+    case 'control-speed-band':
+      return bandPicture(request);
     case 'crosswind':
       return crosswindPicture(request);
     case 'dispersion':

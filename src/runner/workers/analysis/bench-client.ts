@@ -1,5 +1,6 @@
 /** The page's side of the analysis worker: newest request first, answers of overtaken requests are dropped. */
 import type { BenchAnswer, BenchMessage, BenchRequest } from './analysis.worker.ts';
+import type { BandPicture, BandRequest } from './bench-control-speed-band.ts';
 import type { CrosswindPicture, CrosswindRequest } from './bench-crosswind.ts';
 import type { DispersionPortion, DispersionRequest } from './bench-dispersion.ts';
 import type { EngineOutPicture, EngineOutRequest } from './bench-engine-out.ts';
@@ -12,11 +13,13 @@ export type PictureOf<R extends BenchRequest> = R extends ModesRequest
     ? MapPicture
     : R extends EngineOutRequest
       ? EngineOutPicture
-      : R extends CrosswindRequest
-        ? CrosswindPicture
-        : R extends DispersionRequest
-          ? DispersionPortion
-          : never;
+      : R extends BandRequest
+        ? BandPicture
+        : R extends CrosswindRequest
+          ? CrosswindPicture
+          : R extends DispersionRequest
+            ? DispersionPortion
+            : never;
 
 export class OvertakenError extends Error {
   override readonly name = 'OvertakenError';

@@ -4,9 +4,11 @@ import { buildSmallDisturbance } from '#shared/model/small-disturbance.ts';
 import { inputColumn, type LateralInput } from '#shared/analysis/lateral-system.ts';
 import { timeResponse } from '#shared/analysis/responses.ts';
 import type { InputShape } from '#shared/analysis/input-shapes.ts';
-import { stabilityMap } from '#shared/analysis/stability-map.ts';
+import { mapBoundaries, type MapBoundaries } from '#shared/analysis/map-boundaries.ts';
+import { createCellJudge, stabilityMap } from '#shared/analysis/stability-map.ts';
 import { frequencyResponse, transferFunction } from '#shared/analysis/transfer-functions.ts';
-import { lateralModes } from '#shared/analysis/modes.ts';
+import { lateralModes, type Mode } from '#shared/analysis/modes.ts';
+import { eigenvalues4Into } from '#shared/numerics/eigen4.ts';
 import { uncertainFields } from '#shared/analysis/airframe-sampling.ts';
 import { DEG } from '#shared/units/constants.ts';
 import {
@@ -19,6 +21,17 @@ import {
   type PreparedSubject,
 } from './bench-condition.ts';
 
+export type MapInput = Exclude<LateralInput, 'yaw-moment' | 'roll-moment'>;
+export interface MapPoint {
+  label: string;
+  x: number;
+  y: number;
+  sigmaX: number;
+  sigmaY: number;
+  modes: Mode[];
+  /** Worst level of the modal criteria, as the map's; 4 is below Level 3. */
+  level: number;
+}
 export interface MapRequest {
   kind: 'map';
   condition: BenchCondition;
@@ -28,18 +41,20 @@ export interface MapRequest {
     y: DerivativeKey;
     xRange: readonly [number, number];
     yRange: readonly [number, number];
-    columns: number;
-    rows: number;
+    /** Nodes along each axis, the ends of the range included. */
+    nodes: number;
   };
-  response: { input: LateralInput; shape: InputShape; amplitudeDeg: number; durationS: number; endS: number };
-  bode: { input: 'aileron' | 'rudder'; output: 0 | 1 | 2 | 3 };
+  response: { input: MapInput; shape: InputShape; amplitudeDeg: number; durationS: number; endS: number };
+  bode: { input: MapInput; output: 0 | 1 | 2 | 3 };
 }
 export interface MapPicture {
   problems: string[];
-  level: Uint8Array;
-  spiral: Float64Array;
+  /** Null when the first revision cannot be computed. */
+  boundaries: MapBoundaries | null;
+  /** What was added to the derivatives of the first point, per rad. */
+  shifts: BenchCondition['shifts'];
   /** Points of the compared revisions in the plane, the first with the standard deviations of its sources. */
-  points: { label: string; x: number; y: number; sigmaX: number; sigmaY: number }[];
+  points: MapPoint[];
   timeS: number[];
   responses: {
     label: string;
@@ -70,8 +85,8 @@ export function mapPicture(request: MapRequest): MapPicture {
   const lead = ready[0];
   const picture: MapPicture = {
     problems,
-    level: new Uint8Array(axes.columns * axes.rows),
-    spiral: new Float64Array(axes.columns * axes.rows),
+    boundaries: null,
+    shifts: condition.shifts,
     points: [],
     timeS: [],
     responses: [],
@@ -144,8 +159,8 @@ function amplitudeSI(response: MapRequest['response']): number {
 
 function fillMap(picture: MapPicture, request: MapRequest, lead: PreparedSubject): void {
   const { axes, condition } = request;
-  const centres = ([lo, hi]: readonly [number, number], n: number): number[] =>
-    Array.from({ length: n }, (_, i) => lo + ((hi - lo) * (i + 0.5)) / n);
+  const nodes = ([lo, hi]: readonly [number, number]): number[] =>
+    Array.from({ length: axes.nodes }, (_, i) => lo + ((hi - lo) * i) / (axes.nodes - 1));
   // The matrix is linear in any one derivative, and bilinear in two that act on different rows or columns; the two
   // directions are taken as differences about the origin of both.
   const subject = request.subjects[0];
@@ -165,22 +180,32 @@ function fillMap(picture: MapPicture, request: MapRequest, lead: PreparedSubject
   const base = matrixAt(0, 0);
   const alongX = matrixAt(1, 0).map((v, i) => v - (base[i] ?? 0));
   const alongY = matrixAt(0, 1).map((v, i) => v - (base[i] ?? 0));
-  const map = stabilityMap(
-    { base, alongX, alongY },
-    centres(axes.xRange, axes.columns),
-    centres(axes.yRange, axes.rows),
-    lead.klass,
-    lead.category,
-  );
-  picture.level = map.level;
-  picture.spiral = map.spiral;
+  const system = { base, alongX, alongY };
+  const map = stabilityMap(system, nodes(axes.xRange), nodes(axes.yRange), lead.klass, lead.category);
+  picture.boundaries = mapBoundaries(system, map, lead.klass, lead.category);
+}
+
+function levelOf({ system, klass, category }: PreparedSubject): number {
+  const one = {
+    dutchZeta: new Float64Array(1),
+    dutchOmega: new Float64Array(1),
+    roll: new Float64Array(1),
+    spiral: new Float64Array(1),
+    growth: new Float64Array(1),
+    level: new Uint8Array(1),
+    pattern: new Uint8Array(1),
+  };
+  const roots = new Float64Array(8);
+  eigenvalues4Into(roots, system.A);
+  createCellJudge(klass, category)(one, 0, Float64Array.from(system.A), roots);
+  return one.level[0] ?? 4;
 }
 
 function derivativesAt(ready: PreparedSubject): Map<DerivativeKey, number> {
   return new Map(DERIVATIVE_KEYS.map((key, i) => [key, ready.system.derivatives[i] ?? NaN]));
 }
 
-function pointOf(ready: PreparedSubject, axes: MapRequest['axes']): MapPicture['points'][number] {
+function pointOf(ready: PreparedSubject, axes: MapRequest['axes']): MapPoint {
   const values = derivativesAt(ready);
   const fields = uncertainFields(ready.airframe);
   const sigma = (key: DerivativeKey): number => {
@@ -196,5 +221,7 @@ function pointOf(ready: PreparedSubject, axes: MapRequest['axes']): MapPicture['
     y: values.get(axes.y) ?? NaN,
     sigmaX: sigma(axes.x),
     sigmaY: sigma(axes.y),
+    modes: lateralModes(ready.system.A).modes,
+    level: levelOf(ready),
   };
 }
