@@ -28,6 +28,7 @@ async function main(): Promise<void> {
   const log = createLog(env);
   const { database, migrations } = await openDatabase({ url: env.databaseUrl, connections: env.databaseConnections });
   let address = env.publicOrigins[0] ?? '';
+  const redis = env.redisUrl === null ? null : await connectRedis(env.redisUrl, log);
   const sink = env.smtpUrl === null ? await startLocalSink(path.join(env.dataFolder, 'mail')) : null;
   const courier = createCourier(sink?.url ?? env.smtpUrl ?? '', env.mailFrom);
   const services = createServices({
@@ -36,15 +37,18 @@ async function main(): Promise<void> {
       server: env.smtpUrl === null ? null : new URL(env.smtpUrl).host,
       sinkFolder: sink?.folder ?? null,
     }),
+    surroundings: () => ({ dataFolder: env.dataFolder, pingRedis: redis === null ? null : () => redis.ping() }),
     tokenSecret: tokenSecret(env.jwtSecret, env.dataFolder),
     address: () => address,
   });
-  const seed = await seedEmptyDatabase({
-    database,
-    folder: path.join(projectFolder, 'scenarios'),
-    hashPassword: services.passwords.hash,
-    now: () => new Date(),
-  });
+  const seed = env.demonstration
+    ? await seedEmptyDatabase({
+        database,
+        folder: path.join(projectFolder, 'scenarios'),
+        hashPassword: services.passwords.hash,
+        now: () => new Date(),
+      })
+    : { seeded: false, problems: [] };
   for (const problem of seed.problems) {
     log.warn(problem);
     console.error(problem);
@@ -66,7 +70,6 @@ async function main(): Promise<void> {
 
   const app = createApp({ services, log, env, client });
   http.on('request', (request, response) => void app(request, response));
-  const redis = env.redisUrl === null ? null : await connectRedis(env.redisUrl, log);
   const { sessions, classes } = services;
   const sockets = attachSockets({ http, sessions, classes, log, publicOrigins: env.publicOrigins, redis });
   await new Promise<void>((resolve, reject) => {
@@ -116,9 +119,14 @@ async function main(): Promise<void> {
   const host = env.host === '0.0.0.0' || env.host === '::' ? 'localhost' : env.host;
   address = env.publicOrigins[0] ?? `http://${host.includes(':') ? `[${host}]` : host}:${port}`;
   log.info({ address, version: PROGRAM_VERSION, migrations, seeded: seed.seeded }, 'serving');
-  console.log(
-    `SIDEWASH_READY ${JSON.stringify({ address, version: PROGRAM_VERSION, migrations: migrations.length, seeded: seed.seeded, problems: seed.problems.length })}`,
-  );
+  const ready = {
+    ...{ address, version: PROGRAM_VERSION, migrations: migrations.length },
+    ...{ seeded: seed.seeded, problems: seed.problems.length },
+    demonstration: await database.organisations.demonstration(),
+    /** Opens the first set-up from another machine; null when there is nothing to set up. */
+    setUpCode: await services.setUp.code(),
+  };
+  console.log(`SIDEWASH_READY ${JSON.stringify(ready)}`);
 }
 
 main().catch((error: unknown) => {

@@ -75,7 +75,7 @@ async function start() {
   shutDown.throwIfWanted();
   shutDown.when(product.exited, 'The server ended by itself; its log is in the data folder (logs/server.log).');
 
-  say(welcome(product.address, timings.sentence()));
+  say(welcome(product.address, timings.sentence(), product.ready));
   timings.write(process.env.SIDEWASH_TIMINGS, { address: product.address });
 }
 

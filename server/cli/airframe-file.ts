@@ -1,4 +1,4 @@
-import { readFile } from 'node:fs/promises';
+import { open } from 'node:fs/promises';
 import { parseAirframe } from '#shared/model/airframe-schema.ts';
 import type { Airframe } from '#shared/model/airframe-schema.ts';
 import type { FieldIssue } from '#shared/model/field-issue.ts';
@@ -6,22 +6,50 @@ import { UsageError } from './usage-error.ts';
 
 /** Files above this size are no airframe or scenario. */
 const LARGEST_FILE_BYTES = 8_000_000;
+/** Bytes read at a time. */
+const PART_BYTES = 65_536;
 
 /** The parsed content of a JSON file; whatever fails is one line that names the file. */
 export async function readJsonFile(file: string): Promise<unknown> {
-  let text: string;
+  const text = decoded(file, await bytesOf(file));
   try {
-    text = await readFile(file, 'utf8');
-  } catch (error) {
-    const code = error instanceof Error && 'code' in error ? String(error.code) : 'unknown';
-    throw new UsageError(`${file}: cannot be read (${READ_ERRORS[code] ?? code})`);
-  }
-  if (text.length > LARGEST_FILE_BYTES) throw new UsageError(`${file}: larger than ${LARGEST_FILE_BYTES} bytes`);
-  try {
-    const value: unknown = JSON.parse(text.replace(/^\uFEFF/u, ''));
+    const value: unknown = JSON.parse(text);
     return value;
   } catch (error) {
     throw new UsageError(`${file}: not valid JSON (${error instanceof Error ? error.message : 'unknown'})`);
+  }
+}
+
+/** The bytes of a file or of a pipe, read no further than what is taken: an endless device ends here too. */
+async function bytesOf(file: string): Promise<Buffer> {
+  try {
+    const handle = await open(file, 'r');
+    try {
+      const parts: Buffer[] = [];
+      let length = 0;
+      for (;;) {
+        const { bytesRead, buffer } = await handle.read(Buffer.alloc(PART_BYTES), 0, PART_BYTES, null);
+        if (bytesRead === 0) return Buffer.concat(parts);
+        length += bytesRead;
+        if (length > LARGEST_FILE_BYTES) throw new UsageError(`${file}: larger than ${LARGEST_FILE_BYTES} bytes`);
+        parts.push(buffer.subarray(0, bytesRead));
+      }
+    } finally {
+      await handle.close();
+    }
+  } catch (error) {
+    if (error instanceof UsageError) throw error;
+    const code = error instanceof Error && 'code' in error ? String(error.code) : 'unknown';
+    throw new UsageError(`${file}: cannot be read (${READ_ERRORS[code] ?? code})`);
+  }
+}
+
+/** JSON is UTF-8 (RFC 8259, 8.1); a mark of byte order before it is let pass. */
+function decoded(file: string, bytes: Buffer): string {
+  try {
+    return new TextDecoder('utf-8', { fatal: true }).decode(bytes);
+  } catch {
+    throw new UsageError(`${file}: not valid JSON (it is not UTF-8 text)`);
   }
 }
 
@@ -35,7 +63,9 @@ const READ_ERRORS: Readonly<Record<string, string>> = {
 export function issueLine(file: string, issues: readonly FieldIssue[]): string {
   const [first] = issues;
   const more = issues.length > 1 ? ` (and ${issues.length - 1} more)` : '';
-  return `${file}: ${first.field === '' ? '/' : first.field}: ${first.rule}: ${first.message}${more}`;
+  const line = `${file}: ${first.field === '' ? '/' : first.field}: ${first.rule}: ${first.message}${more}. ${first.remedy}`;
+  // Names out of the file are quoted in messages: no control character of theirs may break the line or reach a terminal.
+  return line.replaceAll(/\p{Cc}+/gu, ' ');
 }
 
 /** The airframe of a file; warnings go to standard error, one line each, unless JSON is wanted. */

@@ -1,4 +1,4 @@
-import { existsSync } from 'node:fs';
+import { existsSync, statSync } from 'node:fs';
 import path from 'node:path';
 import { dataFolderOf } from '../bootstrap/paths.mjs';
 import { prepareDataFolder } from '../bootstrap/data-folder.mjs';
@@ -7,7 +7,7 @@ import { startMariadb } from '../bootstrap/mariadb.mjs';
 import { mariadbPlaces, readAccess } from '../bootstrap/mariadb-files.mjs';
 import { Refusal } from '../bootstrap/refusal.mjs';
 import { PROGRAM_VERSION } from '../config/program-version.ts';
-import { BackupProblem, readBackup, writeBackup } from '../data/backup-file.ts';
+import { BackupProblem, noteBackup, readBackup, writeBackup } from '../data/backup-file.ts';
 import { openDatabase } from '../data/database.ts';
 import { createAuditChain } from '../services/audit/audit-chain.ts';
 
@@ -39,7 +39,9 @@ async function backup(file: string | undefined): Promise<number> {
   const stamp = new Date().toISOString().slice(0, MINUTE_DIGITS).replace(/[:T]/g, '-');
   const target = path.resolve(process.env.INIT_CWD ?? '.', file ?? `sidewash-${stamp}.backup.gz`);
   if (existsSync(target)) throw new Refusal(`There is a file ${target} already`, 'name another one');
-  const done = await writeBackup({ url: runningDatabase(), file: target, program: PROGRAM_VERSION, progress });
+  const url = runningDatabase();
+  const done = await writeBackup({ url, file: target, program: PROGRAM_VERSION, progress });
+  await noteBackup({ url, file: target, bytes: statSync(target).size, rows: done.rows });
   console.log(`${done.rows} rows of ${done.tables} tables in ${target}`);
   return 0;
 }

@@ -12,9 +12,16 @@ export function printJson(value: unknown): void {
   process.stdout.write(`${text}\n`);
 }
 
-/** Prints lines of text with the caution last. */
+/** Prints lines of text with the caution last. Names from files may hold control characters: they become blanks. */
 export function printText(lines: readonly string[]): void {
-  process.stdout.write(`${[...lines, '', CAUTION].join('\n')}\n`);
+  const plain = lines.map((line) => line.replaceAll(/\p{Cc}+/gu, ' '));
+  process.stdout.write(`${[...plain, '', CAUTION].join('\n')}\n`);
+}
+
+/** Remarks on a condition: lines below the text, or on standard error where standard output is one JSON document. */
+export function remarkLines(remarks: readonly string[], json: boolean): string[] {
+  if (json) for (const remark of remarks) process.stderr.write(`note: ${remark}\n`);
+  return json || remarks.length === 0 ? [] : ['', ...remarks];
 }
 
 /** Rows of cells as aligned lines: the first column to the left, columns in `right` to the right. */

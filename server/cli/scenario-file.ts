@@ -1,5 +1,6 @@
 import { access } from 'node:fs/promises';
 import type { Airframe } from '#shared/model/airframe-schema.ts';
+import { ModelError } from '#shared/model/errors.ts';
 import { ScenarioError } from '#shared/scenario/scenario-errors.ts';
 import { checkAgainstAirframe, parseScenario } from '#shared/scenario/scenario-schema.ts';
 import type { Scenario } from '#shared/scenario/scenario-schema.ts';
@@ -51,12 +52,16 @@ async function airframeOf(args: ParsedArguments, file: string, scenario: Scenari
   return readAirframe(shipped, quiet);
 }
 
+const START_REMEDY = 'Change speed, levers, wind or configuration of the start.';
+
 /** Runs a computation and turns the named reasons of scenario, model and numerics into one line about the file. */
 export function namedScenario<T>(file: string, compute: () => T): T {
   return named(file, () => {
     try {
       return compute();
     } catch (error) {
+      if (error instanceof ModelError)
+        throw new UsageError(`${file}: /start: ${error.code}: ${error.message}. ${START_REMEDY}`);
       if (!(error instanceof ScenarioError)) throw error;
       throw new UsageError(
         error.issues.length > 0 ? issueLine(file, error.issues) : `${file}: /events: ${error.code}: ${error.message}`,

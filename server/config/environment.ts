@@ -61,6 +61,8 @@ const variablesSchema = z.object({
   REDIS_URL: redisUrl.optional(),
   /** Folder for the token secret and the log. */
   SIDEWASH_DATA: z.string().min(1).default('.data'),
+  /** 0: an empty database stays empty and the first set-up is done in the browser; 1: it is filled with the demonstration. */
+  SIDEWASH_DEMONSTRATION: flag.default(true),
   /** 1: serve the client from its sources with hot reload. */
   SIDEWASH_DEV: flag.default(false),
   /** Signs access tokens; needed only when several processes serve one organisation, else made once in the data folder. */
@@ -98,6 +100,8 @@ export interface Environment {
   databaseConnections: number;
   redisUrl: string | null;
   dataFolder: string;
+  /** False: an empty database stays empty; the first set-up is done in the browser. */
+  demonstration: boolean;
   dev: boolean;
   jwtSecret: string | null;
   publicOrigins: string[];
@@ -142,6 +146,7 @@ export function readEnvironment(variables: Record<string, string | undefined>): 
     databaseConnections: env.DATABASE_CONNECTIONS,
     redisUrl: env.REDIS_URL ?? null,
     dataFolder: path.resolve(projectFolder, env.SIDEWASH_DATA),
+    demonstration: env.SIDEWASH_DEMONSTRATION,
     dev: env.SIDEWASH_DEV,
     jwtSecret: env.SIDEWASH_JWT_SECRET ?? null,
     publicOrigins,

@@ -1,6 +1,7 @@
 import { once } from 'node:events';
 import { createReadStream, createWriteStream } from 'node:fs';
 import { rename, rm } from 'node:fs/promises';
+import path from 'node:path';
 import { createInterface } from 'node:readline';
 import { createGunzip, createGzip } from 'node:zlib';
 import { createConnection } from 'mysql2';
@@ -121,6 +122,21 @@ export async function writeBackup(setup: {
     zip.destroy();
     await rm(draft, { force: true });
     throw error;
+  } finally {
+    await connection.end();
+  }
+}
+
+/** Writes into the audit trail of each organisation that a backup was made. */
+export async function noteBackup(setup: { url: string; file: string; bytes: number; rows: number }): Promise<void> {
+  const { url, file, bytes, rows } = setup;
+  const { connection } = open(url);
+  try {
+    await connection.query(
+      `INSERT INTO audit_entry (organisation_id, at, actor_id, deed, subject_kind, subject_id, detail, address)
+       SELECT id, UTC_TIMESTAMP(3), NULL, 'backup.written', 'backup', ?, ?, NULL FROM organisation`,
+      [path.basename(file).slice(0, 80), JSON.stringify({ bytes, rows })],
+    );
   } finally {
     await connection.end();
   }

@@ -10,6 +10,7 @@ import { type AirframesRepository, createAirframesRepository } from './repositor
 import { type AssignmentsRepository, createAssignmentsRepository } from './repositories/assignments.repository.ts';
 import { type AttemptsRepository, createAttemptsRepository } from './repositories/attempts.repository.ts';
 import { type AuditRepository, createAuditRepository } from './repositories/audit.repository.ts';
+import { type CohortsRepository, createCohortsRepository } from './repositories/cohorts.repository.ts';
 import { type ChunksRepository, createChunksRepository } from './repositories/chunks.repository.ts';
 import { type DebriefRepository, createDebriefRepository } from './repositories/debrief.repository.ts';
 import { type ClassesRepository, createClassesRepository } from './repositories/classes.repository.ts';
@@ -20,6 +21,8 @@ import {
 import { type PeopleRepository, createPeopleRepository } from './repositories/people.repository.ts';
 import { type PlaylistsRepository, createPlaylistsRepository } from './repositories/playlists.repository.ts';
 import { type AccountLinksRepository, createAccountLinksRepository } from './repositories/account-links.repository.ts';
+import { type AccessTokensRepository, createAccessTokensRepository } from './repositories/access-tokens.repository.ts';
+import { type IdempotencyRepository, createIdempotencyRepository } from './repositories/idempotency.repository.ts';
 import { type OutboxRepository, createOutboxRepository } from './repositories/outbox.repository.ts';
 import { type BudgetsRepository, createBudgetsRepository } from './repositories/budgets.repository.ts';
 import { type RecordsRepository, createRecordsRepository } from './repositories/records.repository.ts';
@@ -35,6 +38,7 @@ import {
 import { type ScenariosRepository, createScenariosRepository } from './repositories/scenarios.repository.ts';
 import { type SessionsRepository, createSessionsRepository } from './repositories/sessions.repository.ts';
 import { type SkinsRepository, createSkinsRepository } from './repositories/skins.repository.ts';
+import { type SystemRepository, createSystemRepository } from './repositories/system.repository.ts';
 import { type StudiesRepository, createStudiesRepository } from './repositories/studies.repository.ts';
 import { type ThrottlesRepository, createThrottlesRepository } from './repositories/throttles.repository.ts';
 
@@ -42,6 +46,7 @@ import { type ThrottlesRepository, createThrottlesRepository } from './repositor
 export interface Repositories {
   readonly organisations: OrganisationsRepository;
   readonly people: PeopleRepository;
+  readonly cohorts: CohortsRepository;
   readonly sessions: SessionsRepository;
   readonly airframes: AirframesRepository;
   readonly airframeEditing: AirframeEditingRepository;
@@ -64,8 +69,11 @@ export interface Repositories {
   readonly noticeMail: NoticeMailRepository;
   readonly playlists: PlaylistsRepository;
   readonly accountLinks: AccountLinksRepository;
+  readonly accessTokens: AccessTokensRepository;
+  readonly idempotency: IdempotencyRepository;
   readonly outbox: OutboxRepository;
   readonly audit: AuditRepository;
+  readonly system: SystemRepository;
 }
 
 export interface Database extends Repositories {
@@ -80,6 +88,7 @@ function repositories(manager: EntityManager): Repositories {
   return {
     organisations: createOrganisationsRepository(manager),
     people: createPeopleRepository(manager),
+    cohorts: createCohortsRepository(manager),
     sessions: createSessionsRepository(manager),
     airframes: createAirframesRepository(manager),
     airframeEditing: createAirframeEditingRepository(manager),
@@ -102,8 +111,11 @@ function repositories(manager: EntityManager): Repositories {
     noticeMail: createNoticeMailRepository(manager),
     playlists: createPlaylistsRepository(manager),
     accountLinks: createAccountLinksRepository(manager),
+    accessTokens: createAccessTokensRepository(manager),
+    idempotency: createIdempotencyRepository(manager),
     outbox: createOutboxRepository(manager),
     audit: createAuditRepository(manager),
+    system: createSystemRepository(manager),
   };
 }
 

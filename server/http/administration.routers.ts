@@ -11,6 +11,7 @@ import {
   rosterSchema,
   takeLinkSchema,
 } from '#shared/contracts/administration.ts';
+import { editionOf } from '#shared/contracts/edition.ts';
 import { organisationBodySchema } from '#shared/contracts/session.ts';
 import type { AuditService } from '../services/audit/audit.service.ts';
 import type { OutboxService } from '../services/mail/outbox.service.ts';
@@ -18,9 +19,10 @@ import type { AccountLinks } from '../services/people/account-links.ts';
 import type { PeopleService } from '../services/people/people.service.ts';
 import { notFound } from '../services/problem-error.ts';
 import type { SessionsService } from '../services/sessions/sessions.service.ts';
+import { possibleVersion } from '../services/versions.ts';
 import { parse } from './parse.ts';
 import { actorOf, callerOf, requireSession } from './session.middleware.ts';
-import { linkThrottle, resetThrottle, signInThrottles } from './throttle.ts';
+import { linkThrottle, ownPasswordThrottle, resetThrottle } from './throttle.ts';
 
 function idIn(request: Request, what: string): string {
   const parsed = z.uuid().safeParse(request.params['id']);
@@ -36,6 +38,10 @@ export function peopleRouter(people: PeopleService): Router {
     response.json(await people.list(actorOf(response), parse(peopleQuerySchema, request.query)));
   });
 
+  router.get('/:id', async (request, response) => {
+    response.json(await people.read(actorOf(response), idIn(request, 'person')));
+  });
+
   router.post('/roster', async (request, response) => {
     const roster = parse(rosterSchema, request.body);
     response.json(await people.roster(actorOf(response), roster, callerOf(request)));
@@ -48,7 +54,8 @@ export function peopleRouter(people: PeopleService): Router {
 
   router.put('/:id/roles', async (request, response) => {
     const { roles } = parse(rolesBodySchema, request.body);
-    await people.setRoles(actorOf(response), idIn(request, 'person'), roles, callerOf(request));
+    const version = possibleVersion(request.get('if-match'));
+    await people.setRoles(actorOf(response), idIn(request, 'person'), roles, callerOf(request), version);
     response.status(204).end();
   });
 
@@ -74,12 +81,14 @@ export function organisationRouter(people: PeopleService): Router {
   const router = Router();
 
   router.get('/', async (_request, response) => {
-    response.json(await people.organisation(actorOf(response)));
+    const organisation = await people.organisation(actorOf(response));
+    response.set('etag', `"${editionOf(organisation)}"`).json(organisation);
   });
 
   router.put('/', async (request, response) => {
     const body = parse(organisationBodySchema, request.body);
-    await people.saveOrganisation(actorOf(response), body, callerOf(request));
+    const version = possibleVersion(request.get('if-match'));
+    await people.saveOrganisation(actorOf(response), body, callerOf(request), version);
     response.status(204).end();
   });
 
@@ -153,7 +162,7 @@ export function accountRouter(links: AccountLinks, sessions: SessionsService): R
     response.status(204).end();
   });
 
-  router.put('/password', requireSession(sessions), ...signInThrottles(), async (request, response) => {
+  router.put('/password', requireSession(sessions), ownPasswordThrottle(), async (request, response) => {
     await links.changePassword(actorOf(response), parse(changePasswordSchema, request.body), callerOf(request));
     response.status(204).end();
   });

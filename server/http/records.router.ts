@@ -1,8 +1,10 @@
 import { Router, type Response } from 'express';
 import { z } from 'zod';
+import { editionOf } from '#shared/contracts/edition.ts';
 import {
   cellQuerySchema,
   distributionQuerySchema,
+  endpointEdited,
   matrixQuerySchema,
   newCorrectionSchema,
   recordFilterSchema,
@@ -11,6 +13,7 @@ import {
 } from '#shared/contracts/records.ts';
 import type { Services } from '../services/create-services.ts';
 import { notFound } from '../services/problem-error.ts';
+import { possibleVersion } from '../services/versions.ts';
 import { parse } from './parse.ts';
 import { actorOf, callerOf } from './session.middleware.ts';
 
@@ -89,24 +92,30 @@ export function recordsRouter(records: Services['records']): Router {
   });
 
   router.get('/endpoint', async (_request, response) => {
-    response.json(await records.endpoint(actorOf(response)));
+    const endpoint = await records.endpoint(actorOf(response));
+    response.set('etag', `"${editionOf(endpointEdited(endpoint))}"`).json(endpoint);
   });
   router.put('/endpoint', async (request, response) => {
     const body = parse(saveEndpointSchema, request.body);
-    response.json(await records.saveEndpoint(actorOf(response), body, callerOf(request)));
+    const version = possibleVersion(request.get('if-match'));
+    const saved = await records.saveEndpoint(actorOf(response), body, callerOf(request), version);
+    response.set('etag', `"${editionOf(endpointEdited(saved))}"`).json(saved);
   });
   router.post('/endpoint/push', async (request, response) => {
     response.status(202).json(await records.pushAll(actorOf(response), callerOf(request)));
   });
   router.get('/retention', async (_request, response) => {
-    response.json(await records.retention(actorOf(response)));
+    const rule = await records.retention(actorOf(response));
+    response.set('etag', `"${editionOf(rule)}"`).json(rule);
   });
   router.post('/retention/effect', async (request, response) => {
     response.json(await records.effect(actorOf(response), parse(saveRetentionSchema, request.body)));
   });
   router.put('/retention', async (request, response) => {
     const body = parse(saveRetentionSchema, request.body);
-    response.json(await records.setRetention(actorOf(response), body, callerOf(request)));
+    const version = possibleVersion(request.get('if-match'));
+    const rule = await records.setRetention(actorOf(response), body, callerOf(request), version);
+    response.set('etag', `"${editionOf(rule)}"`).json(rule);
   });
   return router;
 }

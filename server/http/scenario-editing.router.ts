@@ -29,6 +29,10 @@ export function scenarioEditingRouter({ scenarioEditing }: Pick<Services, 'scena
     response.json(await publishing.detail(actorOf(response), slugIn(request)));
   });
 
+  router.get('/:slug/revisions/:revision/file', async (request, response) => {
+    response.json(await publishing.file(actorOf(response), slugIn(request), revisionIn(request)));
+  });
+
   router.post('/:slug/duplicate', async (request, response) => {
     const body = parse(duplicateScenarioSchema, request.body);
     response.status(201).json(await drafts.duplicate(actorOf(response), slugIn(request), body, callerOf(request)));

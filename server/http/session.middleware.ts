@@ -11,9 +11,14 @@ const ACTOR = Symbol('actor');
 export function requireSession(sessions: SessionsService): RequestHandler {
   return async (request, response, next) => {
     const actor = await sessions.authenticate(cookieOf(request, ACCESS_COOKIE));
-    Reflect.set(response.locals, ACTOR, actor);
+    setActor(response, actor);
     next();
   };
+}
+
+/** What comes later in the chain acts for this person. */
+export function setActor(response: Response, actor: Actor): void {
+  Reflect.set(response.locals, ACTOR, actor);
 }
 
 /** The actor that `requireSession` found. */

@@ -1,6 +1,7 @@
-import type { Request } from 'express';
+import type { Request, Response } from 'express';
 import { ipKeyGenerator, rateLimit } from 'express-rate-limit';
 import { ProblemError } from '../services/problem-error.ts';
+import { actorOf } from './session.middleware.ts';
 
 const WINDOW_MS = 15 * 60 * 1000;
 
@@ -11,7 +12,12 @@ export const SIGN_IN_LIMITS = { account: 10, address: 60 } as const;
 const LINK_LIMIT = 30;
 const RESET_LIMIT = 10;
 
-function limiter(limit: number, keyGenerator: (request: Request) => string, what = 'failed sign-ins', all = false) {
+function limiter(
+  limit: number,
+  keyGenerator: (request: Request, response: Response) => string,
+  what = 'failed sign-ins',
+  all = false,
+) {
   return rateLimit({
     windowMs: WINDOW_MS,
     limit,
@@ -50,6 +56,11 @@ export function signInThrottles() {
   ];
 }
 
+/** Failed tries of the own password by someone signed in, counted for each person. */
+export const ownPasswordThrottle = () =>
+  limiter(SIGN_IN_LIMITS.account, (_request, response) => `person:${actorOf(response).personId}`, 'wrong passwords');
+
 const addressOf = (request: Request): string => `address:${ipKeyGenerator(request.ip ?? '')}`;
 export const linkThrottle = () => limiter(LINK_LIMIT, addressOf, 'links that do not work');
 export const resetThrottle = () => limiter(RESET_LIMIT, addressOf, 'messages asked for', true);
+export const setUpThrottle = () => limiter(LINK_LIMIT, addressOf, 'wrong codes');

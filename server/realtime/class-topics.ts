@@ -19,7 +19,7 @@ import {
   type Entered,
 } from '#shared/contracts/class-socket.ts';
 import { decodeFrame } from '#shared/scenario/class-frames.ts';
-import { tickAt } from '#shared/scenario/class-state.ts';
+import { controlsAt, tickAt } from '#shared/scenario/class-state.ts';
 import { TICK_RATE_HZ } from '#shared/model/plant-types.ts';
 import type { Logger } from '../config/log.ts';
 import { ClassProblem } from '../services/classes/class-problem.ts';
@@ -134,7 +134,8 @@ export function attachClassTopics(socket: ClassSocket, { classes, hub, log, refu
   async function enter({ classId, since }: z.output<typeof classEnterSchema>): Promise<Entered> {
     const { actor, guest } = socket.data;
     const asGuest = guest !== null && (actor === null || guest.classId === classId);
-    if (!asGuest && actor === null) throw new ProblemError('unauthenticated', 'Sign in first.');
+    // The pass of another class does not stand in for a sign-in that has run out.
+    if (actor === null && guest?.classId !== classId) throw new ProblemError('unauthenticated', 'Sign in first.');
     const pass = asGuest
       ? await classes.membership.enterAsGuest(guest, classId)
       : await classes.membership.enter(actor ?? missing(), classId);
@@ -238,6 +239,9 @@ export function attachClassTopics(socket: ClassSocket, { classes, hub, log, refu
     const latest = tickAt(run, classes.nowMs()) + FRAME_TOLERANCE_TICKS;
     if (decoded === null || decoded.branch >= run.branches.length || decoded.startTick > latest)
       throw new ClassProblem('not-shown', 'The frame is none of this run.');
+    // Whoever had the controls before delivers what they flew; what lies behind it came late, or is forged.
+    const flies = run.controls.at(-1)?.member ?? memberId;
+    if (recording.demonstration && flies !== memberId && controlsAt(run, decoded.startTick) !== memberId) return;
     hub.frame(socket, classId, attemptId, frame);
   });
 

@@ -27,6 +27,8 @@ export async function connectRedis(url: string, log: Logger) {
   await Promise.all([publisher.connect(), subscriber.connect()]);
   return {
     adapter: createAdapter(publisher, subscriber),
+    /** Rejects or stays silent while Redis is away. */
+    ping: (): Promise<unknown> => publisher.ping(),
     close: () => {
       publisher.disconnect();
       subscriber.disconnect();

@@ -9,6 +9,8 @@ export interface DebriefSheetData {
   subtitle: string;
   trace: string;
   printed: string;
+  /** Words of the organisation below the fixed caution. */
+  caution: string;
   trainee: string;
   flownOn: string;
   attempt: string;
@@ -62,6 +64,7 @@ export async function debriefSheet(data: DebriefSheetData): Promise<Buffer> {
     subtitle: data.subtitle,
     trace: data.trace,
     printed: data.printed,
+    caution: data.caution,
   });
   sheet.boxes([
     { label: 'Trainee', value: data.trainee },

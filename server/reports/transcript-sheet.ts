@@ -8,6 +8,8 @@ export interface TranscriptData {
   subtitle: string;
   trace: string;
   printed: string;
+  /** Words of the organisation below the fixed caution. */
+  caution: string;
   totals: { scenarios: number; met: number; signed: number; attempts: number };
   scenarios: readonly {
     title: string;
@@ -42,6 +44,7 @@ export async function transcriptSheet(data: TranscriptData): Promise<Buffer> {
     subtitle: data.subtitle,
     trace: data.trace,
     printed: data.printed,
+    caution: data.caution,
   });
   const { totals } = data;
   sheet.boxes([

@@ -1,3 +1,5 @@
+import path from 'node:path';
+import { projectFolder } from '../config/project-folder.ts';
 import type { Database } from '../data/database.ts';
 import { createAirframeDetail } from './airframes/airframe-detail.ts';
 import { createAirframeDrafts } from './airframes/airframe-drafts.ts';
@@ -15,7 +17,9 @@ import { createAuditService } from './audit/audit.service.ts';
 import { createOutboxService, type MailRoute } from './mail/outbox.service.ts';
 import { createSendMail } from './mail/send-mail.ts';
 import { createAccountLinks } from './people/account-links.ts';
+import { createProfileService } from './people/profile.service.ts';
 import { createPeopleService } from './people/people.service.ts';
+import { createCohortsService } from './cohorts/cohorts.service.ts';
 import { createDebriefService } from './debrief/debrief.service.ts';
 import { createAssignmentsService } from './assignments/assignments.service.ts';
 import { createKeepMail } from './assignments/keep-mail.ts';
@@ -40,8 +44,12 @@ import { createAccessTokens } from './sessions/access-tokens.ts';
 import { createPasswords } from './sessions/passwords.ts';
 import { createSessionNotices } from './sessions/session-notices.ts';
 import { createSessionsService } from './sessions/sessions.service.ts';
+import { createSetUp } from './set-up/set-up.service.ts';
 import { createAnalysisReports } from './studies/analysis-reports.ts';
 import { createStudiesService } from './studies/studies.service.ts';
+import { createSystemService, type Surroundings } from './system/system.service.ts';
+import { createAccessTokensService } from './tokens/access-tokens.service.ts';
+import { createOnceService } from './tokens/once.service.ts';
 import { createWorkerPool } from './workers/worker-pool.ts';
 
 export interface ServicesSetup {
@@ -52,6 +60,8 @@ export interface ServicesSetup {
   address?: () => string;
   /** Where the mail queue sends to, for the outbox page. */
   mailRoute?: () => MailRoute;
+  /** What only the process knows, for the system page. */
+  surroundings?: () => Surroundings;
   /** Where messages of assignments go; they wait in a table of their own when absent. */
   queueMail?: QueueMail;
 }
@@ -59,6 +69,7 @@ export interface ServicesSetup {
 /** All use cases over one database, with the threads they need. `close` ends the threads. */
 export function createServices(setup: ServicesSetup) {
   const { database, tokenSecret, now = () => new Date(), address = () => 'http://localhost' } = setup;
+  const surroundings = setup.surroundings ?? (() => ({ dataFolder: null, pingRedis: null }));
   const { queueMail = createKeepMail(now), mailRoute = () => ({ server: null, sinkFolder: null }) } = setup;
   const sessionNotices = createSessionNotices();
   const auditChain = createAuditChain({ database, now });
@@ -84,9 +95,11 @@ export function createServices(setup: ServicesSetup) {
     },
   });
   const classes = createClassServices({ database, tokenSecret, close: closeAttempt, now });
+  const system = createSystemService({ database, mailRoute, surroundings, now });
   return {
     database,
     passwords,
+    system: { state: system.state },
     sessions: createSessionsService({
       database,
       passwords,
@@ -94,8 +107,13 @@ export function createServices(setup: ServicesSetup) {
       notices: sessionNotices,
       now,
     }),
+    tokens: createAccessTokensService({ database, now }),
+    once: createOnceService({ database, now }),
     accountLinks: createAccountLinks({ database, passwords, notices: sessionNotices, address, now }),
+    profile: createProfileService({ database, passwords, notices: sessionNotices, address, now }),
+    setUp: createSetUp({ database, passwords, libraryFolder: path.join(projectFolder, 'scenarios'), now }),
     people: createPeopleService({ database, notices: sessionNotices, address, now }),
+    cohorts: createCohortsService({ database, now }),
     outbox: createOutboxService({ database, mailRoute, now }),
     sendMail: createSendMail({ database, now }),
     audit: createAuditService({ database, chain: auditChain }),
@@ -141,6 +159,7 @@ export function createServices(setup: ServicesSetup) {
       print: createPrintDebrief({ database, debriefs, now }),
     },
     close: async (): Promise<void> => {
+      system.close();
       await classes.chunks.settle();
       await Promise.all([
         passwordThreads.close(),

@@ -20,6 +20,8 @@ const ALLOWED = {
   'scenario.read-published': ['trainee', 'instructor', 'engineer', 'administrator'],
   'scenario.read-draft': ['instructor'],
   'scenario.edit': ['instructor'],
+  /** The whole file, talking point included. */
+  'scenario.export': ['instructor', 'engineer'],
   'attempt.fly': ['trainee', 'instructor'],
   'attempt.read-own': ['trainee', 'instructor', 'engineer', 'administrator'],
   'attempt.read-others': ['instructor', 'administrator'],
@@ -38,6 +40,8 @@ const ALLOWED = {
   'record.correct': ['instructor'],
   'record.rule': ['administrator'],
   'people.look-after': ['administrator'],
+  'cohort.edit': ['instructor', 'administrator'],
+  'system.read': ['administrator'],
   'outbox.read': ['administrator'],
   'organisation.edit': ['administrator'],
   'audit.read': ['administrator'],

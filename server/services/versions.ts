@@ -1,3 +1,4 @@
+import { editionOf } from '#shared/contracts/edition.ts';
 import { ProblemError } from './problem-error.ts';
 
 /** Version of a stored thing as clients see it: opaque, different for a new thing under an old name. */
@@ -25,5 +26,18 @@ export function wantedVersion(header: string | undefined): string {
   throw new ProblemError(
     'version-needed',
     'Saving needs the version that was read, in If-Match; open it again and save.',
+  );
+}
+
+/** The version in If-Match where there is one; without it the caller does not mind what is overwritten. */
+export const possibleVersion = (header: string | undefined): string | null =>
+  header === undefined ? null : wantedVersion(header);
+
+/** @throws {ProblemError} changed-meanwhile when a version is wanted and `present` is no longer it */
+export function requireEdition(wanted: string | null, present: unknown, what: string): void {
+  if (wanted === null || wanted === editionOf(present)) return;
+  throw new ProblemError(
+    'changed-meanwhile',
+    `Someone else changed ${what} meanwhile. Read it again, then make your change.`,
   );
 }

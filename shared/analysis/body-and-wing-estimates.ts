@@ -70,18 +70,25 @@ export function estimateBody(g: BodyGeometry): { CY_beta: number; Cn_beta: numbe
 }
 
 /**
- * Roll damping of a straight-tapered wing: Cl_p = −(a/12)(1 + 3λ)/(1 + λ).
+ * Roll damping of a straight-tapered wing: Cl_p = −(a/12)(1 + 3λ)/(1 + λ)·(A + 2)/(A + 4).
  *
- * @param liftSlopePerRad  Wing lift slope a; 1/rad.
+ * Strips at the wing's own lift slope, times what the antisymmetric load of rolling loses more to its induced flow than
+ * the symmetric load does: a₀A/(A + 4) against a₀A/(A + 2) for an elliptic wing.
+ *
+ * @param liftSlopePerRad  Lift slope a of the whole wing; 1/rad.
  * @param taper            Tip chord over root chord λ; 0 … 1.
+ * @param aspectRatio      A; > 0.
  * @returns                Per unit of pb/2V.
- * @throws {NumericsError} bad-argument for a taper outside 0 … 1.
+ * @throws {NumericsError} bad-argument for a taper outside 0 … 1 or an aspect ratio that is not positive.
  * @sign                   Negative damps.
- * @source                 Strip theory; derived here: −(4a/(S b²))·∫ c(y) y² dy over the half span.
+ * @source                 Strips: derived here, −(4a/(S b²))·∫ c(y) y² dy over the half span. Induced flow: H. Glauert, The Elements of
+ *                         Aerofoil and Airscrew Theory, lifting line of the elliptic wing in roll (from memory).
  */
-export function estimateWingRollDamping(liftSlopePerRad: number, taper: number): number {
+export function estimateWingRollDamping(liftSlopePerRad: number, taper: number, aspectRatio: number): number {
   if (!(taper >= 0 && taper <= 1)) throw new NumericsError('bad-argument', `a taper of ${taper} is outside 0 … 1`);
-  return ((-liftSlopePerRad / 12) * (1 + 3 * taper)) / (1 + taper);
+  requirePositive({ aspectRatio });
+  const strips = ((-liftSlopePerRad / 12) * (1 + 3 * taper)) / (1 + taper);
+  return (strips * (aspectRatio + 2)) / (aspectRatio + 4);
 }
 
 /**

@@ -114,18 +114,18 @@ export function modalCriteria(
   const of = (kind: Mode['kind']) => found.modes.find((mode) => mode.kind === kind);
   const dutch = of('dutch-roll');
   const coupled = of('roll-spiral');
-  const divergent = found.modes.some((mode) => mode.kind === 'real-pair' && mode.re > 0);
+  const pair = pairState(found);
   return [
-    dutchDamping(dutch, divergent, phiOverBeta, klass, category),
-    dutchFrequency(dutch, divergent, klass, category),
+    dutchDamping(dutch, pair, phiOverBeta, klass, category),
+    dutchFrequency(dutch, pair, klass, category),
     rollMode(of('roll'), klass, category),
     spiral(of('spiral'), category),
     coupledRollSpiral(coupled, category),
-    dampingParagraph('25.181', dutch, divergent, 0, '14 CFR 25.181(b): positively damped (seen)'),
+    dampingParagraph('25.181', dutch, pair, 0, '14 CFR 25.181(b): positively damped (seen)'),
     dampingParagraph(
       '23.181',
       dutch,
-      divergent,
+      pair,
       PART_23_ZETA,
       '14 CFR 23.181(b), before amendment 64: 1/10 amplitude in 7 cycles (memory)',
     ),
@@ -136,7 +136,7 @@ const NO_OSCILLATION = 'two real roots stand in place of the Dutch roll';
 
 function dutchDamping(
   dutch: Mode | undefined,
-  divergent: boolean,
+  pair: PairState,
   phiOverBeta: number | null,
   klass: AircraftClass,
   category: FlightCategory,
@@ -150,7 +150,7 @@ function dutchDamping(
   };
   if (dutch?.wn === undefined || dutch.zeta === undefined) {
     const minima = dutchRollMinima(klass, category).map((row) => row.zeta);
-    return { ...base, ...withoutDutchRoll(divergent), limit: minima[0], limits: minima };
+    return { ...base, ...withoutDutchRoll(pair), limit: minima[0], limits: minima };
   }
   const limits = dutchDampingLimits(klass, category, dutch.wn, phiOverBeta);
   return { ...base, level: levelOf(dutch.zeta, limits, 'at least'), value: dutch.zeta, limit: limits[0], limits };
@@ -158,7 +158,7 @@ function dutchDamping(
 
 function dutchFrequency(
   dutch: Mode | undefined,
-  divergent: boolean,
+  pair: PairState,
   klass: AircraftClass,
   category: FlightCategory,
 ): CriterionResult {
@@ -172,15 +172,24 @@ function dutchFrequency(
     limit: limits[0],
     limits,
   };
-  if (dutch?.wn === undefined) return { ...base, ...withoutDutchRoll(divergent) };
+  if (dutch?.wn === undefined) return { ...base, ...withoutDutchRoll(pair) };
   return { ...base, level: levelOf(dutch.wn, limits, 'at least'), value: dutch.wn };
 }
 
-/** A divergence in place of the Dutch roll is worse than Level 3; a pair of convergences has no Dutch roll to judge. */
-function withoutDutchRoll(divergent: boolean): Pick<CriterionResult, 'level' | 'value' | 'remark'> {
-  return divergent
-    ? { level: 4, value: null, remark: `${NO_OSCILLATION}, one of them divergent` }
-    : { level: null, value: null, remark: `${NO_OSCILLATION}, both convergent: there is no Dutch roll to judge` };
+/** What two real roots in place of the Dutch roll do; a root at zero neither converges nor diverges. */
+type PairState = 'divergent' | 'neutral' | 'convergent';
+
+function pairState(found: LateralModes): PairState {
+  const roots = found.modes.filter((mode) => mode.kind === 'real-pair');
+  if (roots.some((mode) => mode.doubleS !== undefined)) return 'divergent';
+  return roots.some((mode) => mode.halveS === undefined) ? 'neutral' : 'convergent';
+}
+
+/** A divergence in place of the Dutch roll is worse than Level 3; a pair without one has no Dutch roll to judge. */
+function withoutDutchRoll(pair: PairState): Pick<CriterionResult, 'level' | 'value' | 'remark'> {
+  if (pair === 'divergent') return { level: 4, value: null, remark: `${NO_OSCILLATION}, one of them divergent` };
+  const which = pair === 'neutral' ? 'one of them neutral' : 'both convergent';
+  return { level: null, value: null, remark: `${NO_OSCILLATION}, ${which}: there is no Dutch roll to judge` };
 }
 
 function rollMode(roll: Mode | undefined, klass: AircraftClass, category: FlightCategory): CriterionResult {
@@ -238,7 +247,7 @@ function coupledRollSpiral(mode: Mode | undefined, category: FlightCategory): Cr
 function dampingParagraph(
   id: '25.181' | '23.181',
   dutch: Mode | undefined,
-  divergent: boolean,
+  pair: PairState,
   limit: number,
   source: string,
 ): CriterionResult {
@@ -252,8 +261,8 @@ function dampingParagraph(
     limits: [limit],
   };
   if (dutch?.zeta === undefined) {
-    const { value, remark } = withoutDutchRoll(divergent);
-    return { ...base, level: divergent ? 'not met' : 'met', value, remark };
+    const { value, remark } = withoutDutchRoll(pair);
+    return { ...base, level: pair === 'convergent' ? 'met' : 'not met', value, remark };
   }
   const met = limit === 0 ? dutch.zeta > 0 : dutch.zeta >= limit;
   return { ...base, level: met ? 'met' : 'not met', value: dutch.zeta };

@@ -74,8 +74,9 @@ const linkTokenSchema = z.string().min(20).max(100);
 export const linkBodySchema = z.strictObject({ token: linkTokenSchema });
 /** What the link from a message is for. */
 export const linkSchema = z.object({
-  kind: z.enum(['invitation', 'reset']),
+  kind: z.enum(['invitation', 'reset', 'address']),
   displayName: z.string(),
+  /** The address one signs in with; for a change of address, the new one. */
   email: z.string(),
   organisation: z.string(),
 });

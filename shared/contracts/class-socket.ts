@@ -193,12 +193,17 @@ export const memberStatusSchema = z.strictObject({
 export type MemberStatus = z.infer<typeof memberStatusSchema>;
 export const memberTellSchema = z.strictObject({ classId, status: memberStatusSchema });
 
-const point = z.tuple([z.number().finite(), z.number().finite(), z.number().finite()]);
 /** What the presenter looks at and points to. */
 export const presentedViewSchema = z.strictObject({
   camera: z.string().max(20),
-  /** Turned by hand: where the camera stands and what it looks at, in stage metres from the aeroplane; null: as the name says. */
-  stand: z.strictObject({ eye: point, target: point }).nullable(),
+  /** Turned by hand, from where the camera of this name stands: about the aeroplane, and its distance as a share. */
+  turned: z
+    .strictObject({
+      azimuthRad: z.number().min(-7).max(7),
+      elevationRad: z.number().min(-4).max(4),
+      zoom: z.number().min(0.05).max(20),
+    })
+    .nullable(),
   arrows: z.array(z.string().max(8)).max(20),
   /** In the picture, 0…1 from the upper left; null when there is none. */
   pointer: z.tuple([z.number().min(0).max(1), z.number().min(0).max(1)]).nullable(),

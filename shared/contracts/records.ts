@@ -155,6 +155,13 @@ export const endpointSchema = z.object({
   lastProblem: z.string(),
 });
 export type Endpoint = z.infer<typeof endpointSchema>;
+/** What of an endpoint is edited; its version is made of this. */
+export const endpointEdited = ({ address, userName, active, hasSecret }: Endpoint) => ({
+  address,
+  userName,
+  active,
+  hasSecret,
+});
 export const saveEndpointSchema = z.strictObject({
   address: z
     .url({ protocol: /^https?$/, error: 'An address begins with https:// or http://.' })

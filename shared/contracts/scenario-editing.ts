@@ -29,6 +29,7 @@ export const scenarioDetailSchema = z.object({
   /** The newest released revision of the airframe of the newest revision, when it is newer than the pinned one. */
   newerAirframe: z.object({ slug: slugSchema, revision: z.number().int().min(1) }).nullable(),
   mayEdit: z.boolean(),
+  mayExport: z.boolean(),
 });
 export type ScenarioDetail = z.infer<typeof scenarioDetailSchema>;
 
@@ -66,6 +67,10 @@ export const scenarioDraftSchema = z.object({
   version: z.string(),
 });
 export type ScenarioDraft = z.infer<typeof scenarioDraftSchema>;
+
+/** A revision as a file: the document as it was given, without defaults filled in. */
+export const scenarioFileSchema = z.object({ document: z.record(z.string(), z.unknown()) });
+export type ScenarioFile = z.infer<typeof scenarioFileSchema>;
 
 export const createdScenarioSchema = z.object({ slug: slugSchema, revision: z.number().int().min(1) });
 

@@ -15,11 +15,14 @@ export const signInBodySchema = z.strictObject({
 });
 export type SignInBody = z.infer<typeof signInBodySchema>;
 
+const MAX_CAUTION = 300;
 export const organisationSettingsSchema = z.object({
   units: z.enum(['aviation', 'si']),
   /** The recognition time the organisation states itself; there is no default. */
   recognitionTimeS: z.number().positive().max(60).nullable(),
   guests: z.boolean(),
+  /** Words of the organisation below the fixed caution; they never replace it. Empty: none. */
+  caution: z.string().trim().max(MAX_CAUTION, `has more than ${MAX_CAUTION} characters`).default(''),
 });
 export type OrganisationSettings = z.infer<typeof organisationSettingsSchema>;
 
@@ -30,8 +33,19 @@ export const organisationBodySchema = z.strictObject({
 });
 export type OrganisationBody = z.infer<typeof organisationBodySchema>;
 
+/** Units a person prefers; null: those of the organisation. */
+export const personalUnitsSchema = z.enum(['aviation', 'si']).nullable();
+/** A zone by its name in the time-zone database; null: that of the device. */
+export const timeZoneSchema = z.string().min(1).max(64).nullable();
+
 export const meSchema = z.object({
-  person: z.object({ id: z.uuid(), displayName: z.string(), email: z.string() }),
+  person: z.object({
+    id: z.uuid(),
+    displayName: z.string(),
+    email: z.string(),
+    units: personalUnitsSchema.default(null),
+    timeZone: timeZoneSchema.default(null),
+  }),
   organisation: z.object({ id: z.uuid(), name: z.string(), settings: organisationSettingsSchema }),
   roles: z.array(roleSchema),
   /** Version of the program. */

@@ -121,7 +121,8 @@ function collect(issue: z.core.$ZodIssue, prefix: PropertyKey[], input: unknown,
     }
     case 'too_small': {
       const what = sizeWord(issue.origin, value);
-      const bound = `${issue.inclusive ? 'at least' : 'above'} ${issue.minimum}`;
+      const least = `${issue.inclusive ? 'at least' : 'above'} ${issue.minimum}`;
+      const bound = issue.origin === 'string' ? `${least} characters long` : least;
       const rule = issue.origin === 'number' && issue.minimum === 0 && !issue.inclusive ? 'positive' : 'minimum';
       return add(rule, `${name} ${what}; it must be ${bound}`, `Give ${sizeNoun(issue.origin)} ${bound}.`);
     }
@@ -153,6 +154,7 @@ function collect(issue: z.core.$ZodIssue, prefix: PropertyKey[], input: unknown,
 
 function sizeWord(origin: string, value: unknown): string {
   if (origin === 'array' && Array.isArray(value)) return `has ${value.length} entries`;
+  if (origin === 'string' && typeof value === 'string' && value.trim() === '') return 'is blank';
   if (origin === 'string' && typeof value === 'string') return `has ${value.length} characters`;
   return `is ${shown(value)}`;
 }

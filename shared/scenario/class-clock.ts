@@ -56,17 +56,51 @@ export interface ClockAnswer {
   answeredMs: number;
 }
 
+/** How far the server's clock is ahead of this one, wrong by at most half of the round trip; ms. */
+export interface ClockOffset {
+  offsetMs: number;
+  roundTripMs: number;
+}
+
 /**
  * How far the server's clock is ahead of this one, ms: from the answers that came back fastest, because those are the
  * least delayed one way. Wrong by at most half of the fastest round trip.
  *
  * @param answers  Recent answers, at least one.
  */
-export function clockOffset(answers: readonly ClockAnswer[]): { offsetMs: number; roundTripMs: number } {
+export function clockOffset(answers: readonly ClockAnswer[]): ClockOffset {
   let best = answers[0];
   for (const answer of answers) {
     if (answer.answeredMs - answer.askedMs < best.answeredMs - best.askedMs) best = answer;
   }
   const roundTripMs = best.answeredMs - best.askedMs;
   return { offsetMs: best.serverMs - (best.askedMs + roundTripMs / 2), roundTripMs };
+}
+
+/** A message of the server may be so late beyond the round trip, ms, before the clock is doubted. */
+const LATE_MS = 250;
+const COARSE_MS = 20;
+
+/**
+ * Which of two measurements to go on with: the sharper one while they agree, else the newer, for one of the clocks stood still or was set.
+ *
+ * @param before  What was known; an infinite round trip: nothing.
+ * @param next    The new measurement.
+ */
+export function betterOffset(before: ClockOffset, next: ClockOffset): ClockOffset {
+  const agree = Math.abs(before.offsetMs - next.offsetMs) <= (before.roundTripMs + next.roundTripMs) / 2 + COARSE_MS;
+  return agree && before.roundTripMs < next.roundTripMs ? before : next;
+}
+
+/**
+ * True when a time that the server has told just now does not fit what is known of its clock: it lies in the future, or
+ * farther in the past than a message takes.
+ *
+ * @param known     What is known of the server's clock.
+ * @param serverMs  Time in the message, of the server.
+ * @param nowMs     This clock as the message arrives.
+ */
+export function contradicts(known: ClockOffset, serverMs: number, nowMs: number): boolean {
+  const lateMs = nowMs + known.offsetMs - serverMs;
+  return lateMs < -(known.roundTripMs / 2 + COARSE_MS) || lateMs > known.roundTripMs + LATE_MS;
 }

@@ -84,3 +84,20 @@ export function endsBeforeStart(
   }
   return opens.root === closes.root && closes.highS < opens.lowS;
 }
+
+/** Why a window holds next to nothing in every run: it opens too late, or closes as it opens; null when neither is known. */
+export function emptyWindow(
+  from: WindowEdge,
+  to: WindowEdge,
+  scenario: Pick<Scenario, 'events' | 'duration_s'>,
+): 'opens-too-late' | 'no-length' | null {
+  if (from === 'end') return null; // the last state alone is meant
+  const timings = timingsOf(scenario.events);
+  const opens = edgeTiming(from, timings, scenario.duration_s);
+  const closes = edgeTiming(to, timings, scenario.duration_s);
+  if (!opens || !closes) return null;
+  if (opens.root === 'start' && opens.lowS >= scenario.duration_s) return 'opens-too-late';
+  const sameEvent = opens.id === closes.id && opens.plusS === closes.plusS;
+  const sameTime = opens.root === closes.root && opens.lowS === closes.highS && opens.highS === closes.lowS;
+  return sameEvent || (sameTime && opens.lowS === opens.highS) ? 'no-length' : null;
+}

@@ -6,7 +6,7 @@ import { TICK_RATE_HZ } from '../model/plant-types.ts';
 import { createRun } from './run.ts';
 import { createReferencePilot, delayTicks, firstEventTick, flyRun, handsOff, pilotTask } from './reference-pilot.ts';
 import type { CriterionResult, Run, RunSnapshot, RunSpec, RunningCriterion } from './run-types.ts';
-import type { MeasureName } from './scenario-format.ts';
+import type { MeasureName, Scenario, ScenarioCriterion } from './scenario-format.ts';
 
 /** Longest delay looked at, grid of the search and resolution of each change; s. */
 export const LONGEST_DELAY_S = 5;
@@ -50,9 +50,7 @@ export interface BudgetEvaluator {
  */
 export function createBudgetEvaluator(spec: RunSpec): BudgetEvaluator {
   const run = createRun(spec, { lean: true });
-  const counted = new Set(
-    spec.scenario.criteria.filter((c) => c.required && !REACTION_MEASURES.includes(c.measure)).map((c) => c.id),
-  );
+  const counted = new Set(boundCriteria(spec.scenario).map(({ id }) => id));
   const start = run.save();
   const snapshots: RunSnapshot[] = [start];
   const byEvent = pilotTask(spec.scenario).kind === 'hold-heading';
@@ -219,29 +217,75 @@ export interface CriterionBudget {
   latestS: number | null;
   /** True when it is met at every delay up to the longest. */
   capped: boolean;
+  /** All intervals of delays at which it is met; s. More than one, or one that does not begin at 0: not monotonic. */
+  intervalsS: [number, number][];
 }
 
-/** Latest delay per criterion on the grid, for the bars of the editor; all required criteria besides those of the reaction. */
+/** Criteria that the budget looks at: all required ones besides those of the reaction. */
+export function boundCriteria({ criteria }: Pick<Scenario, 'criteria'>): ScenarioCriterion[] {
+  return criteria.filter(({ required, measure }) => required && !REACTION_MEASURES.includes(measure));
+}
+
+/** Budget per criterion, for the bars of the editor: on the grid, each change halved down to the resolution. */
 export function criterionBudgets(evaluator: BudgetEvaluator, ids: readonly string[]): CriterionBudget[] {
-  const outcomes = budgetGrid().map((delayS) => evaluator.evaluate(delayS, true));
+  const search = searchCriterionBudgets(ids);
+  let step = search.next();
+  while (!step.done) step = search.next(step.value.map((delayS) => evaluator.evaluate(delayS, true)));
+  return step.value;
+}
+
+/** The search for `criterionBudgets` as a dialogue like `searchBudget`; every outcome names all that failed. */
+export function* searchCriterionBudgets(
+  ids: readonly string[],
+): Generator<number[], CriterionBudget[], DelayOutcome[]> {
+  const grid = budgetGrid();
+  const outcomes = yield grid;
+  const isMet = (id: string, outcome: DelayOutcome): boolean => !outcome.failed.includes(id);
+  const changes = ids.flatMap((id) =>
+    outcomes.slice(1).flatMap((outcome, i): Change[] => {
+      const metBefore = isMet(id, outcomes[i]);
+      return metBefore === isMet(id, outcome)
+        ? []
+        : [{ id, metBefore, before: delayTicks(grid[i]), after: delayTicks(grid[i + 1]) }];
+    }),
+  );
+  const middle = ({ before, after }: Change): number => Math.round((before + after) / 2);
+  const isOpen = ({ before, after }: Change): boolean => after - before > RESOLUTION_TICKS;
+  for (;;) {
+    const wanted = [...new Set(changes.filter(isOpen).map(middle))];
+    if (wanted.length === 0) break;
+    const found = new Map<number, DelayOutcome>();
+    for (const outcome of yield wanted.map((ticks) => ticks / TICK_RATE_HZ))
+      found.set(delayTicks(outcome.delayS), outcome);
+    for (const change of changes.filter(isOpen)) {
+      const at = middle(change);
+      const outcome = found.get(at);
+      if (outcome !== undefined && isMet(change.id, outcome) === change.metBefore) change.before = at;
+      else change.after = at;
+    }
+  }
   return ids.map((id) => {
-    let latestS: number | null = null;
-    let failsFrom: number | null = null;
-    for (const outcome of outcomes) {
-      if (outcome.failed.includes(id)) {
-        failsFrom = outcome.delayS;
-        break;
+    const intervalsS: [number, number][] = [];
+    let open: number | null = isMet(id, outcomes[0]) ? delayTicks(grid[0]) : null;
+    for (const { before, after, id: of } of changes) {
+      if (of !== id) continue;
+      if (open === null) open = after;
+      else {
+        intervalsS.push([open / TICK_RATE_HZ, before / TICK_RATE_HZ]);
+        open = null;
       }
-      latestS = outcome.delayS;
     }
-    if (latestS === null || failsFrom === null) return { id, latestS, capped: failsFrom === null && latestS !== null };
-    let low = delayTicks(latestS);
-    let high = delayTicks(failsFrom);
-    while (high - low > RESOLUTION_TICKS) {
-      const middle = Math.round((low + high) / 2);
-      if (evaluator.evaluate(middle / TICK_RATE_HZ, true).failed.includes(id)) high = middle;
-      else low = middle;
-    }
-    return { id, latestS: low / TICK_RATE_HZ, capped: false };
+    if (open !== null) intervalsS.push([open / TICK_RATE_HZ, grid[grid.length - 1]]);
+    const [first] = intervalsS;
+    const latestS = first !== undefined && first[0] === 0 ? first[1] : null;
+    return { id, latestS, capped: latestS === LONGEST_DELAY_S, intervalsS };
   });
+}
+
+/** Between two delays a criterion changes from met to failed, or back; ticks. */
+interface Change {
+  id: string;
+  metBefore: boolean;
+  before: number;
+  after: number;
 }

@@ -3,7 +3,7 @@
  * The fly screen, workers, server and command line all drive the same `Run`.
  */
 import type { Airframe } from '../model/airframe-schema.ts';
-import type { Observation, Plant, WantedValues } from '../model/plant-types.ts';
+import type { Observation, Plant, PlantOptions, WantedValues } from '../model/plant-types.ts';
 import type { Scenario, ScenarioEvent } from './scenario-schema.ts';
 
 /** Version of model and runner together; stored with every attempt. A change of any number raises it. */
@@ -54,6 +54,10 @@ export interface RunOptions {
    * without them). Results are the same.
    */
   lean?: boolean;
+  /** For a run that is only looked at: no state hash, all else as ever. */
+  unhashed?: boolean;
+  /** Another integrator of the tick, such as an adaptive one that the stepper is compared with. */
+  integrate?: PlantOptions['integrate'];
 }
 
 export interface FiredEvent {

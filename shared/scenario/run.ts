@@ -65,12 +65,13 @@ function readWhenAsked(engineCount: number, fresh: () => Observation): Observati
 export const createRun: CreateRun = (spec, options = {}) => {
   const { scenario, airframe, seed } = spec;
   const lean = options.lean === true;
+  const hashed = !lean && options.unhashed !== true;
   const fit = checkAgainstAirframe(scenario, airframe);
   if (fit.issues.length > 0) {
     throw new ScenarioError('does-not-fit-airframe', fit.issues[0].message, fit.issues);
   }
   const drawn = spec.drawn ?? drawValues(scenario, seed);
-  const plant = createPlant(plantSetup(scenario, airframe, seed));
+  const plant = createPlant(plantSetup(scenario, airframe, seed), { integrate: options.integrate });
   const engines = new EngineBook(plant.aircraft);
   const queue = new EventQueue(scenario.events.map((event) => withDrawnValues(event, drawn)));
   const line = {
@@ -116,7 +117,7 @@ export const createRun: CreateRun = (spec, options = {}) => {
   };
   const schedule = new InjectionSchedule(queue, inject, spec.branches?.[0] ?? spec.injected ?? []);
   const numbersLength = STATE_HASH_LENGTH + ValidityWatch.MEMORY + board.memoryLength;
-  if (!lean) plant.hashInto(hash);
+  if (hashed) plant.hashInto(hash);
 
   function readInputs(sample: ControlSample): void {
     const { inputs } = plant;
@@ -186,7 +187,7 @@ export const createRun: CreateRun = (spec, options = {}) => {
       end('non-finite', plant.fault, false);
       return;
     }
-    if (!lean) plant.hashInto(hash);
+    if (hashed) plant.hashInto(hash);
     signals.moved();
     if (signals.heightAboveRunwayM <= gearHeightM) {
       const where = scenario.runway ? null : `the aeroplane met the ground at ${signals.timeS.toFixed(2)} s`;
@@ -265,7 +266,7 @@ export const createRun: CreateRun = (spec, options = {}) => {
       });
     },
     stateHash() {
-      if (lean) throw new ScenarioError('no-state-hash', 'a lean run keeps no state hash');
+      if (!hashed) throw new ScenarioError('no-state-hash', 'this run keeps no state hash');
       return hash.hex();
     },
     save() {
@@ -273,7 +274,7 @@ export const createRun: CreateRun = (spec, options = {}) => {
       let at = hash.saveInto(numbers, 0);
       at = watch.saveInto(numbers, at);
       board.saveInto(numbers, at);
-      return new Snapshot(plant.tick, lean ? '' : hash.hex(), {
+      return new Snapshot(plant.tick, hashed ? hash.hex() : '', {
         plant: plant.save(),
         events: queue.save(),
         engines: engines.save(),

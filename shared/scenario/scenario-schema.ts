@@ -87,7 +87,25 @@ function refuseEarly(input: unknown): FieldIssue | null {
       remedy: 'Remove events, or split the scenario.',
     };
   }
+  // Zod's records pass over this one name without a word.
+  const strange = Array.isArray(events)
+    ? events.findIndex((_, i) => hasOwn(input, `/events/${i}/vary`, '__proto__'))
+    : -1;
+  if (strange >= 0) {
+    const field = `/events/${strange}/vary/__proto__`;
+    return {
+      field,
+      rule: 'variable-member',
+      message: '"__proto__" is not a number that can vary',
+      remedy: 'Remove it.',
+    };
+  }
   return null;
+}
+
+function hasOwn(input: unknown, pointer: string, name: string): boolean {
+  const value = valueAt(input, pointer);
+  return typeof value === 'object' && value !== null && Object.hasOwn(value, name);
 }
 
 const EVENT_AT = /^\/events\/\d+$/u;

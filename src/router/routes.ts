@@ -28,6 +28,12 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Forgotten password', open: true, bare: true },
   },
   {
+    path: '/set-up',
+    name: 'set-up',
+    component: () => import('../views/account/SetUpView.vue'),
+    meta: { title: 'Set up', open: true, bare: true },
+  },
+  {
     path: '/administration',
     name: 'people',
     component: () => import('../views/administration/PeopleView.vue'),
@@ -44,6 +50,12 @@ export const routes: RouteRecordRaw[] = [
     name: 'organisation',
     component: () => import('../views/administration/OrganisationView.vue'),
     meta: { title: 'Organisation', ...ADMINISTRATION },
+  },
+  {
+    path: '/administration/system',
+    name: 'system',
+    component: () => import('../views/administration/SystemView.vue'),
+    meta: { title: 'System', ...ADMINISTRATION },
   },
   {
     path: '/administration/audit',
@@ -140,6 +152,17 @@ export const routes: RouteRecordRaw[] = [
     meta: { title: 'Playlists', area: 'assignments', roles: ['instructor'], purpose: 'make playlists' },
   },
   {
+    path: '/cohorts',
+    name: 'cohorts',
+    component: () => import('../views/cohorts/CohortsView.vue'),
+    meta: {
+      title: 'Cohorts',
+      area: 'assignments',
+      roles: ['instructor', 'administrator'],
+      purpose: 'look after cohorts',
+    },
+  },
+  {
     path: '/records',
     name: 'records',
     component: () => import('../views/records/RecordsView.vue'),
@@ -233,6 +256,18 @@ export const routes: RouteRecordRaw[] = [
     name: 'account',
     component: () => import('../views/account/AccountView.vue'),
     meta: { title: 'Profile and preferences' },
+  },
+  {
+    path: '/account/tokens',
+    name: 'tokens',
+    component: () => import('../views/account/TokensView.vue'),
+    meta: { title: 'Tokens' },
+  },
+  {
+    path: '/account/interface',
+    name: 'interface',
+    component: () => import('../views/account/InterfaceView.vue'),
+    meta: { title: 'Interface for programs' },
   },
   {
     path: '/:address(.*)*',

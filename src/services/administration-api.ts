@@ -6,6 +6,7 @@ import {
   linkSchema,
   outboxPageSchema,
   peoplePageSchema,
+  personSchema,
   rosterAnswerSchema,
   type AuditQuery,
   type ChangePassword,
@@ -16,15 +17,19 @@ import {
 } from '#shared/contracts/administration.ts';
 import { organisationBodySchema, type OrganisationBody, type Role } from '#shared/contracts/session.ts';
 import { api } from './http-client.ts';
+import { ifStill } from './if-still.ts';
 
 const NOTHING = z.undefined();
 const person = (id: string, rest: string): string => `/api/people/${encodeURIComponent(id)}/${rest}`;
 
 export const listPeople = (query: Partial<PeopleQuery>, signal?: AbortSignal) =>
   api.get('/api/people', peoplePageSchema, { query, signal });
+export const getPerson = (id: string, signal?: AbortSignal) =>
+  api.get(`/api/people/${encodeURIComponent(id)}`, personSchema, { signal });
 export const sendRoster = (roster: Roster) => api.post('/api/people/roster', roster, rosterAnswerSchema);
 export const inviteAgain = (id: string) => api.post(person(id, 'invitation'), undefined, NOTHING);
-export const saveRoles = (id: string, roles: Role[]) => api.put(person(id, 'roles'), { roles }, NOTHING);
+export const saveRoles = (id: string, roles: Role[], read: readonly Role[]) =>
+  api.put(person(id, 'roles'), { roles }, NOTHING, { headers: ifStill([...read].sort()) });
 export const deactivatePerson = (id: string) => api.post(person(id, 'deactivation'), undefined, NOTHING);
 export const restorePerson = (id: string) => api.delete(person(id, 'deactivation'));
 export const signPersonOut = (id: string) => api.post(person(id, 'sign-out'), undefined, NOTHING);
@@ -46,7 +51,8 @@ export function auditFileAddress({ search, kind, from, to }: AuditQuery): string
 
 export const getOrganisation = (signal?: AbortSignal) =>
   api.get('/api/organisation', organisationBodySchema, { signal });
-export const saveOrganisation = (body: OrganisationBody) => api.put('/api/organisation', body, NOTHING);
+export const saveOrganisation = (body: OrganisationBody, read: OrganisationBody) =>
+  api.put('/api/organisation', body, NOTHING, { headers: ifStill(read) });
 
 export const lookAtLink = (token: string, signal?: AbortSignal) =>
   api.post('/api/session/link/look', { token }, linkSchema, { signal });

@@ -44,6 +44,11 @@ export const remindPeople = (id: string, people: readonly string[]) =>
 export const excusePeople = (id: string, people: readonly string[]) =>
   api.post(at(id, '/excuse'), { people }, assignmentSchema);
 
+export const addPeople = (
+  id: string,
+  body: { people: readonly string[]; cohorts: readonly string[]; without: readonly string[] },
+) => api.post(at(id, '/people'), body, assignmentSchema);
+
 export const closeAssignment = (id: string, reason: string) => api.post(at(id, '/close'), { reason }, assignmentSchema);
 
 export const calendarAddress = (id: string): string => at(id, '/calendar.ics');

@@ -1,6 +1,8 @@
 import {
   cellSchema,
   distributionSchema,
+  endpointEdited,
+  type Endpoint,
   endpointSchema,
   matrixSchema,
   queuedSchema,
@@ -15,6 +17,7 @@ import {
   type SaveEndpoint,
 } from '#shared/contracts/records.ts';
 import { api } from './http-client.ts';
+import { ifStill } from './if-still.ts';
 
 export const getMatrix = (query: Partial<MatrixQuery>, signal?: AbortSignal) =>
   api.get('/api/records/matrix', matrixSchema, { query, signal });
@@ -35,10 +38,12 @@ export const correctRecord = (attemptId: string, body: NewCorrection) =>
   api.post(`/api/records/attempts/${encodeURIComponent(attemptId)}/corrections`, body, cellSchema);
 
 export const getEndpoint = (signal?: AbortSignal) => api.get('/api/records/endpoint', endpointSchema, { signal });
-export const saveEndpoint = (body: SaveEndpoint) => api.put('/api/records/endpoint', body, endpointSchema);
+export const saveEndpoint = (body: SaveEndpoint, read: Endpoint) =>
+  api.put('/api/records/endpoint', body, endpointSchema, { headers: ifStill(endpointEdited(read)) });
 export const pushStatements = () => api.post('/api/records/endpoint/push', undefined, queuedSchema);
 export const getRetention = (signal?: AbortSignal) => api.get('/api/records/retention', retentionSchema, { signal });
-export const saveRetention = (body: Retention) => api.put('/api/records/retention', body, retentionSchema);
+export const saveRetention = (body: Retention, read: Retention) =>
+  api.put('/api/records/retention', body, retentionSchema, { headers: ifStill(read) });
 export const getRetentionEffect = (body: Retention) =>
   api.post('/api/records/retention/effect', body, retentionEffectSchema);
 

@@ -2,10 +2,12 @@ import {
   createdScenarioSchema,
   scenarioDetailSchema,
   scenarioDraftSchema,
+  scenarioFileSchema,
   scenarioLineSchema,
   type CreateScenario,
   type ScenarioDetail,
   type ScenarioDraft,
+  type ScenarioFile,
 } from '#shared/contracts/scenario-editing.ts';
 import { api } from './http-client.ts';
 
@@ -16,6 +18,9 @@ export const getScenarioDetail = (slug: string, signal?: AbortSignal): Promise<S
 
 export const getScenarioDraft = (slug: string, revision: number, signal?: AbortSignal): Promise<ScenarioDraft> =>
   api.get(at(slug, `/drafts/${revision}`), scenarioDraftSchema, { signal });
+
+export const getScenarioFile = (slug: string, revision: number, signal?: AbortSignal): Promise<ScenarioFile> =>
+  api.get(at(slug, `/revisions/${revision}/file`), scenarioFileSchema, { signal });
 
 export const createScenario = (body: CreateScenario) => api.post('/api/scenarios', body, createdScenarioSchema);
 

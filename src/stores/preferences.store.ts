@@ -3,6 +3,8 @@ import { defineStore } from 'pinia';
 import { computed, ref, watch } from 'vue';
 import { z } from 'zod';
 import type { UnitPreference } from '#shared/units/quantity.ts';
+import { causeOf } from '../services/api-error.ts';
+import { useNoticesStore } from './notices.store.ts';
 import { useSessionStore } from './session.store.ts';
 import { readStored, writeStored } from './stored-json.ts';
 
@@ -19,7 +21,6 @@ const deviceSchema = z.object({
   organisation: z.string().max(200).nullable().catch(null),
 });
 const personSchema = z.object({
-  units: z.enum(['aviation', 'si']).nullable().catch(null),
   arrows: z.array(z.enum(ARROW_IDS)).nullable().catch(null),
 });
 type Device = z.infer<typeof deviceSchema>;
@@ -29,11 +30,12 @@ type Person = z.infer<typeof personSchema>;
 const DEVICE_KEY = 'sidewash.device';
 const personKey = (id: string): string => `sidewash.person.${id}`;
 const DEVICE_DEFAULTS: Device = { theme: 'system', renderer: 'auto', organisation: null };
-const PERSON_DEFAULTS: Person = { units: null, arrows: null };
+const PERSON_DEFAULTS: Person = { arrows: null };
 
-/** What is preferred on this device, and what this person prefers on it. Kept in the browser, not on the server. */
+/** What is preferred on this device, and what this person prefers on it. Kept in the browser, but for the units. */
 export const usePreferencesStore = defineStore('preferences', () => {
   const session = useSessionStore();
+  const notices = useNoticesStore();
   const keeper = window.localStorage;
   const device = ref<Device>(readStored(keeper, DEVICE_KEY, deviceSchema) ?? DEVICE_DEFAULTS);
   const person = ref<Person>(PERSON_DEFAULTS);
@@ -68,11 +70,23 @@ export const usePreferencesStore = defineStore('preferences', () => {
     get: () => device.value.renderer,
     set: (choice) => (device.value = { ...device.value, renderer: choice }),
   });
-  /** The person's own choice, else the organisation's. */
+  /** Chosen just now and on its way to the server. */
+  const unitsOnTheWay = ref<UnitPreference | null>(null);
+  /** The person's own choice, kept by the server so that it goes along to every device; else the organisation's. */
   const units = computed<UnitPreference>({
-    get: () => person.value.units ?? session.me?.organisation.settings.units ?? 'aviation',
-    set: (choice) => setPerson({ units: choice }),
+    get: () => unitsOnTheWay.value ?? session.me?.person.units ?? session.me?.organisation.settings.units ?? 'aviation',
+    set: (choice) => void chooseUnits(choice),
   });
+  async function chooseUnits(choice: UnitPreference): Promise<void> {
+    unitsOnTheWay.value = choice;
+    try {
+      await session.saveProfile({ units: choice });
+    } catch (error) {
+      notices.say(`Units not kept. ${causeOf(error)}`);
+    } finally {
+      unitsOnTheWay.value = null;
+    }
+  }
   const arrows = computed<ReadonlySet<ArrowId>>({
     get: () => new Set(person.value.arrows ?? ARROW_IDS),
     set: (shown) => setPerson({ arrows: ARROW_IDS.filter((id) => shown.has(id)) }),

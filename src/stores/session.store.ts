@@ -1,9 +1,11 @@
 import { defineStore } from 'pinia';
 import { computed, ref, shallowRef } from 'vue';
+import type { ProfileBody } from '#shared/contracts/account.ts';
 import type { Me, Role } from '#shared/contracts/session.ts';
 import { isApiError } from '../services/api-error.ts';
 import { api } from '../services/http-client.ts';
 import * as sessionApi from '../services/session-api.ts';
+import { setReaderZone } from './reader-zone.ts';
 
 export type SessionState = 'unknown' | 'signed-out' | 'signed-in';
 
@@ -19,6 +21,7 @@ export const useSessionStore = defineStore('session', () => {
 
   function settle(next: Me | null): void {
     me.value = next;
+    setReaderZone(next?.person.timeZone ?? null);
     state.value = next ? 'signed-in' : 'signed-out';
   }
 
@@ -55,9 +58,21 @@ export const useSessionStore = defineStore('session', () => {
     settle(null);
   }
 
+  /** Reads again who is signed in, after something of the organisation has changed. */
+  async function reload(): Promise<void> {
+    settle(await sessionApi.fetchMe());
+  }
+
+  /** Saves what is given of the own profile and keeps the rest. */
+  async function saveProfile(change: Partial<ProfileBody>): Promise<void> {
+    if (me.value === null) return;
+    const { displayName, units, timeZone } = me.value.person;
+    settle(await sessionApi.saveProfile({ displayName, units, timeZone, ...change }));
+  }
+
   function hasRole(wanted: readonly Role[]): boolean {
     return wanted.some((role) => roles.value.includes(role));
   }
 
-  return { me, roles, state, expired, restore, signIn, signOut, hasRole };
+  return { me, roles, state, expired, restore, signIn, signOut, saveProfile, reload, hasRole };
 });

@@ -29,6 +29,8 @@ export interface BenchResult {
 /** Handed to each row: a place to say what is happening, and where cleaning up is registered. */
 export interface BenchContext {
   note(text: string): void;
+  /** True with `--long`: rows that can measure for half an hour do. */
+  readonly long: boolean;
   /** Runs after the row, last registered first, also when the row threw. */
   cleanUp(action: () => unknown): void;
 }

@@ -1,5 +1,5 @@
 /**
- * Measures every claim, one row each: npm run bench [-- --json FILE] [--only NAME[,NAME]].
+ * Measures every claim, one row each: npm run bench [-- --json FILE] [--only NAME[,NAME]] [--long].
  * A row that misses its goal is printed as missed; a row that cannot be measured ends the run with an error.
  */
 import fs from 'node:fs';
@@ -12,7 +12,7 @@ import { formatTable } from './table.ts';
 const rowsFolder = path.join(path.dirname(fileURLToPath(import.meta.url)), 'rows');
 
 const { values: options } = parseArgs({
-  options: { json: { type: 'string' }, only: { type: 'string' } },
+  options: { json: { type: 'string' }, only: { type: 'string' }, long: { type: 'boolean', default: false } },
 });
 
 const lines: BenchReportLine[] = [];
@@ -59,6 +59,7 @@ function chosen(rows: BenchRow[], only: string | undefined): BenchRow[] {
 async function measure(row: BenchRow): Promise<BenchReportLine> {
   const cleanUps: (() => unknown)[] = [];
   const context: BenchContext = {
+    long: options.long,
     note: (text) => void process.stdout.write(`  ${text}\n`),
     cleanUp: (action) => void cleanUps.unshift(action),
   };

@@ -37,6 +37,7 @@ export class ClassClient {
   entries: ClassEntry[] = [];
   entered: Entered | null = null;
   offsetMs = 0;
+  roundTripMs = 0;
   flight: ClassFlight | null = null;
   attemptId: string | null = null;
   follower: Follower | null = null;
@@ -129,7 +130,7 @@ export class ClassClient {
       const answer = await this.socket.timeout(5000).emitWithAck('clock:ask');
       if (answer.ok) answers.push({ askedMs, serverMs: answer.data.serverTimeMs, answeredMs: this.now() });
     }
-    this.offsetMs = clockOffset(answers).offsetMs;
+    ({ offsetMs: this.offsetMs, roundTripMs: this.roundTripMs } = clockOffset(answers));
     this.entered = await this.request<Entered>('class:enter', { classId: this.classId, since: this.state.seq });
     this.inside = this.entered.pass.admitted;
     this.take(this.entered.entries);

@@ -18,7 +18,7 @@ export interface FlownAttempt {
  * afterwards, because a minute of flight takes a blink here and the server's clock bounds what may have been flown.
  */
 export async function flyAttempt(
-  server: TestServer,
+  server: Pick<TestServer, 'sql'>,
   client: Client,
   scenarioSlug: string,
   pilot: 'hands-off' | { delayS: number } = 'hands-off',
@@ -52,7 +52,7 @@ export async function flyAttempt(
 }
 
 /** Lets an attempt have started an hour ago; its guard trigger is lifted for the change. */
-export async function allowFlownTime(server: TestServer, id: string): Promise<void> {
+export async function allowFlownTime(server: Pick<TestServer, 'sql'>, id: string): Promise<void> {
   const [row] = await server.sql('SHOW CREATE TRIGGER attempt_keep');
   const statement = z.string().parse(row['SQL Original Statement']);
   await server.sql('DROP TRIGGER attempt_keep');

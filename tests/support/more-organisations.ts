@@ -12,7 +12,7 @@ export async function addOrganisation(server: TestServer, mailbox: string, roles
       id: organisationId,
       slug: `elsewhere-${organisationId.slice(0, 8)}`,
       name: 'Elsewhere Flight School (invented)',
-      settings: { units: 'aviation', recognitionTimeS: null, guests: false },
+      settings: { units: 'aviation', recognitionTimeS: null, guests: false, caution: '' },
       demonstration: false,
       at,
     });

@@ -1,9 +1,10 @@
+import { conditionRemarks } from '#shared/analysis/condition-remarks.ts';
 import { crosswindLimit } from '#shared/analysis/sideslip-crosswind.ts';
 import { DEG, FT } from '#shared/units/constants.ts';
 import { readAirframe } from '../airframe-file.ts';
 import type { Command } from '../command.ts';
 import { aircraftOption, knots, named, speedAndHeight } from '../condition.ts';
-import { fixed, printJson, printText, table } from '../output.ts';
+import { fixed, printJson, printText, remarkLines, table } from '../output.ts';
 
 export const command: Command = {
   name: 'crosswind',
@@ -19,6 +20,7 @@ export const command: Command = {
     const { tasMps, heightM } = speedAndHeight(args);
     const limit = named(file, () => crosswindLimit(aircraft, tasMps, heightM));
     const { controlPower, withinData } = limit;
+    const remarks = remarkLines(conditionRemarks(aircraft, tasMps, heightM), json);
     if (json) {
       printJson({
         crosswind_kt: knots(controlPower.crosswindMps),
@@ -51,6 +53,7 @@ export const command: Command = {
       `${aircraft.name}, ${aircraft.configuration}, ${fixed(knots(tasMps), 1)} kt true, ${fixed(heightM / FT, 0)} ft; wind from the right, engine moments zero`,
       '',
       ...table(rows),
+      ...remarks,
     ]);
     return 0;
   },

@@ -1,5 +1,6 @@
 import { analyseLateral } from '#shared/analysis/lateral-analysis.ts';
 import type { LateralAnalysis } from '#shared/analysis/lateral-analysis.ts';
+import { conditionRemarks } from '#shared/analysis/condition-remarks.ts';
 import type { CriterionResult } from '#shared/analysis/criteria-8785c.ts';
 import type { Mode, ModeKind } from '#shared/analysis/modes.ts';
 import type { Aircraft } from '#shared/model/aircraft.ts';
@@ -8,7 +9,7 @@ import { readAirframe } from '../airframe-file.ts';
 import { choiceOption } from '../arguments.ts';
 import type { Command } from '../command.ts';
 import { aircraftOption, knots, named, speedAndHeight } from '../condition.ts';
-import { fixed, printJson, printText, table } from '../output.ts';
+import { fixed, printJson, printText, remarkLines, table } from '../output.ts';
 
 export const command: Command = {
   name: 'modes',
@@ -38,8 +39,9 @@ export const command: Command = {
       yawDamper: args.flags.has('yaw-damper'),
     };
     const analysis = named(file, () => analyseLateral(aircraft, { tasMps, heightM }, options));
+    const remarks = remarkLines(conditionRemarks(aircraft, tasMps, heightM), json);
     if (json) printJson(jsonOf(analysis));
-    else printText(textOf(analysis, aircraft, casMps));
+    else printText([...textOf(analysis, aircraft, casMps), ...remarks]);
     return 0;
   },
 };
@@ -107,7 +109,9 @@ function textOf(analysis: LateralAnalysis, aircraft: Aircraft, casMps: number): 
     condition,
     '',
     ...table(modeRows, new Set([2, 3, 4, 5, 6, 7])),
-    ...(found.remarks.length > 0 ? ['', `Remarks: ${found.remarks.join(', ').replaceAll('-', ' ')}`] : []),
+    ...(found.remarks.length > 0
+      ? ['', `Remarks: ${found.remarks.join(', ').replaceAll('-', ' ').replaceAll('dutch', 'Dutch')}`]
+      : []),
     '',
     ...table(criterionRows),
   ];

@@ -34,7 +34,9 @@ export const command: Command = {
       return { run: made, trace: takes };
     });
     if (run.ended === 'non-finite')
-      throw new UsageError(`${file}: the run stopped: ${run.endDetail ?? 'a state is not finite'}`);
+      throw new UsageError(
+        `${file}: /events: non-finite: the run stopped at ${fixed(run.timeS, 2)} s: ${run.endDetail ?? 'a state is not finite'}. Lower what the events before it ask.`,
+      );
     if (csv !== undefined) await writeCsv(csv, trace.csv());
     const warnings = [...notes, ...run.warnings];
     const who = pilot === 'reference' ? `reference pilot, ${fixed(delayS, 2)} s` : 'hands off';

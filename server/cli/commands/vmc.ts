@@ -63,7 +63,9 @@ function failedEngines(
     throw new UsageError(`${file}: /engines: the airframe has no engine that could fail`);
   if (list === undefined || list === 'critical') return [criticalEngine(aircraft, request).index];
   const known = aircraft.engines.map((engine) => engine.name);
-  const indices = list.split(',').map((part) => {
+  // A name may hold a comma itself.
+  const parts = known.includes(list) ? [list] : list.split(',');
+  const indices = parts.map((part) => {
     const index = known.indexOf(part.trim());
     if (index < 0)
       throw new UsageError(`--failed: "${part.trim()}" is no engine of ${file} (known: ${known.join(', ')})`);

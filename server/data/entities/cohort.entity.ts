@@ -19,4 +19,8 @@ export class CohortEntity {
 
   @Column({ name: 'created_at', type: 'datetime', precision: 3 })
   createdAt!: Date;
+
+  /** Not offered for assignments and classes any more; records keep it. */
+  @Column({ name: 'archived_at', type: 'datetime', precision: 3, nullable: true })
+  archivedAt!: Date | null;
 }

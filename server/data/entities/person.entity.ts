@@ -44,6 +44,14 @@ export class PersonEntity {
   deactivatedAt!: Date | null;
 
   /** Named by its table: the two entities refer to each other and must not import each other. */
+  /** Units the person prefers; null: those of the organisation. */
+  @Column({ type: 'enum', enum: ['aviation', 'si'], nullable: true })
+  units!: 'aviation' | 'si' | null;
+
+  /** Zone in which the person reads times, by its name; null: that of the device. */
+  @Column({ name: 'time_zone', type: 'varchar', length: 64, nullable: true })
+  timeZone!: string | null;
+
   @OneToMany('person_role', 'person')
   roles?: Relation<PersonRoleEntity[]>;
 }

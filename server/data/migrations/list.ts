@@ -8,6 +8,8 @@ import { Classes1764547500000 } from './1764547500000-classes.ts';
 import { Assignments1764547700000 } from './1764547700000-assignments.ts';
 import { NoticeMail1764547710000 } from './1764547710000-notice-mail.ts';
 import { PeopleMailAudit1764547800000 } from './1764547800000-people-mail-audit.ts';
+import { Profiles1764547820000 } from './1764547820000-profiles.ts';
+import { Tokens1764548300000 } from './1764548300000-tokens.ts';
 
 /** Migrations in the order in which they run. */
 export const MIGRATIONS = [
@@ -21,4 +23,6 @@ export const MIGRATIONS = [
   Assignments1764547700000,
   NoticeMail1764547710000,
   PeopleMailAudit1764547800000,
+  Profiles1764547820000,
+  Tokens1764548300000,
 ];

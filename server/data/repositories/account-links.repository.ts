@@ -1,14 +1,17 @@
 import type { EntityManager } from 'typeorm';
 import { z } from 'zod';
 
-export type LinkKind = 'invitation' | 'reset';
+const linkKindSchema = z.enum(['invitation', 'reset', 'address']);
+export type LinkKind = z.infer<typeof linkKindSchema>;
 
 const linkSchema = z.object({
-  kind: z.enum(['invitation', 'reset']),
+  kind: linkKindSchema,
   personId: z.string(),
   organisationId: z.string(),
   displayName: z.string(),
   email: z.string(),
+  /** The address to sign in with once a change of address is confirmed; null for other links. */
+  newEmail: z.string().nullable(),
   organisation: z.string(),
   status: z.enum(['invited', 'active', 'deactivated']),
   expiresAt: z.date(),
@@ -26,16 +29,18 @@ export function createAccountLinksRepository(manager: EntityManager) {
       personId: string;
       at: Date;
       expiresAt: Date;
+      newEmail?: string;
     }): Promise<void> {
-      const { tokenHash, kind, personId, at, expiresAt } = link;
+      const { tokenHash, kind, personId, at, expiresAt, newEmail = null } = link;
       await manager.query('UPDATE account_link SET used_at = ? WHERE person_id = ? AND kind = ? AND used_at IS NULL', [
         at,
         personId,
         kind,
       ]);
       await manager.query(
-        'INSERT INTO account_link (token_hash, kind, person_id, created_at, expires_at) VALUES (?, ?, ?, ?, ?)',
-        [tokenHash, kind, personId, at, expiresAt],
+        `INSERT INTO account_link (token_hash, kind, person_id, created_at, expires_at, new_email)
+         VALUES (?, ?, ?, ?, ?, ?)`,
+        [tokenHash, kind, personId, at, expiresAt, newEmail],
       );
     },
 
@@ -43,7 +48,7 @@ export function createAccountLinksRepository(manager: EntityManager) {
     async find(tokenHash: string, lock: boolean): Promise<AccountLinkRecord | null> {
       const rows: unknown = await manager.query(
         `SELECT l.kind, l.person_id AS personId, p.organisation_id AS organisationId, p.display_name AS displayName,
-           p.email, o.name AS organisation, p.status, l.expires_at AS expiresAt, l.used_at AS usedAt
+           p.email, l.new_email AS newEmail, o.name AS organisation, p.status, l.expires_at AS expiresAt, l.used_at AS usedAt
          FROM account_link l INNER JOIN person p ON p.id = l.person_id
          INNER JOIN organisation o ON o.id = p.organisation_id
          WHERE l.token_hash = ?${lock ? ' FOR UPDATE' : ''}`,

@@ -49,6 +49,8 @@ const personRow = z.object({
   personId: z.string(),
   displayName: z.string(),
   email: z.string(),
+  /** Zone of the person's profile; null when none is chosen. */
+  zone: z.string().nullable(),
   active: flag,
   cohort: z.string().nullable(),
   dueAt: z.date(),
@@ -109,7 +111,7 @@ const SELECT = `SELECT a.id, a.title, a.words, a.opens_at AS opensAt, a.due_at A
     author.email AS authorEmail, a.created_at AS createdAt, a.closed_at AS closedAt, a.closed_for AS closedFor
   FROM assignment a INNER JOIN person author ON author.id = a.created_by`;
 const SELECT_PEOPLE = `SELECT ap.assignment_id AS assignmentId, ap.person_id AS personId, p.display_name AS displayName,
-    p.email, p.status = 'active' AS active, ap.cohort_name AS cohort, ap.due_at AS dueAt, ap.extra_tries AS extraTries,
+    p.email, p.time_zone AS zone, p.status = 'active' AS active, ap.cohort_name AS cohort, ap.due_at AS dueAt, ap.extra_tries AS extraTries,
     ap.sequence, ap.added_at AS addedAt, ap.excused_at AS excusedAt
   FROM assignment_person ap INNER JOIN person p ON p.id = ap.person_id`;
 const TERMS = `title = ?, words = ?, opens_at = ?, due_at = ?, zone = ?, tries = ?, pass_rule = ?, practice = ?,
@@ -234,7 +236,7 @@ export function createAssignmentsRepository(manager: EntityManager) {
         `SELECT c.id, c.name, p.id AS personId FROM cohort c
          LEFT JOIN cohort_member m ON m.cohort_id = c.id
          LEFT JOIN person p ON p.id = m.person_id AND p.status = 'active'
-         WHERE c.organisation_id = ? ORDER BY c.name, p.display_name${lock ? ' LOCK IN SHARE MODE' : ''}`,
+         WHERE c.organisation_id = ? AND c.archived_at IS NULL ORDER BY c.name, p.display_name${lock ? ' LOCK IN SHARE MODE' : ''}`,
         [organisationId],
       );
     },

@@ -44,6 +44,16 @@ export function createOrganisationsRepository(manager: EntityManager) {
       });
     },
 
+    /** Marks the one first set-up. @throws a duplicate-key error when another has been done meanwhile */
+    async markSetUp(organisationId: string, at: Date): Promise<void> {
+      await manager.query('INSERT INTO first_set_up (id, organisation_id, at) VALUES (1, ?, ?)', [organisationId, at]);
+    },
+
+    /** True when there is the invented organisation. */
+    async demonstration(): Promise<boolean> {
+      return manager.exists(OrganisationEntity, { where: { demonstration: true } });
+    },
+
     async rename(id: string, name: string, settings: OrganisationSettings): Promise<void> {
       await manager.update(OrganisationEntity, { id }, { name, settings: { ...settings } });
     },
@@ -69,7 +79,7 @@ export function createOrganisationsRepository(manager: EntityManager) {
       at: Date;
     }): Promise<void> {
       const { id, organisationId, name, memberIds, at } = cohort;
-      await manager.insert(CohortEntity, { id, organisationId, name, createdAt: at });
+      await manager.insert(CohortEntity, { id, organisationId, name, createdAt: at, archivedAt: null });
       if (memberIds.length === 0) return;
       await manager.insert(
         CohortMemberEntity,

@@ -23,7 +23,14 @@ export interface SignInRecord {
 }
 
 export interface ProfileRecord {
-  person: { id: string; displayName: string; fullName: string; email: string };
+  person: {
+    id: string;
+    displayName: string;
+    fullName: string;
+    email: string;
+    units: 'aviation' | 'si' | null;
+    timeZone: string | null;
+  };
   organisation: { id: string; name: string; settings: OrganisationSettings };
   roles: Role[];
 }
@@ -66,12 +73,31 @@ export interface ListedPerson {
   lastSeenAt: Date | null;
 }
 
+const LISTED = `SELECT p.id, p.email, p.display_name AS displayName, p.full_name AS fullName, p.status AS state,
+           (SELECT GROUP_CONCAT(r.role ORDER BY r.role SEPARATOR '${SEPARATOR}') FROM person_role r WHERE r.person_id = p.id) AS roles,
+           (SELECT GROUP_CONCAT(c.name ORDER BY c.name SEPARATOR '${SEPARATOR}') FROM cohort_member m
+             INNER JOIN cohort c ON c.id = m.cohort_id WHERE m.person_id = p.id) AS cohorts,
+           (SELECT MAX(l.expires_at) FROM account_link l WHERE l.person_id = p.id AND l.kind = 'invitation' AND l.used_at IS NULL)
+             AS invitationEndsAt,
+           (SELECT MAX(s.last_used_at) FROM session s WHERE s.person_id = p.id) AS lastSeenAt
+         FROM person p`;
+
+const listedPeople = (rows: unknown): ListedPerson[] =>
+  z
+    .array(listedSchema)
+    .parse(rows)
+    .map(({ roles, cohorts, ...person }) => ({
+      ...person,
+      roles: several(roles).map((role) => roleSchema.parse(role)),
+      cohorts: several(cohorts),
+    }));
+
 /** The form of an address that sign-in compares. */
 export function emailKey(email: string): string {
   return email.normalize('NFKC').trim().toLowerCase();
 }
 
-export function rolesOf(rows: readonly PersonRoleEntity[] | undefined): Role[] {
+export function rolesOf(rows: readonly Pick<PersonRoleEntity, 'role'>[] | undefined): Role[] {
   return (rows ?? []).map((row) => roleSchema.parse(row.role)).sort();
 }
 
@@ -92,7 +118,14 @@ export function createPeopleRepository(manager: EntityManager) {
       if (row === null || row.organisation === undefined) return null;
       const { organisation } = row;
       return {
-        person: { id: row.id, displayName: row.displayName, fullName: row.fullName, email: row.email },
+        person: {
+          id: row.id,
+          displayName: row.displayName,
+          fullName: row.fullName,
+          email: row.email,
+          units: row.units,
+          timeZone: row.timeZone,
+        },
         organisation: {
           id: organisation.id,
           name: organisation.name,
@@ -143,12 +176,26 @@ export function createPeopleRepository(manager: EntityManager) {
         emailKey: emailKey(person.email),
         createdAt: at,
         deactivatedAt: null,
+        units: null,
+        timeZone: null,
       });
       if (roles.length === 0) return;
       await manager.insert(
         PersonRoleEntity,
         roles.map((role) => ({ personId: person.id, role, grantedAt: at })),
       );
+    },
+
+    async setProfile(
+      personId: string,
+      profile: { displayName: string; units: 'aviation' | 'si' | null; timeZone: string | null },
+    ): Promise<void> {
+      await manager.update(PersonEntity, { id: personId }, profile);
+    },
+
+    /** @throws a duplicate-key error when another person has the address */
+    async setEmail(personId: string, email: string): Promise<void> {
+      await manager.update(PersonEntity, { id: personId }, { email, emailKey: emailKey(email) });
     },
 
     async setStatus(organisationId: string, personId: string, status: PersonStatus, at: Date): Promise<void> {
@@ -174,27 +221,20 @@ export function createPeopleRepository(manager: EntityManager) {
       }
       const condition = where.join(' AND ');
       const rows: unknown = await manager.query(
-        `SELECT p.id, p.email, p.display_name AS displayName, p.full_name AS fullName, p.status AS state,
-           (SELECT GROUP_CONCAT(r.role ORDER BY r.role SEPARATOR '${SEPARATOR}') FROM person_role r WHERE r.person_id = p.id) AS roles,
-           (SELECT GROUP_CONCAT(c.name ORDER BY c.name SEPARATOR '${SEPARATOR}') FROM cohort_member m
-             INNER JOIN cohort c ON c.id = m.cohort_id WHERE m.person_id = p.id) AS cohorts,
-           (SELECT MAX(l.expires_at) FROM account_link l WHERE l.person_id = p.id AND l.kind = 'invitation' AND l.used_at IS NULL)
-             AS invitationEndsAt,
-           (SELECT MAX(s.last_used_at) FROM session s WHERE s.person_id = p.id) AS lastSeenAt
-         FROM person p WHERE ${condition} ORDER BY p.display_name, p.id LIMIT ? OFFSET ?`,
+        `${LISTED} WHERE ${condition} ORDER BY p.display_name, p.id LIMIT ? OFFSET ?`,
         [...values, query.pageSize, offsetOf(query)],
       );
       const counted: unknown = await manager.query(`SELECT COUNT(*) AS total FROM person p WHERE ${condition}`, values);
       const [{ total }] = z.tuple([z.object({ total: z.coerce.number() })]).parse(counted);
-      const items = z
-        .array(listedSchema)
-        .parse(rows)
-        .map(({ roles, cohorts, ...person }) => ({
-          ...person,
-          roles: several(roles).map((role) => roleSchema.parse(role)),
-          cohorts: several(cohorts),
-        }));
-      return { items, total };
+      return { items: listedPeople(rows), total };
+    },
+
+    async listed(organisationId: string, personId: string): Promise<ListedPerson | null> {
+      const rows: unknown = await manager.query(`${LISTED} WHERE p.organisation_id = ? AND p.id = ?`, [
+        organisationId,
+        personId,
+      ]);
+      return listedPeople(rows)[0] ?? null;
     },
 
     /** Ids of active administrators, held to the end of the transaction, so that two do not remove each other. */

@@ -1,5 +1,11 @@
-import type { ScenarioListQuery, ScenarioStatus, ScenarioSummary } from '#shared/contracts/scenarios.ts';
+import {
+  type ScenarioListQuery,
+  type ScenarioStatus,
+  type ScenarioSummary,
+  scenarioStatusSchema,
+} from '#shared/contracts/scenarios.ts';
 import { type EntityManager, In } from 'typeorm';
+import { z } from 'zod';
 import { AttemptEntity } from '../entities/attempt.entity.ts';
 import { ScenarioRevisionEntity } from '../entities/scenario-revision.entity.ts';
 import { ScenarioEntity } from '../entities/scenario.entity.ts';
@@ -41,6 +47,41 @@ export interface NewScenarioRevision {
 }
 
 const SORT_COLUMNS: Record<string, string> = { title: 'r.title', updatedAt: 'r.changedAt', duration: 'r.durationS' };
+
+/** Read at every brief, flight and class: plain statements, because building them anew costs more than sending them. */
+const FIND_NEWEST = `
+  SELECT MAX(r.number) AS number FROM scenario_revision r INNER JOIN scenario s ON s.id = r.scenario_id
+  WHERE s.organisation_id = ? AND s.slug = ? AND r.status = 'published'`;
+const FIND_REVISION = `
+  SELECT r.id, r.scenario_id AS scenarioId, s.slug, r.number AS revision, r.status, r.note,
+    author.display_name AS createdBy, r.created_at AS createdAt, r.published_at AS publishedAt, r.document,
+    a.slug AS airframeSlug, f.number AS airframeNumber, f.id AS airframeRevisionId, f.document AS airframeDocument
+  FROM scenario_revision r
+    INNER JOIN scenario s ON s.id = r.scenario_id
+    INNER JOIN airframe_revision f ON f.id = r.airframe_revision_id
+    INNER JOIN airframe a ON a.id = f.airframe_id
+    LEFT JOIN person author ON author.id = r.created_by
+  WHERE s.organisation_id = ? AND s.slug = ? AND r.number = ?`;
+
+const newestSchema = z.object({ number: z.number().nullable() });
+/** A JSON column of a plain statement: its text. */
+const documentSchema = z.unknown().transform((text): unknown => (typeof text === 'string' ? JSON.parse(text) : text));
+const revisionRowSchema = z.object({
+  id: z.string(),
+  scenarioId: z.string(),
+  slug: z.string(),
+  revision: z.number(),
+  status: scenarioStatusSchema,
+  note: z.string(),
+  createdBy: z.string().nullable(),
+  createdAt: z.date(),
+  publishedAt: z.date().nullable(),
+  document: documentSchema,
+  airframeSlug: z.string(),
+  airframeNumber: z.number(),
+  airframeRevisionId: z.string(),
+  airframeDocument: documentSchema,
+});
 
 export function createScenariosRepository(manager: EntityManager) {
   /** How often the reader flew each scenario, and the verdict of the last completed attempt. */
@@ -122,30 +163,24 @@ export function createScenariosRepository(manager: EntityManager) {
     },
 
     async latestPublishedNumber(organisationId: string, slug: string): Promise<number | null> {
-      const row = await manager
-        .createQueryBuilder(ScenarioRevisionEntity, 'r')
-        .innerJoin('r.scenario', 's')
-        .select(['r.id', 'r.number'])
-        .where('r.organisationId = :organisationId AND s.organisationId = :organisationId', { organisationId })
-        .andWhere(`s.slug = :slug AND r.status = 'published'`, { slug })
-        .orderBy('r.number', 'DESC')
-        .limit(1)
-        .getOne();
-      return row?.number ?? null;
+      const rows = z.array(newestSchema).parse(await manager.query(FIND_NEWEST, [organisationId, slug]));
+      return rows.at(0)?.number ?? null;
     },
 
     async findRevision(organisationId: string, slug: string, number: number): Promise<ScenarioRevisionRecord | null> {
-      const row = await manager
-        .createQueryBuilder(ScenarioRevisionEntity, 'r')
-        .innerJoinAndSelect('r.scenario', 's')
-        .innerJoinAndSelect('r.airframeRevision', 'f')
-        .innerJoinAndSelect('f.airframe', 'a')
-        .leftJoin('r.createdBy', 'author')
-        .addSelect(['author.id', 'author.displayName'])
-        .where('r.organisationId = :organisationId AND s.organisationId = :organisationId', { organisationId })
-        .andWhere('s.slug = :slug AND r.number = :number', { slug, number })
-        .getOne();
-      return row === null ? null : scenarioRevisionRecord(row);
+      const found: unknown = await manager.query(FIND_REVISION, [organisationId, slug, number]);
+      const row = z.array(revisionRowSchema).parse(found).at(0);
+      if (row === undefined) return null;
+      const { airframeSlug, airframeNumber, airframeRevisionId, airframeDocument, ...revision } = row;
+      return {
+        ...revision,
+        airframe: {
+          slug: airframeSlug,
+          revision: airframeNumber,
+          revisionId: airframeRevisionId,
+          document: airframeDocument,
+        },
+      };
     },
 
     async insert(scenario: { id: string; organisationId: string; slug: string; at: Date }): Promise<void> {

@@ -1,5 +1,7 @@
+import { personStateSchema } from '#shared/contracts/administration.ts';
 import type { Role } from '#shared/contracts/session.ts';
-import { type EntityManager, IsNull, LessThan, Not } from 'typeorm';
+import { type EntityManager, IsNull, LessThan, MoreThan, Not } from 'typeorm';
+import { z } from 'zod';
 import { RefreshTokenEntity } from '../entities/refresh-token.entity.ts';
 import { SessionEntity } from '../entities/session.entity.ts';
 import { type PersonStatus, rolesOf } from './people.repository.ts';
@@ -30,30 +32,38 @@ export interface RefreshTokenRecord {
   session: SessionRecord;
 }
 
-function sessionRecord(row: SessionEntity): SessionRecord {
-  const { person } = row;
-  if (person === undefined) throw new Error(`Session ${row.id} was read without its person.`);
-  return {
-    id: row.id,
-    personId: row.personId,
-    organisationId: person.organisationId,
-    status: person.status,
-    roles: rolesOf(person.roles),
-    expiresAt: row.expiresAt,
-    revokedAt: row.revokedAt,
-  };
+const sessionRowSchema = z.object({
+  id: z.string(),
+  personId: z.string(),
+  organisationId: z.string(),
+  status: personStateSchema,
+  roles: z.string().nullable(),
+  expiresAt: z.date(),
+  revokedAt: z.date().nullable(),
+});
+
+/** Every request asks this: one plain statement, because building it anew costs more than sending it. */
+const FIND_SESSION = `
+  SELECT s.id, s.person_id AS personId, p.organisation_id AS organisationId, p.status,
+    (SELECT GROUP_CONCAT(r.role) FROM person_role r WHERE r.person_id = p.id) AS roles,
+    s.expires_at AS expiresAt, s.revoked_at AS revokedAt
+  FROM session s INNER JOIN person p ON p.id = s.person_id WHERE s.id = ?`;
+
+/** A session that could still be used, for its owner's list. */
+export interface OpenSessionRecord {
+  id: string;
+  agent: string | null;
+  address: string | null;
+  createdAt: Date;
+  lastUsedAt: Date;
 }
 
 export function createSessionsRepository(manager: EntityManager) {
   const findSession = async (id: string): Promise<SessionRecord | null> => {
-    const row = await manager
-      .createQueryBuilder(SessionEntity, 'session')
-      .innerJoin('session.person', 'person')
-      .leftJoin('person.roles', 'role')
-      .select(['session', 'person.id', 'person.organisationId', 'person.status', 'role'])
-      .where('session.id = :id', { id })
-      .getOne();
-    return row === null ? null : sessionRecord(row);
+    const rows = z.array(sessionRowSchema).parse(await manager.query(FIND_SESSION, [id]));
+    const row = rows.at(0);
+    if (row === undefined) return null;
+    return { ...row, roles: rolesOf(row.roles?.split(',').map((role) => ({ role }))) };
   };
 
   return {
@@ -90,6 +100,15 @@ export function createSessionsRepository(manager: EntityManager) {
 
     async touch(sessionId: string, at: Date): Promise<void> {
       await manager.update(SessionEntity, { id: sessionId }, { lastUsedAt: at });
+    },
+
+    /** Sessions neither ended nor run out, the latest used first. */
+    async openOf(personId: string, at: Date, usedAfter: Date): Promise<OpenSessionRecord[]> {
+      return manager.find(SessionEntity, {
+        select: { id: true, agent: true, address: true, createdAt: true, lastUsedAt: true },
+        where: { personId, revokedAt: IsNull(), expiresAt: MoreThan(at), lastUsedAt: MoreThan(usedAfter) },
+        order: { lastUsedAt: 'DESC', id: 'ASC' },
+      });
     },
 
     /** The session a refresh token belongs to, whatever its state; for signing out with an expired access token. */

@@ -45,12 +45,12 @@ export async function seedEmptyDatabase({ database, folder, hashPassword, now }:
       id: organisationId,
       slug: DEMONSTRATION.slug,
       name: DEMONSTRATION.name,
-      settings: { units: 'aviation', recognitionTimeS: null, guests: false },
+      settings: { units: 'aviation', recognitionTimeS: null, guests: false, caution: '' },
       demonstration: true,
       at,
     });
     await seedPeople(on, organisationId, passwordHash, at);
-    await seedLibrary(on, organisationId, library, at);
+    await insertLibrary(on, organisationId, library, at);
     await on.audit.append({
       organisationId,
       at,
@@ -90,7 +90,19 @@ async function seedPeople(on: Repositories, organisationId: string, passwordHash
   await on.organisations.insertCohort({ id: randomUUID(), organisationId, name: DEMONSTRATION.cohort, memberIds, at });
 }
 
-async function seedLibrary(on: Repositories, organisationId: string, library: Library, at: Date): Promise<void> {
+/** Puts the shipped airframes and scenarios of a folder into an organisation. @returns how many of each */
+export async function seedLibrary(
+  on: Repositories,
+  organisationId: string,
+  folder: string,
+  at: Date,
+): Promise<{ airframes: number; scenarios: number }> {
+  const library = readLibrary(folder);
+  await insertLibrary(on, organisationId, library, at);
+  return { airframes: library.airframes.length, scenarios: library.scenarios.length };
+}
+
+async function insertLibrary(on: Repositories, organisationId: string, library: Library, at: Date): Promise<void> {
   const revisionIds = new Map<string, string>();
   for (const entry of library.airframes) {
     const airframeId = randomUUID();

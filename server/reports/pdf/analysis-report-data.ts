@@ -6,6 +6,8 @@ import type { SPlaneBoundary } from '#shared/analysis/s-plane-regions.ts';
 export interface ReportHead {
   number: string;
   organisation: string;
+  /** Words of the organisation below the fixed caution. */
+  caution: string;
   /** Time of printing in words. */
   printed: string;
   programVersion: string;

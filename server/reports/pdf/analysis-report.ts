@@ -46,6 +46,7 @@ export async function analysisReportPdf(report: AnalysisReport): Promise<Buffer>
     subtitle: head.provenance,
     trace: `${head.slug} r${head.revision} · digest ${short} · program ${head.programVersion}`,
     printed: head.printed,
+    caution: head.caution,
   });
   sheet.boxes(report.facts.map((fact) => ({ ...fact })));
   if (report.moved !== '') sheet.paragraph(report.moved, { face: 'bold', size: 8.5 });

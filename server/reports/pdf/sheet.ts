@@ -15,6 +15,8 @@ export interface SheetHead {
   trace: string;
   /** Time of printing in words; passed in, because reports have no clock. */
   printed: string;
+  /** Words of the organisation below the fixed caution; empty for none. */
+  caution?: string;
 }
 export type ResultState = 'met' | 'near' | 'not-met' | 'not-reached';
 export interface SheetColumn {
@@ -37,6 +39,7 @@ const LEFT = 40;
 const WIDTH = 515;
 const TOP = 30;
 const FOOT = 778;
+const ADDED_LINE = 10;
 const MARK = [
   'M2,5 H12.5 L13.4,9 H2 Z M2,16 H14.6 L15.2,20 H2 Z M2,27 H15.6 V31 H2 Z',
   'M26.2,10.5 H38 V14.5 H26 L26,14.5 Z M25.4,21.5 H38 V25.5 H25 Z M24.6,32.5 H38 V36.5 H23.6 Z',
@@ -55,6 +58,9 @@ export class Sheet {
   y = TOP;
   private readonly parts: Buffer[] = [];
   private readonly done: Promise<Buffer>;
+  /** Where the foot begins; higher on the page when the organisation adds to the caution. */
+  private readonly foot: number;
+  private readonly addition: readonly string[];
 
   constructor(private readonly head: SheetHead) {
     this.doc = new PDFDocument({
@@ -66,6 +72,8 @@ export class Sheet {
       lang: 'en',
     });
     this.text = new SheetText(this.doc);
+    this.addition = head.caution ? this.text.wrap(head.caution, WIDTH, { size: 8 }) : [];
+    this.foot = FOOT - this.addition.length * ADDED_LINE;
     this.done = new Promise((resolve, reject) => {
       this.doc.on('data', (part: Buffer) => this.parts.push(part));
       this.doc.on('end', () => resolve(Buffer.concat(this.parts)));
@@ -116,7 +124,7 @@ export class Sheet {
 
   /** Starts a new page unless `height` points are left; sections call it so that they never split. */
   need(height: number): void {
-    if (this.y + height > FOOT - 8) this.newPage();
+    if (this.y + height > this.foot - 8) this.newPage();
   }
 
   /** Row of boxed inputs: a caption and a value each. */
@@ -198,7 +206,7 @@ export class Sheet {
     this.need(40);
     header();
     for (const row of rows) {
-      if (this.y + 17 > FOOT - 8) {
+      if (this.y + 17 > this.foot - 8) {
         this.newPage();
         header();
       }
@@ -295,12 +303,15 @@ export class Sheet {
       this.doc.switchToPage(range.start + i);
       this.doc
         .lineWidth(0.75)
-        .moveTo(LEFT, FOOT)
-        .lineTo(LEFT + WIDTH, FOOT)
+        .moveTo(LEFT, this.foot)
+        .lineTo(LEFT + WIDTH, this.foot)
         .stroke('#000');
-      this.text.line(CAUTION, LEFT, FOOT + 6, { face: 'bold', size: 8 });
-      this.text.line(CAUTION_REST, LEFT + this.text.width(`${CAUTION} `, { face: 'bold', size: 8 }), FOOT + 6, {
+      this.text.line(CAUTION, LEFT, this.foot + 6, { face: 'bold', size: 8 });
+      this.text.line(CAUTION_REST, LEFT + this.text.width(`${CAUTION} `, { face: 'bold', size: 8 }), this.foot + 6, {
         size: 8,
+      });
+      this.addition.forEach((line, n) => {
+        this.text.line(line, LEFT, this.foot + 17 + n * ADDED_LINE, { size: 8 });
       });
       this.text.line(this.head.trace, LEFT, FOOT + 20, { face: 'mono', size: 7.5, colour: '#333' }, 340);
       this.text.line(

@@ -146,9 +146,9 @@ export function createAssignmentsService({ database, notices, reads, now }: Assi
         const message = noticeText(
           'set',
           { ...terms, title, author: profile?.person.displayName ?? '', closedFor: null },
-          { displayName: first?.displayName ?? '', dueAt: terms.dueAt, extraTries: 0 },
+          { displayName: first?.displayName ?? '', dueAt: terms.dueAt, extraTries: 0, zone: null },
           chosen.map((scenario) => ({ title: scenario.title, airframeName: 'as published' })),
-          notices.address(),
+          { address: notices.address(), caution: profile?.organisation.settings.caution ?? '' },
         );
         const { opensAt, dueAt } = terms;
         return {

@@ -7,10 +7,9 @@ import type {
   NoticeKind,
 } from '../../data/repositories/assignments.repository.ts';
 import { dueDateCalendar } from '../../reports/calendar.ts';
+import { cautionLines } from '../caution.ts';
 import { inZoneWords } from './wall-time.ts';
 
-const CAUTION =
-  'Not an approved training device, not for operational use. The approved flight manual and licensed instruction govern.';
 const RULE_WORDS = {
   one: 'every required criterion met in one attempt',
   'two-in-a-row': 'met in two attempts in a row',
@@ -48,10 +47,12 @@ export function noticeText(
     AssignmentRecord,
     'title' | 'words' | 'opensAt' | 'zone' | 'tries' | 'passRule' | 'practice' | 'author' | 'closedFor'
   >,
-  person: Pick<AssignedPersonRecord, 'displayName' | 'dueAt' | 'extraTries'>,
+  person: Pick<AssignedPersonRecord, 'displayName' | 'dueAt' | 'extraTries' | 'zone'>,
   scenarios: readonly Pick<AssignedScenarioRecord, 'title' | 'airframeName'>[],
-  address: string,
+  { address, caution }: { address: string; caution: string },
 ): { subject: string; text: string } {
+  // By the clock of the reader's profile, else by the one it was set with.
+  const zone = person.zone ?? assignment.zone;
   const lines = [`${person.displayName},`, ''];
   if (kind === 'cancelled') {
     lines.push(`${assignment.author} has taken this off your list: ${assignment.title}.`);
@@ -60,7 +61,7 @@ export function noticeText(
   } else {
     lines.push(
       kind === 'reminder'
-        ? `This is due on ${inZoneWords(person.dueAt, assignment.zone)}:`
+        ? `This is due on ${inZoneWords(person.dueAt, zone)}:`
         : kind === 'changed'
           ? `${assignment.author} has changed what is set for you:`
           : `${assignment.author} has set this for you:`,
@@ -70,8 +71,8 @@ export function noticeText(
     const tries = assignment.tries === null ? 'as many as you want' : String(assignment.tries + person.extraTries);
     lines.push(
       '',
-      `Opens   ${inZoneWords(assignment.opensAt, assignment.zone)}`,
-      `Due     ${inZoneWords(person.dueAt, assignment.zone)}`,
+      `Opens   ${inZoneWords(assignment.opensAt, zone)}`,
+      `Due     ${inZoneWords(person.dueAt, zone)}`,
       `Tries   ${tries}`,
       `Passed  when ${RULE_WORDS[assignment.passRule]}`,
     );
@@ -79,7 +80,7 @@ export function noticeText(
     if (assignment.words !== '') lines.push('', assignment.words);
     lines.push('', `${address}/my-flights`);
   }
-  lines.push('', CAUTION);
+  lines.push('', ...cautionLines(caution));
   return { subject: SUBJECTS[kind](assignment.title), text: lines.join('\n') };
 }
 
@@ -89,7 +90,7 @@ export function calendarOf(
   assignment: AssignmentRecord,
   person: AssignedPersonRecord,
   scenarios: readonly AssignedScenarioRecord[],
-  address: string,
+  { address, caution }: { address: string; caution: string },
   at: Date,
 ): string {
   return dueDateCalendar(
@@ -97,7 +98,9 @@ export function calendarOf(
       uid: `${assignment.id}.${person.personId}@sidewash`,
       sequence: person.sequence,
       title: `Due: ${assignment.title}`,
-      description: [...scenarios.map(({ title }) => title), assignment.words, CAUTION].filter(Boolean).join('\n'),
+      description: [...scenarios.map(({ title }) => title), assignment.words, ...cautionLines(caution)]
+        .filter(Boolean)
+        .join('\n'),
       dueAt: person.dueAt,
       stampedAt: at,
       organiser: { name: assignment.author, email: assignment.authorEmail },
@@ -122,6 +125,8 @@ export function createNotices({ queueMail, address }: NoticesSetup) {
       at: Date,
       occasionOf: (person: AssignedPersonRecord) => string,
     ): Promise<number> {
+      const { caution } = await on.organisations.settings(organisationId);
+      const around = { address: address(), caution };
       let given = 0;
       for (const person of people) {
         if (!person.active) continue;
@@ -139,18 +144,11 @@ export function createNotices({ queueMail, address }: NoticesSetup) {
         given++;
         if (!assignment.byMail) continue;
         const method = kind === 'cancelled' ? 'CANCEL' : 'REQUEST';
-        const content = calendarOf(
-          kind === 'cancelled' ? 'cancel' : 'set',
-          assignment,
-          person,
-          scenarios,
-          address(),
-          at,
-        );
+        const content = calendarOf(kind === 'cancelled' ? 'cancel' : 'set', assignment, person, scenarios, around, at);
         await queueMail(on, {
           organisationId,
           person: { id: personId, displayName: person.displayName, email: person.email },
-          ...noticeText(kind, assignment, person, scenarios, address()),
+          ...noticeText(kind, assignment, person, scenarios, around),
           calendar: assignment.calendar && kind !== 'reminder' ? { method, content } : null,
         });
       }
@@ -180,6 +178,7 @@ export function createNotices({ queueMail, address }: NoticesSetup) {
         at,
       });
       if (!fresh) return;
+      const { caution } = await on.organisations.settings(organisationId);
       const result = flown.passed ? 'met every required criterion' : 'did not meet every required criterion';
       await queueMail(on, {
         organisationId,
@@ -190,7 +189,7 @@ export function createNotices({ queueMail, address }: NoticesSetup) {
           '',
           `${address()}/attempts/${flown.attemptId}`,
           '',
-          CAUTION,
+          ...cautionLines(caution),
         ].join('\n'),
         calendar: null,
       });

@@ -258,7 +258,9 @@ export function createReadAssignments(setup: { database: Database; address: () =
       if (record === null || person === undefined) throw notFound('assignment');
       const over = record.closedAt !== null || person.excusedAt !== null;
       const scenarios = await database.assignments.scenarios([id]);
-      return calendarOf(over ? 'cancel' : 'set', record, person, scenarios, address(), now());
+      const { caution } = await database.organisations.settings(actor.organisationId);
+      const around = { address: address(), caution };
+      return calendarOf(over ? 'cancel' : 'set', record, person, scenarios, around, now());
     },
 
     async targets(actor: Actor): Promise<Targets> {

@@ -5,7 +5,7 @@ import { shownStatus, type AttemptDetailRecord } from '../../data/repositories/a
 import { may, requireDeed, type Actor } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
 import { attemptResult } from './complete-attempt.ts';
-import { storedAirframe, storedScenario } from './attempt-data.ts';
+import { storedAirframe, scenarioFor } from './attempt-data.ts';
 import { flownIn } from './flown-in-class.ts';
 
 /** A flight that has been silent for this long is shown as abandoned; it may still be delivered. */
@@ -60,7 +60,7 @@ export function createReadAttempts({ database, now }: { database: Database; now:
         modelVersion: detail.modelVersion,
         storedChunks: await database.chunks.count(id),
         completedAt: detail.completedAt?.toISOString() ?? null,
-        scenario: storedScenario(detail.scenario.document),
+        scenario: scenarioFor(actor, detail.scenario.document),
         airframe: {
           slug: detail.scenario.airframe.slug,
           revision: detail.scenario.airframe.revision,

@@ -7,12 +7,12 @@ import type { AttemptDetailRecord } from '../../data/repositories/attempts.repos
 import { assignedRevision, countTry, requirePractice } from '../assignments/count-try.ts';
 import { requireDeed, type Actor } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
-import { storedAirframe, storedScenario } from './attempt-data.ts';
+import { scenarioFor, storedAirframe, storedScenario } from './attempt-data.ts';
 
 const SEED_LIMIT = 2 ** 32;
 const CHUNK_KEY_BYTES = 8;
 
-function startedAttempt(detail: AttemptDetailRecord): StartedAttempt {
+function startedAttempt(actor: Actor, detail: AttemptDetailRecord): StartedAttempt {
   return {
     id: detail.id,
     number: detail.number,
@@ -23,7 +23,7 @@ function startedAttempt(detail: AttemptDetailRecord): StartedAttempt {
     modelVersion: detail.modelVersion,
     scenarioSlug: detail.scenario.slug,
     scenarioRevision: detail.scenario.revision,
-    scenario: storedScenario(detail.scenario.document),
+    scenario: scenarioFor(actor, detail.scenario.document),
     airframe: {
       slug: detail.scenario.airframe.slug,
       revision: detail.scenario.airframe.revision,
@@ -43,7 +43,7 @@ export function createStartAttempt({ database, now }: { database: Database; now:
     const detailOf = async (id: string): Promise<StartedAttempt> => {
       const detail = await database.attempts.findDetail(organisationId, id);
       if (detail === null) throw notFound('attempt');
-      return startedAttempt(detail);
+      return startedAttempt(actor, detail);
     };
     if (body.startKey !== undefined) {
       const before = await database.attempts.findByStartKey(personId, body.startKey);

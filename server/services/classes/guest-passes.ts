@@ -1,3 +1,4 @@
+import { createSecretKey } from 'node:crypto';
 import jwt from 'jsonwebtoken';
 import { z } from 'zod';
 
@@ -14,11 +15,12 @@ export interface GuestPass {
 
 /** Signs and checks the token that names a guest's membership; whether it still stands, the class's log says. */
 export function createGuestPasses(secret: string, now: () => Date) {
+  const key = createSecretKey(Buffer.from(secret));
   const seconds = () => Math.floor(now().getTime() / 1000);
   return {
     sign({ classId, memberId }: GuestPass): string {
       const iat = seconds();
-      return jwt.sign({ cid: classId, iat, exp: iat + GUEST_PASS_S }, secret, {
+      return jwt.sign({ cid: classId, iat, exp: iat + GUEST_PASS_S }, key, {
         algorithm: 'HS256',
         subject: memberId,
         issuer: ISSUER,
@@ -29,7 +31,7 @@ export function createGuestPasses(secret: string, now: () => Date) {
       if (token === undefined) return null;
       try {
         const claims = claimsSchema.safeParse(
-          jwt.verify(token, secret, {
+          jwt.verify(token, key, {
             algorithms: ['HS256'],
             issuer: ISSUER,
             audience: AUDIENCE,

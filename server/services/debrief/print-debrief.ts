@@ -50,6 +50,7 @@ export function createPrintDebrief(setup: { database: Database; debriefs: Worker
     };
     const data: DebriefSheetData = {
       organisation: profile?.organisation.name ?? '',
+      caution: profile?.organisation.settings.caution ?? '',
       number: `${id.slice(0, 8)}/${detail.number}`,
       title: detail.scenarioTitle,
       subtitle: `${detail.airframeName}, revision ${detail.scenario.airframe.revision}; scenario revision ${detail.scenario.revision}; seed ${detail.seed}`,

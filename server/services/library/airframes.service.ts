@@ -2,9 +2,9 @@ import type { AirframeListQuery, AirframeRevision, AirframeSummary } from '#shar
 import { type Airframe, parseAirframe } from '#shared/model/airframe-schema.ts';
 import type { Page } from '#shared/contracts/paging.ts';
 import type { Database } from '../../data/database.ts';
-import { storedAirframe } from '../attempts/attempt-data.ts';
 import { requireDeed, type Actor } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
+import { createKeptDocuments } from './kept-documents.ts';
 
 /** The airframe of a draft, which may not be finished. */
 function draftAirframe(document: unknown): Airframe {
@@ -16,6 +16,7 @@ function draftAirframe(document: unknown): Airframe {
 }
 
 export function createAirframesService({ database }: { database: Database }) {
+  const documents = createKeptDocuments();
   return {
     async list(actor: Actor, query: AirframeListQuery): Promise<Page<AirframeSummary>> {
       requireDeed(actor, 'airframe.read');
@@ -35,7 +36,8 @@ export function createAirframesService({ database }: { database: Database }) {
         createdBy: found.createdBy,
         createdAt: found.createdAt.toISOString(),
         releasedAt: found.releasedAt?.toISOString() ?? null,
-        airframe: found.status === 'draft' ? draftAirframe(found.document) : storedAirframe(found.document),
+        airframe:
+          found.status === 'draft' ? draftAirframe(found.document) : documents.airframe(found.id, found.document),
       };
     },
   };

@@ -1,11 +1,13 @@
 import type { Page } from '#shared/contracts/paging.ts';
 import type { ScenarioListQuery, ScenarioRevision, ScenarioSummary } from '#shared/contracts/scenarios.ts';
 import type { Database } from '../../data/database.ts';
-import { storedAirframe, storedScenario } from '../attempts/attempt-data.ts';
+import { readableBy, storedScenario } from '../attempts/attempt-data.ts';
 import { may, requireDeed, type Actor } from '../permissions.ts';
 import { notFound } from '../problem-error.ts';
+import { createKeptDocuments } from './kept-documents.ts';
 
 export function createScenariosService({ database }: { database: Database }) {
+  const documents = createKeptDocuments();
   return {
     async list(actor: Actor, query: ScenarioListQuery): Promise<Page<ScenarioSummary>> {
       requireDeed(actor, 'scenario.read-published');
@@ -31,11 +33,14 @@ export function createScenariosService({ database }: { database: Database }) {
         createdBy: found.createdBy,
         createdAt: found.createdAt.toISOString(),
         publishedAt: found.publishedAt?.toISOString() ?? null,
-        scenario: storedScenario(found.document),
+        scenario: readableBy(
+          actor,
+          found.status === 'draft' ? storedScenario(found.document) : documents.scenario(found.id, found.document),
+        ),
         airframe: {
           slug: found.airframe.slug,
           revision: found.airframe.revision,
-          airframe: storedAirframe(found.airframe.document),
+          airframe: documents.airframe(found.airframe.revisionId, found.airframe.document),
         },
       };
     },

@@ -13,6 +13,24 @@ import { linkHash, newLinkToken } from './people.service.ts';
 export const RESET_HOURS = 2;
 const HOUR_MS = 3600 * 1000;
 
+const REMEDIES = {
+  invitation: 'Ask your administrator to send the invitation again.',
+  reset: 'Ask for a new one on the sign-in page.',
+  address: 'Change the address again on your profile page.',
+} as const;
+
+/** @throws {ProblemError} with what to do about a link that cannot be used */
+export function usableLink(link: AccountLinkRecord | null, at: Date): AccountLinkRecord {
+  if (link === null) throw new ProblemError('not-found', 'This link is not known. Copy it whole from the message.');
+  const remedy = REMEDIES[link.kind];
+  if (link.usedAt !== null) throw new ProblemError('conflict', `This link has been used or replaced. ${remedy}`);
+  if (link.expiresAt <= at) throw new ProblemError('conflict', `This link has run out. ${remedy}`);
+  if (link.status === 'deactivated') {
+    throw new ProblemError('deactivated', 'This account is deactivated; ask your administrator.');
+  }
+  return link;
+}
+
 /** What a person does with links from messages, and with the own password. */
 export function createAccountLinks(setup: {
   database: Database;
@@ -23,35 +41,19 @@ export function createAccountLinks(setup: {
 }) {
   const { database, passwords, notices, address, now } = setup;
 
-  /** @throws {ProblemError} with what to do about it */
-  const usable = (link: AccountLinkRecord | null): AccountLinkRecord => {
-    if (link === null) throw new ProblemError('not-found', 'This link is not known. Copy it whole from the message.');
-    const remedy =
-      link.kind === 'invitation'
-        ? 'Ask your administrator to send the invitation again.'
-        : 'Ask for a new one on the sign-in page.';
-    if (link.usedAt !== null) throw new ProblemError('conflict', `This link has been used or replaced. ${remedy}`);
-    if (link.expiresAt <= now()) throw new ProblemError('conflict', `This link has run out. ${remedy}`);
-    if (link.status === 'deactivated') {
-      throw new ProblemError('deactivated', 'This account is deactivated; ask your administrator.');
-    }
-    return link;
-  };
-
   return {
     async look(token: string): Promise<Link> {
-      const { kind, displayName, email, organisation } = usable(
-        await database.accountLinks.find(linkHash(token), false),
-      );
-      return { kind, displayName, email, organisation };
+      const link = usableLink(await database.accountLinks.find(linkHash(token), false), now());
+      const { kind, displayName, email, newEmail, organisation } = link;
+      return { kind, displayName, email: newEmail ?? email, organisation };
     },
 
     /** Sets the password; the link is used up and all sessions end. */
     async take({ token, password }: TakeLink, caller: Caller): Promise<void> {
-      usable(await database.accountLinks.find(linkHash(token), false));
+      setsPassword(usableLink(await database.accountLinks.find(linkHash(token), false), now()));
       const passwordHash = await passwords.hash(password);
       const personId = await database.transaction(async (on) => {
-        const link = usable(await on.accountLinks.find(linkHash(token), true));
+        const link = setsPassword(usableLink(await on.accountLinks.find(linkHash(token), true), now()));
         await on.accountLinks.endAllOf(link.personId, now());
         await on.people.setPassword(link.personId, passwordHash, 'active');
         await on.sessions.revokeAllOf(link.personId, 'password-changed', now());
@@ -125,5 +127,9 @@ export function createAccountLinks(setup: {
       });
     },
   };
+}
+function setsPassword(link: AccountLinkRecord): AccountLinkRecord {
+  if (link.kind !== 'address') return link;
+  throw new ProblemError('conflict', 'This link confirms an address and sets no password. Open it again.');
 }
 export type AccountLinks = ReturnType<typeof createAccountLinks>;

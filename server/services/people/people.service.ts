@@ -4,13 +4,14 @@ import type { Page } from '#shared/contracts/paging.ts';
 import type { OrganisationSettings, Role } from '#shared/contracts/session.ts';
 import type { Database, Repositories } from '../../data/database.ts';
 import { isDuplicateKey } from '../../data/duplicate-key.ts';
-import { emailKey, type PersonStatus } from '../../data/repositories/people.repository.ts';
+import { emailKey, type ListedPerson, type PersonStatus } from '../../data/repositories/people.repository.ts';
 import { type Actor, requireDeed } from '../permissions.ts';
 import { notFound, ProblemError } from '../problem-error.ts';
+import { requireEdition } from '../versions.ts';
 import type { SessionNotices } from '../sessions/session-notices.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
 import { invitationText } from './account-messages.ts';
-import { judgeRoster } from './roster-verdict.ts';
+import { cohortName, judgeRoster } from './roster-verdict.ts';
 
 export const INVITATION_DAYS = 7;
 const DAY_MS = 24 * 3600 * 1000;
@@ -30,6 +31,12 @@ export interface PeopleSetup {
   address: () => string;
   now: () => Date;
 }
+
+const asSent = (person: ListedPerson): Person => ({
+  ...person,
+  invitationEndsAt: person.invitationEndsAt?.toISOString() ?? null,
+  lastSeenAt: person.lastSeenAt?.toISOString() ?? null,
+});
 
 export function createPeopleService({ database, notices, address, now }: PeopleSetup) {
   const entry = (
@@ -65,6 +72,7 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
       inviter: profile?.person.displayName ?? 'An administrator',
       link: `${address()}/welcome/${token}`,
       days: INVITATION_DAYS,
+      caution: profile?.organisation.settings.caution ?? '',
     });
     await on.outbox.insert({
       id: randomUUID(),
@@ -100,15 +108,18 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
       requireDeed(actor, 'people.look-after');
       const { items, total } = await database.people.list(actor.organisationId, query);
       return {
-        items: items.map((person) => ({
-          ...person,
-          invitationEndsAt: person.invitationEndsAt?.toISOString() ?? null,
-          lastSeenAt: person.lastSeenAt?.toISOString() ?? null,
-        })),
+        items: items.map(asSent),
         page: query.page,
         pageSize: query.pageSize,
         total,
       };
+    },
+
+    async read(actor: Actor, personId: string): Promise<Person> {
+      requireDeed(actor, 'people.look-after');
+      const person = await database.people.listed(actor.organisationId, personId);
+      if (person === null) throw notFound('person');
+      return asSent(person);
     },
 
     /** Judges a roster, and with `invite` adds the good rows as invited people and queues their messages, all or none. */
@@ -122,7 +133,9 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
           const found = await on.people.findForSignIn(row.email);
           if (found) known.set(key, found.organisationId === actor.organisationId ? 'here' : 'elsewhere');
         }
-        const judged = judgeRoster(rows, known);
+        const cohorts = [...new Set(rows.map(cohortName))].filter(Boolean);
+        const archived = new Set(await on.cohorts.archivedAmong(actor.organisationId, cohorts));
+        const judged = judgeRoster(rows, known, archived);
         const good = judged.flatMap((row) => (row.good ? [row.good] : []));
         const verdicts = judged.map(({ verdict }) => verdict);
         if (!doInvite) return { rows: verdicts, invited: 0 };
@@ -169,13 +182,20 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
       });
     },
 
-    async setRoles(actor: Actor, personId: string, roles: readonly Role[], caller: Caller): Promise<void> {
+    async setRoles(
+      actor: Actor,
+      personId: string,
+      roles: readonly Role[],
+      caller: Caller,
+      version: string | null = null,
+    ): Promise<void> {
       requireDeed(actor, 'people.look-after');
       await database.transaction(async (on) => {
         await on.organisations.takeTurn(actor.organisationId);
         await need(on, actor, personId);
         if (!roles.includes('administrator')) await keepOneAdministrator(on, actor, personId);
         const before = (await on.people.findProfile(actor.organisationId, personId))?.roles ?? [];
+        requireEdition(version, [...before].sort(), 'these roles');
         const after = [...new Set(roles)].sort();
         await on.people.setRoles(personId, after, now());
         await on.audit.append(entry(actor, caller, 'person.roles-changed', personId, { before, after }));
@@ -230,10 +250,15 @@ export function createPeopleService({ database, notices, address, now }: PeopleS
       actor: Actor,
       body: { name: string; settings: OrganisationSettings },
       caller: Caller,
+      version: string | null = null,
     ): Promise<void> {
       requireDeed(actor, 'organisation.edit');
       await database.transaction(async (on) => {
         await on.organisations.takeTurn(actor.organisationId);
+        const held = await on.people.findProfile(actor.organisationId, actor.personId);
+        if (held === null) throw notFound('organisation');
+        const { name, settings } = held.organisation;
+        requireEdition(version, { name, settings }, 'the settings');
         const before = await on.organisations.settings(actor.organisationId);
         await on.organisations.rename(actor.organisationId, body.name, body.settings);
         await on.audit.append({

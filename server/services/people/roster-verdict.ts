@@ -17,6 +17,10 @@ export interface GoodRow {
 }
 export type JudgedRow = { verdict: RosterVerdict; good: GoodRow | null };
 
+/** The cohort of a row as it is stored. */
+export const cohortName = (row: Pick<RosterRow, 'cohort'>): string =>
+  row.cohort.normalize('NFC').trim().replace(/\s+/gu, ' ');
+
 const isRole = (word: string): word is Role => (ROLES as readonly string[]).includes(word);
 
 /**
@@ -26,16 +30,18 @@ const isRole = (word: string): word is Role => (ROLES as readonly string[]).incl
 export function judgeRoster(
   rows: readonly RosterRow[],
   knownKeys: ReadonlyMap<string, 'here' | 'elsewhere'>,
+  archivedCohorts: ReadonlySet<string> = new Set(),
 ): JudgedRow[] {
   const firstLine = new Map<string, number>();
   return rows.map((row) => {
     const wrong = (words: string): JudgedRow => ({ verdict: { line: row.line, verdict: 'wrong', words }, good: null });
     const name = row.name.normalize('NFC').trim().replace(/\s+/gu, ' ');
     const email = row.email.normalize('NFKC').trim();
-    const cohort = row.cohort.normalize('NFC').trim();
+    const cohort = cohortName(row);
     if (name === '') return wrong('The name is missing. Give the name as it is to be shown.');
     if (name.length > MAX_NAME) return wrong(`The name has more than ${MAX_NAME} characters. Shorten it.`);
-    if (/\p{Cc}|\uFFFD/u.test(name)) return wrong('The name holds unreadable characters. Save the file as UTF-8.');
+    if (/[\p{Cc}\uFFFD\u202A-\u202E\u2066-\u2069]/u.test(name))
+      return wrong('The name holds unreadable characters. Save the file as UTF-8.');
     if (email === '') return wrong('The address is missing. Give an e-mail address.');
     if (email.length > MAX_EMAIL || !z.email().safeParse(email).success) {
       return wrong(`“${email.slice(0, 60)}” is not an e-mail address. Write it as name@school.example.`);
@@ -47,6 +53,10 @@ export function judgeRoster(
     const unknown = words.find((word) => !isRole(word));
     if (unknown !== undefined) return wrong(`“${unknown.slice(0, 40)}” is not a role. Use ${ROLES.join(', ')}.`);
     if (cohort.length > MAX_COHORT) return wrong(`The cohort has more than ${MAX_COHORT} characters. Shorten it.`);
+    if (/\p{Cc}|\uFFFD/u.test(cohort)) return wrong('The cohort holds unreadable characters. Save the file as UTF-8.');
+    if (archivedCohorts.has(cohort)) {
+      return wrong(`Cohort ${cohort} is archived. Restore it under Cohorts, or name another.`);
+    }
     const key = emailKey(email);
     const before = firstLine.get(key);
     if (before !== undefined) return wrong(`Same address as line ${before}. Keep one of the two.`);

@@ -5,6 +5,7 @@ import type { Database } from '../../data/database.ts';
 import type { TableAttempt } from '../../data/repositories/records.repository.ts';
 import { csvLine } from '../../reports/csv-text.ts';
 import { streamWorkbook, type WorkbookCell, type WorkbookColumn } from '../../reports/workbook.ts';
+import { cautionLines } from '../caution.ts';
 import { requireDeed, type Actor } from '../permissions.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
 import { setAsideNow, standingSignatures } from './entries.ts';
@@ -31,8 +32,6 @@ const COLUMNS: readonly WorkbookColumn[] = [
   { head: 'Set aside', width: 10 },
   { head: 'Attempt id', width: 38 },
 ];
-const CAUTION =
-  'Not an approved training device, not for operational use. The approved flight manual and licensed instruction govern.';
 
 /** Writes with regard to the reader's pace. */
 async function write(out: Writable, text: string): Promise<void> {
@@ -130,6 +129,7 @@ export function createExports(setup: { database: Database; statements: Statement
       requireDeed(actor, 'record.read');
       await note(actor, caller, 'xlsx', filter);
       const { organisationId } = actor;
+      const { caution } = await database.organisations.settings(organisationId);
       const chosen = Object.entries(filter).filter(([, value]) => value !== '' && value !== undefined);
       await streamWorkbook(out, [
         { name: 'Records', columns: COLUMNS, rows: rows(organisationId, filter) },
@@ -139,7 +139,7 @@ export function createExports(setup: { database: Database; statements: Statement
             { head: 'What', width: 24 },
             { head: 'Value', width: 90 },
           ],
-          rows: [['Written', now()], ...chosen, ['Caution', CAUTION]],
+          rows: [['Written', now()], ...chosen, ...cautionLines(caution).map((line) => ['Caution', line])],
         },
       ]);
     },

@@ -68,6 +68,7 @@ export function createPersonal({ database, now }: { database: Database; now: () 
         subtitle: `Record as of ${timeWords(at)} UTC`,
         trace: `program ${PROGRAM_VERSION}`,
         printed: `${timeWords(at)} UTC`,
+        caution: profile.organisation.settings.caution,
         totals: {
           scenarios: scenarios.length,
           met: scenarios.filter(({ met }) => met).length,

@@ -1,6 +1,7 @@
 import type { Retention } from '#shared/contracts/records.ts';
 import type { Database } from '../../data/database.ts';
 import { requireDeed, type Actor } from '../permissions.ts';
+import { requireEdition } from '../versions.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
 
 const DAY_MS = 24 * 3600 * 1000;
@@ -22,12 +23,19 @@ export function createRetention({ database, now }: { database: Database; now: ()
       return database.retention.effect(actor.organisationId, before(recordingDays));
     },
 
-    async setRetention(actor: Actor, { recordingDays }: Retention, caller: Caller): Promise<Retention> {
+    async setRetention(
+      actor: Actor,
+      { recordingDays }: Retention,
+      caller: Caller,
+      version: string | null = null,
+    ): Promise<Retention> {
       requireDeed(actor, 'record.rule');
       const at = now();
       const { organisationId, personId } = actor;
       await database.transaction(async (on) => {
+        await on.organisations.takeTurn(organisationId);
         const was = await on.retention.days(organisationId);
+        requireEdition(version, { recordingDays: was }, 'the rule');
         await on.retention.set(organisationId, recordingDays, personId, at);
         await on.audit.append({
           organisationId,

@@ -1,10 +1,11 @@
 import { createHash } from 'node:crypto';
-import type { Endpoint, saveEndpointSchema } from '#shared/contracts/records.ts';
+import { endpointEdited, type Endpoint, type saveEndpointSchema } from '#shared/contracts/records.ts';
 import type { z } from 'zod';
 import type { Database, Repositories } from '../../data/database.ts';
 import type { FullAttempt } from '../../data/repositories/records.repository.ts';
 import { attemptStatement, signOffStatement, voidingStatement } from '../../reports/learning-statements.ts';
 import { requireDeed, type Actor } from '../permissions.ts';
+import { requireEdition } from '../versions.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
 import type { Secrets } from './secrets.ts';
 
@@ -151,11 +152,18 @@ export function createStatements({ database, secrets, address, now }: Statements
       return endpointOf(database, actor.organisationId);
     },
 
-    async saveEndpoint(actor: Actor, body: z.output<typeof saveEndpointSchema>, caller: Caller): Promise<Endpoint> {
+    async saveEndpoint(
+      actor: Actor,
+      body: z.output<typeof saveEndpointSchema>,
+      caller: Caller,
+      version: string | null = null,
+    ): Promise<Endpoint> {
       requireDeed(actor, 'record.rule');
       const { organisationId, personId } = actor;
       const at = now();
       return database.transaction(async (on) => {
+        await on.organisations.takeTurn(organisationId);
+        requireEdition(version, endpointEdited(await endpointOf(on, organisationId)), 'the endpoint');
         const before = await on.statements.endpoint(organisationId);
         // A secret belongs to the address it was given for: another address must not receive it.
         const kept = before !== null && before.address === body.address ? before.secret : '';

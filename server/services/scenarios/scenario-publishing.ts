@@ -1,11 +1,14 @@
 import type { z } from 'zod';
-import type { publishScenarioSchema, ScenarioDetail, ScenarioLine } from '#shared/contracts/scenario-editing.ts';
-import { checkAgainstAirframe, parseScenario } from '#shared/scenario/scenario-schema.ts';
+import type { publishScenarioSchema, ScenarioDetail, ScenarioFile, ScenarioLine } from '#shared/contracts/scenario-editing.ts';
+import type { Airframe } from '#shared/model/airframe-schema.ts';
+import { ModelError } from '#shared/model/errors.ts';
+import { createRun } from '#shared/scenario/run.ts';
+import { checkAgainstAirframe, parseScenario, type Scenario } from '#shared/scenario/scenario-schema.ts';
 import type { Database, Repositories } from '../../data/database.ts';
 import type { ScenarioLineRecord } from '../../data/repositories/scenario-editing.repository.ts';
 import { storedAirframe } from '../attempts/attempt-data.ts';
 import { may, requireDeed, type Actor } from '../permissions.ts';
-import { ProblemError } from '../problem-error.ts';
+import { notFound, ProblemError } from '../problem-error.ts';
 import type { Caller } from '../sessions/sessions.service.ts';
 import {
   documentOf,
@@ -37,6 +40,20 @@ function lineOf(line: ScenarioLineRecord): ScenarioLine {
   };
 }
 
+/** @throws {ProblemError} validation when no run of the scenario can begin: its start cannot be trimmed */
+function requireStart(scenario: Scenario, airframe: Airframe): void {
+  try {
+    createRun({ scenario, airframe, seed: scenario.seed }, { lean: true });
+  } catch (error) {
+    if (!(error instanceof ModelError)) throw error;
+    const { code: rule, message } = error;
+    const remedy = 'Change speed, levers, wind or configuration of the start.';
+    throw new ProblemError('validation', 'The scenario cannot be started.', {
+      errors: [{ field: '/start', rule, message, remedy }],
+    });
+  }
+}
+
 /** Publishing and archiving, and what a scenario's own page shows. */
 export function createScenarioPublishing({ database, now }: { database: Database; now: () => Date }) {
   const detailOn = async (on: Repositories, actor: Actor, slug: string): Promise<ScenarioDetail> => {
@@ -57,6 +74,7 @@ export function createScenarioPublishing({ database, now }: { database: Database
           ? { slug: newer.slug, revision: newer.revision }
           : null,
       mayEdit: may(actor, 'scenario.edit'),
+      mayExport: may(actor, 'scenario.export'),
     };
   };
   /** Archives or restores all published revisions at once. */
@@ -83,6 +101,14 @@ export function createScenarioPublishing({ database, now }: { database: Database
     detail: async (actor: Actor, slug: string): Promise<ScenarioDetail> => {
       requireDeed(actor, 'scenario.read-published');
       return detailOn(database, actor, slug);
+    },
+
+    /** The document of a revision exactly as it was given: what an export holds. */
+    file: async (actor: Actor, slug: string, number: number): Promise<ScenarioFile> => {
+      requireDeed(actor, 'scenario.export');
+      const line = await foundLine(database, await foundScenario(database, actor, slug), number);
+      if (line.status === 'draft' && !may(actor, 'scenario.read-draft')) throw notFound('scenario revision');
+      return { document: documentOf(line) };
     },
 
     /** Makes a draft a published revision, for good, pinned to the airframe revision it names. */
@@ -113,9 +139,11 @@ export function createScenarioPublishing({ database, now }: { database: Database
             `revision ${pin.revision} of "${pin.slug}" is retired`,
             'Pin a released revision, then publish.',
           );
-        const { issues } = checkAgainstAirframe(parsed.scenario, storedAirframe(pin.document));
+        const airframe = storedAirframe(pin.document);
+        const { issues } = checkAgainstAirframe(parsed.scenario, airframe);
         if (issues.length > 0)
           throw new ProblemError('validation', 'The scenario does not fit its airframe.', { errors: issues });
+        requireStart(parsed.scenario, airframe);
         await on.scenarioEditing.publish(draft.id, body.note, actor.personId, doing.at);
         await on.audit.append(
           scenarioEntry(doing, 'published', slug, {

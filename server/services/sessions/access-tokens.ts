@@ -1,3 +1,4 @@
+import { createSecretKey } from 'node:crypto';
 import jwt from 'jsonwebtoken';
 import { z } from 'zod';
 
@@ -12,11 +13,13 @@ export type AccessCheck =
 
 /** Signs and checks the short-lived token that names person and session; roles are read afresh for each request. */
 export function createAccessTokens(secret: string, now: () => Date) {
+  // As a key, not as text: with text the library first tries to read a public key from it, at every request.
+  const key = createSecretKey(Buffer.from(secret));
   const seconds = () => Math.floor(now().getTime() / 1000);
   return {
     sign(personId: string, sessionId: string): string {
       const iat = seconds();
-      return jwt.sign({ sid: sessionId, iat, exp: iat + ACCESS_TOKEN_S }, secret, {
+      return jwt.sign({ sid: sessionId, iat, exp: iat + ACCESS_TOKEN_S }, key, {
         algorithm: 'HS256',
         subject: personId,
         issuer: ISSUER,
@@ -26,7 +29,7 @@ export function createAccessTokens(secret: string, now: () => Date) {
 
     check(token: string): AccessCheck {
       try {
-        const payload = jwt.verify(token, secret, {
+        const payload = jwt.verify(token, key, {
           algorithms: ['HS256'],
           issuer: ISSUER,
           audience: AUDIENCE,

@@ -47,9 +47,9 @@ export function createSessionsService({ database, passwords, accessTokens, notic
   const profile = async (organisationId: string, personId: string): Promise<Me> => {
     const found = await database.people.findProfile(organisationId, personId);
     if (found === null) throw expired();
-    const { id, displayName, email } = found.person;
+    const { id, displayName, email, units, timeZone } = found.person;
     const { organisation, roles } = found;
-    return { person: { id, displayName, email }, organisation, roles, version: PROGRAM_VERSION };
+    return { person: { id, displayName, email, units, timeZone }, organisation, roles, version: PROGRAM_VERSION };
   };
 
   const newToken = async (on: Repositories, sessionId: string, at: Date): Promise<string> => {

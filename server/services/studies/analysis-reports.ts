@@ -61,6 +61,7 @@ export function createAnalysisReports(setup: { database: Database; threads: Work
       head: {
         number,
         organisation: profile?.organisation.name ?? '',
+        caution: profile?.organisation.settings.caution ?? '',
         printed: `${dateText.format(at)}, ${timeText.format(at)} UTC`,
         programVersion: PROGRAM_VERSION,
         study: study?.name ?? '',

@@ -7,6 +7,7 @@ export const reportJobSchema = z.object({
   head: z.object({
     number: z.string(),
     organisation: z.string(),
+    caution: z.string(),
     printed: z.string(),
     programVersion: z.string(),
     study: z.string(),

@@ -5,23 +5,17 @@
  * functions) is refused with its place.
  */
 import type { MathNode, OperatorNode } from 'mathjs';
-import { EXPRESSION_FUNCTIONS, EXPRESSION_NAMES, isState, MADE_SIGNAL, STATE_SIGNAL } from './names.ts';
-import type { ExpressionInputs, SignalName } from './names.ts';
+import { EXPRESSION_FUNCTIONS, EXPRESSION_NAMES } from './names.ts';
+import { comparisonReader, isComparison, signalReader } from './readers.ts';
+import type { NumberReader, Operand, TruthReader } from './readers.ts';
 import { ExpressionError, MAX_EXPRESSION_NESTING, SINCE_SYMBOL } from './tokens.ts';
 import type { Token } from './tokens.ts';
 import { dimensionWords, NUMBER, sameDimension, TIME, timesPower, UNITS, unitsOf } from './units.ts';
 import type { Dimension } from './units.ts';
 
-export type NumberReader = (x: ExpressionInputs) => number;
-export type TruthReader = (x: ExpressionInputs) => boolean;
-
-export interface Quantity {
+export interface Quantity extends Operand {
   type: 'quantity';
   dimension: Dimension;
-  read: NumberReader;
-  constant: number | null;
-  /** Place among the signals when the part is a bare name: comparisons with a constant then read it directly. */
-  signal: SignalName | null;
   position: number;
 }
 export interface Truth {
@@ -31,48 +25,19 @@ export interface Truth {
 }
 type Part = Quantity | Truth;
 
-const COMPARISONS: Readonly<Record<string, (a: NumberReader, b: NumberReader) => TruthReader>> = {
-  smaller: (a, b) => (x) => a(x) < b(x),
-  smallerEq: (a, b) => (x) => a(x) <= b(x),
-  larger: (a, b) => (x) => a(x) > b(x),
-  largerEq: (a, b) => (x) => a(x) >= b(x),
-  equal: (a, b) => (x) => a(x) === b(x),
-  unequal: (a, b) => (x) => a(x) !== b(x),
-};
-const STATE_WITH_CONSTANT: Readonly<Record<string, (k: number, c: number) => TruthReader>> = {
-  smaller: (k, c) => (x) => x.x[k] < c,
-  smallerEq: (k, c) => (x) => x.x[k] <= c,
-  larger: (k, c) => (x) => x.x[k] > c,
-  largerEq: (k, c) => (x) => x.x[k] >= c,
-  equal: (k, c) => (x) => x.x[k] === c,
-  unequal: (k, c) => (x) => x.x[k] !== c,
-};
-const MADE_WITH_CONSTANT: Readonly<Record<string, (k: number, c: number) => TruthReader>> = {
-  smaller: (k, c) => (x) => x.v[k] < c,
-  smallerEq: (k, c) => (x) => x.v[k] <= c,
-  larger: (k, c) => (x) => x.v[k] > c,
-  largerEq: (k, c) => (x) => x.v[k] >= c,
-  equal: (k, c) => (x) => x.v[k] === c,
-  unequal: (k, c) => (x) => x.v[k] !== c,
-};
-const COMPARISONS_WITH_CONSTANT: Readonly<Record<string, (a: NumberReader, c: number) => TruthReader>> = {
-  smaller: (a, c) => (x) => a(x) < c,
-  smallerEq: (a, c) => (x) => a(x) <= c,
-  larger: (a, c) => (x) => a(x) > c,
-  largerEq: (a, c) => (x) => a(x) >= c,
-  equal: (a, c) => (x) => a(x) === c,
-  unequal: (a, c) => (x) => a(x) !== c,
-};
-
 /** Compiles one tree; the leaves are taken from `tokens` in order. */
 export class Compiler {
   readonly sinceIds: string[] = [];
+  /** Where each event id is first read, in the order of `sinceIds`. */
+  readonly sincePlaces: number[] = [];
   readonly names: string[] = [];
   private readonly leaves: Token[];
+  private readonly comparisons: number[];
   private next = 0;
   private last = 0;
 
   constructor(tokens: readonly Token[]) {
+    this.comparisons = tokens.filter(({ kind, text }) => kind === 'sign' && /[<>=]/u.test(text)).map((t) => t.position);
     this.leaves = tokens.filter((token) => token.kind !== 'sign' && !['and', 'or', 'not'].includes(token.text));
   }
 
@@ -89,7 +54,11 @@ export class Compiler {
       case 'OperatorNode':
         return this.operator(node as OperatorNode, depth);
       case 'RelationalNode':
-        throw this.refuse('comparisons cannot be chained', 'Join two comparisons with and.');
+        throw this.refuse(
+          'comparisons cannot be chained',
+          'Join two comparisons with and, as ias > 60 kt and ias < 80 kt.',
+          this.comparisons.filter((place) => place > this.here())[1],
+        );
       default:
         throw this.refuse('this form is not allowed in an expression', 'Use arithmetic, comparisons, and, or, not.');
     }
@@ -151,7 +120,10 @@ export class Compiler {
     const token = this.take();
     if (token.kind === 'since') {
       const id = token.text;
-      if (!this.sinceIds.includes(id)) this.sinceIds.push(id);
+      if (!this.sinceIds.includes(id)) {
+        this.sinceIds.push(id);
+        this.sincePlaces.push(token.position);
+      }
       this.skipSinceSymbol(node);
       return {
         type: 'quantity',
@@ -247,7 +219,7 @@ export class Compiler {
       const b = right.read;
       return { type: 'truth', read: fn === 'and' ? (x) => a(x) && b(x) : (x) => a(x) || b(x), position: left.position };
     }
-    if (Object.hasOwn(COMPARISONS, fn)) return this.comparison(fn, args, depth);
+    if (isComparison(fn)) return this.comparison(fn, args, depth);
     if (fn === 'multiply' && node.implicit) return this.withUnit(args, depth);
     if (fn === 'divide') return this.quotient(args, depth);
     if (fn === 'multiply' || fn === 'add' || fn === 'subtract') {
@@ -280,7 +252,7 @@ export class Compiler {
           : fn === 'add'
             ? left.constant + right.constant
             : left.constant - right.constant;
-    if (constant !== null) return constantPart(constant, dimension, left.position);
+    if (constant !== null) return this.finite(constant, dimension, left.position);
     return { type: 'quantity', dimension, read, constant, signal: null, position: left.position };
   }
 
@@ -305,7 +277,7 @@ export class Compiler {
   private scale(left: Quantity, unit: { dimension: Dimension; factor: number }): Quantity {
     const dimension = timesPower(left.dimension, unit.dimension, 1);
     const factor = unit.factor;
-    if (left.constant !== null) return constantPart(left.constant * factor, dimension, left.position);
+    if (left.constant !== null) return this.finite(left.constant * factor, dimension, left.position);
     const f = left.read;
     return { ...left, signal: null, dimension, read: (x) => f(x) * factor };
   }
@@ -316,8 +288,9 @@ export class Compiler {
     const dimension = timesPower(left.dimension, right.dimension, -1);
     const a = left.read;
     const b = right.read;
+    if (right.constant === 0) throw this.refuse('this divides by zero', 'Divide by another value.', right.position);
     if (left.constant !== null && right.constant !== null) {
-      return constantPart(left.constant / right.constant, dimension, left.position);
+      return this.finite(left.constant / right.constant, dimension, left.position);
     }
     return {
       type: 'quantity',
@@ -327,6 +300,12 @@ export class Compiler {
       signal: null,
       position: left.position,
     };
+  }
+
+  /** A constant that was worked out; one too large for a number is refused where it begins. */
+  private finite(value: number, dimension: Dimension, position: number): Quantity {
+    if (Number.isFinite(value)) return constantPart(value, dimension, position);
+    throw this.refuse('this value is too large for a number', 'Write a smaller value.', position);
   }
 
   private quantity(part: Part, where: string): Quantity {
@@ -357,26 +336,6 @@ export class Compiler {
       right.position,
     );
   }
-}
-
-/** Reads a signal where it stands. */
-export function signalReader(name: SignalName): NumberReader {
-  if (isState(name)) {
-    const k = STATE_SIGNAL[name];
-    return (x) => x.x[k];
-  }
-  const k = MADE_SIGNAL[name];
-  return (x) => x.v[k];
-}
-
-function comparisonReader(fn: string, left: Quantity, right: Quantity): TruthReader {
-  if (right.constant === null) return COMPARISONS[fn](left.read, right.read);
-  if (left.signal !== null) {
-    return isState(left.signal)
-      ? STATE_WITH_CONSTANT[fn](STATE_SIGNAL[left.signal], right.constant)
-      : MADE_WITH_CONSTANT[fn](MADE_SIGNAL[left.signal], right.constant);
-  }
-  return COMPARISONS_WITH_CONSTANT[fn](left.read, right.constant);
 }
 
 function constantPart(value: number, dimension: Dimension, position: number): Quantity {

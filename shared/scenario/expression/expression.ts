@@ -20,6 +20,8 @@ export interface CompiledCondition {
   source: string;
   /** Events whose time the expression reads. */
   sinceIds: readonly string[];
+  /** Where each of them is first read; indices of characters, counted from 0. */
+  sincePlaces: readonly number[];
   /** Names it reads, such as "vmc". */
   names: readonly string[];
   /** True when the condition holds and every event it reads has fired. */
@@ -31,6 +33,7 @@ export interface CompiledCondition {
 export interface CompiledQuantity {
   source: string;
   sinceIds: readonly string[];
+  sincePlaces: readonly number[];
   names: readonly string[];
   dimension: Dimension;
   /** SI value; NaN while an event it reads has not fired. */
@@ -87,7 +90,8 @@ function conditionOf(source: string): CompiledAsCondition {
             for (const id of ids) if (Number.isNaN(x.sinceS(id))) return false;
             return read(x);
           };
-    return { condition: { source, sinceIds: ids, names: compiler.names, holds, holdsOnceFired: read } };
+    const { names, sincePlaces } = compiler;
+    return { condition: { source, sinceIds: ids, sincePlaces, names, holds, holdsOnceFired: read } };
   });
 }
 
@@ -102,7 +106,8 @@ function quantityOf(source: string): CompiledAsQuantity {
       );
     }
     const { read, dimension } = part;
-    return { quantity: { source, sinceIds: compiler.sinceIds, names: compiler.names, dimension, value: read } };
+    const { sinceIds, sincePlaces, names } = compiler;
+    return { quantity: { source, sinceIds, sincePlaces, names, dimension, value: read } };
   });
 }
 

@@ -1,6 +1,6 @@
 /** Greatest values over the window: angles, rates, ball, offsets, force, and losses against the window's start. */
-import { signalReader } from '../expression/compile.ts';
-import type { NumberReader } from '../expression/compile.ts';
+import { signalReader } from '../expression/readers.ts';
+import type { NumberReader } from '../expression/readers.ts';
 import type { CompiledQuantity } from '../expression/expression.ts';
 import { isState, MADE_SIGNAL, STATE_SIGNAL } from '../expression/names.ts';
 import type { SignalName } from '../expression/names.ts';

@@ -14,7 +14,8 @@ export interface DraftHistory {
   readonly lastField: string | null;
 }
 
-const DEPTH = 500;
+/** More changes than a session of writing holds: undo reaches its start. Documents share what did not change. */
+const DEPTH = 20_000;
 
 /** Starts a history at a document. */
 export function openDraft(document: Json): DraftHistory {

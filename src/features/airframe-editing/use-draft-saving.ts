@@ -1,6 +1,6 @@
 /** Saving of a draft by itself, and what happens when another engineer saved the same draft meanwhile. */
 import { watchDebounced } from '@vueuse/core';
-import { computed, type ComputedRef, type Ref, ref, shallowRef, watch } from 'vue';
+import { computed, type ComputedRef, onScopeDispose, type Ref, ref, shallowRef, watch } from 'vue';
 import type { AirframeDraft } from '#shared/contracts/airframe-editing.ts';
 import { causeOf, isApiError } from '../../services/api-error.ts';
 import { getDraft, saveDraft } from '../../services/airframe-editing-api.ts';
@@ -112,7 +112,10 @@ export function useDraftSaving(
     if (draft.dirty.value && state.value === 'saved') state.value = 'waiting';
     else if (!draft.dirty.value && state.value === 'waiting') state.value = 'saved';
   });
-  watchDebounced(draft.document, () => void save(), { debounce: SAVE_AFTER_MS });
+  // Leaving the page saves by itself; what still waits when the page is gone must not be sent again.
+  let gone = false;
+  onScopeDispose(() => (gone = true));
+  watchDebounced(draft.document, () => (gone ? undefined : void save()), { debounce: SAVE_AFTER_MS });
 
   return {
     state,

@@ -1,24 +1,19 @@
 /** Due dates for reading, in the reader's own zone. */
+import { calendarDay, inReaderZone, readerZone } from '../../stores/reader-zone.ts';
+
 const DAY_MS = 86_400_000;
 const MINUTE_MS = 60_000;
-const weekday = new Intl.DateTimeFormat('en-GB', { weekday: 'short', day: 'numeric' });
-const dayMonth = new Intl.DateTimeFormat('en-GB', { day: 'numeric', month: 'short' });
-const full = new Intl.DateTimeFormat('en-GB', {
-  weekday: 'long',
-  day: 'numeric',
-  month: 'long',
-  hour: '2-digit',
-  minute: '2-digit',
-});
-const clock = new Intl.DateTimeFormat('en-GB', { hour: '2-digit', minute: '2-digit' });
+const weekday = inReaderZone({ weekday: 'short', day: 'numeric' });
+const dayMonth = inReaderZone({ day: 'numeric', month: 'short' });
+const full = inReaderZone({ weekday: 'long', day: 'numeric', month: 'long', hour: '2-digit', minute: '2-digit' });
+const clock = inReaderZone({ hour: '2-digit', minute: '2-digit' });
 
 /** The reader's zone by its name. */
-export const ownZone = (): string => Intl.DateTimeFormat().resolvedOptions().timeZone;
-
-const noon = (date: Date): number => Date.UTC(date.getFullYear(), date.getMonth(), date.getDate(), 12);
+export const ownZone = readerZone;
 
 /** Whole days on the calendar from now to then, whatever the clocks do between. */
-export const calendarDays = (then: Date, now: Date): number => Math.round((noon(then) - noon(now)) / DAY_MS);
+export const calendarDays = (then: Date, now: Date): number =>
+  Math.round((calendarDay(then) - calendarDay(now)) / DAY_MS);
 
 const counted = (n: number, what: string): string => `${n} ${what}${n === 1 ? '' : 's'}`;
 
@@ -33,19 +28,19 @@ export function untilWords(iso: string, now: Date = new Date()): string {
     }
     return `${counted(-days, 'day')} late`;
   }
-  if (days === 0) return `today, ${clock.format(then)}`;
-  if (days === 1) return `tomorrow, ${clock.format(then)}`;
+  if (days === 0) return `today, ${clock(then)}`;
+  if (days === 1) return `tomorrow, ${clock(then)}`;
   return days < 14 ? counted(days, 'day') : counted(Math.round(days / 7), 'week');
 }
 
 /** "Fri 5" within a fortnight, "12 Jul" beyond. */
 export function dayWords(iso: string, now: Date = new Date()): string {
   const then = new Date(iso);
-  return Math.abs(calendarDays(then, now)) < 14 ? weekday.format(then) : dayMonth.format(then);
+  return Math.abs(calendarDays(then, now)) < 14 ? weekday(then) : dayMonth(then);
 }
 
 /** "Friday 5 June at 17:00". */
-export const dueWords = (iso: string): string => full.format(new Date(iso));
+export const dueWords = (iso: string): string => full(new Date(iso));
 
 /** What date and time fields show of an instant: the clock of a zone. */
 export function fieldsOf(iso: string, zone: string): { day: string; time: string } {

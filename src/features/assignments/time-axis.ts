@@ -1,4 +1,5 @@
 import type { AssignmentSummary } from '#shared/contracts/assignments.ts';
+import { calendarDay, inReaderZone, startOfDay } from '../../stores/reader-zone.ts';
 
 const DAY_MS = 86_400_000;
 const MOST_DAYS = 42;
@@ -20,35 +21,33 @@ export interface TimeAxis {
   place: (iso: string) => number;
 }
 
-const monthYear = new Intl.DateTimeFormat('en-GB', { month: 'long', year: 'numeric' });
-const startOfDay = (date: Date): Date => new Date(date.getFullYear(), date.getMonth(), date.getDate());
-const plusDays = (date: Date, days: number): Date =>
-  new Date(date.getFullYear(), date.getMonth(), date.getDate() + days);
+const monthYear = inReaderZone({ month: 'long', year: 'numeric' });
 
 /** An axis of whole days, in the reader's zone, over what is open and today; at most six weeks, today always on it. */
 export function timeAxis(items: readonly Pick<AssignmentSummary, 'opensAt' | 'dueAt'>[], now: Date): TimeAxis {
-  const today = startOfDay(now);
+  const today = calendarDay(now);
+  const todayStarts = startOfDay(today);
   const times = items.flatMap(({ opensAt, dueAt }) => [new Date(opensAt).getTime(), new Date(dueAt).getTime()]);
-  const earliest = Math.max(Math.min(...times, today.getTime() - 2 * DAY_MS), today.getTime() - 14 * DAY_MS);
-  const latest = Math.max(...times, today.getTime() + 10 * DAY_MS);
-  const first = startOfDay(new Date(earliest));
-  const wanted = Math.ceil((latest - first.getTime()) / DAY_MS) + 1;
+  const earliest = Math.max(Math.min(...times, todayStarts - 2 * DAY_MS), todayStarts - 14 * DAY_MS);
+  const latest = Math.max(...times, todayStarts + 10 * DAY_MS);
+  const first = calendarDay(new Date(earliest));
+  const from = startOfDay(first);
+  const wanted = Math.ceil((latest - from) / DAY_MS) + 1;
   const count = Math.min(MOST_DAYS, Math.max(14, wanted));
-  const from = first.getTime();
-  const span = plusDays(first, count).getTime() - from;
+  const span = startOfDay(first + count * DAY_MS) - from;
   const place = (iso: string): number => Math.min(1, Math.max(0, (new Date(iso).getTime() - from) / span));
   const every = count > 21 ? 2 : 1;
   const days = Array.from({ length: count }, (_, i) => {
-    const date = plusDays(first, i);
-    const isToday = date.getTime() === today.getTime();
+    const day = first + i * DAY_MS;
+    const date = new Date(day); // UTC midnight of the calendar day: its UTC parts are the day's
     return {
-      at: (date.getTime() - from) / span,
-      text: i % every === 0 || isToday ? String(date.getDate()) : '',
-      weekend: date.getDay() === 0 || date.getDay() === 6,
-      today: isToday,
+      at: (startOfDay(day) - from) / span,
+      text: i % every === 0 || day === today ? String(date.getUTCDate()) : '',
+      weekend: date.getUTCDay() === 0 || date.getUTCDay() === 6,
+      today: day === today,
     };
   });
-  return { days, day: 1 / count, now: place(now.toISOString()), title: monthYear.format(now), place };
+  return { days, day: 1 / count, now: place(now.toISOString()), title: monthYear(now), place };
 }
 
 /** Parts of a bar from opening to due time by how many people stand where. */

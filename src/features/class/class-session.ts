@@ -4,7 +4,6 @@
  */
 import type { ClassPass, ClassScenario } from '#shared/contracts/classes.ts';
 import type { BoardRow, ClassControl, MemberStatus, PresentedView, Telemetry } from '#shared/contracts/class-socket.ts';
-import { type ClockAnswer, clockOffset } from '#shared/scenario/class-clock.ts';
 import { ClassFlight } from '#shared/scenario/class-flight.ts';
 import { Follower } from '#shared/scenario/class-follow.ts';
 import { decodeFrame, fromBase64, toBase64 } from '#shared/scenario/class-frames.ts';
@@ -14,6 +13,7 @@ import { type RecordedChunk, decodeChunk } from '#shared/scenario/recording.ts';
 import { createRun } from '#shared/scenario/run.ts';
 import type { ControlSample, Run, RunSpec } from '#shared/scenario/run-types.ts';
 import { type ClassSocket, SocketRefusal, request } from '../../services/class-socket.ts';
+import { ServerClock } from './server-clock.ts';
 
 type Without<C> = C extends ClassControl ? Omit<C, 'classId' | 'key'> : never;
 /** A deed of the instructor without its class and key. */
@@ -36,11 +36,20 @@ export interface ClassSessionSetup {
   classId: string;
   scenario: (index: number) => Promise<ClassScenario>;
   newKey: () => string;
+  /** Renews the sign-in when it has run out while the connection was away; false when that was in vain. */
+  renew: () => Promise<boolean>;
+  /** This browser's clock, ms. */
+  now?: () => number;
   events: ClassSessionEvents;
 }
 
-const CLOCK_ASKS = 5;
 const RETRY_MS = 400;
+/** A press of the instructor is tried again for so long while the connection comes back. */
+const PRESS_MS = 6000;
+/** Between two tries to come in again where the server answered and refused. */
+const AGAIN_MS = 1000;
+/** Refusals of entering that stay refusals. */
+const FINAL = new Set(['not-a-member', 'class-ended', 'class-full', 'class-locked', 'not-found', 'forbidden']);
 const CATCH_UP_EVERY_MS = 500;
 /** Passes over the class clock that end a flight whose run is over; each flies a few seconds at the most. */
 const LAST_PASSES = 50;
@@ -63,8 +72,7 @@ export class ClassSession {
   present = new Set<string>();
   readonly statuses = new Map<string, MemberStatus>();
   view: PresentedView | null = null;
-  offsetMs = 0;
-  roundTripMs = 0;
+  private again: ReturnType<typeof setTimeout> | null = null;
   /** Entered, with a live connection. */
   inside = false;
   flight: ClassFlight | null = null;
@@ -85,9 +93,11 @@ export class ClassSession {
   private closed = false;
   private taking = false;
   private readonly setup: ClassSessionSetup;
+  private readonly clock: ServerClock;
 
   constructor(setup: ClassSessionSetup) {
     this.setup = setup;
+    this.clock = new ServerClock(setup.socket, setup.now);
     const { socket, classId } = setup;
     socket.on('connect', () => {
       if (!this.closed) void this.enter();
@@ -95,8 +105,13 @@ export class ClassSession {
     socket.on('disconnect', () => {
       this.inside = false;
       setup.events.changed();
+      // Where the server has hung up, the socket does not try again by itself.
+      if (!socket.active) this.comeAgain('hung-up');
     });
-    socket.on('connect_error', () => setup.events.changed());
+    socket.on('connect_error', (error) => {
+      setup.events.changed();
+      if (!socket.active) this.comeAgain(error.message === 'unauthenticated' ? 'unauthenticated' : 'failed');
+    });
     socket.on('class:appended', (news) => {
       if (news.classId !== classId) return;
       const letIn = news.entries.some((entry) => entry.kind === 'joined' && entry.member === this.pass?.member);
@@ -105,8 +120,10 @@ export class ClassSession {
         if (letIn) void this.enter();
       } else this.take(news.entries);
     });
-    socket.on('class:beat', ({ classId: id, seq }) => {
-      if (id === classId && seq > this.state.seq) void this.fill();
+    socket.on('class:beat', ({ classId: id, seq, serverTimeMs }) => {
+      if (id !== classId) return;
+      this.clock.hear(serverTimeMs);
+      if (seq > this.state.seq) void this.fill();
     });
     socket.on('class:presence', ({ classId: id, member, here }) => {
       if (id !== classId) return;
@@ -140,7 +157,35 @@ export class ClassSession {
   }
   close(): void {
     this.closed = true;
+    if (this.again !== null) clearTimeout(this.again);
     this.setup.socket.disconnect();
+  }
+
+  /** Comes in again in a moment: connects, or enters where the connection stands. */
+  private comeAgain(why: 'failed' | 'hung-up' | 'unauthenticated'): void {
+    if (this.closed || this.again !== null) return;
+    const inMs = AGAIN_MS * (1 + Math.random());
+    this.again = setTimeout(() => {
+      this.again = null;
+      void this.returnFrom(why);
+    }, inMs);
+  }
+
+  private async returnFrom(why: 'failed' | 'hung-up' | 'unauthenticated'): Promise<void> {
+    const { socket, renew, events } = this.setup;
+    if (why !== 'failed') {
+      try {
+        const signedIn = await renew();
+        // A guest has a pass instead, which the handshake looks at.
+        if (!signedIn && why === 'unauthenticated') return events.said('Sign in again to come back to this class.');
+      } catch {
+        return this.comeAgain(why);
+      }
+    }
+    if (this.closed) return;
+    if (!socket.connected) socket.connect();
+    else if (why === 'unauthenticated') socket.disconnect().connect();
+    else void this.enter();
   }
 
   get run(): ClassRun | null {
@@ -150,7 +195,10 @@ export class ClassSession {
     return this.pass?.member ?? '';
   }
   serverNow(): number {
-    return Date.now() + this.offsetMs;
+    return this.clock.now();
+  }
+  get roundTripMs(): number {
+    return this.clock.roundTripMs;
   }
   /** The aeroplane to draw: one's own, or the one looked on at. */
   get shown(): Run | null {
@@ -164,8 +212,21 @@ export class ClassSession {
   async control(deed: Deed): Promise<void> {
     // A deed with its class and key is a control: the union is taken apart and put together again.
     const body = { classId: this.setup.classId, key: this.setup.newKey(), ...deed } as ClassControl;
-    const { entries } = await this.request('class:control', body);
-    this.take(entries);
+    const giveUpMs = performance.now() + PRESS_MS;
+    for (;;) {
+      try {
+        if (!this.inside)
+          throw new SocketRefusal('unreachable', 'The connection is lost; press again when it is back.');
+        const { entries } = await this.request('class:control', body);
+        this.take(entries);
+        return;
+      } catch (error) {
+        // The same press has the same key: what was done already is not done twice.
+        const passing = error instanceof SocketRefusal && PASSING.has(error.code);
+        if (!passing || this.closed || performance.now() > giveUpMs) throw error;
+        await new Promise((resolve) => setTimeout(resolve, RETRY_MS));
+      }
+    }
   }
 
   async followBoard(follow: boolean): Promise<void> {
@@ -187,28 +248,9 @@ export class ClassSession {
     this.close();
   }
 
-  private async measureClock(): Promise<void> {
-    const answers: ClockAnswer[] = [];
-    for (let i = 0; i < CLOCK_ASKS; i += 1) {
-      const askedMs = Date.now();
-      const serverMs = await new Promise<number | null>((resolve) => {
-        const timer = setTimeout(() => resolve(null), 3000);
-        this.setup.socket.emit('clock:ask', (answer) => {
-          clearTimeout(timer);
-          resolve(answer.ok ? answer.data.serverTimeMs : null);
-        });
-      });
-      if (serverMs !== null) answers.push({ askedMs, serverMs, answeredMs: Date.now() });
-    }
-    if (answers.length === 0) return;
-    const { offsetMs, roundTripMs } = clockOffset(answers);
-    this.offsetMs = offsetMs;
-    this.roundTripMs = roundTripMs;
-  }
-
   private async enter(): Promise<void> {
     try {
-      await this.measureClock();
+      await this.clock.measure();
       const entered = await this.request('class:enter', { classId: this.setup.classId, since: this.state.seq });
       this.pass = entered.pass;
       this.inside = entered.pass.admitted;
@@ -222,8 +264,11 @@ export class ClassSession {
       if (this.followed !== null) await this.catchUp(this.followed);
       void this.send();
     } catch (error) {
-      this.setup.events.said(error instanceof Error ? error.message : 'The class cannot be entered.');
-      if (error instanceof SocketRefusal && error.code === 'not-a-member') this.setup.events.closed('removed');
+      const code = error instanceof SocketRefusal ? error.code : 'internal';
+      if (code === 'not-a-member') this.setup.events.closed('removed');
+      if (FINAL.has(code))
+        this.setup.events.said(error instanceof Error ? error.message : 'The class cannot be entered.');
+      else this.comeAgain(code === 'unauthenticated' ? 'unauthenticated' : 'failed');
     }
     this.setup.events.changed();
   }

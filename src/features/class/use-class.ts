@@ -1,11 +1,12 @@
 import { useIntervalFn } from '@vueuse/core';
 import { computed, onScopeDispose, ref, shallowRef, triggerRef } from 'vue';
-import type { BoardRow, MemberStatus, PresentedView } from '#shared/contracts/class-socket.ts';
+import type { BoardRow, MemberStatus, PresentedView, Telemetry } from '#shared/contracts/class-socket.ts';
 import { EMPTY_CLASS, type ClassState, phaseAt, tickAt } from '#shared/scenario/class-state.ts';
 import { TICK_RATE_HZ } from '#shared/model/plant-types.ts';
 import type { Run } from '#shared/scenario/run-types.ts';
 import { getClass, getClassScenario } from '../../services/classes-api.ts';
 import { openClassSocket } from '../../services/class-socket.ts';
+import { fetchMe } from '../../services/session-api.ts';
 import { newKey } from '../../services/new-key.ts';
 import { useNoticesStore } from '../../stores/notices.store.ts';
 import { ClassSession, type Deed } from './class-session.ts';
@@ -24,10 +25,12 @@ export interface BoardLine {
 
 /** A little less than the tenth of a second at which telemetry is made. */
 const TELL_EVERY_MS = 80;
+const TELL_AGAIN_MS = 1000;
 
 /** A class as this browser lives it. Which aeroplane is flown or looked on at follows from the log alone. */
 export function useClass(classId: string) {
   let toldMs = 0;
+  let lastRow: Telemetry | null = null;
   const notices = useNoticesStore();
   const state = shallowRef<ClassState>(EMPTY_CLASS);
   const connected = ref(false);
@@ -49,6 +52,7 @@ export function useClass(classId: string) {
     classId,
     scenario: (index) => getClassScenario(classId, index),
     newKey,
+    renew: async () => (await fetchMe()) !== null,
     events: {
       changed,
       board(run, rows) {
@@ -81,7 +85,9 @@ export function useClass(classId: string) {
         const row = telemetry.tick(run);
         const nowMs = performance.now();
         // After an absence many ticks are flown at once: the board wants the latest, ten times a second.
-        if (!row || nowMs - toldMs < TELL_EVERY_MS) return;
+        if (!row) return;
+        lastRow = row;
+        if (nowMs - toldMs < TELL_EVERY_MS && row.ended === null) return;
         toldMs = nowMs;
         session.telemetry(row);
       },
@@ -139,6 +145,13 @@ export function useClass(classId: string) {
       flying.value = session.flight !== null && session.follower === null;
     }
   }
+  /** An aeroplane that stands or has met its end is told again: telemetry may be lost, and a board may come late. */
+  function tellAgain(): void {
+    if (!lastRow || !session.flight || session.flight.line.run.tick < lastRow.tick) return;
+    if (performance.now() - toldMs < TELL_AGAIN_MS) return;
+    toldMs = performance.now();
+    session.telemetry(lastRow);
+  }
   async function attemptOf(run: number, member: string): Promise<string | null> {
     const { runsFlown } = await getClass(classId);
     const attempts = runsFlown.find((one) => one.run === run)?.attempts ?? [];
@@ -158,6 +171,7 @@ export function useClass(classId: string) {
 
   useIntervalFn(() => {
     serverMs.value = session.serverNow();
+    tellAgain();
     void settle();
   }, 250);
   session.open();

@@ -25,7 +25,7 @@ const tighter = (a: number | undefined, b: number, pick: (x: number, y: number) 
 export function limitsOf(channel: ChannelId, criteria: readonly Criterion[], deadSide: -1 | 0 | 1): Limits {
   const limits: Limits = {};
   for (const { measure, limit } of criteria) {
-    const max = 'max' in limit ? limit.max : undefined;
+    const max = 'max' in limit ? limit.max : 'within' in limit ? limit.within[1] : undefined;
     if (max === undefined) continue;
     if (BOTH_SIDES[measure] === channel) {
       limits.max = tighter(limits.max, max, Math.min);

@@ -80,9 +80,11 @@ const SUMS: Readonly<Record<string, { method: string; uncertaintyPct: number }>>
   Cl_beta: { method: `${STRIP_METHOD}; ${POSITION_METHOD}; ${FIN_METHOD}`, uncertaintyPct: 25 },
   Cn_beta: { method: `${FIN_METHOD}; ${MUNK_METHOD}`, uncertaintyPct: 25 },
   Cl_p: {
-    method: `Strip theory: roll damping of a tapered wing, reads high without its induced flow; ${FIN_METHOD}`,
-    uncertaintyPct: 40,
+    method: `Strip theory: roll damping of a tapered wing, with the induced flow of rolling (Glauert); ${FIN_METHOD}`,
+    uncertaintyPct: 25,
   },
+  CY_p: { method: `${FIN_METHOD}; wing and body left out`, uncertaintyPct: 50 },
+  CY_r: { method: `${FIN_METHOD}; wing and body left out`, uncertaintyPct: 30 },
   Cn_p: { method: `${CROSS_METHOD}; ${FIN_METHOD}`, uncertaintyPct: 40 },
   Cl_r: { method: `${CROSS_METHOD}; ${FIN_METHOD}`, uncertaintyPct: 30 },
   Cn_r: { method: `${FIN_METHOD}; wing and body left out`, uncertaintyPct: 30 },
@@ -92,6 +94,13 @@ const SUMS: Readonly<Record<string, { method: string; uncertaintyPct: number }>>
 };
 /** The body at the foot of the fin acts as an end plate: so much of the fin's own aspect ratio counts. */
 const END_PLATE = 1.55;
+
+const SUBSCRIPTS: Readonly<Record<string, string>> = { beta: 'β', dr: 'δr' };
+/** A derivative as the tables write it: "Cn β". */
+export function letterOf(key: string): string {
+  const [letter = '', suffix = ''] = key.split('_');
+  return `${letter} ${SUBSCRIPTS[suffix] ?? suffix}`;
+}
 
 /** @throws {NumericsError} bad-argument naming the size that is not possible */
 export function estimateAirframe(
@@ -139,7 +148,7 @@ export function estimateAirframe(
   };
   const wing: Record<string, number> = {
     ...estimateCrossDerivatives(input.CL),
-    Cl_p: estimateWingRollDamping(input.wingLiftSlope, input.taper),
+    Cl_p: estimateWingRollDamping(input.wingLiftSlope, input.taper, aspectRatio),
     Cl_beta: estimateDihedralEffect(
       input.dihedralDeg * DEG,
       input.wingSweepDeg * DEG,
@@ -154,7 +163,7 @@ export function estimateAirframe(
   });
   const offers: Offer[] = contributions.map(({ key, sum }) => ({
     pointer: `${rowPointer}/${key}`,
-    label: key.replace('_', ' '),
+    label: letterOf(key),
     value: sum,
     method: SUMS[key]?.method ?? '',
     uncertaintyPct: SUMS[key]?.uncertaintyPct ?? 50,

@@ -16,8 +16,6 @@ export type FieldSpec =
       dimension: Dimension;
       unit: string;
       optional?: boolean;
-      /** May be drawn afresh for each attempt. */
-      varies?: boolean;
     }
   | { kind: 'choice'; member: string; label: string; options: readonly Choice[] }
   | { kind: 'engine'; member: string; label: string; all?: boolean }
@@ -54,7 +52,6 @@ const surface = (label: string): FieldSpec => ({
   dimension: 'angle',
   unit: 'deg',
   optional: true,
-  varies: true,
 });
 
 const spec = (
@@ -74,7 +71,7 @@ function gustFields(event: Readonly<Record<string, Json>>): readonly FieldSpec[]
   if (lateral)
     fields.push(
       { kind: 'choice', member: 'from', label: 'From the', options: SIDES },
-      { kind: 'number', member: 'peak_kt', label: 'Peak', dimension: 'speed', unit: 'kt', varies: true },
+      { kind: 'number', member: 'peak_kt', label: 'Peak', dimension: 'speed', unit: 'kt' },
     );
   else
     fields.push({
@@ -83,9 +80,8 @@ function gustFields(event: Readonly<Record<string, Json>>): readonly FieldSpec[]
       label: 'Peak, right positive',
       dimension: 'angular-rate',
       unit: 'deg/s',
-      varies: true,
     });
-  if (event['shape'] === 'one-minus-cosine')
+  if (event['shape'] !== 'step')
     fields.push({
       kind: 'number',
       member: 'gradientDistance_m',
@@ -93,7 +89,6 @@ function gustFields(event: Readonly<Record<string, Json>>): readonly FieldSpec[]
       dimension: 'distance',
       unit: 'm',
       optional: true,
-      varies: true,
     });
   if (event['shape'] !== 'step') fields.push(over('Or time to the peak'));
   return fields;
@@ -126,13 +121,13 @@ export const EVENT_KIND_SPECS: readonly EventKindSpec[] = [
   ]),
   spec('engine-partial', 'engines', 'Engine loses part of its thrust', { engine: '', fraction: 0.5 }, [
     engine,
-    { kind: 'number', member: 'fraction', label: 'Thrust left', dimension: 'ratio', unit: '', varies: true },
+    { kind: 'number', member: 'fraction', label: 'Thrust left', dimension: 'ratio', unit: '' },
   ]),
   spec('engine-restore', 'engines', 'Engine restored', { engine: '' }, [engine]),
   spec('feather', 'engines', 'Propeller feathered', { engine: '' }, [engine]),
   spec('lever', 'engines', 'Lever moves', { engine: 'all', position: 1 }, [
     { kind: 'engine', member: 'engine', label: 'Engine', all: true },
-    { kind: 'number', member: 'position', label: 'To', dimension: 'ratio', unit: '', varies: true },
+    { kind: 'number', member: 'position', label: 'To', dimension: 'ratio', unit: '' },
     over(),
   ]),
   spec(
@@ -143,8 +138,8 @@ export const EVENT_KIND_SPECS: readonly EventKindSpec[] = [
     gustFields,
   ),
   spec('wind-change', 'air', 'Wind changes', { windFrom_deg: 90, wind_kt: 10, over_s: 5 }, [
-    { kind: 'number', member: 'windFrom_deg', label: 'From', dimension: 'angle', unit: 'deg', varies: true },
-    { kind: 'number', member: 'wind_kt', label: 'Speed', dimension: 'speed', unit: 'kt', varies: true },
+    { kind: 'number', member: 'windFrom_deg', label: 'From', dimension: 'angle', unit: 'deg' },
+    { kind: 'number', member: 'wind_kt', label: 'Speed', dimension: 'speed', unit: 'kt' },
     over(),
   ]),
   spec('turbulence', 'air', 'Turbulence', { level: 'moderate' }, [
@@ -159,7 +154,7 @@ export const EVENT_KIND_SPECS: readonly EventKindSpec[] = [
   spec('aileron-half', 'controls', 'Ailerons lose half their effect', {}, []),
   spec('controls-restore', 'controls', 'Controls restored', {}, []),
   spec('rudder-trim', 'controls', 'Rudder trim', { deg: 0 }, [
-    { kind: 'number', member: 'deg', label: 'Rudder', dimension: 'angle', unit: 'deg', varies: true },
+    { kind: 'number', member: 'deg', label: 'Rudder', dimension: 'angle', unit: 'deg' },
     over(),
   ]),
   spec(
@@ -176,7 +171,6 @@ export const EVENT_KIND_SPECS: readonly EventKindSpec[] = [
         label: 'Share of travel, right positive',
         dimension: 'ratio',
         unit: '',
-        varies: true,
       },
       ...(event['shape'] === 'step'
         ? []
@@ -246,10 +240,13 @@ export function withDecisive(event: Readonly<Record<string, Json>>, member: stri
       delete next['from'];
       next['peak_deg_s'] ??= 5;
     }
-    if (next['shape'] !== 'one-minus-cosine') delete next['gradientDistance_m'];
-    else if (next['over_s'] === undefined) next['gradientDistance_m'] ??= 60;
-    if (next['shape'] === 'step') delete next['over_s'];
-    if (next['shape'] === 'ramp') next['over_s'] ??= 2;
+    if (next['shape'] === 'step') {
+      delete next['gradientDistance_m'];
+      delete next['over_s'];
+    } else if (next['over_s'] === undefined) {
+      if (next['shape'] === 'ramp' && event['shape'] === 'step') next['over_s'] = 2;
+      else next['gradientDistance_m'] ??= 60;
+    }
   }
   if (event['kind'] === 'pitch-mode') {
     for (const name of ['path_deg', 'rate_kt_s', 'target_kt']) delete next[name];

@@ -11,12 +11,17 @@ export interface PlacedEvent {
   timeS: number | null;
   /** Has a time of its own, which can be dragged. */
   timed: boolean;
+  /** Id of the event after which it comes; its delay can be dragged. */
+  after: string | null;
+  delayS: number;
 }
 
 export const SNAP_S = 0.1;
+/** Longest time that a file may hold; s. */
+const LONGEST_S = 3600;
 
-export const snapped = (timeS: number, durationS: number): number =>
-  Number(Math.max(0, Math.min(durationS, Math.round(timeS / SNAP_S) * SNAP_S)).toFixed(2));
+export const snapped = (timeS: number, longestS: number): number =>
+  Number(Math.max(0, Math.min(longestS, Math.round(timeS / SNAP_S) * SNAP_S)).toFixed(2));
 
 type Member = Readonly<Record<string, Json>>;
 export const isMember = (value: Json | undefined): value is Member =>
@@ -32,12 +37,52 @@ export function placeEvents(events: readonly Json[], seen: ReadonlyMap<string, n
     const own = numberOf(at['time_s']);
     const id = textOf(event['id']);
     const lane = LANES.find((one) => one === event['lane']) ?? 'notes';
-    return { index, id, lane, kind: textOf(event['kind']), timeS: own ?? seen.get(id) ?? null, timed: own !== null };
+    return {
+      index,
+      id,
+      lane,
+      kind: textOf(event['kind']),
+      timeS: own ?? seen.get(id) ?? null,
+      timed: own !== null,
+      after: typeof at['after'] === 'string' ? at['after'] : null,
+      delayS: numberOf(at['delay_s']) ?? 0,
+    };
   });
+}
+
+/** Member and new value when an event is moved by some seconds from where it was; null when it waits for a condition. */
+export function movedBy(
+  event: Pick<PlacedEvent, 'timed' | 'timeS' | 'after' | 'delayS'>,
+  seconds: number,
+  durationS: number,
+): { member: 'time_s' | 'delay_s'; value: number } | null {
+  if (event.timed && event.timeS !== null)
+    return { member: 'time_s', value: snapped(event.timeS + seconds, durationS) };
+  if (event.after !== null) return { member: 'delay_s', value: snapped(event.delayS + seconds, LONGEST_S) };
+  return null;
 }
 
 /** Seconds between labelled ticks, so that labels have room. */
 export function tickStep(durationS: number, widthPx: number): number {
   const perSecond = widthPx / Math.max(1, durationS);
   return [1, 2, 5, 10, 20, 30, 60, 120, 300, 600].find((step) => step * perSecond >= 56) ?? 600;
+}
+
+const LETTER_PX = 7.4;
+const FLAG_PX = 44;
+const MOST_ROWS = 4;
+
+/** Row of each label within its lane, so that labels of neighbours do not cover each other; labels in any order. */
+export function labelRows(labels: readonly { x: number; letters: number }[]): number[] {
+  const ends: number[] = [];
+  const rows = new Array<number>(labels.length).fill(0);
+  const order = labels.map((_label, i) => i).sort((a, b) => labels[a].x - labels[b].x || a - b);
+  for (const i of order) {
+    const { x, letters } = labels[i];
+    const free = ends.findIndex((end) => end <= x);
+    const row = free >= 0 ? free : Math.min(ends.length, MOST_ROWS - 1);
+    rows[i] = row;
+    ends[row] = Math.max(ends[row] ?? 0, x + FLAG_PX + letters * LETTER_PX);
+  }
+  return rows;
 }

@@ -90,10 +90,14 @@ export function useAutosave(draft: ScenarioDraftState, at: () => { slug: string;
       draft.markSaved(draft.document.value);
       opened(found);
     },
-    /** Saves what is here over what the other person saved. */
+    /** Saves what is here over what the other person saved; theirs can be brought back with undo. */
     async keepMine(): Promise<void> {
       const found = theirs.value;
       if (!found) return;
+      const mine = draft.document.value;
+      draft.replace(jsonOf(found.document), 'theirs');
+      draft.markSaved(draft.document.value);
+      draft.replace(mine, 'mine');
       version = found.version;
       state.value = 'waiting';
       theirs.value = null;

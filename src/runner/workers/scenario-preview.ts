@@ -1,13 +1,6 @@
-/** What a scenario does hands off and with the reference pilot, and how much time a trainee has. Apart from its worker. */
+/** What a scenario does hands off and with the reference pilot, and when its waiting events happen. Apart from its worker. */
 import type { Airframe } from '#shared/model/airframe-schema.ts';
-import {
-  type CriterionBudget,
-  type ReactionBudget,
-  createBudgetEvaluator,
-  criterionBudgets,
-  reactionBudget,
-  REACTION_MEASURES,
-} from '#shared/scenario/reaction-budget.ts';
+import { TICK_RATE_HZ } from '#shared/model/plant-types.ts';
 import { createReferencePilot, flyRun, handsOff } from '#shared/scenario/reference-pilot.ts';
 import { createRun } from '#shared/scenario/run.ts';
 import type { CriterionResult, FiredEvent, Run } from '#shared/scenario/run-types.ts';
@@ -42,16 +35,25 @@ export interface EventWindow {
 export type PreviewAnswer =
   | { id: number; part: 'runs'; handsOff: PreviewRun; reference: PreviewRun; warnings: string[] }
   | { id: number; part: 'windows'; windows: EventWindow[] }
-  | { id: number; part: 'budget'; budget: ReactionBudget; criteria: CriterionBudget[] }
   | { id: number; part: 'refused'; message: string };
 
 const FURTHER_SEEDS = 20;
 
-function flown({ scenario, airframe, delayS }: PreviewQuestion, reference: boolean): PreviewRun {
-  const run = createRun({ scenario, airframe, seed: scenario.seed });
+/** Simulated ticks between two places where the work may be given up: some milliseconds. */
+const SLICE_TICKS = 15 * TICK_RATE_HZ;
+
+/** A run in slices: pauses at each. */
+function* flown({ scenario, airframe, delayS }: PreviewQuestion, reference: boolean): Generator<null, PreviewRun> {
+  const run = createRun({ scenario, airframe, seed: scenario.seed }, { unhashed: true });
   const sampler = createRunSampler(run, run.durationTicks);
+  const pilot = reference ? createReferencePilot(run, delayS) : handsOff();
   sampler.take();
-  flyRun(run, reference ? createReferencePilot(run, delayS) : handsOff(), Infinity, sampler.take);
+  while (run.ended === null) {
+    const before = run.tick;
+    flyRun(run, pilot, before + SLICE_TICKS, sampler.take);
+    if (run.tick === before) break;
+    yield null;
+  }
   return {
     run: sampler.finish(),
     results: run.results(),
@@ -61,16 +63,14 @@ function flown({ scenario, airframe, delayS }: PreviewQuestion, reference: boole
   };
 }
 
-export function previewRuns(question: PreviewQuestion): Extract<PreviewAnswer, { part: 'runs' }> {
-  const hands = flown(question, false);
-  const reference = flown(question, true);
-  return {
-    id: question.id,
-    part: 'runs',
-    handsOff: hands,
-    reference,
-    warnings: previewWarnings(question.scenario, hands, reference),
-  };
+/** All answers to a question, the runs first. Where it pauses with null there is nothing to tell yet; who asked may stop. */
+export function* previewParts(question: PreviewQuestion): Generator<PreviewAnswer | null, void> {
+  const { id, scenario } = question;
+  const hands = yield* flown(question, false);
+  const reference = yield* flown(question, true);
+  const warnings = previewWarnings(scenario, hands, reference);
+  yield { id, part: 'runs', handsOff: hands, reference, warnings };
+  yield { id, part: 'windows', windows: yield* eventWindows(question) };
 }
 
 const passed = ({ results }: PreviewRun): boolean =>
@@ -101,15 +101,16 @@ export function previewWarnings(scenario: Scenario, hands: PreviewRun, reference
 }
 
 /** Spread of the events that wait, over the scenario's own draw and twenty further seeds, flown by the reference pilot. */
-export function eventWindows(question: PreviewQuestion): EventWindow[] {
+function* eventWindows(question: PreviewQuestion): Generator<null, EventWindow[]> {
   const { scenario, airframe, delayS } = question;
   const waiting = scenario.events.filter(({ at, vary }) => !('time_s' in at) || vary !== undefined);
   if (waiting.length === 0) return [];
   const times = new Map<string, number[]>(waiting.map(({ id }) => [id, []]));
   for (let i = 0; i <= FURTHER_SEEDS; i += 1) {
-    const run: Run = createRun({ scenario, airframe, seed: scenario.seed + i });
+    const run: Run = createRun({ scenario, airframe, seed: scenario.seed + i }, { lean: true });
     flyRun(run, createReferencePilot(run, delayS));
     for (const { id, timeS } of run.fired) times.get(id)?.push(timeS);
+    yield null;
   }
   return waiting.map(({ id }) => {
     const found = times.get(id) ?? [];
@@ -122,18 +123,4 @@ export function eventWindows(question: PreviewQuestion): EventWindow[] {
       runs: FURTHER_SEEDS + 1,
     };
   });
-}
-
-export function previewBudget(question: PreviewQuestion): Extract<PreviewAnswer, { part: 'budget' }> {
-  const spec = { scenario: question.scenario, airframe: question.airframe, seed: question.scenario.seed };
-  const budget = reactionBudget(spec);
-  const ids = question.scenario.criteria
-    .filter(({ required, measure }) => required && !REACTION_MEASURES.includes(measure))
-    .map(({ id }) => id);
-  return {
-    id: question.id,
-    part: 'budget',
-    budget,
-    criteria: ids.length === 0 ? [] : criterionBudgets(createBudgetEvaluator(spec), ids),
-  };
 }

@@ -1,24 +1,29 @@
-/** Worker: both runs of a scenario at once, then the spread of waiting events, then the reaction budget. */
-import {
-  type PreviewAnswer,
-  type PreviewQuestion,
-  eventWindows,
-  previewBudget,
-  previewRuns,
-} from './scenario-preview.ts';
+/** Worker: both runs of a scenario at once, then the spread of waiting events. A newer question ends the one before. */
+import { type PreviewAnswer, type PreviewQuestion, previewParts } from './scenario-preview.ts';
 
-self.addEventListener('message', (event: MessageEvent<PreviewQuestion>) => {
-  const question = event.data;
-  const answer = (part: PreviewAnswer): void => self.postMessage(part);
+let newest = 0;
+
+/** Lets waiting messages in; a timer would wait for milliseconds each time. */
+const breath = new MessageChannel();
+const breathe = (): Promise<void> =>
+  new Promise((resolve) => {
+    breath.port1.onmessage = () => resolve();
+    breath.port2.postMessage(null);
+  });
+
+async function answer(question: PreviewQuestion): Promise<void> {
+  newest = question.id;
+  const tell = (part: PreviewAnswer): void => self.postMessage(part);
   try {
-    answer(previewRuns(question));
-    answer({ id: question.id, part: 'windows', windows: eventWindows(question) });
-    answer(previewBudget(question));
+    for (const part of previewParts(question)) {
+      if (part) tell(part);
+      await breathe();
+      if (newest !== question.id) return;
+    }
   } catch (error) {
-    answer({
-      id: question.id,
-      part: 'refused',
-      message: error instanceof Error ? error.message : 'the preview failed',
-    });
+    const message = error instanceof Error ? error.message : 'the preview failed';
+    tell({ id: question.id, part: 'refused', message });
   }
-});
+}
+
+self.addEventListener('message', (event: MessageEvent<PreviewQuestion>) => void answer(event.data));

@@ -15,16 +15,11 @@ export class RosterFileError extends Error {
  */
 export function readRoster(bytes: Uint8Array): RosterRow[] {
   if (bytes.length > MOST_BYTES) throw new RosterFileError('The file is larger than 1 MB. Split it.');
-  let text: string;
-  try {
-    text = new TextDecoder('utf-8', { fatal: true }).decode(bytes);
-  } catch {
-    throw new RosterFileError('The file is not UTF-8. Save it as CSV UTF-8 and choose it again.');
-  }
-  if (text.includes('\0')) throw new RosterFileError('The file is not text. Save it as CSV UTF-8 and choose it again.');
-  const { data } = Papa.parse<string[]>(text, { skipEmptyLines: false });
-  const [heading = [], ...lines] = data;
-  const names = heading.map((cell) =>
+  const text = textOf(bytes);
+  const [heading, ...lines] = numberedLines(text);
+  if (heading === undefined)
+    throw new RosterFileError('The file is empty. Use the headings name, email, roles, cohort.');
+  const names = heading.cells.map((cell) =>
     cell
       .trim()
       .toLowerCase()
@@ -39,12 +34,12 @@ export function readRoster(bytes: Uint8Array): RosterRow[] {
     }
   }
   const cell = (cells: string[], name: string): string => (cells[column(name)] ?? '').trim().slice(0, MOST_TEXT);
-  const rows = lines.flatMap((cells, i) =>
+  const rows = lines.flatMap(({ cells, line }) =>
     cells.every((text) => text.trim() === '')
       ? []
       : [
           {
-            line: i + 2,
+            line,
             name: cell(cells, 'name'),
             email: cell(cells, 'email'),
             roles: cell(cells, 'roles').slice(0, 200),
@@ -54,6 +49,44 @@ export function readRoster(bytes: Uint8Array): RosterRow[] {
   );
   if (rows.length === 0) throw new RosterFileError('The file has a heading but no rows. Add one line a person.');
   return rows;
+}
+
+/** UTF-8, or UTF-16 that says so by its first two bytes; other encodings are not guessed: that would spoil names. */
+function textOf(bytes: Uint8Array): string {
+  const [first, second] = bytes;
+  const utf16 = first === 0xff && second === 0xfe ? 'utf-16le' : first === 0xfe && second === 0xff ? 'utf-16be' : null;
+  let text: string;
+  try {
+    text = new TextDecoder(utf16 ?? 'utf-8', { fatal: true }).decode(bytes);
+  } catch {
+    throw new RosterFileError('The file is not UTF-8. Save it as CSV UTF-8 and choose it again.');
+  }
+  if (text.includes('\0')) throw new RosterFileError('The file is not text. Save it as CSV UTF-8 and choose it again.');
+  return text;
+}
+
+/** What stands most often between the headings. */
+function delimiterOf(text: string): string {
+  const heading = /^[^\r\n]*/.exec(text)?.[0] ?? '';
+  const count = (mark: string): number => heading.split(mark).length;
+  return [';', '\t'].reduce((best, mark) => (count(mark) > count(best) ? mark : best), ',');
+}
+
+/** Rows of cells with the line each begins in, line breaks within quotes counted. */
+function numberedLines(text: string): { cells: string[]; line: number }[] {
+  const found: { cells: string[]; line: number }[] = [];
+  let line = 1;
+  let from = 0;
+  Papa.parse<string[]>(text, {
+    delimiter: delimiterOf(text),
+    skipEmptyLines: false,
+    step: ({ data, meta }) => {
+      found.push({ cells: data, line });
+      line += text.slice(from, meta.cursor).match(/\r\n|\r|\n/g)?.length ?? 0;
+      from = meta.cursor;
+    },
+  });
+  return found;
 }
 
 /** Rows of the invitation box: one line a person, "Name, address" or an address alone. */

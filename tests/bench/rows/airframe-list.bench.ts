@@ -1,4 +1,3 @@
-import { Agent, request, type RequestOptions } from 'node:http';
 import express from 'express';
 import { createPool } from 'mysql2/promise';
 import type { EntityManager } from 'typeorm';
@@ -7,6 +6,7 @@ import { airframeListQuerySchema } from '#shared/contracts/airframes.ts';
 import { createAirframesRepository } from '../../../server/data/repositories/airframes.repository.ts';
 import { listen, startBenchProduct } from '../bench-product.ts';
 import { defineBench, median, quantile } from '../harness.ts';
+import { loadHttp } from '../http-load.ts';
 
 const AIRFRAMES = 5000;
 const REVISIONS = 10;
@@ -53,6 +53,8 @@ export default defineBench({
     const baseline = await listen((incoming, response) => void bare(incoming, response), cleanUp);
     const ours = (i: number) => `${product.address}/api/airframes?${QUERIES[i % QUERIES.length]}`;
     const raw = (i: number) => `${baseline}/list?q=${encodeURIComponent(QUERIES[i % QUERIES.length])}`;
+    const load = (addressOf: (i: number) => string, headers: Record<string, string>) =>
+      loadHttp(addressOf, { requests: REQUESTS, atOnce: AT_ONCE, headers });
     await load(ours, product.headers);
     await load(raw, {});
     const ratios: number[] = [];
@@ -130,35 +132,4 @@ async function recordStatements(url: string, organisationId: string): Promise<[s
   const query = airframeListQuerySchema.parse(Object.fromEntries(new URLSearchParams(url)));
   await createAirframesRepository(manager as unknown as EntityManager).list(organisationId, query); // the list sends plain statements only
   return recorded;
-}
-
-/** Sends the requests, some at once over kept connections. */
-async function load(addressOf: (i: number) => string, headers: Record<string, string>) {
-  const agent = new Agent({ keepAlive: true, maxSockets: AT_ONCE });
-  const times: number[] = [];
-  let next = 0;
-  const started = performance.now();
-  const worker = async (): Promise<void> => {
-    while (next < REQUESTS) {
-      const i = next++;
-      const from = performance.now();
-      await get(addressOf(i), { agent, headers });
-      times[i] = performance.now() - from;
-    }
-  };
-  await Promise.all(Array.from({ length: AT_ONCE }, worker));
-  const perSecond = REQUESTS / ((performance.now() - started) / 1000);
-  agent.destroy();
-  return { times, perSecond };
-}
-
-function get(address: string, options: RequestOptions): Promise<void> {
-  return new Promise((resolve, reject) => {
-    request(address, options, (response) => {
-      if (response.statusCode !== 200) reject(new Error(`${address} answered ${response.statusCode}.`));
-      response.resume().on('end', resolve).on('error', reject);
-    })
-      .on('error', reject)
-      .end();
-  });
 }

@@ -1,8 +1,9 @@
 import { randomUUID } from 'node:crypto';
-import { io } from 'socket.io-client';
+import { io, type Socket } from 'socket.io-client';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { attemptDetailSchema } from '#shared/contracts/attempts.ts';
 import { classDetailSchema, classPassSchema, classScenarioSchema, type ClassPass } from '#shared/contracts/classes.ts';
+import { headTickAt } from '#shared/scenario/class-state.ts';
 import { ClassSession } from '../../../src/features/class/class-session.ts';
 import { until } from '../../support/class-client.ts';
 import { startTestServer, type Client, type TestServer } from '../../support/test-server.ts';
@@ -11,8 +12,13 @@ let server: TestServer;
 let instructorHttp: Client;
 let pass: ClassPass;
 const sessions: ClassSession[] = [];
+const sockets = new Map<ClassSession, Socket>();
 
-function sessionOf(http: Client): ClassSession {
+interface Wrong {
+  clockMs: number;
+  renewed: number;
+}
+function sessionOf(http: Client, wrong: Wrong = { clockMs: 0, renewed: 0 }): ClassSession {
   const socket = io(server.address, {
     transports: ['websocket'],
     extraHeaders: { cookie: http.cookie(), origin: server.address },
@@ -25,6 +31,12 @@ function sessionOf(http: Client): ClassSession {
     scenario: async (index) =>
       classScenarioSchema.parse((await http('GET', `/api/classes/${pass.classId}/scenarios/${index}`)).body),
     newKey: randomUUID,
+    renew: () => {
+      wrong.renewed += 1;
+      socket.io.opts.extraHeaders = { cookie: http.cookie(), origin: server.address };
+      return Promise.resolve(true);
+    },
+    now: () => Date.now() + wrong.clockMs,
     events: {
       changed: () => undefined,
       board: () => undefined,
@@ -35,9 +47,15 @@ function sessionOf(http: Client): ClassSession {
     },
   });
   sessions.push(session);
+  sockets.set(session, socket);
   session.open();
   return session;
 }
+const socketOf = (session: ClassSession): Socket => {
+  const socket = sockets.get(session);
+  if (!socket) throw new Error('No session of these tests.');
+  return socket;
+};
 
 /** Sixty pictures a second for a time, as a page draws them. */
 async function play(session: ClassSession, ms: number): Promise<void> {
@@ -55,7 +73,7 @@ beforeAll(async () => {
   instructorHttp = await server.client('m.okafor');
   const json = {
     title: 'Browsers',
-    playlist: [{ scenarioSlug: 'left-engine-cut-after-lift-off' }],
+    playlist: [{ scenarioSlug: 'left-engine-cut-after-lift-off' }, { scenarioSlug: 'rudder-ratio-stuck' }],
     mode: 'everyone-flies',
     guests: true,
   };
@@ -110,5 +128,62 @@ describe('the browser’s session of a class', () => {
     expect(overAt).toBeGreaterThan(120);
     expect(detail.result?.durationS).toBeCloseTo(overAt / 120, 3);
     expect(runsFlown[1]).toMatchObject({ seed: runsFlown[0].seed, mode: 'everyone-flies' });
+  });
+
+  it('comes back by itself when its sign-in has run out while the connection was away, and when the server hangs up', async () => {
+    const http = await server.client('a.bauer');
+    await http('POST', '/api/classes/join', { json: { code: pass.joinCode } });
+    const wrong = { clockMs: 0, renewed: 0 };
+    const session = sessionOf(http, wrong);
+    await until(() => session.inside);
+    const socket = socketOf(session);
+    // As after ten minutes: the cookie of the session is gone, the handshake is refused, and nothing tries again by itself.
+    socket.io.opts.extraHeaders = { origin: server.address };
+    socket.io.engine.close();
+    await until(() => !session.inside);
+    await until(() => session.inside, 10_000);
+    expect(wrong.renewed).toBe(1);
+    // Somebody’s broken extension floods: the server hangs up, and the honest page comes in again.
+    for (let i = 0; i < 500; i += 1) socket.emit('nonsense', {});
+    await until(() => !session.inside);
+    await until(() => session.inside, 10_000);
+    expect(wrong.renewed).toBe(2);
+    const [instructor] = sessions;
+    await until(() => instructor.inside, 10_000);
+    await instructor.control({ deed: 'message', text: 'Everybody here again' });
+    await until(() => session.state.seq === instructor.state.seq);
+  });
+
+  it('flies at the right time by a clock that is two minutes off, and that stands still for a while', async () => {
+    const [instructor] = sessions;
+    await instructor.control({ deed: 'stop' }).catch(() => undefined);
+    const http = await server.client('s.chandran');
+    await http('POST', '/api/classes/join', { json: { code: pass.joinCode } });
+    const wrong = { clockMs: -120_000, renewed: 0 };
+    const session = sessionOf(http, wrong);
+    await until(() => session.inside);
+    await instructor.control({ deed: 'scenario', index: 1 });
+    await instructor.control({ deed: 'start', countdownS: 0.3 });
+    await until(() => session.run !== null && session.run.overAt === null);
+    const flight = await session.takeControls();
+    const late = (): number => {
+      const { run } = instructor;
+      if (!run) throw new Error('Nothing runs.');
+      session.step((sample) => void (sample.pedal = 5000));
+      return Math.abs((flight?.line.head ?? 0) - headTickAt(run, instructor.serverNow()));
+    };
+    await play(session, 1500);
+    // Half of both round trips on loopback, in ticks of 8.3 ms, and one for the rounding.
+    const bound = () => 2 + ((session.roundTripMs + instructor.roundTripMs) / 2) * 0.12;
+    expect(late()).toBeLessThanOrEqual(bound());
+    // The machine sleeps for nine seconds, and its clock with it.
+    wrong.clockMs -= 9000;
+    expect(late()).toBeGreaterThan(800);
+    // Word of the server's time comes every two seconds.
+    for (let i = 0; i < 40 && late() > bound(); i += 1) await play(session, 200);
+    expect(late()).toBeLessThanOrEqual(bound());
+    expect(flight?.line.head).toBeGreaterThan(200);
+    await instructor.control({ deed: 'stop' });
+    await play(session, 500);
   });
 });

@@ -1,6 +1,8 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { classPassSchema, type ClassPass } from '#shared/contracts/classes.ts';
 import type { BoardRow } from '#shared/contracts/class-socket.ts';
+import { TICK_RATE_HZ } from '#shared/model/plant-types.ts';
+import { headTickAt, phaseAt } from '#shared/scenario/class-state.ts';
 import { ClassClient, play, telemetryAt, until } from '../../support/class-client.ts';
 import { startRedis, startServerProcess, type RedisProcess, type ServerProcess } from '../../support/server-process.ts';
 import { freshDatabase, openClient } from '../../support/test-server.ts';
@@ -35,10 +37,12 @@ async function storedChunks(attemptId: string): Promise<number[]> {
 async function openClass(
   address: string,
   mode: string,
+  /** Fifteen seconds; a class that is held up for longer needs a longer one. */
+  scenarioSlug = 'left-engine-cut-after-lift-off',
 ): Promise<{ pass: ClassPass; http: Awaited<ReturnType<typeof openClient>> }> {
   const http = await openClient(address, 'm.okafor');
   const opened = await http('POST', '/api/classes', {
-    json: { title: 'Across', playlist: [{ scenarioSlug: 'left-engine-cut-after-lift-off' }], mode },
+    json: { title: 'Across', playlist: [{ scenarioSlug }], mode },
   });
   return { pass: classPassSchema.parse(opened.body), http };
 }
@@ -125,7 +129,7 @@ describe('one process without Redis', () => {
   it('killed in the middle of a run: browsers come back by themselves, the class goes on at the right time', async () => {
     const one = await startServerProcess({ databaseUrl: fresh.url });
     processes.push(one);
-    const { pass, http } = await openClass(one.address, 'everyone-flies');
+    const { pass, http } = await openClass(one.address, 'everyone-flies', 'rudder-ratio-stuck');
     const instructor = await new ClassClient(http, one.address, pass.classId).connect();
     clients.push(instructor);
     const trainee = await member(one.address, 'j.lindqvist', pass);
@@ -141,18 +145,12 @@ describe('one process without Redis', () => {
       await until(() => trainee.socket.connected && instructor.socket.connected, 20_000);
       await play([trainee], 500);
     }
-    // A busy machine may hold the trainee's hands up; they catch up with the class's clock.
-    const run = instructor.run;
-    await expect
-      .poll(
-        async () => {
-          await play([trainee], 100);
-          const tick = ((instructor.serverNow() - run.startMs) / 1000) * 120;
-          return Math.abs(flight.line.head - tick);
-        },
-        { timeout: 10_000, interval: 50 },
-      )
-      .toBeLessThan(60);
+    // What a busy machine holds up is flown in one picture, at most four seconds of the class clock at a time; what is then
+    // left is the error of two measurements of the clock, half of a round trip each, and the rounding of a tick.
+    expect(phaseAt(instructor.run, instructor.serverNow())).toBe('running');
+    for (let behind = Infinity; behind > 0;) behind = flight.advance(trainee.serverNow(), trainee.steer);
+    const late = Math.abs(flight.line.head - headTickAt(instructor.run, instructor.serverNow()));
+    expect(late).toBeLessThanOrEqual(2 + ((trainee.roundTripMs + instructor.roundTripMs) / 2) * (TICK_RATE_HZ / 1000));
     await instructor.control({ deed: 'freeze' });
     await play([trainee], 600);
     await instructor.control({ deed: 'stop' });

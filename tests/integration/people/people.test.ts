@@ -299,17 +299,3 @@ describe('the audit trail', () => {
     expect((await check()).firstBreak).toMatchObject({ id: String(entry.id) });
   });
 });
-
-describe('the organisation', () => {
-  it('is renamed and set; its settings reach everyone', async () => {
-    const settings = { units: 'si', recognitionTimeS: 1.5, guests: false };
-    const put = await administrator('PUT', '/api/organisation', { json: { name: 'Field School North', settings } });
-    expect(put.status).toBe(204);
-    const trainee = await server.client('j.lindqvist');
-    expect((await trainee('GET', '/api/session')).body).toMatchObject({
-      organisation: { name: 'Field School North', settings },
-    });
-    const wrong = await administrator('PUT', '/api/organisation', { json: { name: ' ', settings } });
-    expect(wrong.status).toBe(422);
-  });
-});

@@ -107,6 +107,12 @@ describe('paragraphs', () => {
     const at = (zeta: number, id: string) => level(dutch(1.5, zeta), id, 'III', 'C')?.level;
     expect([0.001, -0.001].map((zeta) => at(zeta, '25.181'))).toEqual(['met', 'not met']);
     expect([0.053, 0.051].map((zeta) => at(zeta, '23.181'))).toEqual(['met', 'not met']);
+    const pair = (re: number) => modes(['real-pair', re, 0], ['real-pair', -2, 0]);
+    for (const id of ['25.181', '23.181']) {
+      // A root at zero is no damping: neither the paragraph nor "convergent" may be said of it.
+      expect([-1, 0, 1].map((re) => level(pair(re), id, 'III', 'C')?.level)).toEqual(['met', 'not met', 'not met']);
+      expect(level(pair(0), id, 'III', 'C')?.remark).toMatch(/neutral/u);
+    }
     // 1/10 in 7 cycles: exp(−2π·7·ζ/√(1−ζ²)) = 0.1
     expect(Math.exp((-2 * Math.PI * 7 * 0.0523) / Math.sqrt(1 - 0.0523 ** 2))).toBeCloseTo(0.1, 3);
   });

@@ -138,7 +138,7 @@ describe('body and wing estimates', () => {
     expect(() => estimateBody({ ...body, fullness: 1.2 })).toThrow(/fullness/u);
   });
 
-  it('roll damping is the integral of the strips', () => {
+  it('roll damping is the integral of the strips, less the induced flow of rolling', () => {
     // Numerically: −(4a/(S b²))·∫ c y² dy over the half span, b = 2, root chord 1; tolerance that of 2,000 midpoints.
     const a = 5.2;
     for (const taper of [0, 0.45, 1]) {
@@ -151,9 +151,15 @@ describe('body and wing estimates', () => {
         sum += (chord * y * y) / steps;
         area += (2 * chord) / steps;
       }
-      expect(estimateWingRollDamping(a, taper)).toBeCloseTo((-4 * a * sum) / (area * 4), 4);
+      const strips = (-4 * a * sum) / (area * 4);
+      expect(estimateWingRollDamping(a, taper, 1e9)).toBeCloseTo(strips, 4);
+      expect(estimateWingRollDamping(a, taper, 8)).toBeCloseTo((strips * 10) / 12, 4);
     }
-    expect(() => estimateWingRollDamping(a, 1.1)).toThrow(/taper/u);
+    // An elliptic wing damps with a₀A/(A + 4)/8 (Glauert, lifting line); a taper of 0.5 damps 11 % more (computed).
+    const elliptic = (-2 * Math.PI * 8) / (8 * (8 + 4));
+    expect(estimateWingRollDamping((2 * Math.PI * 8) / (8 + 2), 0.5, 8) / elliptic).toBeCloseTo(1.11, 1);
+    expect(() => estimateWingRollDamping(a, 1.1, 8)).toThrow(/taper/u);
+    expect(() => estimateWingRollDamping(a, 0.5, 0)).toThrow(/aspectRatio/u);
   });
 
   it('a low wing takes from the dihedral effect as much as a high one adds', () => {

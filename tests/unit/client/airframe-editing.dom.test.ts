@@ -275,7 +275,7 @@ describe('import wizard', () => {
     expect(page.host.textContent).toContain('row 3, E');
     expect(page.host.textContent).toContain('Cn beta: “n/a” is not a number');
     expect(page.host.textContent).not.toContain('Save as a draft');
-    button(page.host, 'Leave row 3 out').click();
+    button(page.host, 'Row 3: leave it out').click();
     await nextTick();
     for (const [label, value] of [
       ['Mass, or weight in lb', '1750'],

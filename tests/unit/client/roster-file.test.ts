@@ -14,7 +14,32 @@ describe('a roster file', () => {
     ]);
   });
 
+  it.each(['\n', '\r\n'])('numbers its lines past line breaks within quotes (%j)', (end) => {
+    const text = ['name,email', '"Lund,', 'Per",p@b.example', '', '"A', '', 'B",a@b.example', 'C,c@b.example', ''].join(
+      end,
+    );
+    expect(readRoster(bytes(text)).map(({ line, email }) => [line, email])).toEqual([
+      [2, 'p@b.example'],
+      [5, 'a@b.example'],
+      [8, 'c@b.example'],
+    ]);
+  });
+
+  it('may have two columns between semicolons', () => {
+    expect(readRoster(bytes('name;email\nMoe, Ida;i@b.example\n'))).toMatchObject([{ name: 'Moe, Ida', line: 2 }]);
+  });
+
+  it('is read in UTF-16 that says so', () => {
+    const text = '\ufeffname\temail\n李 文\tw@b.example\n';
+    const little = Uint8Array.from(Buffer.from(text, 'utf16le'));
+    const big = Uint8Array.from(Buffer.from(text, 'utf16le').swap16());
+    for (const file of [little, big])
+      expect(readRoster(file)[0]).toMatchObject({ name: '李 文', email: 'w@b.example' });
+  });
+
   it.each([
+    ['nothing in it', new Uint8Array(0), /empty/],
+    ['Windows-1252', Uint8Array.from([...bytes('name,email\nL'), 0x92, ...bytes('Abb,l@b.example\n')]), /not UTF-8/],
     ['no address heading', bytes('name,phone\nA,1\n'), /no heading “email”/],
     ['a heading alone', bytes('name,email\n'), /no rows/],
     ['Latin-1', Uint8Array.from([...bytes('name,email\nJos'), 0xe9, ...bytes(',j@b.example\n')]), /not UTF-8/],

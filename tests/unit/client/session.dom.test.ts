@@ -2,6 +2,7 @@ import { createPinia, setActivePinia } from 'pinia';
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest';
 import { nextTick } from 'vue';
 import { isApiError } from '../../../src/services/api-error.ts';
+import { useNoticesStore } from '../../../src/stores/notices.store.ts';
 import { usePreferencesStore } from '../../../src/stores/preferences.store.ts';
 import { useSessionStore } from '../../../src/stores/session.store.ts';
 import SignInView from '../../../src/views/account/SignInView.vue';
@@ -83,8 +84,16 @@ describe('session', () => {
 });
 
 describe('preferences', () => {
-  it('follows the organisation until the person chooses, and remembers that on this device', async () => {
-    serve(() => ({ status: 200, body: ME }));
+  it('follows the organisation until the person chooses, which the server keeps', async () => {
+    let kept: unknown = null;
+    vi.stubGlobal('fetch', async (input: string, init: RequestInit) => {
+      if (init.method === 'PUT' && input === '/api/session/profile') {
+        const body: unknown = JSON.parse(String(init.body));
+        kept = body;
+        return new Response(JSON.stringify({ ...ME, person: { ...ME.person, units: 'aviation', timeZone: null } }));
+      }
+      return new Response(JSON.stringify(ME));
+    });
     const session = useSessionStore();
     const preferences = usePreferencesStore();
     expect(preferences.units).toBe('aviation');
@@ -92,12 +101,22 @@ describe('preferences', () => {
     await nextTick();
     expect(preferences.units).toBe('si');
     preferences.units = 'aviation';
-    setActivePinia(createPinia());
+    expect(preferences.units).toBe('aviation');
+    await settle();
+    expect(kept).toEqual({ displayName: 'J. Lindqvist', units: 'aviation', timeZone: null });
+    expect(session.me?.person.units).toBe('aviation');
+    expect(preferences.lastOrganisation).toBe('Field School of Flight');
+  });
+
+  it('takes a choice of units back when the server cannot keep it', async () => {
+    serve(() => ({ status: 200, body: ME }));
     await useSessionStore().restore();
-    const again = usePreferencesStore();
-    await nextTick();
-    expect(again.units).toBe('aviation');
-    expect(again.lastOrganisation).toBe('Field School of Flight');
+    const preferences = usePreferencesStore();
+    serve(() => refusal(503, 'unavailable'));
+    preferences.units = 'aviation';
+    await settle();
+    expect(preferences.units).toBe('si');
+    expect(useNoticesStore().current?.text).toContain('Units not kept.');
   });
 
   it('sets the sheet colour on the page and survives a damaged record', async () => {
