@@ -52,7 +52,7 @@ describe('an engineer', () => {
     // Heffley & Jewell, NASA CR-2144, DC-8 approach, 243.5 ft/s at sea level: 0.995 rad/s with damping 0.11.
     await page.goto(`/analysis?airframe=${slug}&revision=1`);
     await type(page, 'Speed', '243.5 ft/s');
-    await expect.poll(() => row(page, 'Modes', 'Dutch roll').innerText()).toMatch(/ζ 0\.11\d*, ω 0\.99\d*/);
+    await expect.poll(() => row(page, 'Modes', 'Dutch roll').innerText()).toMatch(/ζ 0\.1(?:09|1\d?), ω 0\.99\d?/);
     await type(page, 'Speed', 'fast');
     await page.getByText(/"fast" is not a number with a unit/).waitFor();
     await page.keyboard.press('Escape');
@@ -96,7 +96,7 @@ describe('an engineer', () => {
     await expect.poll(() => pointOnMap(page)).toBeCloseTo(0.0573, 4);
     await type(page, 'Size of the input', '0.1 rad');
     await figure(page, 'Rudder doublet, 5.73 deg').waitFor();
-    await page.getByLabel('Input', { exact: true }).last().selectOption('side-gust');
+    await page.getByLabel('Input').last().selectOption('side-gust');
     await page.getByText('sideslip to side gust, dB, 1 rad per m/s').waitFor();
     expect(await accessibilityProblems(page)).toEqual([]);
 
