@@ -1,9 +1,8 @@
 /** An administrator invites from a CSV, the invited person takes the link from the mail in the sink, and the trail holds it all. */
-import fs from 'node:fs';
-import path from 'node:path';
-import { describe, expect, inject } from 'vitest';
+import { describe, expect } from 'vitest';
 import { accessibilityProblems } from './support/axe.ts';
 import { test } from './support/browser-test.ts';
+import { linkInSink } from './support/mail-sink.ts';
 import { signIn } from './support/sign-in.ts';
 
 const SIGNED_OUT = /401/;
@@ -14,17 +13,6 @@ Sam Osei,s.osei@fieldschool.example,pilot,
 Jonas again,J.LINDQVIST@fieldschool.example,,
 `;
 const PASSWORD = 'four words are enough';
-
-/** The link in the newest message to `email` in the local sink. */
-function linkIn(email: string): string | null {
-  const folder = path.join(inject('dataFolder'), 'mail');
-  for (const name of fs.existsSync(folder) ? fs.readdirSync(folder).sort().reverse() : []) {
-    const raw = fs.readFileSync(path.join(folder, name), 'utf8').replace(/=\r?\n/g, '');
-    const found = /\/welcome\/[\w-]{43}/.exec(raw);
-    if (raw.includes(email) && found) return found[0];
-  }
-  return null;
-}
 
 describe('an administrator', () => {
   test('invites from a CSV, changes roles, deactivates, and verifies the trail', async ({ newPage }) => {
@@ -48,9 +36,9 @@ describe('an administrator', () => {
     await page.getByRole('searchbox', { name: 'Name or address' }).fill('aldana');
     await page.getByText('Invited, until').waitFor();
 
-    await expect.poll(() => linkIn('i.aldana@fieldschool.example'), { timeout: 20_000 }).not.toBeNull();
+    await expect.poll(() => linkInSink('i.aldana@fieldschool.example'), { timeout: 20_000 }).not.toBeNull();
     const guest = await newPage({ expectedErrors: [SIGNED_OUT, /409/] });
-    const address = linkIn('i.aldana@fieldschool.example') ?? '';
+    const address = linkInSink('i.aldana@fieldschool.example') ?? '';
     await guest.goto(address);
     await guest.getByText('You sign in with').waitFor();
     expect(await accessibilityProblems(guest)).toEqual([]);

@@ -16,15 +16,25 @@ export async function startSlowLink(
   const { hostname, port } = new URL(target);
   const sockets = new Set<net.Socket>();
   const pass = (from: net.Socket, to: net.Socket): void => {
-    let dueMs = 0;
+    // In one queue: timers of their own could overtake each other within a millisecond.
+    const waiting: { dueMs: number; data: Buffer }[] = [];
+    const pump = (): void => {
+      while (waiting.length > 0 && waiting[0].dueMs <= performance.now()) {
+        const next = waiting.shift();
+        if (next && to.writable) to.write(next.data);
+      }
+      if (waiting.length > 0) setTimeout(pump, waiting[0].dueMs - performance.now());
+    };
     from.on('data', (data) => {
       const retransmission = random() < lossShare ? 200 + 2 * delayMs : 0;
       const late = delayMs + jitterMs * random() + retransmission;
       // What follows waits behind what is late.
-      dueMs = Math.max(dueMs, performance.now() + late);
-      setTimeout(() => to.writable && to.write(data), dueMs - performance.now());
+      const dueMs = Math.max(waiting.at(-1)?.dueMs ?? 0, performance.now() + late);
+      waiting.push({ dueMs, data });
+      if (waiting.length === 1) setTimeout(pump, late);
     });
-    from.on('close', () => setTimeout(() => to.destroy(), delayMs));
+    const end = (): void => void (waiting.length > 0 ? setTimeout(end, 10) : to.destroy());
+    from.on('close', () => setTimeout(end, delayMs));
     from.on('error', () => to.destroy());
     sockets.add(from);
   };

@@ -1,9 +1,11 @@
 import { describe, expect, it } from 'vitest';
-import { allChecks } from '#shared/analysis/checks/all-checks.ts';
+import { allChecks, publishedChecks } from '#shared/analysis/checks/all-checks.ts';
 import { PUBLISHED_SETS } from '#shared/analysis/checks/data-sets.ts';
 import { runCheck } from '#shared/analysis/checks/published-case.ts';
 import type { PublishedCase } from '#shared/analysis/checks/published-case.ts';
 import { documentOfSet } from '#shared/analysis/checks/set-airframe.ts';
+import { hasAllShipped } from '#shared/analysis/checks/shipped-slugs.ts';
+import { topicOf } from '#shared/analysis/checks/topics.ts';
 import { parseAirframe } from '#shared/model/airframe-schema.ts';
 import { SHIPPED } from './shipped-airframes.ts';
 
@@ -82,6 +84,25 @@ describe('the list of cases', () => {
     ['independent minimum control speeds', 'vmc-light-twin-'],
   ])('covers %s', (_row, prefix) => {
     expect(checks.filter((check) => check.id.startsWith(prefix)).length).toBeGreaterThan(0);
+  });
+
+  it('without the shipped airframes holds the same published cases, less the facts shown on them', () => {
+    const published = new Set(publishedChecks().map(({ id }) => id));
+    const left = checks.filter(({ id }) => !published.has(id));
+    expect(published.size + left.length).toBe(checks.length);
+    expect(left.length).toBeGreaterThan(30);
+    expect(new Set(left.map(({ group }) => topicOf(group)))).toEqual(
+      new Set(['Minimum control speed', 'Common practice']),
+    );
+    expect(hasAllShipped(SHIPPED)).toBe(true);
+    expect(hasAllShipped({ ...SHIPPED, 'twin-jet': undefined })).toBe(false);
+  });
+
+  it('stands under nine topics, each in one piece', () => {
+    const topics = checks.map(({ group }) => topicOf(group));
+    const pieces = topics.filter((topic, i) => topic !== topics[i - 1]);
+    expect(new Set(topics).size).toBe(9);
+    expect(pieces).toHaveLength(9);
   });
 
   it('finds a wrong value: every value case differs when its published number moves by three tolerances', () => {

@@ -20,7 +20,10 @@ const ANSWER_WITHIN_MS = 2000;
 
 /** First match decides; tables are named by what they hold. */
 const AREAS: readonly [RegExp, StorageArea][] = [
-  [/^(?:person|session|refresh_token|account_link|cohort|organisation|first_set_up|access_token|throttle)/, 'People'],
+  [
+    /^(?:person|session|refresh_token|account_link|cohort|organisation|first_set_up|access_token|idempotency|throttle)/,
+    'People',
+  ],
   [/^(?:airframe|study|report_count)/, 'Airframes'],
   [/^(?:scenario|playlist|budget)/, 'Scenarios'],
   [/^(?:class|live_class)/, 'Classes'],

@@ -22,15 +22,30 @@ import { trapCases } from './trap-checks.ts';
  * @source           Each case's own.
  */
 export function allChecks(airframes: ShippedAirframes): PublishedCase[] {
+  return inOrder([...shippedControlSpeedCases(airframes), ...practiceCases(airframes)]);
+}
+
+/**
+ * The cases that need no airframe: published values, criteria, air, estimates.
+ *
+ * @returns  Cases as `allChecks` gives them, without those shown on the shipped airframes.
+ * @throws   Nothing.
+ * @sign     none
+ * @source   Each case's own.
+ */
+export function publishedChecks(): PublishedCase[] {
+  return inOrder([]);
+}
+
+function inOrder(onShippedAirframes: PublishedCase[]): PublishedCase[] {
   return [
     ...etkinCases(),
     ...modesCases(),
     ...dimensionalCases(),
-    ...responseCases(),
     ...trapCases(),
+    ...responseCases(),
     ...controlSpeedCases(),
-    ...shippedControlSpeedCases(airframes),
-    ...practiceCases(airframes),
+    ...onShippedAirframes,
     ...criteriaCases(),
     ...airCases(),
     ...finCases(),

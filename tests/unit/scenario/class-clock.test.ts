@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { betterOffset, contradicts } from '../../../shared/scenario/class-clock.ts';
+import { betterOffset, contradicts } from '#shared/scenario/class-clock.ts';
 
 const known = { offsetMs: 1000, roundTripMs: 40 };
 

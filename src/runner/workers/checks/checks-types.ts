@@ -4,6 +4,8 @@ import type { Provenance, Verdict } from '#shared/analysis/checks/published-case
 export interface CheckLine {
   id: string;
   group: string;
+  /** Gathers several groups. */
+  topic: string;
   quantity: string;
   provenance: Provenance;
   source: string;
@@ -20,6 +22,7 @@ export interface OutcomeLine {
   deviation: number | null;
   detail: string;
 }
+/** `airframes` by slug: with all five shipped ones the facts shown on them are among the cases, else only what is published. */
 export type ChecksCommand =
   { kind: 'open'; airframes: Record<string, Airframe> } | { kind: 'run'; ids: string[] } | { kind: 'stop' };
 export type ChecksReport =

@@ -1,6 +1,8 @@
 /** Runs the published cases one after another and reports each as it ends; the page may stop it between two cases. */
-import { allChecks } from '#shared/analysis/checks/all-checks.ts';
+import { allChecks, publishedChecks } from '#shared/analysis/checks/all-checks.ts';
 import { runCheck, toleranceOf } from '#shared/analysis/checks/published-case.ts';
+import { hasAllShipped } from '#shared/analysis/checks/shipped-slugs.ts';
+import { topicOf } from '#shared/analysis/checks/topics.ts';
 import type { Airframe } from '#shared/model/airframe-schema.ts';
 import type { CheckLine, ChecksCommand, ChecksReport } from './checks-types.ts';
 
@@ -13,11 +15,12 @@ function report(message: ChecksReport): void {
 }
 
 function open(airframes: Record<string, Airframe>): void {
-  const all = allChecks(airframes as Parameters<typeof allChecks>[0]); // the page sends the five shipped airframes by slug
+  const all = hasAllShipped(airframes) ? allChecks(airframes) : publishedChecks();
   cases = new Map(all.map((c) => [c.id, c]));
   lines = all.map((c) => ({
     id: c.id,
     group: c.group,
+    topic: topicOf(c.group),
     quantity: c.kind === 'fact' ? c.statement : c.quantity,
     provenance: c.provenance,
     source: c.source,
