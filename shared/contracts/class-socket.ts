@@ -29,6 +29,7 @@ const member = z.uuid();
 const tick = z.number().int().min(0).max(MAX_RUN_TICKS);
 const seq = z.number().int().min(0);
 const fraction = z.number().min(-10).max(10);
+const angleDeg = z.number().min(-180).max(180);
 
 /** Why a request was refused, beside the codes of problem.ts. */
 export const CLASS_REFUSALS = [
@@ -148,8 +149,8 @@ export const runStandsSchema = z.strictObject({ classId, run: z.number().int().m
 export const telemetrySchema = z.strictObject({
   tick,
   ended: endReasonSchema.nullable(),
-  betaDeg: fraction.min(-180).max(180),
-  wantedBetaDeg: fraction.min(-180).max(180),
+  betaDeg: angleDeg,
+  wantedBetaDeg: angleDeg,
   ballWidths: fraction,
   wantedBallWidths: fraction,
   pedal: fraction,

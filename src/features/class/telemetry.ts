@@ -60,8 +60,8 @@ export function createTelemetry(): TelemetryMaker {
       return {
         tick: run.tick,
         ended: run.ended,
-        betaDeg: now.betaRad / DEG,
-        wantedBetaDeg: wanted.betaRad / DEG,
+        betaDeg: bounded(now.betaRad / DEG, 180),
+        wantedBetaDeg: bounded(wanted.betaRad / DEG, 180),
         ballWidths: bounded(now.ballWidths, 10),
         wantedBallWidths: bounded(wanted.ballWidths, 10),
         pedal: bounded(now.pedal, 10),
@@ -70,8 +70,8 @@ export function createTelemetry(): TelemetryMaker {
         phiDeg: bounded(now.phiRad / DEG, 720),
         wantedPhiDeg: bounded(wanted.phiRad / DEG, 720),
         headingDeviationDeg: bounded((now.psiRad - startPsi) / DEG, 10_000),
-        iasKt: now.casMps / KT,
-        heightFt: now.heightAboveRunwayM / FT,
+        iasKt: bounded(now.casMps / KT, 2000),
+        heightFt: bounded(now.heightAboveRunwayM / FT, 200_000),
         deadSide,
         peakBetaDeg: bounded(peakBeta / DEG, 180),
         firstPedalS:

@@ -24,6 +24,7 @@ const codeOf = (work: Promise<unknown>): Promise<string> =>
     () => 'ok',
     (error: unknown) => (error instanceof SocketRefusal ? error.code : String(error)),
   );
+const lineOf = ({ flight }: ClassClient) => flight?.line;
 const raw = (): Socket => {
   const socket = io(server.address, {
     transports: ['websocket'],
@@ -138,7 +139,7 @@ describe('a trainee who forges', () => {
     await play([instructor, viewer], 1200);
     const heard: string[] = [];
     viewer.socket.on('run:inputs', ({ frame }) => void heard.push(frame));
-    const line = instructor.flight?.line;
+    const line = lineOf(instructor);
     const engineCount = line?.run.plant.engineCount ?? 2;
     const channels = Array.from({ length: 4 + 2 * engineCount }, () => new Int16Array(4).fill(-30_000));
     const startTick = line?.head ?? 0;

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { telemetrySchema } from '#shared/contracts/class-socket.ts';
 import { eventSchema } from '#shared/scenario/scenario-schema.ts';
 import type { ClassRun } from '#shared/scenario/class-state.ts';
 import { lineMarks, plannedEvents, zeroOf } from '../../../src/features/class/planned-events.ts';
@@ -79,5 +80,14 @@ describe('the class again in step', () => {
     const line: ReplayLine = { id: 'a', seat: 1, name: 'A', samples: [0, 12, 24, 36].map(telemetryAt) };
     expect([-1, 0, 0.1, 0.15, 0.3, 99].map((s) => sampleAt(line, s)?.tick)).toEqual([0, 0, 12, 12, 36, 36]);
     expect(sampleAt({ ...line, samples: [] }, 1)).toBeNull();
+  });
+});
+
+describe('what the board is told', () => {
+  it('takes an aeroplane far out of balance: that is whom the instructor looks for', () => {
+    const wild = { ...telemetryAt(120), betaDeg: -34.5, wantedBetaDeg: 12, phiDeg: 178, peakBetaDeg: 41, stillS: 30 };
+    expect(telemetrySchema.safeParse(wild).error).toBeUndefined();
+    expect(telemetrySchema.safeParse({ ...wild, betaDeg: 181 }).success).toBe(false);
+    expect(telemetrySchema.safeParse({ ...wild, pedal: 11 }).success).toBe(false);
   });
 });
