@@ -57,7 +57,15 @@ describe('events on the time line of a class', () => {
 
   it('are told to trainees only once they have happened', () => {
     const fired = [
-      { id: 'cut', lane: 'engines', kind: 'engine-failure', text: 'Left engine fails', timeS: 2.5, tick: 300 },
+      {
+        id: 'cut',
+        lane: 'engines',
+        kind: 'engine-failure',
+        text: 'Left engine fails',
+        timeS: 2.5,
+        tick: 300,
+        injected: false,
+      },
     ] as const;
     expect(lineMarks(planned, [...fired], 4, false).map(({ id }) => id)).toEqual(['cut']);
     const all = lineMarks(planned, [...fired], 4, true);
