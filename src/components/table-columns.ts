@@ -2,6 +2,8 @@
 export interface TableColumn {
   key: string;
   title: string;
+  /** Heading that is only read out, where none is shown. */
+  spoken?: string;
   /** Numbers stand at the right, in mono. */
   numeric?: boolean;
   /** Name in the sort parameter of the address and the server; without it the column does not sort. */

@@ -64,6 +64,7 @@ describe('an engineer', () => {
     await page.getByRole('heading', { name: 'Fin and dihedral estimator' }).waitFor();
     await page.getByRole('button', { name: 'Adopt Cn δr' }).click();
     await page.getByText('Cn δr adopted with its source.').waitFor();
+    await page.getByRole('button', { name: 'Close this notice' }).click(); // it covers a field for its seven seconds
     expect(await accessibilityProblems(page)).toEqual([]);
     await page.goto('/airframes/dc-8-approach/revisions/1');
     await release(page, 1);

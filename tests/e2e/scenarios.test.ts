@@ -129,9 +129,9 @@ describe('writing a scenario', () => {
     const time = page.getByLabel('Time of Left engine fails, seconds');
     await time.fill('6.04');
     await time.press('Tab');
-    expect(await time.inputValue()).toBe('6');
+    await expect.poll(() => time.inputValue()).toBe('6');
     for (let i = 0; i < 3; i += 1) await page.getByRole('button', { name: 'Undo', exact: true }).click();
-    expect(await time.inputValue()).toBe('3');
+    await expect.poll(() => time.inputValue()).toBe('3');
     expect(await page.getByRole('button', { name: 'Undo', exact: true }).isDisabled()).toBe(true);
     await page.getByText(/^Draft 1, saved/).waitFor();
 
