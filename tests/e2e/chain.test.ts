@@ -121,7 +121,10 @@ describe('the chain', () => {
     const admin = await createConnection(`${server}/${access?.database}`);
     try {
       // The newest entries are sealed within a minute; what is sealed so far must hold.
-      expect((await maintain(['audit-verify'])).stdout).toMatch(/The chain is whole: [1-9]\d* entries sealed/);
+      const counts = /The chain is whole: (\d+) entries sealed, (\d+) not yet/.exec(
+        (await maintain(['audit-verify'])).stdout,
+      );
+      expect(Number(counts?.[1]) + Number(counts?.[2])).toBeGreaterThan(10);
       const backup = path.join(folder, 'chain.backup.gz');
       const before = await contents(admin);
       expect((await maintain(['backup', backup])).stdout).toContain('chain.backup.gz');
